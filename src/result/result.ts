@@ -1,0 +1,163 @@
+/** The result file: the contract of `legwork debrief --json`. Plain JSON, knots, degrees, metres, UTC. */
+
+export type Basis = 'measured' | 'derived' | 'inferred' | 'assumed';
+
+/** A quantity with its error. `se`: one standard error as sailed; `sys`: shift for one sd of calibration and mounting. */
+export interface Quantity {
+  readonly value: number;
+  readonly se: number | null;
+  readonly sys?: number;
+  readonly basis: Basis;
+}
+
+export type Q = Quantity | null;
+
+export interface InputEntry {
+  readonly file: string;
+  readonly sha256: string;
+  readonly kind: string;
+  readonly rows: number;
+  readonly kept: number;
+  readonly ignored: number;
+  readonly ignored_types: Readonly<Record<string, number>>;
+  readonly rejected: readonly { readonly reason: string; readonly count: number; readonly first_line: number }[];
+  readonly fixes: number;
+  readonly samples: number;
+  readonly gaps: readonly { readonly from: string; readonly seconds: number }[];
+}
+
+export type WindSource = 'station' | 'on-board' | 'tracks' | 'by-hand';
+export type Side = 'port' | 'starboard';
+export type ManoeuvreKind = 'tack' | 'gybe' | 'round-up' | 'bear-away' | 'full-turn';
+export type Cause =
+  'manoeuvres' | 'start' | 'high' | 'low' | 'trim' | 'speed' | 'overstood' | 'stopped' | 'shifts';
+
+export interface ManoeuvreResult {
+  readonly kind: ManoeuvreKind;
+  /** Bow (or course) through the wind. */
+  readonly time: string;
+  readonly from: Side;
+  readonly to: Side;
+  readonly seconds: number;
+  readonly loss_m: Q;
+}
+
+export interface TackSide {
+  readonly seconds: number;
+  readonly gamma_deg: Q;
+  readonly speed_kn: Q;
+  readonly vmg_kn: Q;
+  readonly tws_kn: Q;
+  readonly aws_kn: Q;
+  readonly beta_deg: Q;
+  readonly awa_deg: Q;
+  readonly leeway_deg: Q;
+  readonly sheeting_deg: Q;
+  readonly incidence_deg: Q;
+  readonly aero_drag_angle_deg: Q;
+  readonly hydro_drag_angle_deg: Q;
+}
+
+export interface Steady extends TackSide {
+  readonly tacking_angle_deg: Q;
+  readonly port: TackSide | null;
+  readonly starboard: TackSide | null;
+}
+
+export interface OptimumResult {
+  readonly gamma_deg: Q;
+  readonly speed_kn: Q;
+  readonly vmg_kn: Q;
+  readonly beta_deg: Q;
+  readonly leeway_deg: Q;
+  readonly sheeting_deg: Q;
+}
+
+export interface Ledger {
+  readonly reference: 'model' | 'best' | 'file';
+  readonly available_m: Q;
+  readonly made_m: Q;
+  readonly lost_m: Q;
+  readonly entries: readonly { readonly cause: Cause; readonly metres: Q }[];
+}
+
+export interface LegResult {
+  readonly kind: 'upwind' | 'downwind' | 'reach';
+  readonly lap: number;
+  readonly start: string;
+  readonly end: string;
+  readonly tacks: number;
+  readonly gybes: number;
+  readonly vmg_kn: Q;
+  readonly steady: Steady | null;
+  readonly optimum: OptimumResult | null;
+  readonly ceiling_vmg_kn: Q;
+  readonly efficiency: Q;
+  readonly share: Q;
+  readonly ledger: Ledger | null;
+  readonly notes: readonly string[];
+}
+
+export interface BoatResult {
+  readonly name: string;
+  readonly sailor: string;
+  readonly model: { readonly boat: string; readonly tuned: boolean; readonly sha256: string };
+  readonly corrections: { readonly compass_offset_deg: Q; readonly awa_offset_deg: Q };
+  readonly manoeuvres: readonly ManoeuvreResult[];
+  readonly legs: readonly LegResult[];
+  /** At most three plain sentences, strongest first. */
+  readonly hints: readonly Hint[];
+}
+
+export interface Hint {
+  readonly text: string;
+  readonly metres: Q;
+}
+
+export interface PairLeg {
+  readonly lap: number;
+  readonly vmg_difference_kn: Q;
+  readonly height_part_kn: Q;
+  readonly speed_part_kn: Q;
+  readonly gamma_difference_deg: Q;
+  readonly gain_m: Q;
+  readonly blocks: number;
+}
+
+export interface PairResult {
+  readonly boats: readonly [string, string];
+  readonly vmg_difference_kn: Q;
+  readonly height_part_kn: Q;
+  readonly speed_part_kn: Q;
+  readonly gamma_difference_deg: Q;
+  readonly gain_m: Q;
+  readonly blocks: number;
+  readonly settled_s: number;
+  readonly faster: string | null;
+  readonly higher: string | null;
+  readonly quicker: string | null;
+  readonly legs: readonly PairLeg[];
+  readonly notes: readonly string[];
+}
+
+export interface Warning {
+  readonly code: string;
+  readonly message: string;
+  readonly file?: string;
+}
+
+export interface Result {
+  readonly format: 'legwork-result';
+  readonly version: 1;
+  readonly program: { readonly name: 'legwork'; readonly version: string };
+  readonly race: { readonly name: string; readonly start: string | null; readonly finish: string | null };
+  readonly inputs: readonly InputEntry[];
+  readonly wind: { readonly sources: readonly WindSource[]; readonly twd_deg: Q; readonly tws_kn: Q };
+  readonly corrections: {
+    readonly twd_offset_deg: Q;
+    readonly current: { readonly set_deg: Q; readonly drift_kn: Q } | null;
+  };
+  readonly boats: readonly BoatResult[];
+  readonly pairs?: readonly PairResult[];
+  readonly warnings: readonly Warning[];
+}
