@@ -70,7 +70,7 @@ export interface SeaProfile {
 /**
  * Roughness of the sea under a given wind, Charnock's relation with the smooth-flow term.
  *
- *     z0 = a u*^2/g + 0.11 nu/u*        U10 = (u*/kappa) ln(10/z0)
+ *     z0 = a u*^2/g + 0.11 nu/u*        U10 = u* ln(10/z0) / kappa
  *
  * @param u10        Wind speed at 10 m. [m/s, > 0.5]
  * @param charnock   Charnock's constant a; 0.011 up to 10 m/s, near 0.018 at 18 m/s in recent use.
