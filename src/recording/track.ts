@@ -23,11 +23,4 @@ export interface Track {
   readonly heel?: Float64Array;
 }
 
-/** Origin of the local plane. */
-export interface Frame {
-  readonly lat: number;
-  readonly lon: number;
-  /** Metres per degree of latitude and of longitude there (WGS84). */
-  readonly metresPerDegreeLat: number;
-  readonly metresPerDegreeLon: number;
-}
+export type { Frame } from '../math/geo.js';
