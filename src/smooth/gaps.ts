@@ -1,0 +1,106 @@
+import type { Observations } from './kalman.js';
+
+/** Rows [from, to) that hang together: nothing is interpolated from one stretch to the next. */
+export interface Stretch {
+  readonly from: number;
+  readonly to: number;
+}
+
+/** A hole in a log. */
+export interface Gap {
+  /** Last fix before it, UTC epoch seconds. */
+  readonly from: number;
+  readonly seconds: number;
+}
+
+/** A hole is a gap from 5 s on: a boat can begin and end a tack's turn within it. */
+export const SHORTEST_GAP = 5;
+/** ... or from five of the recording's own steps on: slow loggers skip one or two now and then. */
+export const GAP_STEPS = 5;
+/** A logger that leaves out points on straight lines writes one at least this often. [s] */
+export const LONGEST_BRIDGE = 30;
+/** A step is irregular when it differs from the median by more than this share of it. */
+const IRREGULAR_STEP = 0.3;
+/** From this share of irregular steps on, the logger chooses its points; jitter and single losses stay below it. */
+const IRREGULAR_SHARE = 0.15;
+/** Velocities before, across and after a hole agree within this share of the speed, plus 0.3 m/s of receiver noise. */
+const AGREE_SHARE = 0.25;
+const AGREE_FLOOR = 0.3;
+
+/** Steps between fixes: the median, and whether the logger chose its points by the shape of the track. */
+export interface Stepping {
+  readonly median: number;
+  readonly irregular: boolean;
+}
+
+/** Rows that hold a position. */
+export function fixRows(observations: Observations): Int32Array {
+  const { x } = observations;
+  let n = 0;
+  for (let i = 0; i < x.length; i++) if (x[i]! === x[i]!) n++;
+  const rows = new Int32Array(n);
+  let k = 0;
+  for (let i = 0; i < x.length; i++) if (x[i]! === x[i]!) rows[k++] = i;
+  return rows;
+}
+
+/** How the fixes follow each other. */
+export function stepping(time: Float64Array, rows: Int32Array): Stepping {
+  if (rows.length < 2) return { median: 1, irregular: false };
+  const steps = new Float64Array(rows.length - 1);
+  for (let k = 1; k < rows.length; k++) steps[k - 1] = time[rows[k]!]! - time[rows[k - 1]!]!;
+  const sorted = steps.slice().sort();
+  const median = sorted[sorted.length >> 1]!;
+  let odd = 0;
+  for (const step of steps) if (Math.abs(step - median) > IRREGULAR_STEP * median && step > 0.5) odd++;
+  return { median, irregular: odd > IRREGULAR_SHARE * steps.length };
+}
+
+/**
+ * Cuts a recording where nothing may be interpolated: at holes longer than max(5 s, five median steps), at breaks of
+ * the recording and at `cuts`. A hole up to 30 s in a thinned recording is bridged when the boat went straight on.
+ *
+ * @param observations Positions; NaN where none.
+ * @param breaks       Rows at which a new piece begins.
+ */
+export function findStretches(
+  observations: Observations,
+  breaks: readonly number[],
+): { stretches: Stretch[]; gaps: Gap[]; step: Stepping } {
+  const rows = fixRows(observations);
+  const step = stepping(observations.time, rows);
+  const limit = Math.max(SHORTEST_GAP, GAP_STEPS * step.median);
+  const stretches: Stretch[] = [];
+  const gaps: Gap[] = [];
+  let from = 0;
+  let nextBreak = 0;
+  for (let k = 1; k <= rows.length; k++) {
+    if (k === rows.length) {
+      stretches.push({ from: rows[from]!, to: rows[k - 1]! + 1 });
+      break;
+    }
+    while (nextBreak < breaks.length && breaks[nextBreak]! <= rows[k - 1]!) nextBreak++;
+    const broken = nextBreak < breaks.length && breaks[nextBreak]! <= rows[k]!;
+    const hole = observations.time[rows[k]!]! - observations.time[rows[k - 1]!]!;
+    const bridged = step.irregular && hole <= LONGEST_BRIDGE && goesStraightOn(observations, rows, k);
+    if (!broken && (hole <= limit || bridged)) continue;
+    stretches.push({ from: rows[from]!, to: rows[k - 1]! + 1 });
+    gaps.push({ from: observations.time[rows[k - 1]!]!, seconds: hole });
+    from = k;
+  }
+  return { stretches: rows.length > 0 ? stretches : [], gaps, step };
+}
+
+/** Whether velocity before, across and after the hole before the k-th fix is the same. */
+function goesStraightOn(o: Observations, rows: Int32Array, k: number): boolean {
+  if (k < 2 || k + 1 >= rows.length) return false;
+  const [across, before, after] = [k, k - 1, k + 1].map((j) => velocityInto(o, rows[j - 1]!, rows[j]!));
+  const tolerance = AGREE_FLOOR + AGREE_SHARE * Math.hypot(across!.x, across!.y);
+  const differs = (v: { x: number; y: number }) => Math.hypot(v.x - across!.x, v.y - across!.y) > tolerance;
+  return !differs(before!) && !differs(after!);
+}
+
+function velocityInto(o: Observations, from: number, to: number): { x: number; y: number } {
+  const dt = o.time[to]! - o.time[from]!;
+  return { x: (o.x[to]! - o.x[from]!) / dt, y: (o.y[to]! - o.y[from]!) / dt };
+}

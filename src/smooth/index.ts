@@ -1,0 +1,3 @@
+export { smoothTrack, type FixRejection, type SmoothedTrack, type SmoothOptions } from './smooth-track.js';
+export { attachInstruments, type ResampleOptions } from './instruments.js';
+export { receiverDisplacementSe, DEFAULT_NOISE, type TrackNoise } from './noise.js';

@@ -1,0 +1,224 @@
+import { eastInPlane, northInPlane, type Frame } from '../math/geo.js';
+import { eastOf, northOf } from '../math/angles.js';
+import type { Issue } from '../recording/issues.js';
+import type { Recording } from '../recording/recording.js';
+import type { Track } from '../recording/track.js';
+import { findStretches, type Gap, type Stretch } from './gaps.js';
+import { attachInstruments } from './instruments.js';
+import { smoothStretch, type Observations } from './kalman.js';
+import { estimateNoise, type TrackNoise } from './noise.js';
+import { excursions, gate } from './outliers.js';
+import { staleRows } from './stale.js';
+
+/** Fixes that were not used, of one kind. */
+export interface FixRejection {
+  readonly reason: string;
+  readonly count: number;
+  /** When the first of them was taken, UTC epoch seconds, and its row in the recording. */
+  readonly firstTime: number;
+  readonly firstRow: number;
+}
+
+export interface SmoothOptions {
+  /** File the recording came from, for issues. */
+  readonly file?: string;
+  /** Use this noise instead of finding it. */
+  readonly noise?: TrackNoise;
+}
+
+export interface SmoothedTrack {
+  readonly track: Track;
+  readonly rejected: readonly FixRejection[];
+  readonly gaps: readonly Gap[];
+  readonly issues: readonly Issue[];
+  /** What was found of the boat's and the receiver's noise; for `receiverDisplacementSe`. */
+  readonly noise: TrackNoise;
+}
+
+/** Below this speed a receiver's course is noise (0.05 m/s of it is 6 degrees). [m/s] */
+const SLOWEST_COURSE = 0.5;
+/** A boat's log is not longer: fixes farther away carry a wrong date. [s] */
+const LONGEST_LOG = 7 * 86400;
+/** A stretch with fewer fixes has no velocity worth the name. */
+const FEWEST_FIXES = 3;
+
+/**
+ * A recording as a clean track: impossible and stale fixes taken out, gaps left open, the rest smoothed onto whole
+ * seconds, with the boat's instruments on the same rows.
+ *
+ * @param recording One boat's log.
+ * @param frame     The race's local plane.
+ * @param options   File name for issues; noise where it is known.
+ */
+export function smoothTrack(recording: Recording, frame: Frame, options: SmoothOptions = {}): SmoothedTrack {
+  const rejections = new Rejections(recording);
+  const observations = observe(recording, frame);
+  rejections.add('stale: repeats a position the boat had left', observations, staleRows(observations));
+  const breaks = [...recording.breaks];
+  let found = findStretches(observations, breaks);
+  const noise = options.noise ?? estimateNoise(observations, found.stretches, found.step.median);
+  const jumps = gateAll(observations, found.stretches, noise, rejections);
+  if (jumps.rows.length > 0) breaks.push(...jumps.rows);
+  breaks.sort((a, b) => a - b);
+  found = findStretches(observations, breaks);
+  dropLonely(observations, found.stretches, rejections);
+  const stretches = found.stretches.filter((s) => countFixes(observations, s) >= FEWEST_FIXES);
+  const kept = dropFar(observations, stretches, rejections);
+  found = kept.length === found.stretches.length ? found : findStretches(observations, breaks);
+  const track = attachInstruments(smoothAll(recording.name, observations, kept, noise), recording);
+  return {
+    track,
+    rejected: rejections.list(),
+    gaps: found.gaps,
+    issues: rejections.issues(jumps, options.file),
+    noise,
+  };
+}
+
+/** Positions in the plane and Doppler velocities of each row. */
+function observe(recording: Recording, frame: Frame): Observations {
+  const n = recording.time.length;
+  const { lat, lon, sog, cog } = recording.channels;
+  const x = new Float64Array(n).fill(NaN);
+  const y = new Float64Array(n).fill(NaN);
+  const vx = new Float32Array(n).fill(NaN);
+  const vy = new Float32Array(n).fill(NaN);
+  if (lat && lon) {
+    for (let i = 0; i < n; i++) {
+      x[i] = eastInPlane(frame, lon[i]!);
+      y[i] = northInPlane(frame, lat[i]!);
+    }
+  }
+  if (sog && cog) {
+    for (let i = 0; i < n; i++) {
+      if (!(sog[i]! >= SLOWEST_COURSE)) continue;
+      vx[i] = sog[i]! * eastOf(cog[i]!);
+      vy[i] = sog[i]! * northOf(cog[i]!);
+    }
+  }
+  return { time: recording.time, x, y, vx, vy };
+}
+
+/** What jumped where. */
+interface Jumps {
+  /** Rows at which the track goes on elsewhere. */
+  readonly rows: readonly number[];
+  /** Fixes taken out as impossible, the first of them, and the longest jump. [m] */
+  readonly count: number;
+  readonly firstRow: number;
+  readonly largest: number;
+}
+
+/** Gates every stretch; impossible fixes and velocities are taken out of the observations. */
+function gateAll(o: Observations, stretches: readonly Stretch[], noise: TrackNoise, rejections: Rejections): Jumps {
+  const rows: number[] = [];
+  const bad: number[] = [];
+  let largest = 0;
+  for (const stretch of stretches) {
+    const gated = gate(o, stretch, noise);
+    for (const row of gated.rejectedVelocity) o.vx[row] = o.vy[row] = NaN;
+    largest = Math.max(largest, gated.largest);
+    const { rejected, jumps } = excursions(o, stretch, gated.jumps);
+    rows.push(...jumps);
+    const outside = (row: number) => rejected.every(({ from, to }) => row < from || row >= to);
+    for (const row of gated.rejected) if (outside(row)) bad.push(row);
+    for (const { from, to } of rejected) for (let i = from; i < to; i++) bad.push(i);
+  }
+  const distinct = bad.filter((row) => !Number.isNaN(o.x[row]!)).sort((a, b) => a - b);
+  const firstRow = Math.min(distinct[0] ?? Infinity, rows[0] ?? Infinity);
+  rejections.add('position jump: the boat cannot have been there', o, distinct);
+  return { rows, count: distinct.length, firstRow, largest };
+}
+
+function countFixes(o: Observations, { from, to }: Stretch): number {
+  let n = 0;
+  for (let i = from; i < to; i++) if (o.x[i]! === o.x[i]!) n++;
+  return n;
+}
+
+function dropLonely(o: Observations, stretches: readonly Stretch[], rejections: Rejections): void {
+  const lonely: number[] = [];
+  for (const stretch of stretches) {
+    if (countFixes(o, stretch) >= FEWEST_FIXES) continue;
+    for (let i = stretch.from; i < stretch.to; i++) if (o.x[i]! === o.x[i]!) lonely.push(i);
+  }
+  rejections.add('alone between gaps: fewer than three fixes', o, lonely);
+}
+
+/** Keeps the part of the log that holds most fixes where it spans more than a week. */
+function dropFar(o: Observations, stretches: readonly Stretch[], rejections: Rejections): Stretch[] {
+  const groups: Stretch[][] = [];
+  for (const stretch of stretches) {
+    const last = groups.at(-1);
+    const first = last?.[0];
+    if (first && o.time[stretch.to - 1]! - o.time[first.from]! <= LONGEST_LOG) last.push(stretch);
+    else groups.push([stretch]);
+  }
+  if (groups.length <= 1) return [...stretches];
+  const size = (group: Stretch[]) => group.reduce((sum, s) => sum + countFixes(o, s), 0);
+  const best = groups.reduce((a, b) => (size(b) > size(a) ? b : a));
+  const far: number[] = [];
+  for (const group of groups) {
+    if (group === best) continue;
+    for (const { from, to } of group) for (let i = from; i < to; i++) if (o.x[i]! === o.x[i]!) far.push(i);
+  }
+  rejections.add('more than a week from the rest of the log', o, far);
+  return best;
+}
+
+function smoothAll(name: string, o: Observations, stretches: readonly Stretch[], noise: TrackNoise): Track {
+  const first = stretches[0];
+  const last = stretches.at(-1);
+  const t0 = first ? Math.ceil(o.time[first.from]!) : 0;
+  const n = last ? Math.max(0, Math.floor(o.time[last.to - 1]!) - t0 + 1) : 0;
+  const column = () => new Float64Array(n).fill(NaN);
+  const rows = { x: column(), y: column(), vx: column(), vy: column(), sePosition: column(), seVelocity: column() };
+  for (const { from, to } of stretches) smoothStretch({ observations: o, from, to, noise }, { t0, ...rows });
+  return { name, t0, n, ...rows };
+}
+
+/** Collects what was taken out, and takes it out. */
+class Rejections {
+  readonly #recording: Recording;
+  readonly #list: FixRejection[] = [];
+
+  constructor(recording: Recording) {
+    this.#recording = recording;
+  }
+
+  /** Counts the fixes in `rows` (ascending) under a reason and makes them absent. */
+  add(reason: string, o: Observations, rows: readonly number[]): void {
+    if (rows.length === 0) return;
+    for (const row of rows) o.x[row] = o.y[row] = NaN;
+    const firstRow = rows[0]!;
+    this.#list.push({ reason, count: rows.length, firstRow, firstTime: this.#recording.time[firstRow]! });
+  }
+
+  list(): FixRejection[] {
+    return this.#list;
+  }
+
+  issues(jumps: Jumps, file: string | undefined): Issue[] {
+    const issues: Issue[] = [];
+    const at = file === undefined ? {} : { file };
+    if (Number.isFinite(jumps.firstRow) && jumps.count + jumps.rows.length > 0) {
+      const time = utc(this.#recording.time[jumps.firstRow]!);
+      const what = jumps.count === 1 ? 'One fix is' : `${jumps.count} fixes are`;
+      const message =
+        jumps.rows.length > 0
+          ? `The position jumps by up to ${jumps.largest.toFixed(0)} m, first at ${time}, and goes on from there: a gap.`
+          : `${what} up to ${jumps.largest.toFixed(0)} m from where the boat can have been, first at ${time}: left out.`;
+      issues.push({ code: 'position-jump', message, ...at });
+    }
+    const stale = this.#list.find(({ reason }) => reason.startsWith('stale'));
+    if (stale) {
+      const message = `${stale.count} fixes repeat the last position while the boat moved on, first at ${utc(stale.firstTime)}: left out.`;
+      issues.push({ code: 'position-stale', message, ...at });
+    }
+    return issues;
+  }
+}
+
+function utc(time: number): string {
+  return new Date(Math.round(time) * 1000).toISOString().slice(0, 19) + 'Z';
+}
