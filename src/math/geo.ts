@@ -140,8 +140,8 @@ export function middleOf(lat: ArrayLike<number>, lon: ArrayLike<number>): { lat:
   let east = -Infinity;
   let first = NaN;
   for (let i = 0; i < lat.length; i++) {
-    const φ = lat[i]!;
-    const λ = lon[i]!;
+    const φ = lat[i];
+    const λ = lon[i];
     if (Number.isNaN(φ) || Number.isNaN(λ)) continue;
     if (Number.isNaN(first)) first = λ;
     const from = wrap180(λ - first);

@@ -37,10 +37,10 @@ export interface Stepping {
 export function fixRows(observations: Observations): Int32Array {
   const { x } = observations;
   let n = 0;
-  for (let i = 0; i < x.length; i++) if (x[i]! === x[i]!) n++;
+  for (let i = 0; i < x.length; i++) if (x[i] === x[i]) n++;
   const rows = new Int32Array(n);
   let k = 0;
-  for (let i = 0; i < x.length; i++) if (x[i]! === x[i]!) rows[k++] = i;
+  for (let i = 0; i < x.length; i++) if (x[i] === x[i]) rows[k++] = i;
   return rows;
 }
 
@@ -48,9 +48,9 @@ export function fixRows(observations: Observations): Int32Array {
 export function stepping(time: Float64Array, rows: Int32Array): Stepping {
   if (rows.length < 2) return { median: 1, irregular: false };
   const steps = new Float64Array(rows.length - 1);
-  for (let k = 1; k < rows.length; k++) steps[k - 1] = time[rows[k]!]! - time[rows[k - 1]!]!;
+  for (let k = 1; k < rows.length; k++) steps[k - 1] = time[rows[k]] - time[rows[k - 1]];
   const sorted = steps.slice().sort();
-  const median = sorted[sorted.length >> 1]!;
+  const median = sorted[sorted.length >> 1];
   let odd = 0;
   for (const step of steps) if (Math.abs(step - median) > IRREGULAR_STEP * median && step > 0.5) odd++;
   return { median, irregular: odd > IRREGULAR_SHARE * steps.length };
@@ -76,16 +76,16 @@ export function findStretches(
   let nextBreak = 0;
   for (let k = 1; k <= rows.length; k++) {
     if (k === rows.length) {
-      stretches.push({ from: rows[from]!, to: rows[k - 1]! + 1 });
+      stretches.push({ from: rows[from], to: rows[k - 1] + 1 });
       break;
     }
-    while (nextBreak < breaks.length && breaks[nextBreak]! <= rows[k - 1]!) nextBreak++;
-    const broken = nextBreak < breaks.length && breaks[nextBreak]! <= rows[k]!;
-    const hole = observations.time[rows[k]!]! - observations.time[rows[k - 1]!]!;
+    while (nextBreak < breaks.length && breaks[nextBreak] <= rows[k - 1]) nextBreak++;
+    const broken = nextBreak < breaks.length && breaks[nextBreak] <= rows[k];
+    const hole = observations.time[rows[k]] - observations.time[rows[k - 1]];
     const bridged = step.irregular && hole <= LONGEST_BRIDGE && goesStraightOn(observations, rows, k);
     if (!broken && (hole <= limit || bridged)) continue;
-    stretches.push({ from: rows[from]!, to: rows[k - 1]! + 1 });
-    gaps.push({ from: observations.time[rows[k - 1]!]!, seconds: hole });
+    stretches.push({ from: rows[from], to: rows[k - 1] + 1 });
+    gaps.push({ from: observations.time[rows[k - 1]], seconds: hole });
     from = k;
   }
   return { stretches: rows.length > 0 ? stretches : [], gaps, step };
@@ -94,13 +94,13 @@ export function findStretches(
 /** Whether velocity before, across and after the hole before the k-th fix is the same. */
 function goesStraightOn(o: Observations, rows: Int32Array, k: number): boolean {
   if (k < 2 || k + 1 >= rows.length) return false;
-  const [across, before, after] = [k, k - 1, k + 1].map((j) => velocityInto(o, rows[j - 1]!, rows[j]!));
-  const tolerance = AGREE_FLOOR + AGREE_SHARE * Math.hypot(across!.x, across!.y);
-  const differs = (v: { x: number; y: number }) => Math.hypot(v.x - across!.x, v.y - across!.y) > tolerance;
-  return !differs(before!) && !differs(after!);
+  const [across, before, after] = [k, k - 1, k + 1].map((j) => velocityInto(o, rows[j - 1], rows[j]));
+  const tolerance = AGREE_FLOOR + AGREE_SHARE * Math.hypot(across.x, across.y);
+  const differs = (v: { x: number; y: number }) => Math.hypot(v.x - across.x, v.y - across.y) > tolerance;
+  return !differs(before) && !differs(after);
 }
 
 function velocityInto(o: Observations, from: number, to: number): { x: number; y: number } {
-  const dt = o.time[to]! - o.time[from]!;
-  return { x: (o.x[to]! - o.x[from]!) / dt, y: (o.y[to]! - o.y[from]!) / dt };
+  const dt = o.time[to] - o.time[from];
+  return { x: (o.x[to] - o.x[from]) / dt, y: (o.y[to] - o.y[from]) / dt };
 }

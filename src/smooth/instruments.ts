@@ -37,37 +37,37 @@ export function resampleChannel(
   const { time, value } = channelValues(recording, channel);
   if (time.length === 0) return null;
   const clock = options.clockS ?? 0;
-  const breaks = recording.breaks.map((row) => recording.time[row]! + clock);
+  const breaks = recording.breaks.map((row) => recording.time[row] + clock);
   const out = new Float64Array(n);
   let low = 0;
   let nextBreak = 0;
   for (let i = 0; i < n; i++) {
     const t = t0 + i;
-    while (low < time.length && time[low]! + clock < t - 0.5) low++;
+    while (low < time.length && time[low] + clock < t - 0.5) low++;
     let high = low;
-    while (high < time.length && time[high]! + clock < t + 0.5) high++;
+    while (high < time.length && time[high] + clock < t + 0.5) high++;
     if (high > low) {
       out[i] = meanOf(value, low, high, kind);
       continue;
     }
-    while (nextBreak < breaks.length && breaks[nextBreak]! <= t) nextBreak++;
+    while (nextBreak < breaks.length && breaks[nextBreak] <= t) nextBreak++;
     const before = low - 1;
-    const startsLater = nextBreak < breaks.length && low < time.length && breaks[nextBreak]! <= time[low]! + clock;
-    const began = nextBreak > 0 && before >= 0 && time[before]! + clock < breaks[nextBreak - 1]!;
+    const startsLater = nextBreak < breaks.length && low < time.length && breaks[nextBreak] <= time[low] + clock;
+    const began = nextBreak > 0 && before >= 0 && time[before] + clock < breaks[nextBreak - 1];
     out[i] = startsLater || began ? NaN : between(time, value, before, low, t - clock, kind);
   }
   return out;
 }
 
 function meanOf(value: Float64Array, from: number, to: number, kind: Kind): number {
-  if (to === from + 1) return kind === 'compass' ? wrap360(value[from]!) : value[from]!;
+  if (to === from + 1) return kind === 'compass' ? wrap360(value[from]) : value[from];
   let a = 0;
   let b = 0;
   for (let k = from; k < to; k++) {
-    if (kind === 'scalar') a += value[k]!;
+    if (kind === 'scalar') a += value[k];
     else {
-      a += eastOf(value[k]!);
-      b += northOf(value[k]!);
+      a += eastOf(value[k]);
+      b += northOf(value[k]);
     }
   }
   if (kind === 'scalar') return a / (to - from);
@@ -85,12 +85,12 @@ function between(
   kind: Kind,
 ): number {
   if (before < 0 || after >= time.length) return NaN;
-  const span = time[after]! - time[before]!;
+  const span = time[after] - time[before];
   if (span > 2 * REACH) return NaN;
-  const share = (t - time[before]!) / span;
-  const from = value[before]!;
-  if (kind === 'scalar') return from + share * (value[after]! - from);
-  const angle = from + share * turn(from, value[after]!);
+  const share = (t - time[before]) / span;
+  const from = value[before];
+  if (kind === 'scalar') return from + share * (value[after] - from);
+  const angle = from + share * turn(from, value[after]);
   return kind === 'compass' ? wrap360(angle) : wrap180(angle);
 }
 
@@ -109,7 +109,7 @@ export function attachInstruments(track: Track, recording: Recording, options: R
     const values = resampleChannel(recording, name, kind, track.t0, track.n, options);
     if (!values) continue;
     const own = track[name];
-    added[name] = own ? own.map((v, i) => (Number.isNaN(v) ? values[i]! : v)) : values;
+    added[name] = own ? own.map((v, i) => (Number.isNaN(v) ? values[i] : v)) : values;
   }
   return { ...track, ...added };
 }

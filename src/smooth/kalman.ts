@@ -65,19 +65,19 @@ export function predict(s: FilterState, dt: number, noise: NoiseModel): void {
   if (dt === 0) return;
   const q = noise.accel;
   const φ = Math.exp(-dt / noise.correlation);
-  const pv = s[7]!;
-  const vv = s[9]!;
-  const vg = s[10]!;
-  s[0]! += s[1]! * dt;
-  s[2]! *= φ;
-  s[3]! += s[4]! * dt;
-  s[5]! *= φ;
-  s[6]! += dt * (2 * pv + dt * (vv + (q * dt) / 3));
+  const pv = s[7];
+  const vv = s[9];
+  const vg = s[10];
+  s[0] += s[1] * dt;
+  s[2] *= φ;
+  s[3] += s[4] * dt;
+  s[5] *= φ;
+  s[6] += dt * (2 * pv + dt * (vv + (q * dt) / 3));
   s[7] = pv + dt * (vv + (q * dt) / 2);
-  s[8] = φ * (s[8]! + dt * vg);
+  s[8] = φ * (s[8] + dt * vg);
   s[9] = vv + q * dt;
   s[10] = φ * vg;
-  s[11] = φ * φ * s[11]! + noise.correlated * noise.correlated * (1 - φ * φ);
+  s[11] = φ * φ * s[11] + noise.correlated * noise.correlated * (1 - φ * φ);
 }
 
 /** Gain of the three states, variance of the innovation, innovation east and north. */
@@ -96,16 +96,16 @@ export function updatePosition(
   out: Innovation,
   weight = 1,
 ): void {
-  const p = s[6]! + s[8]!;
-  const v = s[7]! + s[10]!;
-  const g = s[8]! + s[11]!;
+  const p = s[6] + s[8];
+  const v = s[7] + s[10];
+  const g = s[8] + s[11];
   const total = p + g + variance / weight;
-  apply(s, p, v, g, total, x - s[0]! - s[2]!, y - s[3]! - s[5]!, out);
+  apply(s, p, v, g, total, x - s[0] - s[2], y - s[3] - s[5], out);
 }
 
 /** Takes in a velocity, in place; `out` becomes its gain, variance and innovation. */
 export function updateVelocity(s: FilterState, vx: number, vy: number, variance: number, out: Innovation): void {
-  apply(s, s[7]!, s[9]!, s[10]!, s[9]! + variance, vx - s[1]!, vy - s[4]!, out);
+  apply(s, s[7], s[9], s[10], s[9] + variance, vx - s[1], vy - s[4], out);
 }
 
 function apply(
@@ -121,18 +121,18 @@ function apply(
   const kp = p / total;
   const kv = v / total;
   const kg = g / total;
-  s[0]! += kp * east;
-  s[1]! += kv * east;
-  s[2]! += kg * east;
-  s[3]! += kp * north;
-  s[4]! += kv * north;
-  s[5]! += kg * north;
-  s[6]! -= kp * p;
-  s[7]! -= kp * v;
-  s[8]! -= kp * g;
-  s[9]! -= kv * v;
-  s[10]! -= kv * g;
-  s[11]! -= kg * g;
+  s[0] += kp * east;
+  s[1] += kv * east;
+  s[2] += kg * east;
+  s[3] += kp * north;
+  s[4] += kv * north;
+  s[5] += kg * north;
+  s[6] -= kp * p;
+  s[7] -= kp * v;
+  s[8] -= kp * g;
+  s[9] -= kv * v;
+  s[10] -= kv * g;
+  s[11] -= kg * g;
   out[0] = kp;
   out[1] = kv;
   out[2] = kg;
@@ -145,49 +145,49 @@ function apply(
 type Adjoint = Float64Array;
 
 function backTime(a: Adjoint, dt: number, φ: number): void {
-  a[1]! += dt * a[0]!;
-  a[2]! *= φ;
-  a[4]! += dt * a[3]!;
-  a[5]! *= φ;
-  const l00 = a[6]!;
-  const l01 = a[7]!;
-  const l02 = a[8]!;
+  a[1] += dt * a[0];
+  a[2] *= φ;
+  a[4] += dt * a[3];
+  a[5] *= φ;
+  const l00 = a[6];
+  const l01 = a[7];
+  const l02 = a[8];
   a[7] = l01 + dt * l00;
   a[8] = φ * l02;
-  a[9]! += dt * (2 * l01 + dt * l00);
-  a[10] = φ * (a[10]! + dt * l02);
-  a[11]! *= φ * φ;
+  a[9] += dt * (2 * l01 + dt * l00);
+  a[10] = φ * (a[10] + dt * l02);
+  a[11] *= φ * φ;
 }
 
 /** Back through a measurement whose record (gain, variance, innovation) starts at `r` of the tape. */
 function backMeasurement(a: Adjoint, tape: Float64Array, r: number, ofVelocity: boolean): void {
-  const k0 = tape[r]!;
-  const k1 = tape[r + 1]!;
-  const k2 = tape[r + 2]!;
-  const inverse = 1 / tape[r + 3]!;
-  const east = k0 * a[0]! + k1 * a[1]! + k2 * a[2]! + tape[r + 4]! * inverse;
-  const north = k0 * a[3]! + k1 * a[4]! + k2 * a[5]! + tape[r + 5]! * inverse;
-  const u0 = a[6]! * k0 + a[7]! * k1 + a[8]! * k2;
-  const u1 = a[7]! * k0 + a[9]! * k1 + a[10]! * k2;
-  const u2 = a[8]! * k0 + a[10]! * k1 + a[11]! * k2;
+  const k0 = tape[r];
+  const k1 = tape[r + 1];
+  const k2 = tape[r + 2];
+  const inverse = 1 / tape[r + 3];
+  const east = k0 * a[0] + k1 * a[1] + k2 * a[2] + tape[r + 4] * inverse;
+  const north = k0 * a[3] + k1 * a[4] + k2 * a[5] + tape[r + 5] * inverse;
+  const u0 = a[6] * k0 + a[7] * k1 + a[8] * k2;
+  const u1 = a[7] * k0 + a[9] * k1 + a[10] * k2;
+  const u2 = a[8] * k0 + a[10] * k1 + a[11] * k2;
   const c = k0 * u0 + k1 * u1 + k2 * u2 + inverse;
   if (ofVelocity) {
-    a[1]! -= east;
-    a[4]! -= north;
-    a[7]! -= u0;
-    a[9]! += c - 2 * u1;
-    a[10]! -= u2;
+    a[1] -= east;
+    a[4] -= north;
+    a[7] -= u0;
+    a[9] += c - 2 * u1;
+    a[10] -= u2;
     return;
   }
-  a[0]! -= east;
-  a[2]! -= east;
-  a[3]! -= north;
-  a[5]! -= north;
-  a[6]! += c - 2 * u0;
-  a[7]! -= u1;
-  a[8]! += c - u0 - u2;
-  a[10]! -= u1;
-  a[11]! += c - 2 * u2;
+  a[0] -= east;
+  a[2] -= east;
+  a[3] -= north;
+  a[5] -= north;
+  a[6] += c - 2 * u0;
+  a[7] -= u1;
+  a[8] += c - u0 - u2;
+  a[10] -= u1;
+  a[11] += c - 2 * u2;
 }
 
 /** What the smoother writes: row i is the time t0 + i. */
@@ -203,21 +203,21 @@ export interface SmoothedRows {
 
 /** Smoothed state at a row whose filtered record starts at `r` of the tape. */
 function writeRow(out: SmoothedRows, row: number, tape: Float64Array, r: number, a: Adjoint): void {
-  const pp = tape[r + 4]!;
-  const pv = tape[r + 5]!;
-  const pg = tape[r + 6]!;
-  const vv = tape[r + 7]!;
-  const vg = tape[r + 8]!;
-  out.x[row] = tape[r]! - (pp * a[0]! + pv * a[1]! + pg * a[2]!);
-  out.vx[row] = tape[r + 1]! - (pv * a[0]! + vv * a[1]! + vg * a[2]!);
-  out.y[row] = tape[r + 2]! - (pp * a[3]! + pv * a[4]! + pg * a[5]!);
-  out.vy[row] = tape[r + 3]! - (pv * a[3]! + vv * a[4]! + vg * a[5]!);
+  const pp = tape[r + 4];
+  const pv = tape[r + 5];
+  const pg = tape[r + 6];
+  const vv = tape[r + 7];
+  const vg = tape[r + 8];
+  out.x[row] = tape[r] - (pp * a[0] + pv * a[1] + pg * a[2]);
+  out.vx[row] = tape[r + 1] - (pv * a[0] + vv * a[1] + vg * a[2]);
+  out.y[row] = tape[r + 2] - (pp * a[3] + pv * a[4] + pg * a[5]);
+  out.vy[row] = tape[r + 3] - (pv * a[3] + vv * a[4] + vg * a[5]);
   out.sePosition[row] = Math.sqrt(Math.max(0, pp - quadratic(a, pp, pv, pg)));
   out.seVelocity[row] = Math.sqrt(Math.max(0, vv - quadratic(a, pv, vv, vg)));
 }
 
 function quadratic(a: Adjoint, p: number, v: number, g: number): number {
-  return p * (a[6]! * p + 2 * (a[7]! * v + a[8]! * g)) + v * (a[9]! * v + 2 * a[10]! * g) + g * g * a[11]!;
+  return p * (a[6] * p + 2 * (a[7] * v + a[8] * g)) + v * (a[9] * v + 2 * a[10] * g) + g * g * a[11];
 }
 
 /** Where a forward pass stands: next row of the observations, next whole second, time of the state. */
@@ -272,9 +272,9 @@ export interface SmoothingJob {
  */
 export function smoothStretch(job: SmoothingJob, out: SmoothedRows): number {
   const { observations, from, to, noise } = job;
-  const first = observations.time[from]!;
+  const first = observations.time[from];
   const cursor: Cursor = { row: from, tick: Math.max(Math.ceil(first), out.t0), time: first };
-  const start = job.start ?? { x: observations.x[from]!, y: observations.y[from]! };
+  const start = job.start ?? { x: observations.x[from], y: observations.y[from] };
   const state = startState(start.x, start.y, noise, job.variance);
   const checkpoints: { cursor: Cursor; state: FilterState }[] = [];
   while (cursor.row < to) {
@@ -291,7 +291,7 @@ export function smoothStretch(job: SmoothingJob, out: SmoothedRows): number {
   const adjoint: Adjoint = new Float64Array(12);
   let written = 0;
   for (let i = checkpoints.length - 1; i >= 0; i--) {
-    const { cursor: at, state: from_ } = checkpoints[i]!;
+    const { cursor: at, state: from_ } = checkpoints[i];
     tape.n = 0;
     forward(job, at, from_, tape);
     written += backward(tape, adjoint, at.tick, noise, out);
@@ -304,7 +304,7 @@ function forward(job: SmoothingJob, cursor: Cursor, state: FilterState, tape: Ta
   const { observations, to, noise } = job;
   const { time } = observations;
   for (let points = 0; points < STRETCH && cursor.row < to; points++) {
-    const next = time[cursor.row]!;
+    const next = time[cursor.row];
     const isTick = cursor.tick < next;
     const at = isTick ? cursor.tick : next;
     const dt = at - cursor.time;
@@ -328,15 +328,15 @@ const scratch: Innovation = new Float64Array(6);
 function takeRow(job: SmoothingJob, row: number, state: FilterState, dt: number, tape: Tape | null): number {
   const { observations, noise } = job;
   let elapsed = dt;
-  const x = observations.x[row]!;
+  const x = observations.x[row];
   if (x === x) {
-    updatePosition(state, x, observations.y[row]!, noise.white * noise.white, scratch);
+    updatePosition(state, x, observations.y[row], noise.white * noise.white, scratch);
     if (tape) recordMeasurement(tape, POSITION, elapsed);
     elapsed = 0;
   }
-  const vx = observations.vx[row]!;
+  const vx = observations.vx[row];
   if (vx === vx) {
-    updateVelocity(state, vx, observations.vy[row]!, noise.doppler * noise.doppler, scratch);
+    updateVelocity(state, vx, observations.vy[row], noise.doppler * noise.doppler, scratch);
     if (tape) recordMeasurement(tape, VELOCITY, elapsed);
     elapsed = 0;
   }
@@ -372,7 +372,7 @@ function backward(tape: Tape, adjoint: Adjoint, tick: number, noise: NoiseModel,
   let row = tick - out.t0;
   let written = 0;
   for (let i = tape.n - 1; i >= 0; i--) {
-    const kind = tape.kind[i]!;
+    const kind = tape.kind[i];
     if (kind === TICK) {
       row--;
       if (row < out.x.length) {
@@ -380,7 +380,7 @@ function backward(tape: Tape, adjoint: Adjoint, tick: number, noise: NoiseModel,
         written++;
       }
     } else if (kind !== 0) backMeasurement(adjoint, tape.values, i * STRIDE, kind === VELOCITY);
-    const dt = tape.dt[i]!;
+    const dt = tape.dt[i];
     if (dt !== 0) backTime(adjoint, dt, Math.exp(-dt / noise.correlation));
   }
   return written;

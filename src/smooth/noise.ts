@@ -201,42 +201,42 @@ const CLIP = 16;
 /** Log likelihood of the innovations of a piece, both axes, up to a constant. The first fixes only start the filter. */
 export function logLikelihood(o: Observations, { from, to }: Stretch, noise: NoiseModel): number {
   let first = from;
-  while (first < to && !(o.x[first]! === o.x[first]!)) first++;
+  while (first < to && !(o.x[first] === o.x[first])) first++;
   if (first === to) return 0;
-  const state = startState(o.x[first]!, o.y[first]!, noise);
+  const state = startState(o.x[first], o.y[first], noise);
   const out = new Float64Array(6);
   const before = new Float64Array(12);
   const white = noise.white * noise.white;
   const doppler = noise.doppler * noise.doppler;
   let sum = 0;
-  let time = o.time[first]!;
+  let time = o.time[first];
   for (let i = first; i < to; i++) {
-    const x = o.x[i]!;
-    const vx = o.vx[i]!;
+    const x = o.x[i];
+    const vx = o.vx[i];
     if (x !== x && vx !== vx) continue;
-    predict(state, o.time[i]! - time, noise);
+    predict(state, o.time[i] - time, noise);
     time = o.time[i]!;
     if (x === x) {
       before.set(state);
-      updatePosition(state, x, o.y[i]!, white, out);
+      updatePosition(state, x, o.y[i], white, out);
       const d2 = squareSum(out);
       if (d2 > CLIP) {
         state.set(before);
-        updatePosition(state, x, o.y[i]!, white, out, CLIP / d2);
-        out[3] = before[6]! + 2 * before[8]! + before[11]! + white;
+        updatePosition(state, x, o.y[i], white, out, CLIP / d2);
+        out[3] = before[6] + 2 * before[8] + before[11] + white;
       }
       if (i > first + 2) sum += cost(out[3], d2);
     }
     if (vx === vx) {
-      updateVelocity(state, vx, o.vy[i]!, doppler, out);
-      if (i > first + 2) sum += cost(out[3]!, squareSum(out));
+      updateVelocity(state, vx, o.vy[i], doppler, out);
+      if (i > first + 2) sum += cost(out[3], squareSum(out));
     }
   }
   return sum;
 }
 
 function squareSum(out: Float64Array): number {
-  return (out[4]! * out[4]! + out[5]! * out[5]!) / out[3]!;
+  return (out[4] * out[4] + out[5] * out[5]) / out[3];
 }
 
 /** Both axes share one variance, so its logarithm counts twice halved. */

@@ -85,15 +85,15 @@ function observe(recording: Recording, frame: Frame): Observations {
   const vy = new Float32Array(n).fill(NaN);
   if (lat && lon) {
     for (let i = 0; i < n; i++) {
-      x[i] = eastInPlane(frame, lon[i]!);
-      y[i] = northInPlane(frame, lat[i]!);
+      x[i] = eastInPlane(frame, lon[i]);
+      y[i] = northInPlane(frame, lat[i]);
     }
   }
   if (sog && cog) {
     for (let i = 0; i < n; i++) {
-      if (!(sog[i]! >= SLOWEST_COURSE)) continue;
-      vx[i] = sog[i]! * eastOf(cog[i]!);
-      vy[i] = sog[i]! * northOf(cog[i]!);
+      if (!(sog[i] >= SLOWEST_COURSE)) continue;
+      vx[i] = sog[i] * eastOf(cog[i]);
+      vy[i] = sog[i] * northOf(cog[i]);
     }
   }
   return { time: recording.time, x, y, vx, vy };
@@ -124,7 +124,7 @@ function gateAll(o: Observations, stretches: readonly Stretch[], noise: TrackNoi
     for (const row of gated.rejected) if (outside(row)) bad.push(row);
     for (const { from, to } of rejected) for (let i = from; i < to; i++) bad.push(i);
   }
-  const distinct = bad.filter((row) => !Number.isNaN(o.x[row]!)).sort((a, b) => a - b);
+  const distinct = bad.filter((row) => !Number.isNaN(o.x[row])).sort((a, b) => a - b);
   const firstRow = Math.min(distinct[0] ?? Infinity, rows[0] ?? Infinity);
   rejections.add('position jump: the boat cannot have been there', o, distinct);
   return { rows, count: distinct.length, firstRow, largest };
@@ -132,7 +132,7 @@ function gateAll(o: Observations, stretches: readonly Stretch[], noise: TrackNoi
 
 function countFixes(o: Observations, { from, to }: Stretch): number {
   let n = 0;
-  for (let i = from; i < to; i++) if (o.x[i]! === o.x[i]!) n++;
+  for (let i = from; i < to; i++) if (o.x[i] === o.x[i]) n++;
   return n;
 }
 
@@ -140,7 +140,7 @@ function dropLonely(o: Observations, stretches: readonly Stretch[], rejections: 
   const lonely: number[] = [];
   for (const stretch of stretches) {
     if (countFixes(o, stretch) >= FEWEST_FIXES) continue;
-    for (let i = stretch.from; i < stretch.to; i++) if (o.x[i]! === o.x[i]!) lonely.push(i);
+    for (let i = stretch.from; i < stretch.to; i++) if (o.x[i] === o.x[i]) lonely.push(i);
   }
   rejections.add('alone between gaps: fewer than three fixes', o, lonely);
 }
@@ -151,7 +151,7 @@ function dropFar(o: Observations, stretches: readonly Stretch[], rejections: Rej
   for (const stretch of stretches) {
     const last = groups.at(-1);
     const first = last?.[0];
-    if (first && o.time[stretch.to - 1]! - o.time[first.from]! <= LONGEST_LOG) last.push(stretch);
+    if (first && o.time[stretch.to - 1] - o.time[first.from] <= LONGEST_LOG) last.push(stretch);
     else groups.push([stretch]);
   }
   if (groups.length <= 1) return [...stretches];
@@ -160,7 +160,7 @@ function dropFar(o: Observations, stretches: readonly Stretch[], rejections: Rej
   const far: number[] = [];
   for (const group of groups) {
     if (group === best) continue;
-    for (const { from, to } of group) for (let i = from; i < to; i++) if (o.x[i]! === o.x[i]!) far.push(i);
+    for (const { from, to } of group) for (let i = from; i < to; i++) if (o.x[i] === o.x[i]) far.push(i);
   }
   rejections.add('more than a week from the rest of the log', o, far);
   return best;
@@ -169,8 +169,8 @@ function dropFar(o: Observations, stretches: readonly Stretch[], rejections: Rej
 function smoothAll(name: string, o: Observations, stretches: readonly Stretch[], noise: TrackNoise): Track {
   const first = stretches[0];
   const last = stretches.at(-1);
-  const t0 = first ? Math.ceil(o.time[first.from]!) : 0;
-  const n = last ? Math.max(0, Math.floor(o.time[last.to - 1]!) - t0 + 1) : 0;
+  const t0 = first ? Math.ceil(o.time[first.from]) : 0;
+  const n = last ? Math.max(0, Math.floor(o.time[last.to - 1]) - t0 + 1) : 0;
   const column = () => new Float64Array(n).fill(NaN);
   const rows = { x: column(), y: column(), vx: column(), vy: column(), sePosition: column(), seVelocity: column() };
   for (const { from, to } of stretches) smoothStretch({ observations: o, from, to, noise }, { t0, ...rows });
@@ -190,8 +190,8 @@ class Rejections {
   add(reason: string, o: Observations, rows: readonly number[]): void {
     if (rows.length === 0) return;
     for (const row of rows) o.x[row] = o.y[row] = NaN;
-    const firstRow = rows[0]!;
-    this.#list.push({ reason, count: rows.length, firstRow, firstTime: this.#recording.time[firstRow]! });
+    const firstRow = rows[0];
+    this.#list.push({ reason, count: rows.length, firstRow, firstTime: this.#recording.time[firstRow] });
   }
 
   list(): FixRejection[] {
@@ -202,7 +202,7 @@ class Rejections {
     const issues: Issue[] = [];
     const at = file === undefined ? {} : { file };
     if (Number.isFinite(jumps.firstRow) && jumps.count + jumps.rows.length > 0) {
-      const time = utc(this.#recording.time[jumps.firstRow]!);
+      const time = utc(this.#recording.time[jumps.firstRow]);
       const what = jumps.count === 1 ? 'One fix is' : `${jumps.count} fixes are`;
       const message =
         jumps.rows.length > 0

@@ -34,11 +34,11 @@ describe('smoothStretch', () => {
     const observations = observe([0, 1, 2, 3, 4, 5], MEASURED);
     expect(smoothStretch({ observations, from: 0, to: 6, noise, variance, start }, out)).toBe(6);
     WORKED.forEach(([p, v, seP, seV], k) => {
-      expect(out.x[k]).toBeCloseTo(p!, 7);
-      expect(out.y[k]).toBeCloseTo(p!, 7);
-      expect(out.vx[k]).toBeCloseTo(v!, 7);
-      expect(out.sePosition[k]).toBeCloseTo(seP!, 7);
-      expect(out.seVelocity[k]).toBeCloseTo(seV!, 7);
+      expect(out.x[k]).toBeCloseTo(p, 7);
+      expect(out.y[k]).toBeCloseTo(p, 7);
+      expect(out.vx[k]).toBeCloseTo(v, 7);
+      expect(out.sePosition[k]).toBeCloseTo(seP, 7);
+      expect(out.seVelocity[k]).toBeCloseTo(seV, 7);
     });
   });
 

@@ -58,8 +58,8 @@ export function beat(seconds: number, seed: number, every = 90): Path {
     path.vx[i] = speed * Math.sin((Math.PI / 180) * course);
     path.vy[i] = speed * Math.cos((Math.PI / 180) * course);
     if (i === 0) continue;
-    path.x[i] = path.x[i - 1]! + ((path.vx[i]! + path.vx[i - 1]!) / 2) * dt;
-    path.y[i] = path.y[i - 1]! + ((path.vy[i]! + path.vy[i - 1]!) / 2) * dt;
+    path.x[i] = path.x[i - 1] + ((path.vx[i] + path.vx[i - 1]) / 2) * dt;
+    path.y[i] = path.y[i - 1] + ((path.vy[i] + path.vy[i - 1]) / 2) * dt;
   }
   return path;
 }
@@ -80,7 +80,7 @@ export interface Receiver {
 /** Truth of a path at a time since its start, to the nearest of its own steps. */
 export function at(path: Path, t: number): { x: number; y: number; vx: number; vy: number } {
   const i = Math.min(path.x.length - 1, Math.max(0, Math.round(t / path.dt)));
-  return { x: path.x[i]!, y: path.y[i]!, vx: path.vx[i]!, vy: path.vy[i]! };
+  return { x: path.x[i], y: path.y[i], vx: path.vx[i], vy: path.vy[i] };
 }
 
 /** The times a receiver takes fixes. */
@@ -108,7 +108,7 @@ export function record(path: Path, receiver: Receiver, times = fixTimes(path, re
   let gx = correlated * random();
   let gy = correlated * random();
   times.forEach((t, k) => {
-    const φ = k === 0 ? 1 : Math.exp(-(t - times[k - 1]!) / correlation);
+    const φ = k === 0 ? 1 : Math.exp(-(t - times[k - 1]) / correlation);
     gx = φ * gx + correlated * Math.sqrt(1 - φ * φ) * random();
     gy = φ * gy + correlated * Math.sqrt(1 - φ * φ) * random();
     const truth = at(path, t);
