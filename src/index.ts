@@ -1,0 +1,60 @@
+/**
+ * What a program may import. Nothing here touches files, prints, or asks the time; it runs in a browser too. Each part
+ * is loaded when it is first called.
+ */
+export type { LogSource, ImportOptions, ImportedLog, ColumnReading } from './importers/types.js';
+export type { LogGlance } from './files/race-from-logs.js';
+export type { LogFacts } from './files/race-resolve.js';
+export type { Overrides, RaceDraft } from './files/race.js';
+export type * from './files/race-types.js';
+export type { Issue } from './recording/issues.js';
+export type * from './result/result.js';
+export type * from './result/series.js';
+export type { InspectFile, InspectResult } from './inspect.js';
+export { UserError } from './recording/issues.js';
+
+/** Reads a race file, YAML or JSON: one draft a race. */
+export const readRaces: typeof import('./files/race.js').readRaces = async (...args) =>
+  (await import('./files/race.js')).readRaces(...args);
+
+/** The parts that put races together from race files, options and bare logs. */
+export const raceParts = async () => ({
+  ...(await import('./files/race.js')),
+  ...(await import('./files/race-resolve.js')),
+  ...(await import('./files/race-from-logs.js')),
+  ...(await import('./files/times.js')),
+  ...(await import('./files/nearest-key.js')),
+});
+
+/** Reads one log: GPX, NMEA 0183 or a table. */
+export const importLog: typeof import('./importers/index.js').importLog = async (...args) =>
+  (await import('./importers/index.js')).importLog(...args);
+
+/** The main job: one race to a result and the columns behind it. */
+export const debrief: typeof import('./debrief.js').debrief = async (...args) =>
+  (await import('./debrief.js')).debrief(...args);
+
+/** Boats of one race against each other. */
+export const compare: typeof import('./compare.js').compare = async (...args) =>
+  (await import('./compare.js')).compare(...args);
+
+/** What logs hold, judging nothing. */
+export const inspect: typeof import('./inspect.js').inspect = async (...args) =>
+  (await import('./inspect.js')).inspect(...args);
+
+/** JSON Schemas of all files, by file name. */
+export const jsonSchemas: typeof import('./schemas.js').jsonSchemas = async () =>
+  (await import('./schemas.js')).jsonSchemas();
+
+/** Result files: text out, text in. */
+export const resultFiles = async () => ({
+  ...(await import('./result/json.js')),
+  ...(await import('./result/read.js')),
+});
+
+/** Tables, GeoJSON, Parquet. */
+export const exports = async () => ({
+  ...(await import('./export/csv.js')),
+  ...(await import('./export/geojson.js')),
+  ...(await import('./export/parquet.js')),
+});
