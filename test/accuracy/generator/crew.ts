@@ -7,6 +7,8 @@ import { swing, wander, type Chance } from './random.js';
 export interface Crew {
   readonly name: string;
   readonly performance: Performance;
+  /** The same boat, perfectly trimmed. */
+  readonly clean: Performance;
   readonly faults: Faults;
   /** Added to the best angle [deg]; factor on the clean speed. */
   readonly angle: number;
@@ -41,6 +43,7 @@ export function drawCrew(condition: Condition, index: number, name: string, chan
   return {
     name,
     performance: performanceOf(SINGLE_HANDER, sheeting),
+    clean: performanceOf(SINGLE_HANDER, 0),
     faults,
     angle: spread * chance.between(-1.5, 2.5) - (faults.pinch ?? 0),
     speed: 1 - spread * chance.between(0, 0.03),

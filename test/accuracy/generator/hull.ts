@@ -32,10 +32,11 @@ export interface Log {
   readonly turns: TrueTurn[];
 }
 
+// prettier-ignore
 const COLUMNS = [
   'x', 'y', 'vx', 'vy', 'ux', 'uy', 'gamma', 'beta', 'speed', 'vmg',
-  'twd', 'tws', 'groundTwd', 'groundTws', 'leeway', 'heading', 'heel',
-] as const; // prettier-ignore
+  'twd', 'tws', 'groundTwd', 'groundTws', 'leeway', 'heading', 'heel', 'bestVmg',
+] as const;
 export type Column = (typeof COLUMNS)[number];
 
 interface OpenTurn {
@@ -311,6 +312,8 @@ function record(
   c.leeway[i] = side * boat.leeway;
   c.heading[i] = signed(track + boat.leeway);
   c.heel[i] = -side * boat.crew.performance.heel(tws, Math.abs(gamma));
+  const best = boat.crew.clean.bestUp(tws);
+  c.bestVmg[i] = boat.crew.clean.speed(tws, best) * cosd(best);
   log.phase[i] = PHASES.indexOf(boat.phase);
   log.settled[i] = boat.phase === 'beat' && boat.acts.length === 0 && boat.t >= boat.settleFrom ? 1 : 0;
 }

@@ -47,7 +47,7 @@ export function generateRace(condition: Condition, seed: number): GeneratedRace 
   const course = drawCourse(condition, wind, gun, chance);
   const voyages = Array.from({ length: condition.boats }, (_, i) => {
     const own = chanceOf(`${condition.name}/${seed}/boat ${i}`);
-    const crew = drawCrew(condition, i, NAMES[i % NAMES.length]!, own);
+    const crew = drawCrew(condition, i, NAMES[i % NAMES.length], own);
     const back = condition.sailOut ? 0.8 * 840 * crew.performance.speed(wind.tws, 48) * cosd(48) + 60 : 120;
     const across = own.between(-80, 80);
     const place: [number, number] = [
@@ -78,9 +78,9 @@ export function generateRace(condition: Condition, seed: number): GeneratedRace 
     boats,
   };
   const files = new Map<string, string>();
-  const race = writeRace(condition, truth, set, files);
+  const race = writeRace(condition, truth, set);
   voyages.forEach(({ voyage, own }, i) => {
-    writeBoat(condition, truth, boats[i]!, receive(condition, voyage.boat.log, own), own, files);
+    writeBoat(condition, truth, boats[i], receive(condition, voyage.boat.log, own), own, files);
   });
   if (station) {
     const end = Math.max(...boats.map((boat) => boat.t0 + boat.n));
@@ -95,7 +95,7 @@ function drawCourse(condition: Condition, wind: Wind, gun: number, chance: Retur
   let seen = 0;
   for (let i = 1; i <= 10; i++) {
     wind.at(0, 0, gun - 60 * i, out);
-    seen += out[0]! / 10;
+    seen += out[0] / 10;
   }
   const axis = seen + chance.between(-5, 5);
   const beat = chance.between(...condition.beat);
@@ -135,6 +135,7 @@ function trueBoat(voyage: Voyage, compassError: number | null, mastheadError: nu
     leeway: cut('leeway'),
     heading: cut('heading'),
     heel: cut('heel'),
+    bestVmg: cut('bestVmg'),
     phase: log.phase.slice(0, n),
     settled: log.settled.slice(0, n),
     turns: nearMarks(log.turns, voyage.legs),
@@ -154,8 +155,7 @@ function reference(file: string): LogReference {
   return { file, clockS: 0 };
 }
 
-function writeRace(condition: Condition, truth: Truth, set: number, files: ReadonlyMap<string, string>): Race {
-  void files;
+function writeRace(condition: Condition, truth: Truth, set: number): Race {
   const place = placer(truth.frame);
   const { station } = truth;
   const wind: WindReference[] = station

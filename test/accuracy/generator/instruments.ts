@@ -19,17 +19,17 @@ const KNOT = 1852 / 3600;
 export function readInstruments(boat: TrueBoat, chance: Chance): InstrumentRow[] {
   const rows: InstrumentRow[] = [];
   for (let i = 0; i < boat.n; i++) {
-    const air = -boat.groundTws[i]!;
-    const east = air * sind(boat.groundTwd[i]!) - boat.vx[i]!;
-    const north = air * cosd(boat.groundTwd[i]!) - boat.vy[i]!;
+    const air = -boat.groundTws[i];
+    const east = air * sind(boat.groundTwd[i]) - boat.vx[i];
+    const north = air * cosd(boat.groundTwd[i]) - boat.vy[i];
     const from = pointing(-east, -north);
     rows.push({
       t: boat.t0 + i,
-      heading: compass(boat.heading[i]! + (boat.compassError ?? 0) + 1.5 * chance.normal()),
-      awa: signed(from - boat.heading[i]! + (boat.mastheadError ?? 0) + 2 * chance.normal()),
+      heading: compass(boat.heading[i] + (boat.compassError ?? 0) + 1.5 * chance.normal()),
+      awa: signed(from - boat.heading[i] + (boat.mastheadError ?? 0) + 2 * chance.normal()),
       aws: Math.max(0, Math.hypot(east, north) / KNOT + 0.3 * chance.normal()),
-      stw: Math.max(0, boat.speed[i]! / KNOT + 0.1 * chance.normal()),
-      heel: boat.heel[i]! + 1.5 * chance.normal(),
+      stw: Math.max(0, boat.speed[i] / KNOT + 0.1 * chance.normal()),
+      heel: boat.heel[i] + 1.5 * chance.normal(),
     });
   }
   return rows;

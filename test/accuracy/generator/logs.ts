@@ -43,14 +43,14 @@ export function gpx(name: string, fixes: readonly Fix[], venue: Venue): string {
       : `<course>${fix.cog.toFixed(1)}</course><speed>${fix.sog.toFixed(2)}</speed>`;
     return `<trkpt lat="${lat.toFixed(7)}" lon="${lon.toFixed(7)}"><time>${isoTime(fix.t)}</time>${more}</trkpt>`;
   });
-  const version = fixes.length > 0 && !Number.isNaN(fixes[0]!.sog) ? '1/0' : '1/1';
+  const version = fixes.length > 0 && !Number.isNaN(fixes[0].sog) ? '1/0' : '1/1';
   const head = `<gpx version="${version.replace('/', '.')}" creator="invented" xmlns="http://www.topografix.com/GPX/${version}">`;
   return `<?xml version="1.0" encoding="UTF-8"?>\n${head}<trk><name>${name}</name><trkseg>\n${points.join('\n')}\n</trkseg></trk></gpx>\n`;
 }
 
 export function trackTable(fixes: readonly Fix[], venue: Venue): string {
   const place = placer(venue);
-  const doppler = fixes.length > 0 && !Number.isNaN(fixes[0]!.sog);
+  const doppler = fixes.length > 0 && !Number.isNaN(fixes[0].sog);
   const rows = fixes.map((fix) => {
     const { lat, lon } = place(fix.x, fix.y);
     const more = doppler ? `,${(fix.sog / KNOT).toFixed(2)},${fix.cog.toFixed(1)}` : '';

@@ -30,14 +30,14 @@ export function receive(condition: Condition, log: Log, chance: Chance): Fix[] {
     const ey = errorY(every / RATE) + white * chance.normal();
     const leap = condition.outliers && chance.happens(every / RATE / 1200) ? chance.between(30, 120) : 0;
     const angle = leap > 0 ? chance.between(0, 2 * Math.PI) : 0;
-    const vx = log.fine[f + 2]! + 0.05 * chance.normal();
-    const vy = log.fine[f + 3]! + 0.05 * chance.normal();
-    if (silences.some((from, k) => step >= from && step < from + lengths[k]!)) continue;
-    if (!keep(step / RATE, log.fine[f + 2]!, log.fine[f + 3]!)) continue;
+    const vx = log.fine[f + 2] + 0.05 * chance.normal();
+    const vy = log.fine[f + 3] + 0.05 * chance.normal();
+    if (silences.some((from, k) => step >= from && step < from + lengths[k])) continue;
+    if (!keep(step / RATE, log.fine[f + 2], log.fine[f + 3])) continue;
     fixes.push({
       t: log.t0 + step / RATE,
-      x: log.fine[f]! + ex + leap * Math.cos(angle),
-      y: log.fine[f + 1]! + ey + leap * Math.sin(angle),
+      x: log.fine[f] + ex + leap * Math.cos(angle),
+      y: log.fine[f + 1] + ey + leap * Math.sin(angle),
       sog: condition.doppler ? Math.hypot(vx, vy) : NaN,
       cog: condition.doppler ? compass(pointing(vx, vy)) : NaN,
     });

@@ -47,8 +47,8 @@ export function observe(
   for (let t = from; t <= to; t += condition.stationEvery) {
     wind.at(station.x, station.y, t, out);
     const turn = ownTurn(condition.stationEvery) + station.direction + 1.5 * chance.normal();
-    const knots = (out[1]! / KNOT) * station.speed + ownSpeed(condition.stationEvery) + 0.15 * chance.normal();
-    rows.push({ t: t + station.late, twd: compass(out[0]! + turn), tws: Math.max(0, knots) });
+    const knots = (out[1] / KNOT) * station.speed + ownSpeed(condition.stationEvery) + 0.15 * chance.normal();
+    rows.push({ t: t + station.late, twd: compass(out[0] + turn), tws: Math.max(0, knots) });
   }
   return rows;
 }

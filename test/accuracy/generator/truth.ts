@@ -75,6 +75,8 @@ export interface TrueBoat {
   readonly heading: Float64Array;
   /** Positive to starboard. */
   readonly heel: Float64Array;
+  /** Best speed made good upwind of a clean boat in this wind. */
+  readonly bestVmg: Float64Array;
   /** Index into PHASES. */
   readonly phase: Uint8Array;
   /** Close-hauled, between manoeuvres and recovered, not fetching, within an upwind leg. */

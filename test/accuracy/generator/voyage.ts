@@ -281,7 +281,7 @@ function round(watch: Watch, windward: boolean): void {
 }
 
 /** True when the mark is reached: very near, or passed at its level and drawing away. */
-function reached(watch: Watch, mark: Place, distance: number, beyond: boolean): boolean {
+function reached(watch: Watch, distance: number, beyond: boolean): boolean {
   const passed = distance > watch.lastDistance && distance < 45 && beyond;
   watch.lastDistance = distance;
   return distance < 6 || passed;
@@ -297,7 +297,7 @@ function beat(watch: Watch): boolean {
   const { boat, course } = watch;
   const mark = course.windward;
   const { bearing, distance } = towards(boat, mark);
-  if (reached(watch, mark, distance, above(watch, mark) > -5)) return true;
+  if (reached(watch, distance, above(watch, mark) > -5)) return true;
   const close = closeAngle(watch);
   const side = sideOf(boat);
   const held = boat.t - boat.lastTurn;
@@ -355,7 +355,7 @@ function downwind(watch: Watch): boolean {
   const { boat, course } = watch;
   const mark = course.leeward;
   const { bearing, distance } = towards(boat, mark);
-  if (reached(watch, mark, distance, above(watch, mark) < 5)) return true;
+  if (reached(watch, distance, above(watch, mark) < 5)) return true;
   const needed = signed(boat.felt - bearing);
   const best = Math.min(165, boat.crew.performance.bestDown(boat.feltSpeed));
   const side = sideOf(boat);

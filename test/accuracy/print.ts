@@ -1,0 +1,65 @@
+/**
+ * Prints how accurate the program is, as Markdown tables: `npm run accuracy -- [--long] [--only NAME] [--own]`.
+ * `--only` takes a part of a condition's name and may be repeated; `--own` measures over the seconds the debrief
+ * itself called settled.
+ */
+import { TRIALS } from './conditions.js';
+import { CORRECTIONS, QUANTITIES, type Measured } from './measure.js';
+import { runTrial } from './run.js';
+import { summarise, summariseSamples, type Summary } from './summary.js';
+
+const HEAD = ['quantity', 'n', 'null', 'bias', 'mean', 'p50', 'p90', 'max', 'rms err/se', 'with sys'];
+
+function table(rows: readonly (readonly string[])[]): string {
+  const width = HEAD.map((head, k) => Math.max(head.length, ...rows.map((row) => row[k]!.length)));
+  const line = (cells: readonly string[]): string =>
+    `| ${cells.map((cell, k) => (k === 0 ? cell.padEnd(width[k]!) : cell.padStart(width[k]!))).join(' | ')} |`;
+  const rule = `| ${width.map((w, k) => (k === 0 ? '-'.repeat(w) : `${'-'.repeat(w - 1)}:`)).join(' | ')} |`;
+  return [line(HEAD), rule, ...rows.map(line)].join('\n');
+}
+
+const figure = (x: number): string => (Number.isFinite(x) ? x.toFixed(2) : '-');
+
+function row(name: string, s: Summary, nulls: number): string[] {
+  const figures = [s.bias, s.mean, s.p50, s.p90, s.max, s.ratio, s.ratioSys].map(figure);
+  return [name, String(s.n), String(nulls), ...figures];
+}
+
+function rowsOf(m: Measured, own: boolean): string[][] {
+  const rows = QUANTITIES.map((q) => row(q, summariseSamples(m.quantities[q], own), m.nulls[q]));
+  rows.push(row('wind direction', summariseSamples(m.direction, own), 0));
+  for (const c of CORRECTIONS) {
+    const { samples, nulls } = m.corrections[c];
+    if (samples.length + nulls > 0) rows.push(row(c, summariseSamples(samples, own), nulls));
+  }
+  rows.push(row('tack time s', summarise(m.tacks.timeErrors), m.tacks.missed));
+  rows.push(row('tack loss m', summariseSamples(m.tacks.losses, own), m.tacks.hits - m.tacks.losses.length));
+  rows.push(row('leg start s', summarise(m.legs.startErrors), m.legs.missed));
+  rows.push(row('leg end s', summarise(m.legs.endErrors), m.legs.missed));
+  return rows;
+}
+
+export function f1({ hits, missed, extra }: Measured['tacks']): number {
+  return (2 * hits) / (2 * hits + missed + extra);
+}
+
+async function main(args: readonly string[]): Promise<void> {
+  const long = args.includes('--long');
+  const own = args.includes('--own');
+  const only = args.filter((_, i) => args[i - 1] === '--only');
+  for (const trial of TRIALS) {
+    const { name } = trial.condition;
+    if (only.length > 0 && !only.some((part) => name.includes(part))) continue;
+    const { measured, races, upwindLegs, seconds } = await runTrial(trial, long);
+    const { tacks, legs } = measured;
+    console.log(`\n### ${name}\n`);
+    console.log(
+      `${races} races, ${upwindLegs} upwind legs, ${seconds.toFixed(1)} s; tacks F1 ${f1(tacks).toFixed(3)} ` +
+        `(${tacks.hits} found, ${tacks.missed} missed, ${tacks.extra} extra); ` +
+        `legs ${legs.found} found, ${legs.missed} missed, ${legs.extra} extra\n`,
+    );
+    console.log(table(rowsOf(measured, own)));
+  }
+}
+
+await main(process.argv.slice(2));

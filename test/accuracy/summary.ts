@@ -1,0 +1,50 @@
+/** Errors as a few figures: how many, how large, how large against what was stated. */
+import type { Sample } from './measure.js';
+
+export interface Summary {
+  readonly n: number;
+  /** Of the errors with their sign; of their sizes; root mean square. */
+  readonly bias: number;
+  readonly mean: number;
+  readonly p50: number;
+  readonly p90: number;
+  readonly max: number;
+  /** Root mean square of error over stated error; NaN when none was stated. */
+  readonly ratio: number;
+  /** The same with the calibration shift added in quadrature. */
+  readonly ratioSys: number;
+}
+
+const average = (values: readonly number[]): number =>
+  values.length > 0 ? values.reduce((sum, v) => sum + v, 0) / values.length : NaN;
+
+/** Smallest value that at least the share p of the sorted values does not exceed. */
+function quantile(sorted: readonly number[], p: number): number {
+  return sorted.length > 0 ? sorted[Math.max(0, Math.ceil(p * sorted.length) - 1)]! : NaN;
+}
+
+export function summarise(errors: readonly number[]): Summary {
+  const sizes = errors.map(Math.abs).sort((a, b) => a - b);
+  return {
+    n: errors.length,
+    bias: average(errors),
+    mean: average(sizes),
+    p50: quantile(sizes, 0.5),
+    p90: quantile(sizes, 0.9),
+    max: sizes.at(-1) ?? NaN,
+    ratio: NaN,
+    ratioSys: NaN,
+  };
+}
+
+/** `own`: over the seconds the debrief called settled, instead of the truth's. */
+export function summariseSamples(samples: readonly Sample[], own: boolean): Summary {
+  const pick = (s: Sample): number => (own ? s.errorOwn : s.error);
+  const stated = samples.filter((s) => s.se !== null && s.se > 0 && !Number.isNaN(pick(s)));
+  const rms = (ratio: (s: Sample) => number): number => Math.sqrt(average(stated.map((s) => ratio(s) ** 2)));
+  return {
+    ...summarise(samples.map(pick)),
+    ratio: rms((s) => pick(s) / s.se!),
+    ratioSys: rms((s) => pick(s) / Math.hypot(s.se!, s.sys)),
+  };
+}
