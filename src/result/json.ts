@@ -6,7 +6,7 @@ export function plainJson(value: unknown): unknown {
   if (typeof value === 'number') return Number.isFinite(value) ? value + 0 : null;
   if (Array.isArray(value)) return value.map(plainJson);
   if (value === null || typeof value !== 'object') return value;
-  if ('basis' in value && 'value' in value) return plainQuantity(value as Record<string, unknown>);
+  if ('basis' in value && 'value' in value) return plainQuantity(value);
   const entries = Object.entries(value).filter(([, inner]) => inner !== undefined);
   return Object.fromEntries(entries.map(([key, inner]) => [key, plainJson(inner)]));
 }

@@ -25,7 +25,7 @@ export async function readResult(text: string): Promise<Result> {
   const { openResultSchema } = await import('./schema.js');
   const outcome = openResultSchema.safeParse(data);
   if (outcome.success) return outcome.data as unknown as Result;
-  const issue = outcome.error.issues[0]!;
+  const issue = outcome.error.issues[0];
   throw new NotAResult(`is damaged at \`${issue.path.join('.')}\`: ${issue.message}.`);
 }
 

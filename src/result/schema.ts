@@ -6,8 +6,8 @@ import { z } from 'zod';
  */
 type ObjectMaker = <T extends z.core.$ZodLooseShape>(shape: T) => z.ZodObject<T>;
 
-const strict: ObjectMaker = (shape) => z.strictObject(shape) as never;
-const open: ObjectMaker = (shape) => z.looseObject(shape) as never;
+const strict: ObjectMaker = (shape) => z.strictObject(shape);
+const open: ObjectMaker = (shape) => z.looseObject(shape);
 
 const time = z.iso.datetime().meta({ description: 'ISO 8601, UTC.' });
 const count = z.int().nonnegative();

@@ -1,0 +1,160 @@
+import { apparentWind, ceilingVmg } from '../physics/triangle.js';
+import { tackSign, type Tack } from '../segment/sailing.js';
+import type { BlockEstimate } from './blocks.js';
+import type { Mismatch, MismatchPart } from './mismatch.js';
+
+/** A figure with its error as sailed (`se`) and its shift for one sd of calibration and mounting (`sys`). */
+export interface Figure {
+  readonly value: number;
+  readonly se: number;
+  readonly sys: number;
+}
+
+/** What is known of the errors of one boat's figures. */
+export interface ErrorModel {
+  readonly mismatch: Mismatch;
+  /** One sd of what is left of the wind direction's mounting error. [deg] */
+  readonly sysDirection: number;
+  /** One sd of the wind speed's calibration. [fraction] */
+  readonly sysSpeed: number;
+  /** Standard error per axis of a displacement over so many seconds. [m] */
+  readonly displacementSe: (seconds: number) => number;
+  /** Least standard error of gamma: 2 degrees where the wind direction came from the tracks, else 0. [deg] */
+  readonly leastGamma: number;
+}
+
+export interface SteadyFigures {
+  readonly seconds: number;
+  readonly gamma: Figure;
+  readonly speed: Figure;
+  readonly vmg: Figure;
+  readonly tws: Figure;
+  readonly aws: Figure;
+  readonly beta: Figure;
+  readonly ceiling: Figure;
+}
+
+const RAD = Math.PI / 180;
+
+/** Weighted mean over blocks. */
+function weighted(blocks: readonly BlockEstimate[], weights: readonly number[], pick: (b: BlockEstimate) => number) {
+  return blocks.reduce((sum, block, k) => sum + weights[k]! * pick(block), 0);
+}
+
+/**
+ * Standard error of a weighted sum of block errors with an exponential correlation in time and a part that stays.
+ * Variance = sum_kl u_k u_l wander^2 exp(-|t_k - t_l| / tau) + slow^2 (sum_k u_k)^2.
+ *
+ * @param u Weight of each block's error, with the sign in which it enters.
+ */
+export function correlatedError(blocks: readonly BlockEstimate[], u: readonly number[], part: MismatchPart): number {
+  let variance = 0;
+  let sum = 0;
+  for (let k = 0; k < u.length; k++) {
+    sum += u[k]!;
+    variance += u[k]! ** 2;
+    for (let l = k + 1; l < u.length; l++) {
+      const apart = Math.abs(blocks[l]!.time - blocks[k]!.time);
+      if (apart < 8 * part.tau) variance += 2 * u[k]! * u[l]! * Math.exp(-apart / part.tau);
+    }
+  }
+  return Math.sqrt(Math.max(0, variance) * part.wander ** 2 + (part.slow * sum) ** 2);
+}
+
+/** Per-axis velocity error of the receiver over the settled sailing: displacements of the spells, independent. [m/s] */
+function receiverError(blocks: readonly BlockEstimate[], errors: ErrorModel): number {
+  const spells = new Map<number, number>();
+  for (const block of blocks) {
+    const key = block.leg * 1e6 + block.spell;
+    spells.set(key, (spells.get(key) ?? 0) + block.seconds);
+  }
+  let variance = 0;
+  let total = 0;
+  for (const seconds of spells.values()) {
+    variance += errors.displacementSe(seconds) ** 2;
+    total += seconds;
+  }
+  return Math.sqrt(variance) / total;
+}
+
+/**
+ * Time means over settled blocks, with errors.
+ *
+ * A wind direction error enters the course angle with opposite signs on the two tacks, so over a leg sailed evenly it
+ * nearly cancels; a wind speed error does not. Receiver errors count by the displacement of each spell.
+ *
+ * @param blocks At least one.
+ */
+export function steadyFigures(blocks: readonly BlockEstimate[], errors: ErrorModel): SteadyFigures {
+  const seconds = blocks.reduce((sum, block) => sum + block.seconds, 0);
+  const weights = blocks.map((block) => block.seconds / seconds);
+  const signed = blocks.map((block, k) => tackSign(block.tack) * weights[k]!);
+  const imbalance = Math.abs(signed.reduce((sum, w) => sum + w, 0));
+  const at = (pick: (b: BlockEstimate) => number): number => weighted(blocks, weights, pick);
+  const speed = at((b) => b.speed);
+  const gamma = at((b) => b.gamma);
+  const tws = at((b) => b.tws);
+  const receiver = receiverError(blocks, errors);
+  const wind = correlatedError(blocks, signed, errors.mismatch.direction);
+  const gammaSe = Math.max(errors.leastGamma, Math.hypot(wind, receiver / speed / RAD));
+  const gammaSys = errors.sysDirection * imbalance;
+  const cross = speed * Math.sin(gamma * RAD) * RAD;
+  const windSpeed = correlatedError(blocks, weights, errors.mismatch.speed);
+  const slope = triangleSlopes(speed, tws, gamma);
+  const turnSe = Math.max(errors.leastGamma, wind);
+  const propagate = (s: Slopes, base: number): Figure => ({
+    value: base,
+    se: Math.hypot(s.gamma * turnSe, s.tws * windSpeed, s.receiver * receiver),
+    sys: Math.hypot(s.gamma * gammaSys, s.tws * errors.sysSpeed),
+  });
+  return {
+    seconds,
+    gamma: { value: gamma, se: gammaSe, sys: gammaSys },
+    speed: { value: speed, se: receiver, sys: 0 },
+    vmg: { value: at((b) => b.vmg), se: Math.hypot(cross * turnSe, receiver), sys: cross * gammaSys },
+    tws: { value: tws, se: tws * windSpeed, sys: tws * errors.sysSpeed },
+    aws: propagate(slope.aws, at((b) => b.aws)),
+    beta: propagate(slope.beta, at((b) => b.beta)),
+    ceiling: propagate(slope.ceiling, at((b) => ceilingVmg(b.tws, b.beta))),
+  };
+}
+
+interface Slopes {
+  /** Per degree of gamma, per fraction of wind speed, per m/s of boat speed. */
+  readonly gamma: number;
+  readonly tws: number;
+  readonly receiver: number;
+}
+
+/** Slopes of the triangle by central differences. */
+function triangleSlopes(speed: number, tws: number, gamma: number): { aws: Slopes; beta: Slopes; ceiling: Slopes } {
+  const quantities = (v: number, w: number, g: number): [number, number, number] => {
+    const { beta, aws } = apparentWind(v, w, g);
+    return [aws, beta, ceilingVmg(w, beta)];
+  };
+  const slope = (high: readonly number[], low: readonly number[], step: number): number[] =>
+    high.map((value, k) => (value - low[k]!) / (2 * step));
+  const g = slope(quantities(speed, tws, gamma + 0.1), quantities(speed, tws, gamma - 0.1), 0.1);
+  const w = slope(quantities(speed, tws * 1.001, gamma), quantities(speed, tws * 0.999, gamma), 0.001);
+  const v = slope(quantities(speed + 0.01, tws, gamma), quantities(speed - 0.01, tws, gamma), 0.01);
+  const of = (k: number): Slopes => ({ gamma: g[k]!, tws: w[k]!, receiver: v[k]! });
+  return { aws: of(0), beta: of(1), ceiling: of(2) };
+}
+
+/** Angle between the mean courses on the two tacks, relative to the wind: the sum of the two course angles. */
+export function tackingAngle(blocks: readonly BlockEstimate[], errors: ErrorModel): Figure | null {
+  const total = (tack: Tack): number =>
+    blocks.filter((b) => b.tack === tack).reduce((sum, block) => sum + block.seconds, 0);
+  const sides = { port: total('port'), starboard: total('starboard') };
+  if (sides.port === 0 || sides.starboard === 0) return null;
+  const weights = blocks.map((b) => b.seconds / sides[b.tack]);
+  const signed = blocks.map((b, k) => tackSign(b.tack) * weights[k]!);
+  const wind = correlatedError(blocks, signed, errors.mismatch.direction);
+  const speed = weighted(blocks, weights, (b) => b.speed) / 2;
+  const receiver = (2 * receiverError(blocks, errors)) / speed / RAD;
+  return {
+    value: weighted(blocks, weights, (b) => b.gamma),
+    se: Math.max(2 * errors.leastGamma, Math.hypot(wind, receiver)),
+    sys: 0,
+  };
+}

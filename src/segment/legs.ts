@@ -1,0 +1,266 @@
+import { circularMean, directionOf, eastOf, northOf } from '../math/angles.js';
+import { median } from '../math/median.js';
+import { findStates, steeringAngle } from './point-of-sail.js';
+import type { RowRange, Sailing } from './sailing.js';
+import type { Thresholds } from './thresholds.js';
+
+export type LegKind = 'upwind' | 'downwind' | 'reach';
+
+export interface Leg extends RowRange {
+  readonly kind: LegKind;
+  /** 1 for the first leg of its kind, and so on. */
+  readonly lap: number;
+}
+
+export interface Place {
+  readonly x: number;
+  readonly y: number;
+}
+
+/** What is known of the race beforehand. Rows are fractional seconds from the boat's row 0; null = not known. */
+export interface Course {
+  readonly gun: number | null;
+  readonly finish: number | null;
+  /** Practice stretches without a course: each is one leg. */
+  readonly runs: readonly RowRange[];
+  readonly windward: Place | null;
+  readonly leeward: Place | null;
+}
+
+/**
+ * Legs of one boat.
+ *
+ * With runs given, each run is a leg of the kind mostly sailed. Else the along-wind position is cut at its turning
+ * points (a fall-back of `legTurn` seconds of usual speed ends a leg); a rise is a beat, a fall a downwind leg or a
+ * reach. The first beat begins at the gun, or, without one, where sustained close-hauled sailing begins. Beats that no
+ * rounding follows count only when none is rounded or when they end at the windward mark: others are the sail out or
+ * the sail home.
+ */
+export function findLegs(sailing: Sailing, course: Course, usual: number, thresholds: Thresholds): Leg[] {
+  if (course.runs.length > 0) return numbered(course.runs.flatMap((run) => runLeg(sailing, run)));
+  const progress = alongWind(sailing);
+  const gun = course.gun === null ? 0 : Math.max(0, Math.ceil(course.gun));
+  const end = course.finish === null ? sailing.n : Math.min(sailing.n, Math.floor(course.finish));
+  const turnBack = Math.max(50, thresholds.legTurn * usual);
+  const pieces = monotonePieces(progress, gun, end, turnBack).filter(
+    (piece) => piece.to - piece.from >= thresholds.minLeg && Math.abs(piece.rise) >= 2 * turnBack,
+  );
+  const angle = steeringAngle(sailing, usual, thresholds);
+  const legs: Leg[] = [];
+  for (const piece of racingPieces(pieces, sailing, course, thresholds)) {
+    legs.push(...legsOf(piece, sailing, angle, course, thresholds));
+  }
+  return numbered(legs);
+}
+
+/** Distance made along the mean wind since row 0, gaps bridged at no progress. [m] */
+function alongWind(sailing: Sailing): Float64Array {
+  const out = new Float64Array(sailing.n);
+  const wind = slowWind(sailing);
+  let made = 0;
+  for (let i = 0; i < sailing.n; i++) {
+    const gain = sailing.ux[i] * eastOf(wind[i]) + sailing.uy[i] * northOf(wind[i]);
+    if (!Number.isNaN(gain)) made += gain;
+    out[i] = made;
+  }
+  return out;
+}
+
+/** Wind direction averaged over ten minutes: legs are laid to the wind's trend, not to its shifts. [deg] */
+function slowWind(sailing: Sailing): Float64Array {
+  const half = 300;
+  const n = sailing.n;
+  const east = new Float64Array(n + 1);
+  const north = new Float64Array(n + 1);
+  for (let i = 0; i < n; i++) {
+    const known = !Number.isNaN(sailing.twd[i]);
+    east[i + 1] = east[i] + (known ? eastOf(sailing.twd[i]) : 0);
+    north[i + 1] = north[i] + (known ? northOf(sailing.twd[i]) : 0);
+  }
+  const out = new Float64Array(n);
+  for (let i = 0; i < n; i++) {
+    const a = Math.max(0, i - half);
+    const b = Math.min(n, i + half);
+    out[i] = directionOf(east[b] - east[a], north[b] - north[a]);
+  }
+  return out;
+}
+
+interface Piece extends RowRange {
+  /** Metres gained to windward, negative going down. */
+  readonly rise: number;
+}
+
+/** Cuts a curve at its turning points: one is final once the curve has gone back by `turnBack`. */
+function monotonePieces(progress: Float64Array, from: number, to: number, turnBack: number): Piece[] {
+  const pieces: Piece[] = [];
+  if (to - from < 2) return pieces;
+  let start = from;
+  let high = from;
+  let low = from;
+  let rising: boolean | null = null;
+  const close = (at: number): void => {
+    if (at > start) pieces.push({ from: start, to: at, rise: progress[at] - progress[start] });
+    start = at;
+  };
+  for (let i = from; i < to; i++) {
+    if (progress[i] > progress[high]) high = i;
+    if (progress[i] < progress[low]) low = i;
+    if (rising !== false && progress[high] - progress[i] > turnBack) {
+      if (rising === null) start = low < high ? low : start;
+      close(high);
+      rising = false;
+      low = i;
+    } else if (rising !== true && progress[i] - progress[low] > turnBack) {
+      if (rising === null) start = high < low ? high : start;
+      close(low);
+      rising = true;
+      high = i;
+    }
+  }
+  if (rising !== null) close(rising ? high : low);
+  return pieces;
+}
+
+/** Leaves out the sail out, waiting and the sail home. */
+function racingPieces(
+  pieces: readonly Piece[],
+  sailing: Sailing,
+  course: Course,
+  thresholds: Thresholds,
+): readonly Piece[] {
+  const rounded = pieces.map((piece, k) => piece.rise > 0 && isRounded(pieces, k, thresholds));
+  if (!rounded.includes(true)) {
+    return course.gun !== null ? pieces : pieces.filter((piece) => piece.rise > 0 || piece.to - piece.from > 180);
+  }
+  const tops = pieces.filter((_, k) => rounded[k]).map((piece) => placeAt(sailing, piece.to));
+  const mark = course.windward ?? medianPlace(tops);
+  const lengths = median(pieces.filter((_, k) => rounded[k]).map((piece) => piece.rise));
+  const first = rounded.indexOf(true);
+  return pieces.filter((piece, k) => {
+    if (course.gun === null && k < first) return false;
+    if (piece.rise < 0 || rounded[k]) return true;
+    if (course.gun !== null && k === 0) return true;
+    const end = placeAt(sailing, piece.to);
+    return Math.hypot(end.x - mark.x, end.y - mark.y) < Math.max(80, 0.15 * lengths);
+  });
+}
+
+/** A beat is rounded when a leg down of at least a third of its height follows within a minute. */
+function isRounded(pieces: readonly Piece[], k: number, thresholds: Thresholds): boolean {
+  const up = pieces[k];
+  const down = pieces[k + 1];
+  return !!down && down.rise < -up.rise / 3 && down.from - up.to <= thresholds.minLeg;
+}
+
+function placeAt(sailing: Sailing, row: number): Place {
+  const i = Math.min(row, sailing.n - 1);
+  return { x: sailing.x[i], y: sailing.y[i] };
+}
+
+function medianPlace(places: readonly Place[]): Place {
+  return { x: median(places.map((place) => place.x)), y: median(places.map((place) => place.y)) };
+}
+
+/** Turns a rise or fall into legs with exact ends, reaches set apart. */
+function legsOf(piece: Piece, sailing: Sailing, angle: Float64Array, course: Course, thresholds: Thresholds): Leg[] {
+  const from = legStart(piece, sailing, angle, course, thresholds);
+  const to = legEnd(piece, sailing, angle, course);
+  if (to - from < thresholds.minLeg) return [];
+  if (piece.rise > 0) return [{ kind: 'upwind', lap: 0, from, to }];
+  return reachesApart({ from, to }, angle, thresholds).map(({ kind, ...range }) => ({ kind, lap: 0, ...range }));
+}
+
+/** Row of the closest approach to a mark within a minute and a half of a row. */
+function closest(sailing: Sailing, row: number, mark: Place): number {
+  let best = row;
+  let least = Infinity;
+  for (let i = Math.max(0, row - 90); i < Math.min(sailing.n, row + 90); i++) {
+    const distance = Math.hypot(sailing.x[i] - mark.x, sailing.y[i] - mark.y);
+    if (distance < least) {
+      least = distance;
+      best = i;
+    }
+  }
+  return best;
+}
+
+function legStart(
+  piece: Piece,
+  sailing: Sailing,
+  angle: Float64Array,
+  course: Course,
+  thresholds: Thresholds,
+): number {
+  const gun = course.gun === null ? null : Math.max(0, Math.ceil(course.gun));
+  if (gun !== null && piece.rise > 0 && piece.from - gun < 120) return gun;
+  const mark = piece.rise > 0 ? course.leeward : course.windward;
+  if (mark && piece.from > 0) return closest(sailing, piece.from, mark);
+  if (piece.rise < 0) return turnDown(piece.from, angle);
+  if (course.gun !== null || piece.from === 0) return piece.from;
+  return sustainedFrom(piece, angle, thresholds);
+}
+
+function legEnd(piece: Piece, sailing: Sailing, angle: Float64Array, course: Course): number {
+  const mark = piece.rise > 0 ? course.windward : course.leeward;
+  if (mark && piece.to < sailing.n - 1) return closest(sailing, piece.to, mark);
+  return piece.rise > 0 ? turnDown(piece.to, angle) : piece.to;
+}
+
+/** The windward turn near the highest point: the last row before it on which the boat was still close-hauled, plus one. */
+function turnDown(top: number, angle: Float64Array): number {
+  for (let i = Math.min(top, angle.length - 1); i > Math.max(0, top - 45); i--) {
+    if (Math.abs(angle[i]) < 80) return i + 1;
+  }
+  return top;
+}
+
+/** Without a gun a beat begins with its first close-hauled state that lasts. */
+function sustainedFrom(piece: Piece, angle: Float64Array, thresholds: Thresholds): number {
+  const states = findStates(angle.subarray(piece.from, piece.to), thresholds);
+  const first = states.find((state) => state.point === 'upwind' && state.to - state.from >= thresholds.minSettled);
+  return piece.from + (first ? first.from : 0);
+}
+
+/** Reaching for `minReach` or longer within a leg down is a reach of its own. */
+function reachesApart(
+  range: RowRange,
+  angle: Float64Array,
+  thresholds: Thresholds,
+): (RowRange & { kind: 'downwind' | 'reach' })[] {
+  const states = findStates(angle.subarray(range.from, range.to), thresholds)
+    .filter((state) => state.point === 'reach' && state.to - state.from >= thresholds.minReach)
+    .map((state) => ({ from: state.from + range.from, to: state.to + range.from }));
+  const out: (RowRange & { kind: 'downwind' | 'reach' })[] = [];
+  let at = range.from;
+  for (const reach of states) {
+    const lead = reach.from - at < thresholds.minLeg / 2 ? at : reach.from;
+    if (lead > at) out.push({ kind: 'downwind', from: at, to: lead });
+    out.push({ kind: 'reach', from: lead, to: reach.to });
+    at = reach.to;
+  }
+  const last = out.at(-1);
+  if (range.to - at < thresholds.minLeg / 2 && last) out[out.length - 1] = { ...last, to: range.to };
+  else if (range.to > at) out.push({ kind: 'downwind', from: at, to: range.to });
+  return out;
+}
+
+/** A practice run is one leg of the kind that was mostly sailed. */
+function runLeg(sailing: Sailing, run: RowRange): Leg[] {
+  const from = Math.max(0, Math.ceil(run.from));
+  const to = Math.min(sailing.n, Math.floor(run.to));
+  if (to <= from) return [];
+  const size = median(Array.from(sailing.gamma.subarray(from, to), Math.abs));
+  if (Number.isNaN(size)) return [];
+  return [{ kind: size < 72 ? 'upwind' : size > 125 ? 'downwind' : 'reach', lap: 0, from, to }];
+}
+
+function numbered(legs: readonly Leg[]): Leg[] {
+  const count: Record<LegKind, number> = { upwind: 0, downwind: 0, reach: 0 };
+  return legs.map((leg) => ({ ...leg, lap: ++count[leg.kind] }));
+}
+
+/** Mean wind direction over a leg. [deg] */
+export function meanWindOf(sailing: Sailing, range: RowRange): number {
+  return circularMean(sailing.twd.subarray(range.from, range.to)).mean;
+}

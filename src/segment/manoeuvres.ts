@@ -1,0 +1,208 @@
+import { unwrap } from '../math/angles.js';
+import { median } from '../math/median.js';
+import { findStates, steeringAngle, usualUpwindSpeed, type State } from './point-of-sail.js';
+import type { Sailing, Tack } from './sailing.js';
+import type { Thresholds } from './thresholds.js';
+
+export type ManoeuvreKind = 'tack' | 'gybe' | 'round-up' | 'bear-away' | 'full-turn';
+
+export interface Manoeuvre {
+  readonly kind: ManoeuvreKind;
+  /** Side of the wind before and after. */
+  readonly from: Tack;
+  readonly to: Tack;
+  /** UTC epoch seconds of the bow (or course) through the wind, interpolated. */
+  readonly time: number;
+  /** Rows: window opens (before helm-down), through the wind, settled again. Window = [entry, exit). */
+  readonly entry: number;
+  readonly at: number;
+  readonly exit: number;
+}
+
+export interface Manoeuvres {
+  readonly states: readonly State[];
+  readonly list: readonly Manoeuvre[];
+  /** The boat's usual close-hauled speed. [m/s] */
+  readonly usual: number;
+}
+
+/**
+ * All turns of a recording, in time order.
+ *
+ * A tack is a passage of the bow (or the course) through the wind's eye between two close-hauled states on opposite
+ * sides; a gybe one through dead downwind between two states off the wind; a full turn comes back to where it began.
+ */
+export function findManoeuvres(sailing: Sailing, thresholds: Thresholds): Manoeuvres {
+  const usual = usualUpwindSpeed(sailing, thresholds);
+  const angle = steeringAngle(sailing, usual, thresholds);
+  const states = findStates(angle, thresholds);
+  const turning = unwrap(angle);
+  const list: Manoeuvre[] = [];
+  for (let k = 0; k + 1 < states.length; k++) {
+    const found = between(states, k, turning, thresholds);
+    if (found) list.push(complete(found, sailing, turning, usual, thresholds));
+  }
+  list.push(...changesOfPoint(states, sailing, list, thresholds));
+  list.sort((a, b) => a.time - b.time);
+  return { states, list: trimToNext(list), usual };
+}
+
+interface Turn {
+  readonly kind: ManoeuvreKind;
+  readonly before: State;
+  readonly after: State;
+}
+
+/** What happened between state k and those that follow it, if it was a tack, a gybe or a full turn. */
+function between(states: readonly State[], k: number, turning: Float64Array, thresholds: Thresholds): Turn | null {
+  const before = states[k];
+  const after = states[k + 1];
+  if (after.from - before.to > thresholds.maxTurn) return null;
+  const net = turning[after.from] - turning[before.to - 1];
+  if (Math.abs(net) >= thresholds.fullTurn) return { kind: 'full-turn', before, after };
+  if (before.side === after.side) return null;
+  const throughWind = before.side > 0 ? net < 0 : net > 0;
+  if (throughWind) return tackTo(states, k, thresholds);
+  const offTheWind = before.point !== 'upwind' && after.point !== 'upwind';
+  if (!offTheWind || gybeTurn(before, after, turning) < thresholds.gybeTurn) return null;
+  return { kind: 'gybe', before, after };
+}
+
+/** The close-hauled state after a turn through the wind, over a short reach if the boat came out of it low. */
+function tackTo(states: readonly State[], k: number, thresholds: Thresholds): Turn | null {
+  const entered = states[k];
+  const before = entered.point === 'upwind' ? entered : states[k - 1];
+  if (!before || before.point !== 'upwind' || before.side !== entered.side) return null;
+  if (entered !== before && entered.to - before.to > thresholds.maxTurn) return null;
+  for (let j = k + 1; j < states.length; j++) {
+    const after = states[j];
+    if (after.side === before.side || after.from - before.to > 2 * thresholds.maxTurn) return null;
+    if (after.point === 'upwind') return { kind: 'tack', before, after };
+    if (after.point === 'run') return null;
+  }
+  return null;
+}
+
+/** Change of course between the middles of the two states' nearest ten seconds. [deg] */
+function gybeTurn(before: State, after: State, turning: Float64Array): number {
+  const a = median(turning.subarray(Math.max(before.from, before.to - 10), before.to));
+  const b = median(turning.subarray(after.from, Math.min(after.to, after.from + 10)));
+  return Math.abs(b - a);
+}
+
+function sideName(side: 1 | -1): Tack {
+  return side > 0 ? 'starboard' : 'port';
+}
+
+/** Row (fractional) at which the unwrapped angle passes the wind's eye (or dead downwind) between two rows. */
+function passage(turning: Float64Array, from: number, to: number, downwind: boolean): number {
+  const start = turning[from];
+  const end = turning[to];
+  const middle = (start + end) / 2;
+  const level = downwind ? 360 * Math.round((middle - 180) / 360) + 180 : 360 * Math.round(middle / 360);
+  const crossings: number[] = [];
+  let last = from;
+  for (let i = from + 1; i <= to; i++) {
+    if (Number.isNaN(turning[i])) continue;
+    const a = turning[last] - level;
+    const b = turning[i] - level;
+    if (a === 0 || a * b < 0) crossings.push(last + ((i - last) * a) / (a - b || 1));
+    last = i;
+  }
+  return crossings.length > 0 ? crossings[Math.floor((crossings.length - 1) / 2)] : (from + to) / 2;
+}
+
+/** Adds times to a turn: passage, entry and exit. */
+function complete(
+  found: Turn,
+  sailing: Sailing,
+  turning: Float64Array,
+  usual: number,
+  thresholds: Thresholds,
+): Manoeuvre {
+  const { kind, before, after } = found;
+  const first = before.to - 1;
+  const row = passage(turning, first, after.from, kind === 'gybe');
+  const at = Math.round(row);
+  const entry = helmDown(turning, Math.max(before.from, at - thresholds.maxTurn), at) - thresholds.beforeTack;
+  const exit = settledAgain(sailing, at, after, usual, thresholds);
+  return {
+    kind,
+    from: sideName(before.side),
+    to: sideName(after.side),
+    time: sailing.t0 + row,
+    entry: Math.max(0, Math.round(entry)),
+    at,
+    exit,
+  };
+}
+
+/** Last row before `at` on which the boat still steered as before: within 8 degrees of its median angle there. */
+function helmDown(turning: Float64Array, from: number, at: number): number {
+  const steady = median(turning.subarray(from, Math.max(from + 1, at - 8)));
+  for (let i = at; i > from; i--) if (Math.abs(turning[i] - steady) <= 8) return i;
+  return from;
+}
+
+/**
+ * Row at which speed is back: the first, between `settleMin` and `settleMax` after the passage, from which the 5 s mean
+ * speed stays at 97 % of the median of what follows on that tack. Common practice, no source; 14 s leaves most of a bad
+ * tack's cost in the settled sailing.
+ */
+function settledAgain(sailing: Sailing, at: number, after: State, usual: number, thresholds: Thresholds): number {
+  const first = Math.round(at + thresholds.settleMin);
+  const last = Math.round(at + thresholds.settleMax);
+  const end = Math.min(after.to, last + 45);
+  const settled = end - last >= 10 ? median(sailing.speed.subarray(last, end)) : usual;
+  for (let i = first; i < last && i + 3 <= sailing.n; i++) {
+    if (meanOf(sailing.speed, i - 2, i + 3) >= 0.97 * settled) return i;
+  }
+  return Math.min(last, sailing.n);
+}
+
+function meanOf(values: Float64Array, from: number, to: number): number {
+  let sum = 0;
+  for (let i = from; i < to; i++) sum += values[i];
+  return sum / (to - from);
+}
+
+/** Rounding up and bearing away: close-hauled for a while, then off the wind for a while on the same side, or back. */
+function changesOfPoint(
+  states: readonly State[],
+  sailing: Sailing,
+  turns: readonly Manoeuvre[],
+  thresholds: Thresholds,
+): Manoeuvre[] {
+  const long = states.filter((state) => state.to - state.from >= 2 * thresholds.minState);
+  const out: Manoeuvre[] = [];
+  for (let k = 0; k + 1 < long.length; k++) {
+    const before = long[k];
+    const after = long[k + 1];
+    const up = before.point !== 'upwind' && after.point === 'upwind';
+    const away = before.point === 'upwind' && after.point !== 'upwind';
+    if ((!up && !away) || after.from - before.to > 2 * thresholds.maxTurn) continue;
+    const at = Math.round((before.to + after.from) / 2);
+    const inTurn = turns.some((turn) => turn.at >= before.to - 2 && turn.at <= after.from + 2);
+    if (inTurn && before.side === after.side) continue;
+    const exit = Math.min(sailing.n, Math.round(after.from + thresholds.settleMin));
+    out.push({
+      kind: up ? 'round-up' : 'bear-away',
+      from: sideName(before.side),
+      to: sideName(after.side),
+      time: sailing.t0 + at,
+      entry: Math.max(0, Math.round(before.to - thresholds.beforeTack)),
+      at,
+      exit,
+    });
+  }
+  return out;
+}
+
+/** A window ends where the next one begins. */
+function trimToNext(list: readonly Manoeuvre[]): Manoeuvre[] {
+  return list.map((manoeuvre, k) => {
+    const next = list[k + 1];
+    if (!next || next.entry >= manoeuvre.exit) return manoeuvre;
+    return { ...manoeuvre, exit: Math.max(manoeuvre.at + 1, Math.min(manoeuvre.exit, next.entry)) };
+  });
+}

@@ -1,0 +1,200 @@
+import { median } from '../math/median.js';
+import type { Leg } from './legs.js';
+import type { Manoeuvre } from './manoeuvres.js';
+import { findStates, steeringAngle } from './point-of-sail.js';
+import { tackOf, type RowRange, type Sailing, type Tack } from './sailing.js';
+import type { Thresholds } from './thresholds.js';
+
+/** What a second of a leg was spent on. Every row of a leg has exactly one label. */
+export const LABEL = {
+  settled: 0,
+  manoeuvre: 1,
+  start: 2,
+  rounding: 3,
+  stopped: 4,
+  fetching: 5,
+  unsettled: 6,
+  gap: 7,
+} as const;
+export type Label = (typeof LABEL)[keyof typeof LABEL];
+
+/** A stretch of settled close-hauled sailing on one tack. */
+export interface Spell extends RowRange {
+  readonly tack: Tack;
+}
+
+/** A piece of a spell: the unit of averaging. */
+export interface Block extends RowRange {
+  readonly tack: Tack;
+  /** Index of the spell it is part of. */
+  readonly spell: number;
+}
+
+export interface LegRows {
+  /** One label per row of the leg: labels[i] is for row leg.from + i. */
+  readonly labels: Uint8Array;
+  readonly spells: readonly Spell[];
+  readonly blocks: readonly Block[];
+}
+
+/**
+ * Divides a beat into settled sailing and the rest.
+ *
+ * Settled is close-hauled, with way on, outside the windows of manoeuvres, after the start or rounding has been sailed
+ * off, before the last seconds at the mark, not luffing or stopped nor recovering from it, and not fetching the mark
+ * below the boat's own close-hauled angle; at least `minSettled` seconds at a stretch.
+ *
+ * @param own The boat's own close-hauled angle, the median of its settled sailing; NaN when not known yet. [deg]
+ */
+export function divideBeat(
+  sailing: Sailing,
+  leg: Leg,
+  manoeuvres: readonly Manoeuvre[],
+  usual: number,
+  own: number,
+  thresholds: Thresholds,
+): LegRows {
+  const labels = new Uint8Array(leg.to - leg.from).fill(LABEL.unsettled);
+  const mark = (from: number, to: number, label: Label): void => {
+    labels.fill(label, Math.max(0, Math.round(from) - leg.from), Math.max(0, Math.round(to) - leg.from));
+  };
+  const angle = steeringAngle(sailing, usual, thresholds);
+  for (const state of findStates(angle.subarray(leg.from, leg.to), thresholds)) {
+    if (state.point === 'upwind') mark(leg.from + state.from, leg.from + state.to, LABEL.settled);
+  }
+  for (let i = leg.from; i < leg.to; i++) {
+    const size = Math.abs(sailing.gamma[i]);
+    if (!(size >= thresholds.luffing && size <= thresholds.closeHauled)) labels[i - leg.from] = LABEL.unsettled;
+  }
+  markTroubles(sailing, leg, usual, thresholds, mark);
+  mark(leg.from, startedAt(sailing, leg, usual, thresholds), LABEL.start);
+  mark(leg.to - thresholds.rounding, leg.to, LABEL.rounding);
+  markFetching(sailing, leg, manoeuvres, own, thresholds, labels);
+  markWindows(leg, manoeuvres, mark);
+  for (let i = leg.from; i < leg.to; i++) if (Number.isNaN(sailing.gamma[i])) labels[i - leg.from] = LABEL.gap;
+  const spells = spellsOf(sailing, leg, labels, thresholds);
+  return { labels, spells, blocks: cutBlocks(spells, thresholds) };
+}
+
+type Mark = (from: number, to: number, label: Label) => void;
+
+/** Windows of manoeuvres; a rounding-up at the very beginning of the leg belongs to the start. */
+function markWindows(leg: Leg, manoeuvres: readonly Manoeuvre[], mark: Mark): void {
+  for (const manoeuvre of manoeuvres) {
+    if (manoeuvre.exit <= leg.from || manoeuvre.entry >= leg.to) continue;
+    const atStart = manoeuvre.at <= leg.from + 5;
+    const atEnd = manoeuvre.at >= leg.to - 3 && manoeuvre.kind !== 'tack';
+    mark(
+      Math.max(leg.from, manoeuvre.entry),
+      Math.min(leg.to, manoeuvre.exit),
+      atStart ? LABEL.start : atEnd ? LABEL.rounding : LABEL.manoeuvre,
+    );
+  }
+}
+
+/**
+ * Row from which a leg's first sailing is settled: the 5 s mean speed is back at 95 % of usual, no sooner than
+ * `settleMin` and no later than `settleMax` after the leg begins.
+ */
+function startedAt(sailing: Sailing, leg: Leg, usual: number, thresholds: Thresholds): number {
+  const last = Math.min(leg.to, Math.round(leg.from + thresholds.settleMax));
+  for (let i = Math.round(leg.from + thresholds.settleMin); i < last && i + 3 <= sailing.n; i++) {
+    let sum = 0;
+    for (let k = i - 2; k < i + 3; k++) sum += sailing.speed[k];
+    if (sum / 5 >= 0.95 * usual) return i;
+  }
+  return last;
+}
+
+/** Stops, luffing and slow stretches, each with the time it takes to get going again. */
+function markTroubles(sailing: Sailing, leg: Leg, usual: number, thresholds: Thresholds, mark: Mark): void {
+  let slowFrom = -1;
+  for (let i = leg.from; i <= leg.to; i++) {
+    const size = i < leg.to ? Math.abs(sailing.gamma[i]) : NaN;
+    const trouble = i < leg.to && (sailing.speed[i] < 0.7 * usual || size < thresholds.luffing);
+    if (trouble && slowFrom < 0) slowFrom = i;
+    if (trouble || slowFrom < 0) continue;
+    if (i - slowFrom > thresholds.flicker) {
+      mark(slowFrom - thresholds.beforeTack, Math.min(leg.to, i + thresholds.settleMin), LABEL.unsettled);
+      markStops(sailing, slowFrom, i, usual, thresholds, mark);
+    }
+    slowFrom = -1;
+  }
+}
+
+function markStops(
+  sailing: Sailing,
+  from: number,
+  to: number,
+  usual: number,
+  thresholds: Thresholds,
+  mark: Mark,
+): void {
+  let stopFrom = -1;
+  for (let i = from; i <= to; i++) {
+    const stopped = i < to && sailing.speed[i] < thresholds.stopped * usual;
+    if (stopped && stopFrom < 0) stopFrom = i;
+    if (!stopped && stopFrom >= 0) {
+      if (i - stopFrom >= thresholds.minStop) mark(from, to, LABEL.stopped);
+      stopFrom = -1;
+    }
+  }
+}
+
+/** From the moment after the last tack from which the boat sails below its own angle to the end of the beat. */
+function markFetching(
+  sailing: Sailing,
+  leg: Leg,
+  manoeuvres: readonly Manoeuvre[],
+  own: number,
+  thresholds: Thresholds,
+  labels: Uint8Array,
+): void {
+  if (Number.isNaN(own)) return;
+  const tacks = manoeuvres.filter((m) => m.kind === 'tack' && m.at > leg.from && m.at < leg.to);
+  const first = tacks.at(-1)?.exit ?? leg.from;
+  let from = leg.to;
+  for (let i = leg.to - Math.round(thresholds.rounding) - 1; i >= first; i--) {
+    const window = sailing.gamma.subarray(Math.max(first, i - 10), Math.min(leg.to, i + 11));
+    if (!(Math.abs(median(window)) > own + thresholds.fetching)) break;
+    from = i;
+  }
+  for (let i = from; i < leg.to; i++) {
+    if (labels[i - leg.from] !== LABEL.rounding) labels[i - leg.from] = LABEL.fetching;
+  }
+}
+
+/** Runs of settled rows on one tack that are long enough; shorter ones are relabelled unsettled. */
+function spellsOf(sailing: Sailing, leg: Leg, labels: Uint8Array, thresholds: Thresholds): Spell[] {
+  const spells: Spell[] = [];
+  let from = -1;
+  const close = (to: number): void => {
+    if (from >= 0 && to - from >= thresholds.minSettled) {
+      spells.push({ from: leg.from + from, to: leg.from + to, tack: tackOf(sailing.gamma[leg.from + from]) });
+    } else if (from >= 0) labels.fill(LABEL.unsettled, from, to);
+    from = -1;
+  };
+  for (let k = 0; k < labels.length; k++) {
+    const settled = labels[k] === LABEL.settled;
+    const sameTack = from < 0 || Math.sign(sailing.gamma[leg.from + k]) === Math.sign(sailing.gamma[leg.from + from]);
+    if (!settled || !sameTack) close(k);
+    if (settled && from < 0) from = k;
+  }
+  close(labels.length);
+  return spells;
+}
+
+/** Cuts spells into equal pieces nearest to `block` seconds; a spell shorter than one and a half blocks is one piece. */
+export function cutBlocks(spells: readonly Spell[], thresholds: Thresholds): Block[] {
+  const blocks: Block[] = [];
+  spells.forEach((spell, index) => {
+    const length = spell.to - spell.from;
+    const pieces = Math.max(1, Math.round(length / thresholds.block));
+    for (let k = 0; k < pieces; k++) {
+      const from = spell.from + Math.round((k * length) / pieces);
+      const to = spell.from + Math.round(((k + 1) * length) / pieces);
+      blocks.push({ from, to, tack: spell.tack, spell: index });
+    }
+  });
+  return blocks;
+}

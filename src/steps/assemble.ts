@@ -1,0 +1,183 @@
+import type { Race } from '../files/race-types.js';
+import { circularMean } from '../math/angles.js';
+import type { Issue } from '../recording/issues.js';
+import { isoTime, knotsQuantity, quantity } from '../result/quantity.js';
+import type {
+  Basis,
+  BoatResult,
+  InputEntry,
+  LegResult,
+  ManoeuvreResult,
+  Q,
+  Result,
+  Steady,
+  TackSide,
+  Warning,
+  WindSource as SourceName,
+} from '../result/result.js';
+import type { Figure, SteadyFigures } from '../estimate/steady.js';
+import type { BoatEstimate, LegEstimate } from './estimate-boat.js';
+import type { CleanBoat } from './clean-tracks.js';
+import type { FoundWind } from './find-wind.js';
+import type { ReadFile } from './read-logs.js';
+import type { Sailed } from './sail.js';
+
+export interface Assembly {
+  readonly race: Race;
+  readonly version: string;
+  readonly files: readonly ReadFile[];
+  readonly boats: readonly CleanBoat[];
+  readonly wind: FoundWind;
+  readonly handWind: boolean;
+  readonly estimates: readonly BoatEstimate[];
+  readonly issues: readonly Issue[];
+}
+
+/** The result file's object from the estimates: units of the outside, notes, warnings. */
+export function assemble(a: Assembly): Result {
+  return {
+    format: 'legwork-result',
+    version: 1,
+    program: { name: 'legwork', version: a.version },
+    race: {
+      name: a.race.name,
+      start: a.race.start === null ? null : isoTime(a.race.start),
+      finish: a.race.finish === null ? null : isoTime(a.race.finish),
+    },
+    inputs: a.files.map((file) => inputEntry(file, a.boats)),
+    wind: windOf(a),
+    corrections: { twd_offset_deg: twdOffset(a.wind), current: null },
+    boats: a.boats.map((boat, k) => boatResult(boat, a.wind.sailed[k]!, a.estimates[k]!, a)),
+    warnings: a.issues.map(({ code, message, file }): Warning => ({ code, message, ...(file ? { file } : {}) })),
+  };
+}
+
+/** Counts of one file; fixes the smoother turned away are taken off those the importer kept. */
+function inputEntry({ file, log }: ReadFile, boats: readonly CleanBoat[]): InputEntry {
+  const user = boats.find((boat) => boat.logs.trackFiles.includes(file) && boat.logs.trackFiles.length === 1);
+  const later = user ? user.rejected.map((r) => ({ reason: r.reason, count: r.count, first_line: r.firstRow + 1 })) : [];
+  const lost = later.reduce((sum, r) => sum + r.count, 0);
+  const gaps = boats.find((boat) => boat.logs.trackFiles[0] === file)?.gaps ?? [];
+  return {
+    file,
+    sha256: log.sha256,
+    kind: log.kind,
+    rows: log.rows,
+    kept: log.kept - lost,
+    ignored: log.ignored,
+    ignored_types: log.ignoredTypes,
+    rejected: [...log.rejected, ...later],
+    fixes: log.fixes - lost,
+    samples: log.samples,
+    gaps: gaps.map((gap) => ({ from: isoTime(gap.from), seconds: gap.seconds })),
+  };
+}
+
+function windOf(a: Assembly): Result['wind'] {
+  const { wind, handWind } = a;
+  const names = new Set<SourceName>(wind.sources.map(({ source }) => source.kind));
+  if (handWind) names.add('by-hand');
+  const legs = wind.sailed.flatMap((one) => one.legs.map((leg) => ({ one, leg })));
+  const directions = legs.flatMap(({ one, leg }) => Array.from(one.sailing.twd.subarray(leg.from, leg.to)));
+  const speeds = legs.flatMap(({ one, leg }) => Array.from(one.tws.subarray(leg.from, leg.to)));
+  const known = speeds.filter((speed) => !Number.isNaN(speed));
+  const offset = firstOffset(wind);
+  const direction = {
+    value: circularMean(directions).mean,
+    se: wind.directionInferred ? 2 : 1,
+    sys: wind.directionInferred ? 0 : (offset?.se ?? wind.sources[0]!.source.accuracyDir),
+  };
+  const speed = {
+    value: known.reduce((sum, s) => sum + s, 0) / known.length,
+    se: 0.02 * (known[0] ?? NaN),
+    sys: (wind.sources[0]?.source.accuracySpeed ?? 0) * (known[0] ?? NaN),
+  };
+  return {
+    sources: [...names],
+    twd_deg: quantity(direction, wind.directionInferred ? 'inferred' : 'measured'),
+    tws_kn: known.length > 0 ? knotsQuantity(speed, handWind ? 'assumed' : 'measured') : null,
+  };
+}
+
+function firstOffset(wind: FoundWind): { offset: number; se: number } | null {
+  return wind.offsets.find((offset) => offset !== null) ?? null;
+}
+
+function twdOffset(wind: FoundWind): Q {
+  const offset = firstOffset(wind);
+  return offset ? quantity({ value: offset.offset, se: offset.se }, 'inferred') : null;
+}
+
+function boatResult(boat: CleanBoat, one: Sailed, estimate: BoatEstimate, a: Assembly): BoatResult {
+  const { reference } = boat.logs;
+  return {
+    name: reference.name,
+    sailor: reference.sailor,
+    model: { boat: reference.boat, tuned: false, sha256: '' },
+    corrections: { compass_offset_deg: null, awa_offset_deg: null },
+    manoeuvres: estimate.manoeuvres.map(({ manoeuvre, loss }): ManoeuvreResult => ({
+      kind: manoeuvre.kind,
+      time: isoTime(Math.round(manoeuvre.time * 10) / 10),
+      from: manoeuvre.from,
+      to: manoeuvre.to,
+      seconds: manoeuvre.exit - manoeuvre.entry,
+      loss_m: quantity(loss, 'derived'),
+    })),
+    legs: estimate.legs.map((leg) => legResult(leg, one, a)),
+    hints: [],
+  };
+}
+
+function legResult(estimate: LegEstimate, one: Sailed, a: Assembly): LegResult {
+  const { leg, all } = estimate;
+  const inferred = a.wind.directionInferred;
+  const notes: string[] = [];
+  const steady = all ? steadyOf(estimate, inferred) : null;
+  if (leg.kind === 'upwind' && !all) notes.push('no settled close-hauled sailing on this leg');
+  if (leg.kind !== 'upwind') notes.push('settled figures are for beats only');
+  if (all && Number.isNaN(all.tws.value)) notes.push('wind speed unknown');
+  return {
+    kind: leg.kind,
+    lap: leg.lap,
+    start: isoTime(one.sailing.t0 + leg.from),
+    end: isoTime(one.sailing.t0 + leg.to),
+    tacks: estimate.tacks,
+    gybes: estimate.gybes,
+    vmg_kn: knotsQuantity(estimate.vmg, inferred ? 'inferred' : 'derived'),
+    steady,
+    optimum: null,
+    ceiling_vmg_kn: all ? knotsQuantity(all.ceiling, 'derived') : null,
+    efficiency: null,
+    share: null,
+    ledger: null,
+    notes,
+  };
+}
+
+function steadyOf(estimate: LegEstimate, inferred: boolean): Steady {
+  return {
+    ...sideOf(estimate.all!, estimate.vane, inferred),
+    tacking_angle_deg: quantity(estimate.tackingAngle, inferred ? 'inferred' : 'derived'),
+    port: estimate.port ? sideOf(estimate.port, null, inferred) : null,
+    starboard: estimate.starboard ? sideOf(estimate.starboard, null, inferred) : null,
+  };
+}
+
+function sideOf(figures: SteadyFigures, vane: Figure | null, inferred: boolean): TackSide {
+  const basis: Basis = inferred ? 'inferred' : 'derived';
+  return {
+    seconds: figures.seconds,
+    gamma_deg: quantity(figures.gamma, basis),
+    speed_kn: knotsQuantity(figures.speed, 'measured'),
+    vmg_kn: knotsQuantity(figures.vmg, basis),
+    tws_kn: knotsQuantity(figures.tws, 'measured'),
+    aws_kn: knotsQuantity(figures.aws, basis),
+    beta_deg: quantity(figures.beta, basis),
+    awa_deg: quantity(vane, 'measured'),
+    leeway_deg: null,
+    sheeting_deg: null,
+    incidence_deg: null,
+    aero_drag_angle_deg: null,
+    hydro_drag_angle_deg: null,
+  };
+}

@@ -1,0 +1,252 @@
+import { circularMean, directionOf } from '../math/angles.js';
+import { median } from '../math/median.js';
+import type { Issue } from '../recording/issues.js';
+import { UserError } from '../recording/issues.js';
+import type { Track } from '../recording/track.js';
+import { tackSign } from '../segment/sailing.js';
+import { estimateLag, estimateOffset, type CourseBlock, type LagEstimate, type OffsetEstimate } from '../wind/align.js';
+import { windAtBoat, type CorrectedSource, type WindAtBoat } from '../wind/field.js';
+import { bisectorOf, guessWindDirection, windFromLooks, type DirectionLook } from '../wind/from-tracks.js';
+import { windSums, type WindSource } from '../wind/source.js';
+import type { Sailed } from './sail.js';
+
+export interface FoundWind {
+  readonly sources: readonly CorrectedSource[];
+  /** Wind at each boat. */
+  readonly atBoats: readonly WindAtBoat[];
+  readonly sailed: readonly Sailed[];
+  /** Offset of each source, null where not to be had. */
+  readonly offsets: readonly (OffsetEstimate | null)[];
+  readonly lags: readonly (LagEstimate | null)[];
+  /** True where the direction rests on the tracks alone. */
+  readonly directionInferred: boolean;
+  readonly issues: readonly Issue[];
+}
+
+/** Divides one boat's sailing in a given wind. */
+export type SailBoat = (boat: number, wind: WindAtBoat) => Sailed;
+
+/** Rounds of correcting sources and dividing again; the second changes little, the third nothing that counts. */
+const ROUNDS = 2;
+
+/**
+ * Wind at every boat, with the slow corrections of the sources.
+ *
+ * First the sources as they are; then each round finds lags and offsets from the settled sailing they gave. Without a
+ * direction from any instrument the tracks give it: a first guess from the turns, then the bisectors of the tacks.
+ */
+export function findWind(tracks: readonly Track[], sources: readonly WindSource[], sailBoat: SailBoat): FoundWind {
+  const measured = sources.filter((source) => source.kind !== 'by-hand');
+  if (measured.length === 0) return windFromTracks(tracks, sources, sailBoat);
+  checkOverlap(tracks, measured);
+  let corrected: CorrectedSource[] = measured.map((source) => ({ source, offset: 0, lag: 0 }));
+  let offsets: (OffsetEstimate | null)[] = measured.map(() => null);
+  let lags: (LagEstimate | null)[] = measured.map(() => null);
+  let atBoats = tracks.map((track, boat) => windAtBoat(boat, track, corrected));
+  let sailed = atBoats.map((wind, boat) => sailBoat(boat, wind));
+  for (let round = 0; round < ROUNDS; round++) {
+    lags = corrected.map(({ source }) => (source.kind === 'station' && !source.place ? lagOf(source, sailed) : null));
+    const lagged = measured.map((source, k) => ({ source, offset: 0, lag: usedLag(lags[k]) }));
+    offsets = lagged.map((one, k) => offsetOf(one, k, tracks, sailed, measured, sailBoat));
+    corrected = lagged.map((one, k) => ({ ...one, offset: offsets[k]?.offset ?? 0 }));
+    atBoats = tracks.map((track, boat) => windAtBoat(boat, track, corrected));
+    sailed = atBoats.map((wind, boat) => sailBoat(boat, wind));
+  }
+  return { sources: corrected, atBoats, sailed, offsets, lags, directionInferred: false, issues: lagIssues(measured, lags) };
+}
+
+function usedLag(estimate: LagEstimate | null | undefined): number {
+  return estimate?.used ? estimate.lag : 0;
+}
+
+function lagIssues(sources: readonly WindSource[], lags: readonly (LagEstimate | null)[]): Issue[] {
+  return sources.flatMap((source, k) => {
+    const lag = lags[k];
+    if (!lag?.used) return [];
+    const when = lag.lag >= 0 ? 'after' : 'before';
+    const size = `${Math.abs(lag.lag).toFixed(0)} s (standard error ${lag.se.toFixed(0)} s)`;
+    return [
+      {
+        code: 'wind-lag',
+        message: `The wind reached the boats ${size} ${when} it reached the station; the log was moved by that much.`,
+        file: source.file,
+      },
+    ];
+  });
+}
+
+/** Wind and tracks must share some time. */
+function checkOverlap(tracks: readonly Track[], sources: readonly WindSource[]): void {
+  const overlaps = sources.some((source) =>
+    tracks.some((track) => source.t0 < track.t0 + track.n && source.t0 + source.n > track.t0),
+  );
+  if (overlaps) return;
+  const [source] = sources;
+  const [track] = tracks;
+  const iso = (time: number): string => new Date(time * 1000).toISOString();
+  throw new UserError(
+    `${source!.file}: the wind log (${iso(source!.t0)} to ${iso(source!.t0 + source!.n)}) and the tracks ` +
+      `(${iso(track!.t0)} to ${iso(track!.t0 + track!.n)}) do not overlap`,
+    { exitCode: 1, suggestion: 'Check the date and the time zone of the wind log (`zone`, `--zone`, `clock_s`).' },
+  );
+}
+
+function lagOf(source: WindSource, sailed: readonly Sailed[]): LagEstimate | null {
+  const blocks: CourseBlock[] = sailed.flatMap((one, boat) =>
+    one.blocks.map((block) => ({
+      boat,
+      leg: block.leg,
+      tack: tackSign(block.tack),
+      time: block.time,
+      seconds: block.seconds,
+      course: block.course,
+    })),
+  );
+  return estimateLag(source, blocks);
+}
+
+/** Direction error of one source from the two tacks of the boats that use it, in its own uncorrected wind. */
+function offsetOf(
+  one: CorrectedSource,
+  index: number,
+  tracks: readonly Track[],
+  sailed: readonly Sailed[],
+  sources: readonly WindSource[],
+  sailBoat: SailBoat,
+): OffsetEstimate | null {
+  const gammas = tracks.flatMap((track, boat) => {
+    if (!usesSource(boat, index, sources)) return [];
+    const wind = windAtBoat(boat, track, [one]);
+    const again = one.offset === 0 && sources.length === 1 && one.lag === 0 ? sailed[boat]! : sailBoat(boat, wind);
+    return tackDifferences(again, boat);
+  });
+  return estimateOffset(gammas, one.source.accuracyDir);
+}
+
+/** A boat's own wind is judged by that boat; a station by the boats without their own. */
+function usesSource(boat: number, index: number, sources: readonly WindSource[]): boolean {
+  const source = sources[index]!;
+  if (source.boat >= 0) return source.boat === boat;
+  return !sources.some((other) => other.boat === boat) || sources.every((other) => other.boat >= 0 || other === source);
+}
+
+/** Mean course angle on each tack of every leg that has at least a minute of both. */
+function tackDifferences(one: Sailed, boat: number): { boat: number; starboard: number; port: number }[] {
+  return one.legs.flatMap((_, leg) => {
+    const side = (tack: string) => one.blocks.filter((block) => block.leg === leg && block.tack === tack);
+    const mean = (blocks: readonly { gamma: number; seconds: number }[]): number => {
+      const seconds = blocks.reduce((sum, b) => sum + b.seconds, 0);
+      return seconds >= 60 ? blocks.reduce((sum, b) => sum + b.gamma * b.seconds, 0) / seconds : NaN;
+    };
+    const starboard = mean(side('starboard'));
+    const port = mean(side('port'));
+    return Number.isNaN(starboard + port) ? [] : [{ boat, starboard, port }];
+  });
+}
+
+/** One tack's bisector is off by helm wander and by what a sailor's two tacks differ: common practice, no source. [deg] */
+const BISECTOR_SE = 2.5;
+
+function windFromTracks(tracks: readonly Track[], hand: readonly WindSource[], sailBoat: SailBoat): FoundWind {
+  const span = { from: Math.min(...tracks.map((t) => t.t0)), to: Math.max(...tracks.map((t) => t.t0 + t.n)) };
+  const [byHand] = hand;
+  const guess = byHand ? NaN : guessWindDirection(tracks);
+  if (!byHand && Number.isNaN(guess)) {
+    throw new UserError('no wind log, and too few tacks to find the wind direction from the tracks', {
+      exitCode: 1,
+      suggestion: 'Give a wind log with --wind FILE, or a wind by hand with --wind DIRECTION@KNOTS.',
+    });
+  }
+  const first = byHand ?? constantSource(guess, span);
+  let corrected: CorrectedSource[] = [{ source: first, offset: 0, lag: 0 }];
+  let atBoats = tracks.map((track, boat) => windAtBoat(boat, track, corrected));
+  let sailed = atBoats.map((wind, boat) => sailBoat(boat, wind));
+  for (let round = 0; round < ROUNDS + 1; round++) {
+    const looks = sailed.flatMap((one) => tackLooks(one));
+    if (byHand) looks.push(...handLooks(byHand, span));
+    const found = windFromLooks(looks, span);
+    if (!found) break;
+    const source = byHand ? { ...found.source, ...speedOf(byHand, found.source) } : found.source;
+    corrected = [{ source, offset: 0, lag: 0 }];
+    atBoats = tracks.map((track, boat) => windAtBoat(boat, track, corrected));
+    sailed = atBoats.map((wind, boat) => sailBoat(boat, wind));
+  }
+  return {
+    sources: corrected,
+    atBoats,
+    sailed,
+    offsets: [null],
+    lags: [null],
+    directionInferred: true,
+    issues: [],
+  };
+}
+
+/** Speed of the hand wind on the rows of the direction found from tracks. */
+function speedOf(hand: WindSource, tracks: WindSource): Pick<WindSource, 'sums' | 'hasSpeed' | 'accuracySpeed'> {
+  const shift = tracks.t0 - hand.t0;
+  const at = (sums: Float64Array, i: number): number => sums[Math.max(0, Math.min(hand.n, i + shift))]!;
+  const n = tracks.n + 1;
+  const speed = Float64Array.from({ length: n }, (_, i) => at(hand.sums.speed, i) - at(hand.sums.speed, 0));
+  const speeds = Float64Array.from({ length: n }, (_, i) => at(hand.sums.speeds, i) - at(hand.sums.speeds, 0));
+  return {
+    sums: { ...tracks.sums, speed, speeds },
+    hasSpeed: hand.hasSpeed,
+    accuracySpeed: hand.accuracySpeed,
+  };
+}
+
+function handLooks(hand: WindSource, span: { from: number; to: number }): DirectionLook[] {
+  const middle = (span.from + span.to) / 2;
+  const i = Math.max(0, Math.min(hand.n - 1, Math.round(middle - hand.t0)));
+  const { east, north } = hand.sums;
+  const direction = directionOf(east[i + 1]! - east[i]!, north[i + 1]! - north[i]!);
+  return [{ time: middle, direction, se: Math.max(3, hand.accuracyDir) }];
+}
+
+function constantSource(direction: number, span: { from: number; to: number }): WindSource {
+  const n = Math.ceil(span.to - span.from) + 1;
+  return {
+    kind: 'tracks',
+    file: '',
+    boat: -1,
+    t0: Math.floor(span.from),
+    n,
+    place: null,
+    accuracyDir: 10,
+    accuracySpeed: 1,
+    hasSpeed: false,
+    window: 1,
+    sums: windSums(new Float64Array(n).fill(direction), new Float64Array(n).fill(NaN)),
+  };
+}
+
+/** Bisectors of the courses before and after each tack of a boat. */
+function tackLooks(one: Sailed): DirectionLook[] {
+  const { sailing } = one;
+  const usual = one.usual;
+  return one.manoeuvres.flatMap((manoeuvre) => {
+    if (manoeuvre.kind !== 'tack') return [];
+    const before = steadyCourse(one, Math.max(0, manoeuvre.entry - 20), manoeuvre.entry, usual);
+    const after = steadyCourse(one, manoeuvre.at + 12, Math.min(sailing.n, manoeuvre.at + 35), usual);
+    if (Number.isNaN(before + after)) return [];
+    return [{ time: manoeuvre.time, direction: bisectorOf(before, after), se: BISECTOR_SE }];
+  });
+}
+
+/** Median-like course over rows with way on; NaN when fewer than eight. */
+function steadyCourse(one: Sailed, from: number, to: number, usual: number): number {
+  const { ux, uy, speed, n } = one.sailing;
+  const courses: number[] = [];
+  for (let i = from; i < Math.min(to, n); i++) {
+    if (speed[i]! > 0.6 * usual) courses.push(directionOf(ux[i]!, uy[i]!));
+  }
+  if (courses.length < 8) return NaN;
+  const { mean, resultant } = circularMean(courses);
+  return resultant > 0.96 ? mean : NaN;
+}
+
+/** Typical distance of the boats from the nearest sensor. [m] */
+export function typicalDistance(atBoats: readonly WindAtBoat[]): number {
+  return median(atBoats.map((wind) => median(wind.distance)));
+}

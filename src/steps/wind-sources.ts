@@ -1,0 +1,86 @@
+import type { Race } from '../files/race-types.js';
+import { eastInPlane, northInPlane, toPlane } from '../math/geo.js';
+import { channelValues, countFixes } from '../recording/recording.js';
+import type { Frame } from '../recording/track.js';
+import { smoothTrack } from '../smooth/index.js';
+import { onBoardSource } from '../wind/on-board.js';
+import type { SensorPlace, WindSource } from '../wind/source.js';
+import { handSource, stationSource } from '../wind/station.js';
+import type { CleanTracks } from './clean-tracks.js';
+import type { ReadLogs, WindLog } from './read-logs.js';
+
+/**
+ * Every source of wind of a race: the boats' own, stations and coach boats, hand readings.
+ *
+ * @param heightFactor From a height [m] to the rig's, as a factor on the speed.
+ */
+export function windSources(
+  race: Race,
+  logs: ReadLogs,
+  clean: CleanTracks,
+  heightFactor: (height: number) => number,
+): WindSource[] {
+  const sources: WindSource[] = [];
+  clean.boats.forEach((boat, k) => {
+    const file = boat.logs.instruments[0]?.file ?? boat.logs.trackFiles[0] ?? '';
+    const own = onBoardSource(boat.track, file, k);
+    if (own) sources.push(own);
+  });
+  for (const log of logs.winds) {
+    const source = logSource(log, clean.frame, heightFactor);
+    if (source) sources.push(source);
+  }
+  const span = {
+    from: Math.min(...clean.boats.map((boat) => boat.track.t0)),
+    to: Math.max(...clean.boats.map((boat) => boat.track.t0 + boat.track.n)),
+  };
+  for (const wind of race.wind) {
+    if (wind.kind === 'by-hand') sources.push(handSource(wind.readings, wind, span));
+  }
+  return sources;
+}
+
+/** A wind log: a moving boat's apparent wind is made true by its own motion, anything else is a station. */
+function logSource(log: WindLog, frame: Frame, heightFactor: (height: number) => number): WindSource | null {
+  const { reference, recording } = log;
+  const moving = !!recording.channels.awa && countFixes(recording) > 0;
+  if (moving) {
+    const { track } = smoothTrack(recording, frame, { file: reference.file });
+    const source = onBoardSource(track, reference.file, -1);
+    if (source) return source;
+  }
+  return stationSource(recording, {
+    file: reference.file,
+    place: reference.at ? toPlane(frame, reference.at.lat, reference.at.lon) : loggedPlace(log, frame),
+    accuracyDir: reference.accuracyDir,
+    accuracySpeed: reference.accuracySpeed,
+    offset: reference.offset,
+    factor: reference.heightM === undefined ? 1 : heightFactor(reference.heightM),
+    clockS: 0,
+    variation: meanVariation(log),
+  });
+}
+
+/** Place a station logged itself, second by second; null when it has none. */
+function loggedPlace({ recording }: WindLog, frame: Frame): SensorPlace {
+  if (countFixes(recording) === 0) return null;
+  const lat = channelValues(recording, 'lat');
+  const lon = channelValues(recording, 'lon');
+  const direction = channelValues(recording, recording.channels.twd ? 'twd' : 'twdMagnetic');
+  const t0 = Math.floor(direction.time[0]!);
+  const n = Math.ceil(direction.time.at(-1)!) - t0 + 1;
+  const xs = new Float64Array(n);
+  const ys = new Float64Array(n);
+  let k = 0;
+  for (let i = 0; i < n; i++) {
+    while (k + 1 < lat.time.length && lat.time[k + 1]! <= t0 + i) k++;
+    xs[i] = eastInPlane(frame, lon.value[k]!);
+    ys[i] = northInPlane(frame, lat.value[k]!);
+  }
+  return { xs, ys };
+}
+
+function meanVariation({ recording }: WindLog): number {
+  const { value } = channelValues(recording, 'variation');
+  return value.length > 0 ? value.reduce((sum, v) => sum + v, 0) / value.length : 0;
+}

@@ -1,0 +1,141 @@
+import { turn } from '../math/angles.js';
+import { readWind, type WindSource } from './source.js';
+
+/** A settled block as alignment sees it. */
+export interface CourseBlock {
+  readonly boat: number;
+  /** Which leg of the boat. */
+  readonly leg: number;
+  /** +1 starboard tack, -1 port. */
+  readonly tack: 1 | -1;
+  /** Middle, UTC epoch seconds, and length. [s] */
+  readonly time: number;
+  readonly seconds: number;
+  /** Course through the water. [deg] */
+  readonly course: number;
+}
+
+/** Range in which a lag is sought. [s] */
+const LAG_MIN = -60;
+const LAG_MAX = 300;
+const LAG_STEP = 5;
+/** Blocks follow the same shifts: about half of them count as independent. Common practice, no source. */
+const INDEPENDENT = 0.5;
+/** Fall of -2 log likelihood needed before a lag is used: 0.1 % by chance for one unknown (chi-square, 10.8). */
+const LAG_EVIDENCE = 10.8;
+const FEWEST_BLOCKS = 12;
+
+export interface LagEstimate {
+  /** The wind reaches the boats this much after the sensor. [s] */
+  readonly lag: number;
+  readonly se: number;
+  /** Whether it lowers the spread of course angles enough to be used. */
+  readonly used: boolean;
+}
+
+/**
+ * Lag of a sensor whose place is not known: the one that gives the least spread of the course angle to the wind within
+ * each boat's tacks.
+ *
+ * @returns null when there is too little settled sailing, or the least spread is at an end of the range.
+ */
+export function estimateLag(source: WindSource, blocks: readonly CourseBlock[]): LagEstimate | null {
+  if (blocks.length < FEWEST_BLOCKS) return null;
+  const lags: number[] = [];
+  for (let lag = LAG_MIN; lag <= LAG_MAX; lag += LAG_STEP) lags.push(lag);
+  const n = INDEPENDENT * blocks.length;
+  const misfit = lags.map((lag) => n * Math.log(spreadAt(source, blocks, lag)));
+  let best = -1;
+  misfit.forEach((value, k) => {
+    if (Number.isFinite(value) && (best < 0 || value < misfit[best])) best = k;
+  });
+  if (best <= 0 || best >= lags.length - 1) return null;
+  const [a, b, c] = [misfit[best - 1], misfit[best], misfit[best + 1]];
+  const bend = a - 2 * b + c;
+  const lag = lags[best] + (bend > 0 ? (LAG_STEP * (a - c)) / (2 * bend) : 0);
+  const se = Math.max(2, lagError(misfit, best));
+  const atZero = misfit[lags.indexOf(0)];
+  return { lag, se, used: atZero - b > LAG_EVIDENCE };
+}
+
+/** Half-width of the range of lags within 1 of the least -2 log likelihood. [s] */
+function lagError(misfit: readonly number[], best: number): number {
+  let low = best;
+  while (low > 0 && misfit[low] - misfit[best] < 1) low--;
+  let high = best;
+  while (high < misfit.length - 1 && misfit[high] - misfit[best] < 1) high++;
+  const left = crossing(misfit, best, low);
+  const right = crossing(misfit, best, high);
+  return (LAG_STEP * (left + right)) / 2;
+}
+
+/** Distance in steps from the best lag to where the misfit is 1 above, between two grid points. */
+function crossing(misfit: readonly number[], best: number, edge: number): number {
+  const inner = edge + Math.sign(best - edge);
+  const rise = misfit[edge] - misfit[inner];
+  const part = rise > 0 ? (1 - (misfit[inner] - misfit[best])) / rise : 1;
+  return Math.abs(inner - best) + Math.min(1, part);
+}
+
+/** Mean square of the course angle about its mean within each boat, leg and tack. [deg^2] */
+function spreadAt(source: WindSource, blocks: readonly CourseBlock[], lag: number): number {
+  const groups = new Map<string, number[]>();
+  for (const block of blocks) {
+    const { direction } = readWind(source, block.time - lag, Math.max(source.window, block.seconds));
+    if (Number.isNaN(direction)) continue;
+    const key = `${block.boat}/${block.tack}`;
+    const list = groups.get(key) ?? [];
+    list.push(block.tack * turn(block.course, direction));
+    groups.set(key, list);
+  }
+  let sum = 0;
+  let n = 0;
+  for (const angles of groups.values()) {
+    const mean = angles.reduce((total, angle) => total + angle, 0) / angles.length;
+    for (const angle of angles) sum += (angle - mean) ** 2;
+    n += angles.length - 1;
+  }
+  return n > 0 && n >= 0.5 * blocks.length ? sum / n : NaN;
+}
+
+/** Sailors differ this much between their tacks (half the difference of the two angles); common practice, no source. [deg] */
+const ASYMMETRY = 1;
+/** What a leg's shifts and blocks leave of error in half the difference of its tacks. [deg] */
+const LEG_ERROR = 1.2;
+
+export interface OffsetEstimate {
+  /** To be added to the direction. [deg] */
+  readonly offset: number;
+  readonly se: number;
+}
+
+/**
+ * Direction error of a wind source from the difference of the boats' two tacks: boats sail the two tacks alike but for
+ * about a degree, so half the difference of the course angles is the source's error. Mixed with the stated mounting
+ * accuracy as prior.
+ *
+ * @param gammas One row a boat and leg with both tacks: course angle to the source's wind on each. [deg]
+ * @param accuracyDir One standard deviation of the mounting. [deg]
+ * @returns null without a leg sailed on both tacks.
+ */
+export function estimateOffset(
+  gammas: readonly { readonly boat: number; readonly starboard: number; readonly port: number }[],
+  accuracyDir: number,
+): OffsetEstimate | null {
+  if (gammas.length === 0) return null;
+  const byBoat = new Map<number, number[]>();
+  for (const { boat, starboard, port } of gammas) {
+    const list = byBoat.get(boat) ?? [];
+    list.push((port - starboard) / 2);
+    byBoat.set(boat, list);
+  }
+  let information = 1 / accuracyDir ** 2;
+  let weighted = 0;
+  for (const halves of byBoat.values()) {
+    const mean = halves.reduce((sum, half) => sum + half, 0) / halves.length;
+    const variance = ASYMMETRY ** 2 + LEG_ERROR ** 2 / halves.length;
+    information += 1 / variance;
+    weighted += mean / variance;
+  }
+  return { offset: weighted / information, se: Math.sqrt(1 / information) };
+}

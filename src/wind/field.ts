@@ -1,0 +1,113 @@
+import { directionOf, eastOf, northOf } from '../math/angles.js';
+import { placeOf, readWind, type WindSource } from './source.js';
+
+/** A source as corrected: what is added to its direction, and how much later it is than the boats. */
+export interface CorrectedSource {
+  readonly source: WindSource;
+  /** Added to the direction. [deg] */
+  readonly offset: number;
+  /** For sources whose place is not known: seconds by which the wind reaches the boats after the sensor. [s] */
+  readonly lag: number;
+}
+
+/** Wind differs by about this over a kilometre of course (the demo's and the harness's too); common practice, no source. */
+const DIFFERENCE_PER_KM = 5;
+/** A sensor right at the boat still differs by this much. [deg] */
+const DIFFERENCE_AT_BOAT = 1;
+/** Never average over more than this. [s] */
+const LONGEST_WINDOW = 90;
+
+export interface WindAtBoat {
+  /** Where from [deg], and speed [m/s; NaN where not known], one a row of the boat. */
+  readonly twd: Float64Array;
+  readonly tws: Float64Array;
+  /** Distance from the nearest sensor with a place, NaN where there is none. [m] */
+  readonly distance: Float64Array;
+}
+
+/**
+ * Wind at a boat, each second. A boat with its own wind uses that; else the sensors are averaged, weighted by their
+ * distance. A sensor with a place is read earlier or later by its along-wind distance over the wind speed (the wind is
+ * carried along unchanged) and averaged over a third of that time, at least its own shortest window.
+ */
+export function windAtBoat(
+  boat: number,
+  rows: { readonly t0: number; readonly n: number; readonly x: Float64Array; readonly y: Float64Array },
+  sources: readonly CorrectedSource[],
+): WindAtBoat {
+  const twd = new Float64Array(rows.n).fill(NaN);
+  const tws = new Float64Array(rows.n).fill(NaN);
+  const distance = new Float64Array(rows.n).fill(NaN);
+  const own = sources.filter(({ source }) => source.boat === boat && boat >= 0);
+  const others = sources.filter(({ source }) => source.boat !== boat || boat < 0);
+  for (let i = 0; i < rows.n; i++) {
+    const x = rows.x[i];
+    if (Number.isNaN(x)) continue;
+    const here = { x, y: rows.y[i], time: rows.t0 + i };
+    const reading = own.length > 0 ? combine(own, here) : null;
+    const best = reading && !Number.isNaN(reading.direction) ? reading : combine(others, here);
+    twd[i] = best.direction;
+    tws[i] = best.speed;
+    distance[i] = best.distance;
+  }
+  return { twd, tws, distance };
+}
+
+interface Here {
+  readonly x: number;
+  readonly y: number;
+  readonly time: number;
+}
+
+function combine(
+  sources: readonly CorrectedSource[],
+  here: Here,
+): { direction: number; speed: number; distance: number } {
+  let east = 0;
+  let north = 0;
+  let speed = 0;
+  let speedWeight = 0;
+  let nearest = NaN;
+  for (const corrected of sources) {
+    const { direction, speed: s, distance } = readAt(corrected, here);
+    const far = Number.isNaN(distance) ? 500 : distance;
+    const weight = 1 / (DIFFERENCE_AT_BOAT ** 2 + (DIFFERENCE_PER_KM * (far / 1000)) ** 2);
+    if (!Number.isNaN(direction)) {
+      east += weight * eastOf(direction);
+      north += weight * northOf(direction);
+      nearest = Number.isNaN(nearest) ? distance : Math.min(nearest, distance);
+    }
+    if (!Number.isNaN(s)) {
+      speed += weight * s;
+      speedWeight += weight;
+    }
+  }
+  const has = east !== 0 || north !== 0;
+  return {
+    direction: has ? directionOf(east, north) : NaN,
+    speed: speedWeight > 0 ? speed / speedWeight : NaN,
+    distance: nearest,
+  };
+}
+
+/** One source's wind as it is at the boat. */
+function readAt(
+  { source, offset, lag }: CorrectedSource,
+  here: Here,
+): { direction: number; speed: number; distance: number } {
+  const place = placeOf(source, here.time);
+  if (!place) {
+    const { direction, speed } = readWind(source, here.time - lag, Math.max(source.window, Math.abs(lag) / 3));
+    return { direction: direction + offset, speed, distance: NaN };
+  }
+  const slow = readWind(source, here.time, 240);
+  const dx = here.x - place.x;
+  const dy = here.y - place.y;
+  const distance = Math.hypot(dx, dy);
+  const downwind = -(dx * eastOf(slow.direction + offset) + dy * northOf(slow.direction + offset));
+  const travel = slow.speed > 0.5 ? downwind / slow.speed : 0;
+  const delay = Number.isNaN(travel) ? 0 : Math.max(-600, Math.min(600, travel));
+  const window = Math.min(LONGEST_WINDOW, Math.max(source.window, Math.abs(delay) / 3));
+  const { direction, speed } = readWind(source, here.time - delay, window);
+  return { direction: direction + offset, speed, distance };
+}
