@@ -44,7 +44,13 @@ export interface Measured {
   readonly quantities: Record<Quantity, Sample[]>;
   /** True upwind legs with settled sailing for which the debrief has no value. */
   readonly nulls: Record<Quantity, number>;
-  readonly tacks: { hits: number; missed: number; extra: number; readonly timeErrors: number[]; readonly losses: Sample[] };
+  readonly tacks: {
+    hits: number;
+    missed: number;
+    extra: number;
+    readonly timeErrors: number[];
+    readonly losses: Sample[];
+  };
   readonly legs: {
     found: number;
     missed: number;
@@ -89,13 +95,22 @@ export function measure(result: Result, series: RaceSeries, truth: Truth, into: 
     measureLegs(found, rows, boat, truth, into);
     const { corrections } = found;
     const { compassError, mastheadError } = boat;
-    if (compassError !== null) correction(into, 'compass', corrections.compass_offset_deg, -compassError, truth, boat.name);
-    if (mastheadError !== null) correction(into, 'masthead', corrections.awa_offset_deg, -mastheadError, truth, boat.name);
+    if (compassError !== null)
+      correction(into, 'compass', corrections.compass_offset_deg, -compassError, truth, boat.name);
+    if (mastheadError !== null)
+      correction(into, 'masthead', corrections.awa_offset_deg, -mastheadError, truth, boat.name);
   }
   if (truth.station) {
     correction(into, 'station direction', result.corrections.twd_offset_deg, -truth.station.direction, truth, '');
     const lag = statedLag(result);
-    correction(into, 'lag s', lag === null ? null : { value: lag, se: null, basis: 'derived' }, truth.station.late, truth, '');
+    correction(
+      into,
+      'lag s',
+      lag === null ? null : { value: lag, se: null, basis: 'derived' },
+      truth.station.late,
+      truth,
+      '',
+    );
   }
   return into;
 }
@@ -132,14 +147,16 @@ function measureTacks(found: BoatResult, boat: TrueBoat, truth: Truth, into: Mea
   const finish = boat.legs.at(-1)!.end;
   const real = boat.turns.filter((t) => t.racing && t.kind === 'tack' && !t.atMark);
   const marks = [...boat.legs.map((leg) => leg.end), ...boat.turns.filter((t) => t.atMark).map((t) => t.time)];
-  const claimed = found.manoeuvres.filter((m) => m.kind === 'tack' && seconds(m.time) >= truth.gun && seconds(m.time) < finish);
+  const claimed = found.manoeuvres.filter(
+    (m) => m.kind === 'tack' && seconds(m.time) >= truth.gun && seconds(m.time) < finish,
+  );
   const taken = new Set<number>();
   for (const tack of real) {
     let best = -1;
     claimed.forEach((m, i) => {
       const gap = Math.abs(seconds(m.time) - tack.time);
       if (taken.has(i) || gap > MATCH_S) return;
-      if (best < 0 || gap < Math.abs(seconds(claimed[best]!.time) - tack.time)) best = i;
+      if (best < 0 || gap < Math.abs(seconds(claimed[best].time) - tack.time)) best = i;
     });
     if (best < 0) {
       into.tacks.missed += 1;
@@ -147,12 +164,20 @@ function measureTacks(found: BoatResult, boat: TrueBoat, truth: Truth, into: Mea
     }
     taken.add(best);
     into.tacks.hits += 1;
-    into.tacks.timeErrors.push(seconds(claimed[best]!.time) - tack.time);
-    const loss = claimed[best]!.loss_m;
+    into.tacks.timeErrors.push(seconds(claimed[best].time) - tack.time);
+    const loss = claimed[best].loss_m;
     if (loss) {
       const error = loss.value - trueTackLoss(boat, tack);
       const se = loss.se;
-      into.tacks.losses.push({ race: raceOf(truth), boat: boat.name, leg: tack.time, error, errorOwn: error, se, sys: loss.sys ?? 0 });
+      into.tacks.losses.push({
+        race: raceOf(truth),
+        boat: boat.name,
+        leg: tack.time,
+        error,
+        errorOwn: error,
+        se,
+        sys: loss.sys ?? 0,
+      });
     }
   }
   claimed.forEach((m, i) => {
@@ -161,7 +186,8 @@ function measureTacks(found: BoatResult, boat: TrueBoat, truth: Truth, into: Mea
   });
 }
 
-const overlap = (a0: number, a1: number, b0: number, b1: number): number => Math.max(0, Math.min(a1, b1) - Math.max(a0, b0));
+const overlap = (a0: number, a1: number, b0: number, b1: number): number =>
+  Math.max(0, Math.min(a1, b1) - Math.max(a0, b0));
 
 /** Each true leg against the debrief's leg of the same kind that covers most of it (at least half). */
 function measureLegs(found: BoatResult, rows: BoatSeries, boat: TrueBoat, truth: Truth, into: Measured): void {
@@ -181,8 +207,8 @@ function measureLegs(found: BoatResult, rows: BoatSeries, boat: TrueBoat, truth:
     }
     taken.add(best);
     into.legs.found += 1;
-    into.legs.startErrors.push(seconds(found.legs[best]!.start) - leg.start);
-    into.legs.endErrors.push(seconds(found.legs[best]!.end) - leg.end);
+    into.legs.startErrors.push(seconds(found.legs[best].start) - leg.start);
+    into.legs.endErrors.push(seconds(found.legs[best].end) - leg.end);
     if (leg.kind === 'upwind') measureUpwind(found, best, rows, boat, leg, truth, into);
   }
   into.legs.extra += found.legs.filter((leg, i) => !taken.has(i) && leg.kind !== 'reach').length;
@@ -192,7 +218,7 @@ function measureLegs(found: BoatResult, rows: BoatSeries, boat: TrueBoat, truth:
 function meanOver(boat: TrueBoat, column: ArrayLike<number>, chosen: readonly number[], magnitude = false): number {
   if (boat.n !== column.length) throw new Error(`meanOver: ${column.length} of ${boat.n}`);
   let sum = 0;
-  for (const i of chosen) sum += magnitude ? Math.abs(column[i]!) : column[i]!;
+  for (const i of chosen) sum += magnitude ? Math.abs(column[i]) : column[i];
   return chosen.length > 0 ? sum / chosen.length : NaN;
 }
 
@@ -235,10 +261,10 @@ function measureUpwind(
 ): void {
   const mine = settledRows(boat, leg);
   const own = ownRows(rows, boat, index);
-  const result = found.legs[index]!;
+  const result = found.legs[index];
   const { steady } = result;
   const mean = (column: ArrayLike<number>, chosen: readonly number[]): number => meanOver(boat, column, chosen, true);
-  const on = (chosen: readonly number[], sign: number): number[] => chosen.filter((i) => boat.gamma[i]! * sign > 0);
+  const on = (chosen: readonly number[], sign: number): number[] => chosen.filter((i) => boat.gamma[i] * sign > 0);
   const side = (tack: TackSide | null | undefined, sign: number, quantity: Quantity): Seen => ({
     quantity,
     q: tack?.gamma_deg ?? null,
@@ -262,7 +288,12 @@ function measureUpwind(
     { quantity: 'vmg %', q: steady?.vmg_kn ?? null, ...both(boat.vmg, KNOT), percent: true },
     { quantity: 'tws %', q: steady?.tws_kn ?? null, ...both(boat.tws, KNOT), percent: true },
     { quantity: 'leeway', q: steady?.leeway_deg ?? null, ...both(boat.leeway) },
-    { quantity: 'efficiency', q: result.efficiency, truth: mean(boat.vmg, mine) / best, truthOwn: mean(boat.vmg, own) / best },
+    {
+      quantity: 'efficiency',
+      q: result.efficiency,
+      truth: mean(boat.vmg, mine) / best,
+      truthOwn: mean(boat.vmg, own) / best,
+    },
     { quantity: 'whole leg vmg %', q: result.vmg_kn, ...whole(meanOver(boat, boat.vmg, every) / KNOT), percent: true },
     { quantity: 'manoeuvres m', q: entry('manoeuvres'), ...whole(trueManoeuvreLoss(boat, leg)) },
     { quantity: 'shifts m', q: entry('shifts'), ...whole(trueShifts(boat, leg)) },
@@ -294,17 +325,32 @@ function keep(seen: Seen, settled: number, boat: TrueBoat, leg: TrueLeg, truth: 
 /** Signed difference of two directions. [deg] */
 const apart = (a: number, b: number): number => ((((a - b) % 360) + 540) % 360) - 180;
 
-function measureDirection(rows: BoatSeries, boat: TrueBoat, leg: TrueLeg, own: number[], truth: Truth, into: Measured): void {
+function measureDirection(
+  rows: BoatSeries,
+  boat: TrueBoat,
+  leg: TrueLeg,
+  own: number[],
+  truth: Truth,
+  into: Measured,
+): void {
   let sum = 0;
   let n = 0;
   for (const k of own) {
-    const estimate = rows.twd[boat.t0 + k - rows.t0]!;
+    const estimate = rows.twd[boat.t0 + k - rows.t0];
     if (Number.isNaN(estimate)) continue;
-    sum += apart(estimate, boat.twd[k]!);
+    sum += apart(estimate, boat.twd[k]);
     n += 1;
   }
   if (n === 0) return;
   const error = sum / n;
-  into.direction.push({ race: raceOf(truth), boat: boat.name, leg: leg.start, error, errorOwn: error, se: null, sys: 0 });
+  into.direction.push({
+    race: raceOf(truth),
+    boat: boat.name,
+    leg: leg.start,
+    error,
+    errorOwn: error,
+    se: null,
+    sys: 0,
+  });
   if (truth.station) into.stationDirection.push(truth.station.direction);
 }

@@ -77,7 +77,14 @@ function tacks(boat: TrueBoat, slips: Slips): Result['boats'][number]['manoeuvre
     loss_m: q(trueTackLoss(boat, t), slips),
   }));
   const last = boat.legs.at(-1)!;
-  const made = { kind: 'tack' as const, time: iso(0.5 * (last.start + last.end)), from: 'port', to: 'starboard', seconds: 8, loss_m: null } as const;
+  const made = {
+    kind: 'tack' as const,
+    time: iso(0.5 * (last.start + last.end)),
+    from: 'port',
+    to: 'starboard',
+    seconds: 8,
+    loss_m: null,
+  } as const;
   return slips.falseTack ? [...told, made] : told;
 }
 
@@ -87,7 +94,7 @@ function legsOf(boat: TrueBoat, slips: Slips): TrueLeg[] {
 }
 
 function tackSide(boat: TrueBoat, rows: readonly number[], slips: Slips): TackSide {
-  const mean = (column: Float64Array): number => rows.reduce((sum, i) => sum + Math.abs(column[i]!), 0) / rows.length;
+  const mean = (column: Float64Array): number => rows.reduce((sum, i) => sum + Math.abs(column[i]), 0) / rows.length;
   const fast = 1 + (slips.speed ?? 0);
   return {
     seconds: rows.length,
@@ -110,7 +117,7 @@ function steadyOf(boat: TrueBoat, leg: TrueLeg, slips: Slips): Steady | null {
   const rows = settledRows(boat, leg);
   if (rows.length === 0) return null;
   const on = (sign: number): TackSide | null => {
-    const own = rows.filter((i) => boat.gamma[i]! * sign > 0);
+    const own = rows.filter((i) => boat.gamma[i] * sign > 0);
     return own.length > 0 ? tackSide(boat, own, slips) : null;
   };
   return { ...tackSide(boat, rows, slips), tacking_angle_deg: null, port: on(-1), starboard: on(1) };
@@ -118,7 +125,7 @@ function steadyOf(boat: TrueBoat, leg: TrueLeg, slips: Slips): Steady | null {
 
 function legResult(boat: TrueBoat, leg: TrueLeg, slips: Slips): LegResult {
   let sum = 0;
-  for (let i = leg.start - boat.t0; i < leg.end - boat.t0; i++) sum += boat.vmg[i]!;
+  for (let i = leg.start - boat.t0; i < leg.end - boat.t0; i++) sum += boat.vmg[i];
   const upwind = leg.kind === 'upwind';
   const entry = (cause: 'manoeuvres' | 'shifts', metres: number) => ({ cause, metres: q(metres, slips) });
   return {
@@ -149,7 +156,7 @@ function legResult(boat: TrueBoat, leg: TrueLeg, slips: Slips): LegResult {
 
 function efficiencyOf(boat: TrueBoat, leg: TrueLeg, slips: Slips): Q {
   const rows = settledRows(boat, leg);
-  const total = (column: Float64Array): number => rows.reduce((sum, i) => sum + column[i]!, 0);
+  const total = (column: Float64Array): number => rows.reduce((sum, i) => sum + column[i], 0);
   return rows.length > 0 ? q(total(boat.vmg) / total(boat.bestVmg), slips) : null;
 }
 

@@ -6,14 +6,14 @@
 import { TRIALS } from './conditions.js';
 import { CORRECTIONS, QUANTITIES, type Measured } from './measure.js';
 import { runTrial } from './run.js';
-import { summarise, summariseSamples, type Summary } from './summary.js';
+import { f1, summarise, summariseSamples, type Summary } from './summary.js';
 
 const HEAD = ['quantity', 'n', 'null', 'bias', 'mean', 'p50', 'p90', 'max', 'rms err/se', 'with sys'];
 
 function table(rows: readonly (readonly string[])[]): string {
-  const width = HEAD.map((head, k) => Math.max(head.length, ...rows.map((row) => row[k]!.length)));
+  const width = HEAD.map((head, k) => Math.max(head.length, ...rows.map((row) => row[k].length)));
   const line = (cells: readonly string[]): string =>
-    `| ${cells.map((cell, k) => (k === 0 ? cell.padEnd(width[k]!) : cell.padStart(width[k]!))).join(' | ')} |`;
+    `| ${cells.map((cell, k) => (k === 0 ? cell.padEnd(width[k]) : cell.padStart(width[k]))).join(' | ')} |`;
   const rule = `| ${width.map((w, k) => (k === 0 ? '-'.repeat(w) : `${'-'.repeat(w - 1)}:`)).join(' | ')} |`;
   return [line(HEAD), rule, ...rows.map(line)].join('\n');
 }
@@ -37,10 +37,6 @@ function rowsOf(m: Measured, own: boolean): string[][] {
   rows.push(row('leg start s', summarise(m.legs.startErrors), m.legs.missed));
   rows.push(row('leg end s', summarise(m.legs.endErrors), m.legs.missed));
   return rows;
-}
-
-export function f1({ hits, missed, extra }: Measured['tacks']): number {
-  return (2 * hits) / (2 * hits + missed + extra);
 }
 
 async function main(args: readonly string[]): Promise<void> {

@@ -1,5 +1,5 @@
 /** Errors as a few figures: how many, how large, how large against what was stated. */
-import type { Sample } from './measure.js';
+import type { Measured, Sample } from './measure.js';
 
 export interface Summary {
   readonly n: number;
@@ -20,7 +20,7 @@ const average = (values: readonly number[]): number =>
 
 /** Smallest value that at least the share p of the sorted values does not exceed. */
 function quantile(sorted: readonly number[], p: number): number {
-  return sorted.length > 0 ? sorted[Math.max(0, Math.ceil(p * sorted.length) - 1)]! : NaN;
+  return sorted.length > 0 ? sorted[Math.max(0, Math.ceil(p * sorted.length) - 1)] : NaN;
 }
 
 export function summarise(errors: readonly number[]): Summary {
@@ -47,4 +47,9 @@ export function summariseSamples(samples: readonly Sample[], own: boolean): Summ
     ratio: rms((s) => pick(s) / s.se!),
     ratioSys: rms((s) => pick(s) / Math.hypot(s.se!, s.sys)),
   };
+}
+
+/** Harmonic mean of precision and recall: 1 when every tack is found and none is made up. */
+export function f1({ hits, missed, extra }: Measured['tacks']): number {
+  return (2 * hits) / (2 * hits + missed + extra);
 }

@@ -11,7 +11,7 @@ function usualVmg(boat: TrueBoat, from: number, to: number): number {
     let n = 0;
     for (let i = Math.max(0, a); i < Math.min(boat.n, b); i++) {
       if (!boat.settled[i]) continue;
-      sum += boat.vmg[i]!;
+      sum += boat.vmg[i];
       n += 1;
     }
     return n > 0 ? sum / n : NaN;
@@ -26,7 +26,7 @@ function lossOver(boat: TrueBoat, from: number, to: number): number {
   const usual = usualVmg(boat, from, to);
   if (Number.isNaN(usual)) return NaN;
   let sum = 0;
-  for (let i = from; i < to; i++) sum += usual - boat.vmg[i]!;
+  for (let i = from; i < to; i++) sum += usual - boat.vmg[i];
   return sum;
 }
 
@@ -56,12 +56,12 @@ export function trueShifts(boat: TrueBoat, leg: TrueLeg): number {
   let east = 0;
   let north = 0;
   for (let i = from; i < to; i++) {
-    const θ = (boat.twd[i]! * Math.PI) / 180;
+    const θ = (boat.twd[i] * Math.PI) / 180;
     east += Math.sin(θ);
     north += Math.cos(θ);
   }
   const length = Math.hypot(east, north);
   let sum = 0;
-  for (let i = from; i < to; i++) sum += boat.vmg[i]! - (boat.ux[i]! * east + boat.uy[i]! * north) / length;
+  for (let i = from; i < to; i++) sum += boat.vmg[i] - (boat.ux[i] * east + boat.uy[i] * north) / length;
   return sum;
 }
