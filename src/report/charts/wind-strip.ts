@@ -1,0 +1,75 @@
+import { scaleLinear } from 'd3-scale';
+import { circularMean, turn, wrap360 } from '../../math/angles.js';
+import type { BoatSeries } from '../../result/series.js';
+import { isoOf, timeText } from '../format.js';
+import { CURSOR, INK, PORT, RULE, SOFT, STARBOARD } from '../palette.js';
+import { smoothedWind, type Shift } from '../shifts.js';
+import { clockTicks } from './time-series.js';
+import { el, line, numberText, pathOf, picture, text } from './svg.js';
+
+export interface WindStripOptions {
+  readonly width: number;
+  readonly height: number;
+}
+
+export const WIND_STRIP_DEFAULTS: WindStripOptions = { width: 460, height: 220 };
+
+/** Wind direction about its mean over the legs sailed, shifts marked. Veered (right) is up. */
+export function windStrip(boat: BoatSeries, shifts: readonly Shift[], options: Partial<WindStripOptions> = {}): string {
+  const o = { ...WIND_STRIP_DEFAULTS, ...options };
+  const mean = circularMean(boat.twd).mean;
+  const smooth = smoothedWind(boat.twd);
+  const swings = Array.from(boat.twd, (d) => turn(mean, d));
+  const reach = Math.max(6, ...swings.filter(Number.isFinite).map(Math.abs));
+  const x = scaleLinear([boat.t0, boat.t0 + Math.max(1, boat.n - 1)], [44, o.width - 10]);
+  const y = scaleLinear([-reach, reach], [o.height - 26, 22]).nice(4);
+  const step = Math.max(1, Math.ceil(boat.n / 500));
+  const rows = Array.from({ length: Math.ceil(boat.n / step) }, (_, k) => k * step);
+  const body = [
+    ...y.ticks(5).map((v) => line(44, y(v), o.width - 10, y(v), v === 0 ? SOFT : RULE, { 'stroke-width': 0.7 })),
+    ...y.ticks(5).map((v) => numberText(38, y(v) + 4, wrap360(mean + v), 0, { anchor: 'end', size: 11, fill: SOFT })),
+    el('path', {
+      d: pathOf(rows.map((i) => [x(boat.t0 + i), y(swings[i]!)])),
+      fill: 'none',
+      stroke: SOFT,
+      'stroke-width': 0.7,
+      opacity: 0.7,
+    }),
+    el('path', {
+      d: pathOf(rows.map((i) => [x(boat.t0 + i), y(turn(mean, smooth[i]!))])),
+      fill: 'none',
+      stroke: INK,
+      'stroke-width': 1.7,
+    }),
+    ...shifts.map((s) => shiftMark(s, boat, x, y, mean)),
+    ...clockTicks(boat.t0, boat.t0 + boat.n - 1, 6).map((t) =>
+      text(x(t), o.height - 8, timeText(isoOf(t), 'hm'), {
+        anchor: 'middle',
+        size: 11,
+        fill: SOFT,
+        extra: { 'data-ms': String(t * 1000), 'data-t': 'hm' },
+      }),
+    ),
+    text(44, 12, 'Wind from, °; up is veered', { size: 12, italic: true }),
+  ];
+  const label = `Wind direction at ${boat.name}, mean ${Math.round(mean)} degrees, ${shifts.length} shifts marked.`;
+  return picture(o.width, o.height, label, body.join(''), { class: 'wind-strip' });
+}
+
+/** A triangle to the side the wind went: up and green-edged for veered, down and red-edged for backed. */
+function shiftMark(
+  s: Shift,
+  boat: BoatSeries,
+  x: (v: number) => number,
+  y: (v: number) => number,
+  mean: number,
+): string {
+  const px = x(boat.t0 + s.row);
+  const py = y(turn(mean, s.twd));
+  const up = s.by > 0;
+  const d = up ? 'M-5 -6L5 -6L0 -14Z' : 'M-5 6L5 6L0 14Z';
+  return el('g', { transform: `translate(${Math.round(px * 10) / 10} ${Math.round(py * 10) / 10})` },
+    el('circle', { r: 2.6, fill: CURSOR }),
+    el('path', { d, fill: up ? STARBOARD : PORT }),
+  ); // prettier-ignore
+}

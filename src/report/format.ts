@@ -1,0 +1,163 @@
+import type { Basis, Q, Quantity } from '../result/result.js';
+import { html, type Safe } from './html.js';
+
+/** Numbers and times as the page shows them. Only here are figures rounded; the reader's browser localises them. */
+
+export type Unit = 'kn' | 'deg' | 'm' | 'percent' | 's' | 'count';
+
+export const DIGITS: Readonly<Record<Unit, number>> = { kn: 2, deg: 1, m: 0, percent: 0, s: 0, count: 0 };
+const SUFFIX: Readonly<Record<Unit, string>> = {
+  kn: '\u00a0kn',
+  deg: '°',
+  m: '\u00a0m',
+  percent: '\u00a0%',
+  s: '\u00a0s',
+  count: '',
+};
+
+export const BASIS_WORDS: Readonly<Record<Basis, string>> = {
+  measured: 'measured',
+  derived: 'worked out from measurements by geometry',
+  inferred: 'inferred through the boat model',
+  assumed: 'assumed',
+};
+
+/**
+ * Fixed-point text with a true minus sign, never a negative zero.
+ *
+ * @param value Number to show; not finite gives a dash.
+ * @param digits Digits after the point.
+ */
+export function plain(value: number, digits: number): string {
+  if (!Number.isFinite(value)) return '–';
+  const text = Math.abs(value).toFixed(digits);
+  const zero = Number(text) === 0;
+  return value < 0 && !zero ? `−${text}` : text;
+}
+
+/** The same with a plus sign before what is above zero. */
+export function signed(value: number, digits: number): string {
+  const text = plain(value, digits);
+  return value > 0 && Number(text) !== 0 ? `+${text}` : text;
+}
+
+export function withUnit(value: number, unit: Unit, digits = DIGITS[unit]): string {
+  return `${plain(value, digits)}${SUFFIX[unit]}`;
+}
+
+export function suffix(unit: Unit): string {
+  return SUFFIX[unit];
+}
+
+/** A bare number the client localises in place. */
+export function number(value: number, digits: number, sign = false): Safe {
+  const text = sign ? signed(value, digits) : plain(value, digits);
+  if (!Number.isFinite(value)) return html`<span class="none">–</span>`;
+  return html`<span class="n" data-v="${trim(value)}" data-d="${digits}" ${sign && ATTR_SIGN}>${text}</span>`;
+}
+const ATTR_SIGN = html`data-sign=""`;
+
+/** Enough figures for the client to round again, no more. */
+function trim(value: number): string {
+  return String(Number(value.toPrecision(8)));
+}
+
+/** How a quantity is known, as one sentence for hover, focus or a tap. */
+export function errorSentence(q: Quantity, unit: Unit): string {
+  const digits = DIGITS[unit] + (unit === 'm' || unit === 'percent' ? 0 : 0);
+  const parts = [
+    q.se === null ? 'no error could be stated' : `±\u00a0${withUnit(q.se, unit, digits)} (one standard error)`,
+    ...(q.sys
+      ? [
+          `a further ±\u00a0${withUnit(Math.abs(q.sys), unit, digits)} if the instruments are out by their usual calibration error`,
+        ]
+      : []),
+    BASIS_WORDS[q.basis],
+  ];
+  return `${withUnit(q.value, unit, digits)}: ${parts.join('; ')}.`;
+}
+
+export interface QuantityOptions {
+  /** Multiply before showing (100 for shares). */
+  readonly times?: number;
+  readonly sign?: boolean;
+  readonly digits?: number;
+  /** Leave the visible error out (it stays in the note). */
+  readonly bare?: boolean;
+}
+
+/**
+ * A quantity with its error beside it and its full account on hover, focus or tap.
+ *
+ * @param q Quantity, or null where it could not be had.
+ * @param unit Unit as shown.
+ */
+export function quantity(q: Q, unit: Unit, options: QuantityOptions = {}): Safe {
+  if (!q) return html`<span class="none" title="not known">–</span>`;
+  const { times = 1, sign = false, digits = DIGITS[unit], bare = false } = options;
+  const shown = scaled(q, times);
+  const pm =
+    shown.se !== null && !bare
+      ? html` <small class="pm"
+          >±${html`<span class="n" data-v="${trim(shown.se)}" data-d="${digits}">${plain(shown.se, digits)}</span>`}</small
+        >`
+      : '';
+  return html`<button
+    type="button"
+    class="q b-${q.basis}"
+    data-note="${errorSentence(shown, unit)}"
+    title="${errorSentence(shown, unit)}"
+  >
+    ${number(shown.value, digits, sign)}<span class="u">${SUFFIX[unit]}</span>${pm}
+  </button>`;
+}
+
+export function scaled(q: Quantity, times: number): Quantity {
+  return {
+    value: q.value * times,
+    se: q.se === null ? null : q.se * times,
+    basis: q.basis,
+    ...(q.sys === undefined ? {} : { sys: q.sys * times }),
+  };
+}
+
+/** A quantity within a sentence: no control, only text the client localises. */
+export function inline(q: Quantity, unit: Unit, options: QuantityOptions = {}): Safe {
+  const { times = 1, sign = false, digits = DIGITS[unit] } = options;
+  const shown = scaled(q, times);
+  const pm = shown.se === null ? '' : html` ± ${number(shown.se, digits)}`;
+  return html`<span class="nb">${number(shown.value, digits, sign)}${pm}${SUFFIX[unit]}</span>`;
+}
+
+export type TimeStyle = 'day' | 'hm' | 'hms';
+
+/** A time, in UTC until the reader's browser puts it in the race's zone. */
+export function time(seconds: number, style: TimeStyle): Safe {
+  const iso = isoOf(seconds);
+  return html`<time datetime="${iso}" data-t="${style}">${timeText(iso, style)}</time>`;
+}
+
+/** The same as text for pictures. */
+export function timeText(iso: string, style: TimeStyle): string {
+  if (style === 'day') return iso.slice(0, 10);
+  return style === 'hm' ? iso.slice(11, 16) : iso.slice(11, 19);
+}
+
+export function isoOf(seconds: number): string {
+  return new Date(Math.round(seconds * 1000)).toISOString();
+}
+
+/** ISO 8601 with a zone, as the result file writes it, to UTC seconds. */
+export function secondsOf(iso: string): number {
+  return Date.parse(iso) / 1000;
+}
+
+/** Minutes and seconds. */
+export function duration(seconds: number): string {
+  const whole = Math.round(seconds);
+  return `${Math.floor(whole / 60)}:${String(whole % 60).padStart(2, '0')}`;
+}
+
+export function plural(n: number, one: string, many = `${one}s`): string {
+  return `${n} ${n === 1 ? one : many}`;
+}

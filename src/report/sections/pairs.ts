@@ -1,0 +1,79 @@
+import type { PairResult, Result } from '../../result/result.js';
+import { pairBars } from '../charts/pair-bars.js';
+import { duration, inline, plural, quantity } from '../format.js';
+import { html, nameOf, type Part, type Safe } from '../html.js';
+import { term } from '../terms.js';
+import { figure, section, table } from './figure.js';
+
+function verdictOf(pair: PairResult): Safe {
+  const [first, second] = pair.boats;
+  const other = (name: string): string => (name === first ? second : first);
+  const parts: Part[] = [
+    pair.faster
+      ? html`${nameOf(pair.faster)} made more to windward than ${nameOf(other(pair.faster))}.`
+      : html`No difference to windward is shown between ${nameOf(first)} and ${nameOf(second)}.`,
+    pair.higher && html` ${nameOf(pair.higher)} pointed higher.`,
+    pair.quicker && html` ${nameOf(pair.quicker)} went faster through the water.`,
+  ];
+  return html`<p class="first">${parts}</p>`;
+}
+
+function pairPlate(pair: PairResult): Safe {
+  const [first, second] = pair.boats;
+  const d = pair.vmg_difference_kn;
+  const rows: Part[][] = [
+    ...pair.legs.map((l) => [
+      `Lap ${l.lap}`,
+      quantity(l.vmg_difference_kn, 'kn', { sign: true }),
+      quantity(l.height_part_kn, 'kn', { sign: true }),
+      quantity(l.speed_part_kn, 'kn', { sign: true }),
+      quantity(l.gamma_difference_deg, 'deg', { sign: true }),
+      quantity(l.gain_m, 'm', { sign: true }),
+      l.blocks,
+    ]),
+    [
+      'Together',
+      quantity(d, 'kn', { sign: true }),
+      quantity(pair.height_part_kn, 'kn', { sign: true }),
+      quantity(pair.speed_part_kn, 'kn', { sign: true }),
+      quantity(pair.gamma_difference_deg, 'deg', { sign: true }),
+      quantity(pair.gain_m, 'm', { sign: true }),
+      pair.blocks,
+    ],
+  ];
+  const amount =
+    d &&
+    html`${nameOf(first)} less ${nameOf(second)}: ${inline(d, 'kn', { sign: true })} of ${term('vmg')}, over
+    ${plural(pair.blocks, 'pair')} of stretches sailed side by side on one tack (${duration(pair.settled_s)} minutes).`;
+  return html`<div class="pair">
+    ${verdictOf(pair)}${figure({
+      svg: pairBars(
+        [
+          { name: 'VMG', value: d },
+          { name: 'by height', value: pair.height_part_kn },
+          { name: 'by speed', value: pair.speed_part_kn },
+        ],
+        { first, second },
+      ),
+      title: html`${nameOf(first)} and ${nameOf(second)}`,
+      summary: html`${amount} Bars are two standard errors here. ${term('height', 'Height')} and
+      ${term('quickness', 'speed')} add up to the whole.`,
+      table: table(
+        'Differences by leg, first less second',
+        ['Leg', 'VMG', 'by height', 'by speed', 'Course angle', 'Gained', 'Stretches'],
+        rows,
+      ),
+    })}${
+      pair.notes.length > 0 &&
+      html`<ul class="notes">
+        ${pair.notes.map((n) => html`<li>${n}</li>`)}
+      </ul>`
+    }
+  </div>`;
+}
+
+/** Boat against boat where they sailed in the same wind. */
+export function pairs(result: Result): Part {
+  if (!result.pairs || result.pairs.length === 0) return null;
+  return section('pairs', 'Side by side', html`<div class="plates">${result.pairs.map(pairPlate)}</div>`);
+}

@@ -1,0 +1,46 @@
+import { describe, expect, test } from 'vitest';
+import { comparePage, debriefPage } from '../../src/report/page.js';
+import { bareSample, noWindSpeedSample, renamed, sample } from './sample.js';
+
+const HOSTILE = '</script><img src=x onerror=alert(1)>';
+
+describe('the page as a string', () => {
+  test('the same input gives the same bytes', () => {
+    const a = sample();
+    const b = sample();
+    expect(debriefPage(a.result, a.series)).toBe(debriefPage(b.result, b.series));
+  });
+
+  test('a page of two boats stays far below the size a phone can take', () => {
+    const { result, series } = sample();
+    expect(debriefPage(result, series).length).toBeLessThan(1_500_000);
+  });
+
+  test('a hostile name never becomes markup, in either page', () => {
+    const { result, series } = renamed(sample(), HOSTILE);
+    for (const page of [debriefPage(result, series), comparePage(result, series)]) {
+      expect(page).not.toContain('<img');
+      expect(page.match(/<script/g)).toHaveLength(page.match(/<\/script>/g)!.length);
+      expect(page).toContain('&lt;img src=x onerror=alert(1)&gt;');
+    }
+  });
+
+  test('nothing is fetched and no inline style or handler is written', () => {
+    const { result, series } = sample();
+    const page = debriefPage(result, series);
+    const body = page.slice(page.indexOf('<body>')).replace(/<script[\s\S]*?<\/script>/g, '');
+    expect(body).not.toMatch(/\s(?:style|on[a-z]+)="/);
+    expect(body).not.toMatch(/\s(?:src|href)="(?!#)/);
+    expect(page).toContain("default-src 'none'");
+  });
+
+  test.each([
+    ['all that may be null is null', bareSample],
+    ['no wind speed', noWindSpeedSample],
+  ])('%s: no NaN, null or undefined is shown', (_, make) => {
+    const { result, series } = make();
+    const page = debriefPage(result, series);
+    const body = page.slice(page.indexOf('<body>')).replace(/<script[\s\S]*?<\/script>/g, '');
+    expect(body).not.toMatch(/\bNaN\b|\bundefined\b|>null<|Infinity/);
+  });
+});
