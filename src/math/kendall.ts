@@ -72,17 +72,17 @@ function pairSums(t: ArrayLike<number>, y: ArrayLike<number>, weight?: (i: numbe
   for (let i = 0; i < n; i++) {
     for (let j = i + 1; j < n; j++) {
       const w = weight ? weight(i, j) : 1;
-      const a = w * Math.sign(y[j]! - y[i]!);
-      const b = Math.sign(t[j]! - t[i]!);
+      const a = w * Math.sign(y[j] - y[i]);
+      const b = Math.sign(t[j] - t[i]);
       if (a === 0 || b === 0) ties = true;
       total.s += a * b;
       total.weights += w;
       total.squaresY += 2 * a * a;
       total.squaresT += 2 * b * b;
-      rowY[i]! += a;
-      rowY[j]! -= a;
-      rowT[i]! += b;
-      rowT[j]! -= b;
+      rowY[i] += a;
+      rowY[j] -= a;
+      rowT[i] += b;
+      rowT[j] -= b;
     }
   }
   return {
@@ -128,12 +128,12 @@ function inversionProbability(n: number, s: number): number {
   for (let k = 2; k <= n; k++) {
     const next = new Float64Array(pairs + 1);
     for (let d = 0; d <= (k * (k - 1)) / 2; d++) {
-      for (let e = Math.max(0, d - k + 1); e <= d; e++) next[d]! += chance[e]! / k;
+      for (let e = Math.max(0, d - k + 1); e <= d; e++) next[d] += chance[e] / k;
     }
     chance = next;
   }
   let p = 0;
-  for (let d = 0; d <= pairs; d++) if (Math.abs(pairs - 2 * d) >= Math.abs(s)) p += chance[d]!;
+  for (let d = 0; d <= pairs; d++) if (Math.abs(pairs - 2 * d) >= Math.abs(s)) p += chance[d];
   return Math.min(1, p);
 }
 
@@ -161,7 +161,7 @@ function enumeratedProbability(
       if (used[item]) continue;
       let add = 0;
       order.forEach((other, k) => {
-        add += weight(other, item) * Math.sign(y[item]! - y[other]!) * Math.sign(t[at]! - t[k]!);
+        add += weight(other, item) * Math.sign(y[item] - y[other]) * Math.sign(t[at] - t[k]);
       });
       used[item] = true;
       order.push(item);

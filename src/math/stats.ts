@@ -11,10 +11,10 @@
 export function mean(values: ArrayLike<number>): number {
   const n = values.length;
   let sum = 0;
-  for (let i = 0; i < n; i++) sum += values[i]!;
+  for (let i = 0; i < n; i++) sum += values[i];
   const first = sum / n;
   let rest = 0;
-  for (let i = 0; i < n; i++) rest += values[i]! - first;
+  for (let i = 0; i < n; i++) rest += values[i] - first;
   return first + rest / n;
 }
 
@@ -31,8 +31,8 @@ export function weightedMean(values: ArrayLike<number>, weights: ArrayLike<numbe
   let sum = 0;
   let total = 0;
   for (let i = 0; i < values.length; i++) {
-    sum += weights[i]! * values[i]!;
-    total += weights[i]!;
+    sum += weights[i] * values[i];
+    total += weights[i];
   }
   return total > 0 ? sum / total : NaN;
 }
@@ -53,7 +53,7 @@ export function autocovariance(values: ArrayLike<number>, lag: number): number {
   if (n <= lag) return NaN;
   const centre = mean(values);
   let sum = 0;
-  for (let i = 0; i + lag < n; i++) sum += (values[i]! - centre) * (values[i + lag]! - centre);
+  for (let i = 0; i + lag < n; i++) sum += (values[i] - centre) * (values[i + lag] - centre);
   return sum / n;
 }
 

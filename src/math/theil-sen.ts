@@ -65,29 +65,29 @@ function pairwise(t: ArrayLike<number>, y: ArrayLike<number>, errors?: ArrayLike
   let k = 0;
   for (let i = 0; i < n; i++) {
     for (let j = i + 1; j < n; j++) {
-      const run = t[j]! - t[i]!;
+      const run = t[j] - t[i];
       if (run === 0) continue;
-      if (errors) weights[k] = Math.abs(run) / Math.hypot(errors[i]!, errors[j]!);
-      slopes[k++] = (y[j]! - y[i]!) / run;
+      if (errors) weights[k] = Math.abs(run) / Math.hypot(errors[i], errors[j]);
+      slopes[k++] = (y[j] - y[i]) / run;
     }
   }
   if (!errors) return { slopes: slopes.subarray(0, k).sort(), weights: null };
-  const order = new Uint32Array(k).map((_, index) => index).sort((a, b) => slopes[a]! - slopes[b]!);
+  const order = new Uint32Array(k).map((_, index) => index).sort((a, b) => slopes[a] - slopes[b]);
   return {
-    slopes: Float64Array.from(order, (index) => slopes[index]!),
-    weights: Float64Array.from(order, (index) => weights[index]!),
+    slopes: Float64Array.from(order, (index) => slopes[index]),
+    weights: Float64Array.from(order, (index) => weights[index]),
   };
 }
 
 function middleOf(sorted: Float64Array): number {
   const half = sorted.length >> 1;
-  return sorted.length % 2 === 1 ? sorted[half]! : (sorted[half - 1]! + sorted[half]!) / 2;
+  return sorted.length % 2 === 1 ? sorted[half] : (sorted[half - 1] + sorted[half]) / 2;
 }
 
 function limits(sorted: Float64Array, c: number): { low: number; high: number } {
   const rank = Math.round((sorted.length - c) / 2);
   if (!(rank >= 1)) return { low: -Infinity, high: Infinity };
-  return { low: sorted[rank - 1]!, high: sorted[sorted.length - rank]! };
+  return { low: sorted[rank - 1], high: sorted[sorted.length - rank] };
 }
 
 /** Where half the weight lies below; between two values when it falls between them. */
@@ -95,11 +95,11 @@ function weightedMedian(sorted: Float64Array, weights: Float64Array): number {
   const half = sum(weights) / 2;
   let below = 0;
   for (let k = 0; k < sorted.length; k++) {
-    below += weights[k]!;
-    if (Math.abs(below - half) <= 1e-12 * half) return (sorted[k]! + sorted[Math.min(k + 1, sorted.length - 1)]!) / 2;
-    if (below > half) return sorted[k]!;
+    below += weights[k];
+    if (Math.abs(below - half) <= 1e-12 * half) return (sorted[k] + sorted[Math.min(k + 1, sorted.length - 1)]) / 2;
+    if (below > half) return sorted[k];
   }
-  return sorted[sorted.length - 1]!;
+  return sorted[sorted.length - 1];
 }
 
 /**
@@ -111,9 +111,9 @@ function weightedVariance(t: ArrayLike<number>, errors: ArrayLike<number>): numb
   let squares = 0;
   for (let i = 0; i < t.length; i++) {
     for (let j = i + 1; j < t.length; j++) {
-      const d = (t[j]! - t[i]!) / Math.hypot(errors[i]!, errors[j]!);
-      rows[i]! += d;
-      rows[j]! -= d;
+      const d = (t[j] - t[i]) / Math.hypot(errors[i], errors[j]);
+      rows[i] += d;
+      rows[j] -= d;
       squares += d * d;
     }
   }
@@ -133,8 +133,8 @@ function weightedLimits(sorted: Float64Array, weights: Float64Array, c: number):
 function atShare(sorted: Float64Array, weights: Float64Array, edge: number): number {
   let below = 0;
   for (let k = 0; k < sorted.length; k++) {
-    below += weights[k]!;
-    if (below > edge) return sorted[k]!;
+    below += weights[k];
+    if (below > edge) return sorted[k];
   }
   return NaN;
 }

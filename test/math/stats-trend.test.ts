@@ -38,12 +38,12 @@ describe('Mann-Kendall', () => {
     const t = [0, 1, 1, 3, 4, 7];
     const y = [2, 5, 2, 3, 8, 7];
     const errors = [1, 3, 0.5, 1, 2, 1];
-    const weight = (i: number, j: number): number => 1 / Math.hypot(errors[i]!, errors[j]!);
+    const weight = (i: number, j: number): number => 1 / Math.hypot(errors[i], errors[j]);
     const sums = permutations(6).map((order) => {
       let s = 0;
       for (let a = 0; a < 6; a++)
         for (let b = a + 1; b < 6; b++)
-          s += weight(order[a]!, order[b]!) * Math.sign(t[b]! - t[a]!) * Math.sign(y[order[b]!]! - y[order[a]!]!);
+          s += weight(order[a], order[b]) * Math.sign(t[b] - t[a]) * Math.sign(y[order[b]] - y[order[a]]);
       return s;
     });
     const spread = sums.reduce((total, s) => total + s * s, 0) / sums.length;

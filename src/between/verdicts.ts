@@ -1,0 +1,55 @@
+import { holm } from '../math/holm.js';
+import { autocovariance } from '../math/stats.js';
+import { studentTwoSided } from '../math/student.js';
+import { pooledCorrelations, redundancy } from './fleet-noise.js';
+import type { PairComparison } from './pairs.js';
+import type { SamplingMean } from './sampling.js';
+
+/** When a difference is called one. */
+
+/** Chance of a false verdict: on speed made good; on height and on speed apart, which are read beside it. */
+export const VERDICT_LEVEL = { vmg: 0.05, height: 0.02, speed: 0.02 } as const;
+
+/** P-values to be held against `VERDICT_LEVEL`; NaN: too few blocks for a verdict. */
+export interface PairChances {
+  readonly vmg: number;
+  readonly height: number;
+  readonly speed: number;
+}
+
+const KINDS = ['vmg', 'height', 'speed'] as const;
+
+/**
+ * P-values of one pair as they are; of several pairs in one report adjusted so that a report on equal boats shows any
+ * verdict at all, on any pair, at most one time in twenty.
+ *
+ * The adjustment is Holm's over pairs and kinds together. It reaches far into the tails, where a pair's own few blocks
+ * cannot tell how long its differences persist: that is learnt from all pairs (`pooledCorrelations`), and the larger
+ * error and the fewer degrees of freedom count.
+ */
+export function chancesOf(comparisons: readonly PairComparison[]): PairChances[] {
+  if (comparisons.length < 2) {
+    return comparisons.map(({ vmg, height, speed }) => ({ vmg: vmg.p, height: height.p, speed: speed.p }));
+  }
+  const scale = (kind: (typeof KINDS)[number]): number => VERDICT_LEVEL.vmg / VERDICT_LEVEL[kind];
+  const adjusted = holm(KINDS.flatMap((kind) => fleetChances(comparisons, kind).map((p) => p * scale(kind))));
+  return comparisons.map((_, k) => {
+    const [vmg, height, speed] = KINDS.map((kind, row) => adjusted[row * comparisons.length + k] / scale(kind));
+    return { vmg, height, speed };
+  });
+}
+
+function fleetChances(comparisons: readonly PairComparison[], kind: (typeof KINDS)[number]): number[] {
+  const series = comparisons.map((pair) => pair.blocks.map((block) => block[kind]));
+  const correlations = pooledCorrelations(series);
+  return comparisons.map((pair, k) => withFleetNoise(pair[kind], series[k], correlations));
+}
+
+/** n blocks are worth n/J: that many degrees of freedom, and a variance of the mean of J/n of a block's. */
+function withFleetNoise(own: SamplingMean, values: readonly number[], correlations: readonly number[]): number {
+  if (Number.isNaN(own.p)) return NaN;
+  const share = redundancy(values.length, correlations) / values.length;
+  const variance = (autocovariance(values, 0) * share) / Math.max(0.2, 1 - share);
+  const se = Math.max(own.se, Math.sqrt(variance));
+  return studentTwoSided(own.value / se, Math.max(1, Math.min(own.freedom, 1 / share - 1)));
+}
