@@ -101,6 +101,8 @@ export interface LegResult {
 export interface BoatResult {
   readonly name: string;
   readonly sailor: string;
+  /** Where the race file says it. [kg] */
+  readonly crew_mass_kg?: number;
   readonly model: { readonly boat: string; readonly tuned: boolean; readonly sha256: string };
   readonly corrections: { readonly compass_offset_deg: Q; readonly awa_offset_deg: Q };
   readonly manoeuvres: readonly ManoeuvreResult[];
