@@ -280,8 +280,9 @@ export function sheetedLoads(model: ForceModel, flow: Flow, sheeting: number): L
 /** Forces of the full sail at a sheeting angle, the incidence being at most `high`. */
 function sheetedTo(model: ForceModel, flow: Flow, sheeting: number, high: number): Loads {
   const left = (α: number): number => sheetingOf(model, flow, loadsAt(model, flow, α)) - sheeting;
+  // Below no incidence the sail flaps; off the wind the side force, and with it the leeway, can be slightly negative.
   const low = Math.min(model.zeroLift, high) - 30;
-  const sailed = root(left, low, high, { tolerance: 1e-11 });
+  const sailed = root(left, low, high + 5, { tolerance: 1e-11 });
   // More leeway than there is room for, whatever the incidence: no such state. Its excess is negative.
   return loadsAt(model, flow, Number.isNaN(sailed) ? low : sailed);
 }

@@ -3,12 +3,15 @@
  * apparent wind to the boom). Coefficients are per sail area and apparent dynamic pressure.
  *
  * Attached:  CL = CLmax sin(a (alpha + camber) / CLmax),  CD = CD0 + k (a (alpha + camber))^2 + CL^2/(pi AR_e)
- * Stalled:   CL = C_N cos alpha,  CD = CD0 + C_N sin alpha      (force square to the boom)
+ * Stalled:   CL = CLmax cos theta,  CD = CD_stall + (CD_90 - CD_stall) sin theta,  theta from 0 to 90 as alpha to 90
  *
  * The lift slope a is the lifting line's; the sine rounds it off to the stated maximum. A cambered plate lifts at no
  * incidence; a soft sail does not, it luffs: its camber grows as 1 - exp(-alpha/4 deg), so that lift begins at zero.
  * The viscous drag goes with the square of the lift that the slope alone would give: k CL^2 at small incidence, more
- * where the lift falls behind the slope because the flow begins to separate. From the greatest lift on, attached and stalled flow are blended over 20 degrees with two continuous derivatives.
+ * where the lift falls behind the slope because the flow begins to separate. Beyond the greatest lift the polar turns
+ * through a quarter of an ellipse to the drag of a sail across the wind; at 50 degrees that is lift and drag of about
+ * 1 each, as wind tunnel sails have (from memory). The whole polar is convex, so that for any apparent wind there is
+ * one best incidence, and slope is continuous.
  * Close-hauled lift over drag of a whole small rig is between 4 and 6
  * (common practice, no source); Southampton tunnel tests of a small two-sail rig gave about 1.3 / 0.25 at best (second hand).
  *
@@ -26,18 +29,12 @@ export interface LiftDrag {
   readonly drag: number;
 }
 
-/**
- * Force coefficient of a stalled sail, square to it: 1.2 across the wind as for a plate of aspect ratio 3 to 5 [3],
- * a fifth more when oblique, where the flow still turns (assumed; wind tunnel sails are near there).
- */
-function stalledNormal(α: number): number {
-  return 1.2 * (1 + 0.2 * Math.sin(2 * α) ** 2);
-}
-
+/** Drag coefficient of a sail across the wind: a plate of aspect ratio 3 to 5 has 1.2 [3], a soft sail less [1]. */
+const ACROSS = 1;
+/** Over what share of the way from stall to 90 degrees the stall sets in. Assumed. */
+const ONSET = 0.08;
 /** Incidence over which a luffing sail takes up its camber. [deg] Assumed. */
 const LUFF = 4;
-/** Width of the blend from attached to stalled, beyond the greatest lift. [deg] Assumed. */
-const STALL_WIDTH = 20;
 
 /**
  * Drag coefficient of a rig with attached flow.
@@ -118,22 +115,30 @@ export function rigCurve(rig: RigSpec, dragFactor = 1): (incidence: number, flat
   const induced = 1 / (Math.PI * aspectRatio);
   const cd0 = rigParasite(rig);
   const stall = stallIncidence(rig);
+  const full = cambered(rig, stall) * RAD * slope;
+  const cdStall = rig.viscous * full * full + induced * rig.clMax ** 2;
+  const turned = stallTurn(stall, (2 * rig.viscous * full * slope) / (ACROSS - cdStall));
   return (incidence, flat = 1) => {
+    if (incidence > stall) {
+      const θ = turned(incidence);
+      const cd = cdStall + (ACROSS - cdStall) * Math.sin(θ) - induced * rig.clMax ** 2 * (1 - flat * flat);
+      return { lift: flat * rig.clMax * Math.cos(θ), drag: dragFactor * (cd0 + cd) };
+    }
     const straight = slope * RAD * cambered(rig, incidence);
-    const cl = straight < Math.PI * rig.clMax ? rig.clMax * Math.sin(straight / rig.clMax) : 0;
-    const cd = rig.viscous * straight * straight + induced * (flat * cl) ** 2;
-    const stalled = smoothStep((incidence - stall) / STALL_WIDTH);
-    if (stalled === 0) return { lift: flat * cl, drag: dragFactor * (cd0 + cd) };
-    const α = RAD * incidence;
-    const normal = stalled * stalledNormal(α);
-    const lift = flat * ((1 - stalled) * cl + normal * Math.cos(α));
-    return { lift, drag: dragFactor * (cd0 + (1 - stalled) * cd + normal * Math.sin(α)) };
+    const cl = flat * rig.clMax * Math.sin(straight / rig.clMax);
+    return { lift: cl, drag: dragFactor * (cd0 + rig.viscous * straight * straight + induced * cl * cl) };
   };
 }
 
-/** 0 below 0, 1 above 1, between them a quintic with two continuous derivatives. */
-function smoothStep(t: number): number {
-  if (t <= 0) return 0;
-  if (t >= 1) return 1;
-  return t * t * t * (10 + t * (6 * t - 15));
+/**
+ * Position on the stalled quarter of the polar: 0 at the stall, 90 degrees across the wind. It starts at the rate that
+ * makes the drag grow on without a kink and soon goes on evenly.
+ */
+function stallTurn(stall: number, rate: number): (incidence: number) => number {
+  const span = 90 - stall;
+  const even = (rate * RAD * span) / (Math.PI / 2);
+  const start = (even * (1 - ONSET)) / (1 - even * ONSET);
+  const turn = (t: number): number => t - (1 - start) * ONSET * (1 - Math.exp(-t / ONSET));
+  const whole = turn(1);
+  return (incidence) => ((Math.PI / 2) * turn((incidence - stall) / span)) / whole;
 }
