@@ -58,3 +58,17 @@ export const exports = async () => ({
   ...(await import('./export/geojson.js')),
   ...(await import('./export/parquet.js')),
 });
+
+/** Pages: one HTML text each. */
+export const debriefPage = async (
+  ...args: Parameters<typeof import('./report/page.js').debriefPage>
+): Promise<string> => (await import('./report/page.js')).debriefPage(...args);
+export const comparePage = async (
+  ...args: Parameters<typeof import('./report/page.js').comparePage>
+): Promise<string> => (await import('./report/page.js')).comparePage(...args);
+
+export type { OptimumTable } from './physics/optimum.js';
+
+/** The boat model alone: a built-in boat by name, or a boat file. */
+export const optimum: typeof import('./optimum.js').optimum = async (...args) =>
+  (await import('./optimum.js')).optimum(...args);

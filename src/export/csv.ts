@@ -11,7 +11,7 @@ import { legColumns } from './columns.js';
  */
 export function legsCsv(result: Result): string {
   const columns = legColumns(result);
-  const rows = Array.from({ length: columns[0]!.values.length }, (_, i) => columns.map((column) => column.values[i]!));
+  const rows = Array.from({ length: columns[0].values.length }, (_, i) => columns.map((column) => column.values[i]!));
   return csvText([columns.map((column) => column.name), ...rows]);
 }
 
@@ -48,26 +48,26 @@ function secondRows(boat: BoatSeries, series: RaceSeries): Cell[][] {
   const turns = rowsOf(boat.n, boat.manoeuvres, (turn) => [turn.entry, turn.exit, turn.kind]);
   const rows: Cell[][] = [];
   for (let i = 0; i < boat.n; i++) {
-    if (Number.isNaN(boat.x[i]!)) continue;
-    const { lat, lon } = fromPlane(series.frame, boat.x[i]!, boat.y[i]!);
+    if (Number.isNaN(boat.x[i])) continue;
+    const { lat, lon } = fromPlane(series.frame, boat.x[i], boat.y[i]);
     rows.push([
       boat.name,
       new Date((boat.t0 + i) * 1000).toISOString(),
       rounded(lat, 7),
       rounded(lon, 7),
-      rounded(toKnots(Math.hypot(boat.vx[i]!, boat.vy[i]!)), 3),
-      rounded(directionOf(boat.vx[i]!, boat.vy[i]!), 2),
-      rounded(toKnots(boat.speed[i]!), 3),
-      rounded(directionOf(boat.ux[i]!, boat.uy[i]!), 2),
-      rounded(boat.heading[i]!, 2),
-      rounded(boat.twd[i]!, 2),
-      rounded(toKnots(boat.tws[i]!), 3),
-      rounded(boat.gamma[i]!, 2),
-      rounded(toKnots(boat.vmg[i]!), 3),
-      rounded(boat.beta[i]!, 2),
-      rounded(toKnots(boat.aws[i]!), 3),
+      rounded(toKnots(Math.hypot(boat.vx[i], boat.vy[i])), 3),
+      rounded(directionOf(boat.vx[i], boat.vy[i]), 2),
+      rounded(toKnots(boat.speed[i]), 3),
+      rounded(directionOf(boat.ux[i], boat.uy[i]), 2),
+      rounded(boat.heading[i], 2),
+      rounded(boat.twd[i], 2),
+      rounded(toKnots(boat.tws[i]), 3),
+      rounded(boat.gamma[i], 2),
+      rounded(toKnots(boat.vmg[i]), 3),
+      rounded(boat.beta[i], 2),
+      rounded(toKnots(boat.aws[i]), 3),
       legs[i] ?? null,
-      boat.settled[i]!,
+      boat.settled[i],
       turns[i] ?? null,
     ]);
   }

@@ -12,7 +12,7 @@ export async function raceGeoJson(result: Result, series: RaceSeries): Promise<F
   const turf = await import('@turf/turf');
   const features = [
     ...series.marks.map((mark) => markFeature(turf, series, mark)),
-    ...series.boats.flatMap((boat, i) => boatFeatures(turf, series, boat, result.boats[i]!)),
+    ...series.boats.flatMap((boat, i) => boatFeatures(turf, series, boat, result.boats[i])),
   ];
   return turf.featureCollection(features.filter((feature) => feature !== null));
 }
@@ -32,7 +32,7 @@ function boatFeatures(turf: Turf, series: RaceSeries, boat: BoatSeries, result: 
     start: time(0),
     end: time(boat.n - 1),
   });
-  const legs = boat.legs.map((span) => legFeature(turf, series, boat, span, result.legs[span.index]!));
+  const legs = boat.legs.map((span) => legFeature(turf, series, boat, span, result.legs[span.index]));
   const turns = boat.manoeuvres.map((turn) => {
     const at = positionAt(series, boat, turn.at);
     if (!at) return null;
@@ -74,7 +74,7 @@ function markFeature(turf: Turf, series: RaceSeries, mark: MarkPlace): Feature |
   const properties = { what: 'mark', role: mark.role, given: mark.given };
   if (places.length === 0) return null;
   return places.length === 1
-    ? turf.point(places[0]!, properties)
+    ? turf.point(places[0], properties)
     : turf.feature(lineGeometry(turf, cutAtDateLine(places)), properties);
 }
 
@@ -91,7 +91,7 @@ function lineFeature(
 }
 
 function lineGeometry(turf: Turf, pieces: Position[][]): Geometry {
-  return pieces.length === 1 ? turf.lineString(pieces[0]!).geometry : turf.multiLineString(pieces).geometry;
+  return pieces.length === 1 ? turf.lineString(pieces[0]).geometry : turf.multiLineString(pieces).geometry;
 }
 
 /** Stretches of rows with a position; one row alone is no line. */
@@ -132,11 +132,11 @@ export function cutAtDateLine(line: readonly Position[]): Position[][] {
   let piece: Position[] = [];
   for (const point of line) {
     const last = piece.at(-1);
-    if (last && Math.abs(point[0]! - last[0]!) > 180) {
-      const side = last[0]! > 0 ? 180 : -180;
-      const beyond = point[0]! + 2 * side;
-      const part = (side - last[0]!) / (beyond - last[0]!);
-      const lat = round7(last[1]! + part * (point[1]! - last[1]!));
+    if (last && Math.abs(point[0] - last[0]) > 180) {
+      const side = last[0] > 0 ? 180 : -180;
+      const beyond = point[0] + 2 * side;
+      const part = (side - last[0]) / (beyond - last[0]);
+      const lat = round7(last[1] + part * (point[1] - last[1]));
       if (last[0] !== side) piece.push([side, lat]);
       if (piece.length > 1) pieces.push(piece);
       piece = point[0] === -side ? [] : [[-side, lat]];

@@ -25,17 +25,17 @@ export function parquetColumns(result: Result, series: RaceSeries): Column[] {
   const level: Column = {
     name: 'level',
     type: 'text',
-    values: [...legs[0]!.values.map(() => 'leg'), ...spells.map(() => 'spell')],
+    values: [...legs[0].values.map(() => 'leg'), ...spells.map(() => 'spell')],
   };
   const tack: Column = {
     name: 'tack',
     type: 'text',
-    values: [...legs[0]!.values.map(() => null), ...spells.map((spell) => spell.get('tack') ?? null)],
+    values: [...legs[0].values.map(() => null), ...spells.map((spell) => spell.get('tack') ?? null)],
   };
   const twd: Column = {
     name: 'twd_deg',
     type: 'number',
-    values: [...legs[0]!.values.map(() => null), ...spells.map((spell) => spell.get('twd_deg') ?? null)],
+    values: [...legs[0].values.map(() => null), ...spells.map((spell) => spell.get('twd_deg') ?? null)],
   };
   const rest = legs.map((column) => ({
     ...column,

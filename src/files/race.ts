@@ -150,6 +150,16 @@ export function overridden(draft: RaceDraft, overrides: Overrides): RaceDraft {
   return { ...draft, content: columns ? withColumns(content, columns) : content };
 }
 
+/** The draft with other names for its log and boat files. */
+export function renamed(draft: RaceDraft, rename: (file: string) => string): RaceDraft {
+  const one = <T>(log: T): T => {
+    if (typeof log === 'string') return rename(log) as T;
+    if (log === null || typeof log !== 'object' || !('file' in log)) return log;
+    return { ...log, file: rename(String(log.file)) };
+  };
+  return { ...draft, content: withLogs(draft.content, one) };
+}
+
 /** Headers told on the command line hold for every log; what a log says for itself comes first. */
 function withColumns(content: RaceFile, columns: Readonly<Record<string, string>>): RaceFile {
   const one = <T>(log: T): T => {
@@ -158,7 +168,12 @@ function withColumns(content: RaceFile, columns: Readonly<Record<string, string>
     const own = (log as { columns?: Record<string, string> | null }).columns;
     return { ...log, columns: { ...columns, ...own } };
   };
-  const all = <T>(logs: T): T => (Array.isArray(logs) ? (logs.map(one) as T) : one(logs));
+  return withLogs(content, one);
+}
+
+/** The content with every log in it changed. */
+function withLogs(content: RaceFile, one: <T>(log: T) => T): RaceFile {
+  const all = <T>(logs: T): T => (Array.isArray(logs) ? (logs.map((log: unknown) => one(log)) as T) : one(logs));
   return {
     ...content,
     wind: all(content.wind),

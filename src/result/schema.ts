@@ -106,6 +106,7 @@ function boatIn(object: ObjectMaker) {
   return object({
     name: z.string(),
     sailor: z.string(),
+    crew_mass_kg: z.number().positive().optional(),
     model: object({ boat: z.string(), tuned: z.boolean(), sha256: digest }),
     corrections: object({ compass_offset_deg: q, awa_offset_deg: q }),
     manoeuvres: z.array(manoeuvre),

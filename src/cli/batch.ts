@@ -1,0 +1,97 @@
+import type { RaceSeries, Result } from '../index.js';
+import { exitCodeOf, tellFailure } from './failures.js';
+import { expandInputs } from './inputs.js';
+import type { Source } from './inputs.js';
+import { fileInLogbook } from './logbook.js';
+import type { OutputFlags, RaceFlags } from './options.js';
+import { raceOptions } from './options.js';
+import { checkPlaces, placeLines, placesFor, writeOutputs } from './outputs.js';
+import { loadRaces } from './races.js';
+import type { Job } from './races.js';
+import { raceSlug } from './slug.js';
+import { print, Progress } from './terminal.js';
+
+/** What is done with each race of a batch. */
+export interface Task {
+  /** Put behind the race's name in file names. */
+  readonly suffix: string;
+  readonly work: (job: Job) => Promise<{ result: Result; series: RaceSeries }>;
+  readonly page: (result: Result, series: RaceSeries) => Promise<string>;
+  /** At most 27 lines. */
+  readonly summary: (result: Result, job: Job) => string[];
+}
+
+type Flags = RaceFlags & OutputFlags;
+
+/** Runs a task over every race of the inputs; returns the worst exit code. */
+export async function runBatch(inputs: readonly string[], flags: Flags, task: Task): Promise<number> {
+  const progress = new Progress(flags.progress && !flags.quiet);
+  const sources = await expandInputs(inputs);
+  const slugs = new Set<string>();
+  let worst = 0;
+  let first = true;
+  const attempt = async (what: () => Promise<void>): Promise<void> => {
+    try {
+      await what();
+    } catch (error) {
+      progress.clear();
+      if (!flags.keepGoing) throw error;
+      tellFailure(error);
+      worst = Math.max(worst, exitCodeOf(error));
+    }
+  };
+  const one = async (job: Job, several: boolean): Promise<void> => {
+    const lines = await runJob(job, flags, task, several, slugs, progress);
+    if (lines.length > 0) await print(`${first ? '' : '\n'}${lines.join('\n')}\n`);
+    first = false;
+  };
+  const each = async (source: Source): Promise<void> => {
+    const jobs = await loadRaces(source, raceOptions(flags), progress);
+    const several = sources.length > 1 || jobs.length > 1;
+    for (const job of jobs) await attempt(() => one(job, several));
+  };
+  for (const source of sources) await attempt(() => each(source));
+  progress.clear();
+  return worst;
+}
+
+async function runJob(
+  job: Job,
+  flags: Flags,
+  task: Task,
+  several: boolean,
+  slugs: Set<string>,
+  progress: Progress,
+): Promise<string[]> {
+  const slug = freeSlug(raceSlug(job.day, job.race.name), slugs);
+  const places = await placesFor(flags, slug, task.suffix, several);
+  checkPlaces(places, job.paths);
+  progress.say(`${job.race.name}: working`);
+  const worked = await task.work(job);
+  const result = withIssues(worked.result, job);
+  await writeOutputs(places, result, worked.series, () => task.page(result, worked.series));
+  const filed = flags.logbook === undefined ? [] : [await fileInLogbook(flags.logbook, result, job.day)];
+  progress.clear();
+  if (flags.quiet || places.json === '-') return [];
+  return [...task.summary(result, job), ...placeLines(places), ...filed];
+}
+
+/** What was said while the race was put together stands first. */
+function withIssues(result: Result, job: Job): Result {
+  if (job.issues.length === 0) return result;
+  const said = job.issues.map(({ code, message, file }) => ({
+    code,
+    message,
+    ...(file === undefined ? {} : { file }),
+  }));
+  return { ...result, warnings: [...said, ...result.warnings] };
+}
+
+function freeSlug(slug: string, taken: Set<string>): string {
+  for (let n = 1; ; n++) {
+    const candidate = n === 1 ? slug : `${slug.slice(0, 57)}-${n}`;
+    if (taken.has(candidate)) continue;
+    taken.add(candidate);
+    return candidate;
+  }
+}

@@ -1,0 +1,168 @@
+import { randomBytes } from 'node:crypto';
+import { closeSync, createReadStream, fsyncSync, openSync, renameSync, rmSync, writeSync } from 'node:fs';
+import { mkdir, readFile, realpath, stat } from 'node:fs/promises';
+import { basename, dirname, join, relative, resolve, sep } from 'node:path';
+import { UserError } from '../index.js';
+import type { LogSource } from '../index.js';
+import { asUserError } from './failures.js';
+
+/** Files being written at this moment. */
+const temporaries = new Set<string>();
+
+/** Takes away what an interruption left unfinished. */
+export function dropTemporaries(): void {
+  for (const path of temporaries) rmSync(path, { force: true });
+  temporaries.clear();
+}
+
+/** Written in one go, in pieces of this many bytes. */
+const PIECE = 1 << 20;
+
+/**
+ * Writes a file whole or not at all: beside its place, flushed, then renamed. Folders are made. What is no plain file
+ * (a pipe, a device) is written to directly.
+ */
+export async function writeWhole(path: string, content: string | Uint8Array, options?: { syncFolder?: boolean }) {
+  const shown = forMessages(path);
+  try {
+    const target = await realTarget(path);
+    await mkdir(dirname(target), { recursive: true });
+    const bytes = typeof content === 'string' ? Buffer.from(content, 'utf8') : content;
+    if (await isSpecial(target)) writeBytes(target, 'w', bytes, false);
+    else writeThenRename(target, bytes);
+    if (options?.syncFolder) syncFolder(dirname(target));
+  } catch (error) {
+    throw asUserError(error, shown);
+  }
+}
+
+function writeThenRename(target: string, bytes: Uint8Array): void {
+  const temporary = join(dirname(target), `.${basename(target).slice(0, 80)}.${randomBytes(6).toString('hex')}.tmp`);
+  temporaries.add(temporary);
+  try {
+    writeBytes(temporary, 'wx', bytes, true);
+    renameSync(temporary, target);
+  } catch (error) {
+    rmSync(temporary, { force: true });
+    throw error;
+  } finally {
+    temporaries.delete(temporary);
+  }
+}
+
+function writeBytes(path: string, flags: string, bytes: Uint8Array, flush: boolean): void {
+  const handle = openSync(path, flags);
+  try {
+    for (let at = 0; at < bytes.length;) at += writeSync(handle, bytes, at, Math.min(PIECE, bytes.length - at));
+    if (flush) fsyncSync(handle);
+  } finally {
+    closeSync(handle);
+  }
+}
+
+/** The name itself reaches the disk; some systems cannot, and then need not, be asked. */
+function syncFolder(folder: string): void {
+  try {
+    const handle = openSync(folder, 'r');
+    fsyncSync(handle);
+    closeSync(handle);
+  } catch {
+    return;
+  }
+}
+
+/** A link is written through, not replaced. */
+async function realTarget(path: string): Promise<string> {
+  try {
+    return await realpath(path);
+  } catch {
+    return resolve(path);
+  }
+}
+
+async function isSpecial(path: string): Promise<boolean> {
+  try {
+    const found = await stat(path);
+    if (found.isDirectory()) throw Object.assign(new Error(path), { code: 'EISDIR' });
+    return !found.isFile();
+  } catch (error) {
+    if ((error as NodeJS.ErrnoException).code === 'ENOENT') return false;
+    throw error;
+  }
+}
+
+/** A path as messages show it: from the working folder where it lies below it. */
+export function forMessages(path: string): string {
+  const below = relative(process.cwd(), resolve(path));
+  return below !== '' && !below.startsWith('..') ? below.split(sep).join('/') : path;
+}
+
+/** Contents of a small text file. */
+export async function readText(path: string): Promise<string> {
+  try {
+    return new TextDecoder('utf-8').decode(await readFile(path));
+  } catch (error) {
+    throw asUserError(error, forMessages(path));
+  }
+}
+
+/** Whether there is something at a path, and what. */
+export async function kindOf(path: string): Promise<'file' | 'folder' | null> {
+  try {
+    return (await stat(path)).isDirectory() ? 'folder' : 'file';
+  } catch (error) {
+    const { code } = error as NodeJS.ErrnoException;
+    if (code === 'ENOENT' || code === 'ENOTDIR') return null;
+    throw asUserError(error, forMessages(path));
+  }
+}
+
+/** Standard input, read once. */
+let input: Promise<Buffer> | undefined;
+export function standardInput(): Promise<Buffer> {
+  input ??= (async () => {
+    const parts: Buffer[] = [];
+    for await (const part of process.stdin) parts.push(part as Buffer);
+    return Buffer.concat(parts);
+  })();
+  return input;
+}
+
+/** The name standard input goes by in messages and results. */
+export const STDIN_NAME = 'standard-input';
+
+/** A log as a stream, so that its size does not matter. `most`: only its first bytes. */
+export function logSource(
+  name: string,
+  path: string,
+  options: { most?: number; onBytes?: (n: number) => void } = {},
+): LogSource {
+  return { name, chunks: path === '-' ? inputChunks(options.most) : fileChunks(name, path, options) };
+}
+
+async function* inputChunks(most?: number): AsyncGenerator<Uint8Array> {
+  const bytes = await standardInput();
+  yield most === undefined ? bytes : bytes.subarray(0, most);
+}
+
+async function* fileChunks(
+  name: string,
+  path: string,
+  { most, onBytes }: { most?: number; onBytes?: (n: number) => void },
+): AsyncGenerator<Uint8Array> {
+  const stream = createReadStream(path, { highWaterMark: 1 << 18, ...(most === undefined ? {} : { end: most - 1 }) });
+  try {
+    for await (const chunk of stream) {
+      onBytes?.((chunk as Buffer).length);
+      yield chunk as Buffer;
+    }
+  } catch (error) {
+    throw asUserError(error, name);
+  } finally {
+    stream.destroy();
+  }
+}
+
+export function unusable(message: string, suggestion?: string): UserError {
+  return new UserError(message, { exitCode: 2, ...(suggestion === undefined ? {} : { suggestion }) });
+}

@@ -1,0 +1,14 @@
+#!/usr/bin/env node
+import { readFileSync } from 'node:fs';
+
+// The version is answered before anything else is loaded.
+const [first] = process.argv.slice(2);
+if (first === '--version' || first === '-V') {
+  const { version } = JSON.parse(readFileSync(new URL('../../package.json', import.meta.url), 'utf8')) as {
+    version: string;
+  };
+  process.stdout.write(`${version}\n`);
+} else {
+  const { main } = await import('./main.js');
+  await main(process.argv.slice(2));
+}
