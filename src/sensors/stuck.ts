@@ -97,8 +97,7 @@ export function findFreezes(time: Float64Array, column: Float64Array): Run[] {
   const repeats = steps - changes - inside;
   const p = (repeats + 1) / (repeats + changes + 2);
   return frozen.filter(
-    (run) =>
-      run.seconds >= SHORTEST_FREEZE && (run.readings - 1) * -Math.log(p) - Math.log(steps) > EVIDENCE,
+    (run) => run.seconds >= SHORTEST_FREEZE && (run.readings - 1) * -Math.log(p) - Math.log(steps) > EVIDENCE,
   );
 }
 
@@ -122,7 +121,8 @@ const NAMES: Partial<Record<Channel, string>> = {
 export function findStuckWind(recording: Recording, file?: string): StuckFinding {
   const issues: Issue[] = [];
   const masks: Masks = {};
-  const say = (code: string, message: string) => issues.push({ code, message, ...(file === undefined ? {} : { file }) });
+  const say = (code: string, message: string) =>
+    issues.push({ code, message, ...(file === undefined ? {} : { file }) });
   const dead = findDeadCups(recording);
   for (const channel of dead) masks[channel] = new Uint8Array(recording.time.length).fill(1);
   if (dead.length > 0) say('wind-dead', deadMessage(dead));
@@ -242,7 +242,10 @@ function deadMessage(dead: readonly Channel[]): string {
 function stuckMessage(recording: Recording, channel: Channel, freezes: readonly Run[]): string {
   const seconds = freezes.reduce((sum, run) => sum + run.seconds, 0);
   const longest = freezes[0];
-  const value = channel === 'aws' || channel === 'tws' ? `${(longest.value / KNOT).toFixed(1)} kn` : `${longest.value.toFixed(0)} degrees`;
+  const value =
+    channel === 'aws' || channel === 'tws'
+      ? `${(longest.value / KNOT).toFixed(1)} kn`
+      : `${longest.value.toFixed(0)} degrees`;
   const when = new Date(Math.round(recording.time[longest.first]) * 1000).toISOString().slice(0, 19) + 'Z';
   const times = freezes.length > 1 ? ` (${freezes.length} times)` : '';
   return (

@@ -18,6 +18,8 @@
  * [4] G. J. Bierman, Fixed interval smoothing with discrete measurements, Int. J. Control 18 (1973) 65.
  */
 
+import { factorAt, UNIFORM, type Activity } from './activity.js';
+
 /** What was measured, in time order, in the local plane. NaN = not measured in this row. */
 export interface Observations {
   /** [s], strictly increasing. */
@@ -60,10 +62,10 @@ export function startState(x: number, y: number, noise: NoiseModel, variance = S
   return state;
 }
 
-/** Moves the state on by `dt` seconds, in place. */
-export function predict(s: FilterState, dt: number, noise: NoiseModel): void {
+/** Moves the state on by `dt` seconds, in place; `factor` scales the boat's acceleration (see activity). */
+export function predict(s: FilterState, dt: number, noise: NoiseModel, factor = 1): void {
   if (dt === 0) return;
-  const q = noise.accel;
+  const q = noise.accel * factor;
   const φ = Math.exp(-dt / noise.correlation);
   const pv = s[7];
   const vv = s[9];
@@ -254,6 +256,8 @@ export interface SmoothingJob {
   readonly from: number;
   readonly to: number;
   readonly noise: NoiseModel;
+  /** How hard the boat manoeuvres; left out: the same throughout. */
+  readonly activity?: Activity;
   /** Prior about the first position instead of the wide one. */
   readonly variance?: { position: number; velocity: number };
   /** Where the prior is centred instead of the first fix. */
@@ -301,14 +305,14 @@ export function smoothStretch(job: SmoothingJob, out: SmoothedRows): number {
 
 /** Filters up to a stretch of time points onward from the cursor, recording them if there is a tape. */
 function forward(job: SmoothingJob, cursor: Cursor, state: FilterState, tape: Tape | null): void {
-  const { observations, to, noise } = job;
+  const { observations, to, noise, activity = UNIFORM } = job;
   const { time } = observations;
   for (let points = 0; points < STRETCH && cursor.row < to; points++) {
     const next = time[cursor.row];
     const isTick = cursor.tick < next;
     const at = isTick ? cursor.tick : next;
     const dt = at - cursor.time;
-    predict(state, dt, noise);
+    predict(state, dt, noise, factorAt(activity, cursor.time));
     cursor.time = at;
     let elapsed = dt;
     if (!isTick) elapsed = takeRow(job, cursor.row++, state, elapsed, tape);

@@ -1,3 +1,4 @@
+import { factorAt, UNIFORM, type Activity } from './activity.js';
 import type { Stretch } from './gaps.js';
 import { predict, startState, updatePosition, updateVelocity, type NoiseModel, type Observations } from './kalman.js';
 
@@ -73,7 +74,7 @@ function smoothedWhiteVariance(noise: TrackNoise): number {
 const PRIOR = {
   accel: { value: 0.05, spread: 2 },
   white: { value: 0.2, spread: 2 },
-  drift: { value: driftRate(RECEIVER) / 2, spread: 0.7 },
+  drift: { value: driftRate(RECEIVER) / 2, spread: 1 },
   doppler: { value: 0.1, spread: 0.7 },
 } as const;
 
@@ -85,7 +86,7 @@ const BOUNDS: Record<Parameter, readonly [number, number]> = {
   accel: [1e-4, 5],
   white: [0.01, 20],
   drift: [driftRate(RECEIVER) / 8, driftRate(RECEIVER) * 16],
-  doppler: [0.03, 2],
+  doppler: [0.05, 2],
 };
 
 /** A consumer receiver at 1 Hz of which only positions are known. */
@@ -119,13 +120,19 @@ const SAMPLE_ROWS = 700;
  * @param observations Positions and Doppler velocities.
  * @param stretches    Where they hang together.
  * @param step         Median step between fixes. [s]
+ * @param activity     How hard the boat manoeuvres, second by second.
  */
-export function estimateNoise(observations: Observations, stretches: readonly Stretch[], step: number): TrackNoise {
+export function estimateNoise(
+  observations: Observations,
+  stretches: readonly Stretch[],
+  step: number,
+  activity: Activity = UNIFORM,
+): TrackNoise {
   const pieces = samplePieces(stretches);
   const hasDoppler = pieces.some(({ from, to }) => observations.vx.subarray(from, to).some((v) => v === v));
   const names: Parameter[] = hasDoppler ? ['accel', 'white', 'drift', 'doppler'] : ['accel', 'white', 'drift'];
   const score = (p: Parameters) =>
-    pieces.reduce((sum, piece) => sum + logLikelihood(observations, piece, toNoise(p)), logPrior(p, names));
+    pieces.reduce((sum, piece) => sum + logLikelihood(observations, piece, toNoise(p), activity), logPrior(p, names));
   let best: Parameters = {
     accel: PRIOR.accel.value,
     white: PRIOR.white.value,
@@ -199,7 +206,7 @@ function logPrior(p: Parameters, names: readonly Parameter[]): number {
 const CLIP = 16;
 
 /** Log likelihood of the innovations of a piece, both axes, up to a constant. The first fixes only start the filter. */
-export function logLikelihood(o: Observations, { from, to }: Stretch, noise: NoiseModel): number {
+export function logLikelihood(o: Observations, { from, to }: Stretch, noise: NoiseModel, activity = UNIFORM): number {
   let first = from;
   while (first < to && !(o.x[first] === o.x[first])) first++;
   if (first === to) return 0;
@@ -214,7 +221,7 @@ export function logLikelihood(o: Observations, { from, to }: Stretch, noise: Noi
     const x = o.x[i];
     const vx = o.vx[i];
     if (x !== x && vx !== vx) continue;
-    predict(state, o.time[i] - time, noise);
+    predict(state, o.time[i] - time, noise, factorAt(activity, time));
     time = o.time[i]!;
     if (x === x) {
       before.set(state);

@@ -1,3 +1,4 @@
+import { factorAt, UNIFORM } from './activity.js';
 import type { Stretch } from './gaps.js';
 import { predict, startState, updatePosition, updateVelocity, type NoiseModel, type Observations } from './kalman.js';
 
@@ -29,7 +30,7 @@ export interface Gated {
  * Finds fixes the boat cannot have made, by the innovation of the filter: distance from where the boat should be,
  * against its standard deviation and what a hard manoeuvre can do in that time.
  */
-export function gate(o: Observations, stretch: Stretch, noise: NoiseModel): Gated {
+export function gate(o: Observations, stretch: Stretch, noise: NoiseModel, activity = UNIFORM): Gated {
   const rejected: number[] = [];
   const jumps: number[] = [];
   const rejectedVelocity: number[] = [];
@@ -41,7 +42,7 @@ export function gate(o: Observations, stretch: Stretch, noise: NoiseModel): Gate
   let largest = 0;
   for (let i = stretch.from; i < stretch.to; i++) {
     const t = o.time[i];
-    predict(state, t - time, noise);
+    predict(state, t - time, noise, factorAt(activity, time));
     time = t;
     const x = o.x[i];
     if (x === x) {

@@ -3,7 +3,8 @@ import { eastOf, northOf } from '../math/angles.js';
 import type { Issue } from '../recording/issues.js';
 import type { Recording } from '../recording/recording.js';
 import type { Track } from '../recording/track.js';
-import { findStretches, type Gap, type Stretch } from './gaps.js';
+import { activityOf, type Activity } from './activity.js';
+import { findStretches, fixRows, stepping, type Gap, type Stretch } from './gaps.js';
 import { attachInstruments } from './instruments.js';
 import { smoothStretch, type Observations } from './kalman.js';
 import { estimateNoise, type TrackNoise } from './noise.js';
@@ -55,21 +56,20 @@ export function smoothTrack(recording: Recording, frame: Frame, options: SmoothO
   const observations = observe(recording, frame);
   rejections.add('stale: repeats a position the boat had left', observations, staleRows(observations));
   const breaks = [...recording.breaks];
-  let found = findStretches(observations, breaks);
-  const noise = options.noise ?? estimateNoise(observations, found.stretches, found.step.median);
-  const jumps = gateAll(observations, found.stretches, noise, rejections);
-  if (jumps.rows.length > 0) breaks.push(...jumps.rows);
-  breaks.sort((a, b) => a - b);
-  found = findStretches(observations, breaks);
-  dropLonely(observations, found.stretches, rejections);
-  const stretches = found.stretches.filter((s) => countFixes(observations, s) >= FEWEST_FIXES);
-  const kept = dropFar(observations, stretches, rejections);
-  found = kept.length === found.stretches.length ? found : findStretches(observations, breaks);
-  const track = attachInstruments(smoothAll(recording.name, observations, kept, noise), recording);
+  const near = dropFar(observations, findStretches(observations, breaks).stretches, rejections);
+  const step = stepping(observations.time, fixRows(observations)).median;
+  const activity = activityOf(observations, near, step);
+  const noise = options.noise ?? estimateNoise(observations, near, step, activity);
+  const jumps = gateAll(observations, near, noise, activity, rejections);
+  breaks.push(...jumps.rows);
+  breaks.sort((p, q) => p - q);
+  dropLonely(observations, findStretches(observations, breaks).stretches, rejections);
+  const { stretches, gaps } = findStretches(observations, breaks);
+  const track = attachInstruments(smoothAll(recording.name, observations, stretches, noise, activity), recording);
   return {
     track,
     rejected: rejections.list(),
-    gaps: found.gaps,
+    gaps,
     issues: rejections.issues(jumps, options.file),
     noise,
   };
@@ -110,12 +110,18 @@ interface Jumps {
 }
 
 /** Gates every stretch; impossible fixes and velocities are taken out of the observations. */
-function gateAll(o: Observations, stretches: readonly Stretch[], noise: TrackNoise, rejections: Rejections): Jumps {
+function gateAll(
+  o: Observations,
+  stretches: readonly Stretch[],
+  noise: TrackNoise,
+  activity: Activity,
+  rejections: Rejections,
+): Jumps {
   const rows: number[] = [];
   const bad: number[] = [];
   let largest = 0;
   for (const stretch of stretches) {
-    const gated = gate(o, stretch, noise);
+    const gated = gate(o, stretch, noise, activity);
     for (const row of gated.rejectedVelocity) o.vx[row] = o.vy[row] = NaN;
     largest = Math.max(largest, gated.largest);
     const { rejected, jumps } = excursions(o, stretch, gated.jumps);
@@ -166,14 +172,20 @@ function dropFar(o: Observations, stretches: readonly Stretch[], rejections: Rej
   return best;
 }
 
-function smoothAll(name: string, o: Observations, stretches: readonly Stretch[], noise: TrackNoise): Track {
+function smoothAll(
+  name: string,
+  o: Observations,
+  stretches: readonly Stretch[],
+  noise: TrackNoise,
+  activity: Activity,
+): Track {
   const first = stretches[0];
   const last = stretches.at(-1);
   const t0 = first ? Math.ceil(o.time[first.from]) : 0;
   const n = last ? Math.max(0, Math.floor(o.time[last.to - 1]) - t0 + 1) : 0;
   const column = () => new Float64Array(n).fill(NaN);
   const rows = { x: column(), y: column(), vx: column(), vy: column(), sePosition: column(), seVelocity: column() };
-  for (const { from, to } of stretches) smoothStretch({ observations: o, from, to, noise }, { t0, ...rows });
+  for (const { from, to } of stretches) smoothStretch({ observations: o, from, to, noise, activity }, { t0, ...rows });
   return { name, t0, n, ...rows };
 }
 

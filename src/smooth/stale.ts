@@ -12,41 +12,61 @@ const LEAP_FLOOR = 1;
 /** ... and longer than so many steps of the position's resolution. */
 const LEAP_RESOLUTIONS = 3;
 
+/** Fixes in a row at exactly the same place: rows of the first and the last of them. */
+interface Run {
+  first: number;
+  last: number;
+}
+
 /** Rows that repeat a position which was no longer true. */
 export function staleRows(o: Observations): number[] {
   const stale: number[] = [];
-  const rows = distinctRuns(o);
-  const resolution = resolutionOf(o, rows);
-  for (let k = 0; k + 1 < rows.length; k++) {
-    const run = rows[k];
-    const next = rows[k + 1];
-    if (run.last === run.first) continue;
-    const leap = distance(o, run.last, next.first);
-    const leapSpeed = leap / (o.time[next.first] - o.time[run.last]);
-    if (leap <= LEAP_RESOLUTIONS * resolution) continue;
-    const usual = Math.max(speedBetween(o, rows[k - 1], run), speedBetween(o, next, rows[k + 2]));
-    if (Number.isNaN(usual) || leapSpeed <= LEAP_FACTOR * usual + LEAP_FLOOR) continue;
+  const resolution = resolutionOf(o);
+  // Four runs at a time: the one before, the one looked at, the two after it.
+  const before: Run = { first: -1, last: -1 };
+  const run: Run = { first: -1, last: -1 };
+  const next: Run = { first: -1, last: -1 };
+  const after: Run = { first: -1, last: -1 };
+  let row = 0;
+  for (;;) {
+    move(run, before);
+    move(next, run);
+    move(after, next);
+    row = nextRun(o, row, after);
+    if (run.first < 0 && after.first < 0 && next.first < 0) break;
+    if (run.first < 0 || run.last === run.first || next.first < 0) continue;
+    if (!isLeap(o, before, run, next, after, resolution)) continue;
     for (let i = run.first + 1; i <= run.last; i++) if (o.x[i] === o.x[i]) stale.push(i);
   }
   return stale;
 }
 
-/** Fixes in a row at exactly the same place. */
-interface Run {
-  readonly first: number;
-  last: number;
+function move(from: Run, to: Run): void {
+  to.first = from.first;
+  to.last = from.last;
 }
 
-function distinctRuns(o: Observations): Run[] {
-  const runs: Run[] = [];
-  let current: Run | undefined;
-  for (let i = 0; i < o.x.length; i++) {
+/** Finds the run that begins at or after a row; returns the row after it. */
+function nextRun(o: Observations, row: number, run: Run): number {
+  run.first = run.last = -1;
+  let i = row;
+  for (; i < o.x.length; i++) {
     const x = o.x[i];
     if (x !== x) continue;
-    if (current && o.x[current.first] === x && o.y[current.first] === o.y[i]) current.last = i;
-    else runs.push((current = { first: i, last: i }));
+    if (run.first >= 0 && (x !== o.x[run.first] || o.y[i] !== o.y[run.first])) break;
+    if (run.first < 0) run.first = i;
+    run.last = i;
   }
-  return runs;
+  return i;
+}
+
+/** Whether the boat must have left the place of a run long before the next fix says so. */
+function isLeap(o: Observations, before: Run, run: Run, next: Run, after: Run, resolution: number): boolean {
+  const leap = distance(o, run.last, next.first);
+  if (leap <= LEAP_RESOLUTIONS * resolution) return false;
+  const leapSpeed = leap / (o.time[next.first] - o.time[run.last]);
+  const usual = Math.max(speedBetween(o, before, run), speedBetween(o, next, after));
+  return leapSpeed > LEAP_FACTOR * usual + LEAP_FLOOR;
 }
 
 function distance(o: Observations, a: number, b: number): number {
@@ -54,19 +74,27 @@ function distance(o: Observations, a: number, b: number): number {
 }
 
 /** Speed from the first fix of one run to the first of the next; 0 where there is none. [m/s] */
-function speedBetween(o: Observations, a: Run | undefined, b: Run | undefined): number {
-  if (!a || !b) return 0;
+function speedBetween(o: Observations, a: Run, b: Run): number {
+  if (a.first < 0 || b.first < 0) return 0;
   return distance(o, a.first, b.first) / (o.time[b.first] - o.time[a.first]);
 }
 
+/** Rows looked at for the resolution. */
+const LOOKED_AT = 4000;
+
 /** Smallest step of the coordinates that is commonly seen. [m] */
-function resolutionOf(o: Observations, runs: readonly Run[]): number {
+function resolutionOf(o: Observations): number {
   const steps: number[] = [];
-  for (let k = 1; k < Math.min(runs.length, 2000); k++) {
-    const dx = Math.abs(o.x[runs[k].first] - o.x[runs[k - 1].first]);
-    const dy = Math.abs(o.y[runs[k].first] - o.y[runs[k - 1].first]);
-    if (dx > 1e-6) steps.push(dx);
-    if (dy > 1e-6) steps.push(dy);
+  let last = -1;
+  for (let i = 0; i < o.x.length && steps.length < LOOKED_AT; i++) {
+    if (o.x[i] !== o.x[i]) continue;
+    if (last >= 0) {
+      const dx = Math.abs(o.x[i] - o.x[last]);
+      const dy = Math.abs(o.y[i] - o.y[last]);
+      if (dx > 1e-6) steps.push(dx);
+      if (dy > 1e-6) steps.push(dy);
+    }
+    last = i;
   }
   steps.sort((a, b) => a - b);
   return steps[Math.floor(steps.length / 50)] ?? 0;
