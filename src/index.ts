@@ -2,6 +2,10 @@
  * What a program may import. Nothing here touches files, prints, or asks the time; it runs in a browser too. Each part
  * is loaded when it is first called.
  */
+import { UserError } from './recording/issues.js';
+import type { Result } from './result/result.js';
+import type { Season } from './season.js';
+
 export type { LogSource, ImportOptions, ImportedLog, ColumnReading } from './importers/types.js';
 export type { LogGlance } from './files/race-from-logs.js';
 export type { LogFacts } from './files/race-resolve.js';
@@ -11,7 +15,7 @@ export type { Issue } from './recording/issues.js';
 export type * from './result/result.js';
 export type * from './result/series.js';
 export type { InspectFile, InspectResult } from './inspect.js';
-export { UserError } from './recording/issues.js';
+export { UserError };
 
 /** Reads a race file, YAML or JSON: one draft a race. */
 export const readRaces: typeof import('./files/race.js').readRaces = async (...args) =>
@@ -72,3 +76,24 @@ export type { OptimumTable } from './physics/optimum.js';
 /** The boat model alone: a built-in boat by name, or a boat file. */
 export const optimum: typeof import('./optimum.js').optimum = async (...args) =>
   (await import('./optimum.js')).optimum(...args);
+
+export type { Season } from './season.js';
+export type * from './season/season-types.js';
+
+/** Races of a logbook as trends per sailor; `sailors` is the content of a `sailors.yaml`, if there is one. */
+export const season = async (
+  results: readonly Result[],
+  sailors?: { readonly file: string; readonly text: string },
+): Promise<Season> => {
+  const { season: trends } = await import('./season.js');
+  if (!sailors) return trends(results);
+  const { readWritten } = await import('./files/written.js');
+  const { readSailors } = await import('./season/sailors.js');
+  const read = readSailors(readWritten(sailors.text, sailors.file).data);
+  if (read.problem !== null) throw new UserError(`${sailors.file}: ${read.problem}.`, { exitCode: 2 });
+  return trends(results, { sailors: read.sailors });
+};
+
+/** The files of the demo race, by name. */
+export const demoFiles = async (): Promise<ReadonlyMap<string, string>> =>
+  (await import('./demo/index.js')).demoFiles();

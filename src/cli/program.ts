@@ -1,6 +1,7 @@
 import { Command } from 'commander';
 import { compareCommand } from './compare.js';
 import { debriefCommand } from './debrief.js';
+import { demoCommand } from './demo.js';
 import { inspectCommand } from './inspect.js';
 import { optimumCommand } from './optimum.js';
 import { programVersion } from './version.js';
@@ -23,7 +24,7 @@ export function makeProgram(): Command {
     .helpCommand('help [COMMAND]', 'print help for a command')
     .addHelpText('after', EXAMPLE)
     .configureHelp({ helpWidth: 100 });
-  for (const add of [debriefCommand, compareCommand, inspectCommand, optimumCommand]) {
+  for (const add of [debriefCommand, compareCommand, inspectCommand, optimumCommand, demoCommand]) {
     const command = add(program);
     const name = command.name();
     command.helpOption('-h, --help', 'print help').showHelpAfterError(`legwork ${name} --help shows the options.`);

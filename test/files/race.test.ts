@@ -49,7 +49,7 @@ const utc = (iso: string): number => Date.parse(iso) / 1000;
 
 async function race(text: string, facts: Partial<LogFacts> = {}) {
   const [draft] = await readRaces(text, 'race.yaml');
-  return resolveRace(draft!, { ...NOTHING, ...facts });
+  return resolveRace(draft, { ...NOTHING, ...facts });
 }
 
 async function complaint(text: string, facts: Partial<LogFacts> = {}): Promise<string> {
@@ -94,7 +94,7 @@ describe('a race file with every key', () => {
     });
     // A knot is 1852 m in an hour (SI brochure, 8th edition, table 8).
     expect(steady).toMatchObject({ kind: 'by-hand', seDir: 10, readings: [{ time: null, twd: 215 }] });
-    expect(steady!.kind === 'by-hand' && steady!.seSpeed).toBeCloseTo((2 * 1852) / 3600, 12);
+    expect(steady.kind === 'by-hand' && steady.seSpeed).toBeCloseTo((2 * 1852) / 3600, 12);
     expect(readings).toMatchObject({
       readings: [
         { time: utc('2026-04-18T12:00:00Z'), twd: 215 },
@@ -108,10 +108,10 @@ describe('a race file with every key', () => {
     expect(r.marks.windward).toEqual([{ lat: 46.921, lon: 9.055 }]);
     expect(r.marks.leeward).toHaveLength(2);
     // 46 degrees 54.72 minutes is 46.912 degrees; 3.72 minutes are 0.062 degrees.
-    expect(r.marks.leeward![1]!.lat).toBeCloseTo(46.912, 10);
-    expect(r.marks.leeward![1]!.lon).toBeCloseTo(9.062, 10);
+    expect(r.marks.leeward![1].lat).toBeCloseTo(46.912, 10);
+    expect(r.marks.leeward![1].lon).toBeCloseTo(9.062, 10);
     expect(r.current).toHaveLength(1);
-    expect(r.current![0]!.drift).toBeCloseTo((0.3 * 1852) / 3600, 12);
+    expect(r.current![0].drift).toBeCloseTo((0.3 * 1852) / 3600, 12);
     const [corrie, seven] = r.boats;
     expect(corrie).toEqual({
       name: 'Corrie',
@@ -121,10 +121,10 @@ describe('a race file with every key', () => {
       boat: 'single-hander',
       crewMassKg: 78,
     });
-    expect(seven!.name).toBe('007');
-    expect(seven!.sailor).toBe('007');
-    expect(seven!.boat).toBe('boats/mine.yaml');
-    expect(seven!.track).toEqual([
+    expect(seven.name).toBe('007');
+    expect(seven.sailor).toBe('007');
+    expect(seven.boat).toBe('boats/mine.yaml');
+    expect(seven.track).toEqual([
       { file: 'a.csv', zone: 'Europe/Zurich', to: utc('2026-04-18T12:30:00Z'), clockS: 0 },
       {
         file: 'b.csv',
@@ -138,13 +138,13 @@ describe('a race file with every key', () => {
 
   it('names its logs, wind last', async () => {
     const [draft] = await readRaces(FULL, 'race.yaml');
-    expect(logFiles(draft!)).toEqual(['corrie.gpx', 'corrie-mast.csv', 'a.csv', 'b.csv', 'committee.csv']);
+    expect(logFiles(draft)).toEqual(['corrie.gpx', 'corrie-mast.csv', 'a.csv', 'b.csv', 'committee.csv']);
   });
 
   it('is the same race written as JSON', async () => {
     const { parse } = await import('yaml');
     const data = parse(FULL) as { boats: { name: unknown }[] };
-    data.boats[1]!.name = '007';
+    data.boats[1].name = '007';
     expect(await race(JSON.stringify(data, null, '\t'))).toEqual(await race(FULL));
   });
 });
@@ -174,7 +174,7 @@ describe('times', () => {
   });
   it('a practice run in the morning of an afternoon race is in that morning', async () => {
     const text = `start: 2026-04-18T14:05:00Z\nruns: [[9:05, 9:10]]\nzone: UTC\n${LEAST}`;
-    expect((await race(text)).race.runs[0]!.from).toBe(utc('2026-04-18T09:05:00Z'));
+    expect((await race(text)).race.runs[0].from).toBe(utc('2026-04-18T09:05:00Z'));
   });
   it('says when a zone was assumed, and not when none was needed', async () => {
     expect((await race(`start: 2026-04-18 14:05\n${LEAST}`)).issues.map((i) => i.code)).toEqual(['zone-assumed']);
@@ -187,7 +187,7 @@ describe('times', () => {
     );
   });
   it('knows whether it leans on the day of a log', async () => {
-    const leans = async (text: string) => needsDay((await readRaces(text + LEAST, 'r'))[0]!);
+    const leans = async (text: string) => needsDay((await readRaces(text + LEAST, 'r'))[0]);
     expect(await leans('start: 14:05\n')).toBe(true);
     expect(await leans('start: 14:05\ndate: 2026-04-18\n')).toBe(false);
     expect(await leans('start: 2026-04-18T14:05Z\nfinish: 14:52\n')).toBe(false);
@@ -202,9 +202,9 @@ describe('several races in one recording', () => {
     const drafts = await readRaces(text, 'race.yaml');
     const races = drafts.map((draft) => resolveRace(draft, NOTHING).race);
     expect(races.map((r) => r.name)).toEqual(['1', 'two']);
-    expect(races[0]!.exclude[0]!.from).toBe(races[1]!.start);
-    expect(races[1]!.exclude).toEqual([]);
-    expect(races[1]!.finish).toBe(utc('2026-04-18T15:40:00Z'));
+    expect(races[0].exclude[0].from).toBe(races[1].start);
+    expect(races[1].exclude).toEqual([]);
+    expect(races[1].finish).toBe(utc('2026-04-18T15:40:00Z'));
   });
   it('do not go with `start` beside them', async () => {
     expect(await complaint(`races: [{ race: 1 }]\nstart: 2026-04-18T14:05Z\n${LEAST}`)).toContain(
@@ -309,7 +309,7 @@ describe('names', () => {
   });
   it('where to look for one', async () => {
     const [draft] = await readRaces('boats: [{ name: A, track: a }, { track: [b, c] }]', 'r');
-    expect(unnamedTracks(draft!)).toEqual(['b']);
+    expect(unnamedTracks(draft)).toEqual(['b']);
   });
 });
 
@@ -317,7 +317,7 @@ describe('the command line over the file', () => {
   it('replaces what the file says and adds wind', async () => {
     const [draft] = await readRaces(FULL, 'race.yaml');
     const { race: r } = resolveRace(
-      overridden(draft!, {
+      overridden(draft, {
         boat: 'day-keelboat',
         start: '2026-04-18T15:00:00+02:00',
         finish: '15:30',
@@ -336,9 +336,9 @@ describe('the command line over the file', () => {
       'extra.csv',
       1,
     ]);
-    expect(r.boats[0]!.track[0]!.columns).toEqual({ Speed: 'sog_kn' });
+    expect(r.boats[0].track[0].columns).toEqual({ Speed: 'sog_kn' });
     // What a log says for itself comes first.
-    expect(r.boats[1]!.track[1]!.columns).toEqual({ Speed: 'sog_kn:m/s' });
-    expect(r.current![0]!.set).toBe(180);
+    expect(r.boats[1].track[1].columns).toEqual({ Speed: 'sog_kn:m/s' });
+    expect(r.current![0].set).toBe(180);
   });
 });

@@ -1,0 +1,60 @@
+import type { Command } from 'commander';
+import { tune, tunePage } from '../index.js';
+import { expandInputs } from './inputs.js';
+import { forMessages, kindOf, unusable, writeWhole } from './files.js';
+import { addManners, addRaceOptions, raceOptions } from './options.js';
+import type { RaceFlags } from './options.js';
+import { loadRaces } from './races.js';
+import type { Job } from './races.js';
+import { slugOf } from './slug.js';
+import { print, Progress } from './terminal.js';
+import { programVersion } from './version.js';
+
+const EXAMPLE = `
+Examples:
+  legwork tune race1.yaml race2.yaml --boat single-hander
+  legwork tune spring/ --boat-out my-boat.yaml --force`;
+
+interface TuneFlags extends RaceFlags {
+  readonly out?: string;
+  readonly boatOut?: string;
+  readonly force?: boolean;
+}
+
+export function tuneCommand(program: Command): Command {
+  const command = program
+    .command('tune')
+    .summary('fit the boat model to the logs; write a boat file')
+    .description('Moves a few numbers of the boat model, as far as the logs determine them, and writes a boat file.')
+    .argument('[INPUT...]', 'race files, or the logs of one race')
+    .option('--out <FILE>', 'the report (default: reports/<boat>-tune.html)')
+    .option('--boat-out <FILE>', 'the boat file (default: <boat>-tuned.yaml)')
+    .option('--force', 'write over an existing boat file');
+  return addManners(addRaceOptions(command), false).addHelpText('after', EXAMPLE).action(runTune);
+}
+
+async function runTune(inputs: string[], flags: TuneFlags): Promise<void> {
+  const progress = new Progress(flags.progress && !flags.quiet);
+  const jobs: Job[] = [];
+  for (const source of await expandInputs(inputs))
+    jobs.push(...(await loadRaces(source, raceOptions(flags), progress)));
+  const tuned = await tune(
+    jobs.map(({ race, open }) => ({ race, open })),
+    { version: programVersion() },
+  );
+  progress.clear();
+  const boatFile = flags.boatOut ?? `${slugOf(tuned.boat)}-tuned.yaml`;
+  const html = flags.out ?? `reports/${slugOf(tuned.boat)}-tune.html`;
+  if (!flags.force && (await kindOf(boatFile)) !== null) {
+    throw unusable(
+      `${forMessages(boatFile)}: is there already.`,
+      'Choose another name with --boat-out, or give --force.',
+    );
+  }
+  await writeWhole(boatFile, tuned.boatFile);
+  await writeWhole(html, await tunePage(tuned));
+  if (flags.quiet) return;
+  await print(
+    `${[...tuned.summary, `Boat file: ${forMessages(boatFile)}`, `Report: ${forMessages(html)}`].join('\n')}\n`,
+  );
+}
