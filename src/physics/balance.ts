@@ -250,6 +250,17 @@ function newtonMaximum(f: (x: number) => number, guess: number): number {
   return NaN;
 }
 
+/**
+ * The incidence with the greatest drive at a trial speed, whatever sheeting and moment it takes.
+ *
+ * @param model Boat.
+ * @param flow  Wind triangle.
+ * @returns Incidence as the heeled sail sees it. [deg]
+ */
+export function driveLimit(model: ForceModel, flow: Flow): number {
+  return bracketedMaximum(model, (α) => loadsAt(model, flow, α).excess);
+}
+
 function bracketedMaximum(model: ForceModel, excess: (α: number) => number): number {
   const slope = (α: number): number => excess(α + SLOPE_STEP) - excess(α - SLOPE_STEP);
   const low = model.zeroLift + 2 * SLOPE_STEP;
