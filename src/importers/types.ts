@@ -1,3 +1,4 @@
+import type { StreamHash } from '../math/sha256.js';
 import type { Issue, Rejection } from '../recording/issues.js';
 import type { Channel, Recording } from '../recording/recording.js';
 
@@ -15,6 +16,8 @@ export interface ImportOptions {
   readonly date?: string;
   /** Header -> `field` or `field:unit`, as `--columns` gives it. */
   readonly columns?: Readonly<Record<string, string>>;
+  /** A faster SHA-256 where the host has one; ours by default. */
+  readonly createHash?: () => StreamHash;
 }
 
 /** A column (or sentence field) as it was understood. `means` is null when nothing uses it. */

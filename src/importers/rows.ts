@@ -1,0 +1,116 @@
+import { CHANNELS, type Channel } from '../recording/recording.js';
+
+/** Rows a block: a column grows by blocks, so that it is never copied while the log is read. */
+const BLOCK = 1 << 15;
+
+/** A column of numbers that grows at its end. What was never set is `fill`. */
+export class GrowingColumn {
+  readonly #blocks: Float64Array[] = [];
+  readonly #fill: number;
+
+  constructor(fill = NaN) {
+    this.#fill = fill;
+  }
+
+  set(row: number, value: number): void {
+    const block = row >>> 15;
+    while (this.#blocks.length <= block) this.#blocks.push(new Float64Array(BLOCK).fill(this.#fill));
+    this.#blocks[block]![row & (BLOCK - 1)] = value;
+  }
+
+  get(row: number): number {
+    const block = this.#blocks[row >>> 15];
+    return block ? block[row & (BLOCK - 1)]! : this.#fill;
+  }
+}
+
+/**
+ * What a reader has read so far, in the order it stood in the log: a row has a time (NaN where the record carried
+ * none), the line it came from, how many records it stands for, and values. Nothing is judged here.
+ */
+export class LogRows {
+  readonly #time = new GrowingColumn();
+  readonly #line = new GrowingColumn(0);
+  readonly #records = new GrowingColumn(1);
+  readonly #columns = new Map<Channel, GrowingColumn>();
+  readonly #pieces: number[] = [];
+  #length = 0;
+
+  get length(): number {
+    return this.#length;
+  }
+
+  /** Adds a row that stands for one record. */
+  add(time: number, line: number): number {
+    const row = this.#length++;
+    this.#time.set(row, time);
+    this.#line.set(row, line);
+    return row;
+  }
+
+  /** The next row begins a new piece: nothing is interpolated from the rows before it. */
+  startPiece(): void {
+    if (this.#length > (this.#pieces.at(-1) ?? 0)) this.#pieces.push(this.#length);
+  }
+
+  /** First rows of the pieces after the first. */
+  get pieces(): readonly number[] {
+    return this.#pieces.at(-1) === this.#length ? this.#pieces.slice(0, -1) : this.#pieces;
+  }
+
+  set(channel: Channel, row: number, value: number): void {
+    if (Number.isNaN(value)) return;
+    this.column(channel).set(row, value);
+  }
+
+  blank(channel: Channel, row: number): void {
+    this.#columns.get(channel)?.set(row, NaN);
+  }
+
+  get(channel: Channel, row: number): number {
+    return this.#columns.get(channel)?.get(row) ?? NaN;
+  }
+
+  /** The column of a channel, made when first asked for. */
+  column(channel: Channel): GrowingColumn {
+    let column = this.#columns.get(channel);
+    if (!column) this.#columns.set(channel, (column = new GrowingColumn()));
+    return column;
+  }
+
+  /** Channels that hold a column, in the order of CHANNELS. */
+  get channels(): Channel[] {
+    return (Object.keys(CHANNELS) as Channel[]).filter((channel) => this.#columns.has(channel));
+  }
+
+  /** Lets go of a column that has been copied. */
+  release(channel: Channel): void {
+    this.#columns.delete(channel);
+  }
+
+  time(row: number): number {
+    return this.#time.get(row);
+  }
+
+  setTime(row: number, time: number): void {
+    this.#time.set(row, time);
+  }
+
+  line(row: number): number {
+    return this.#line.get(row);
+  }
+
+  records(row: number): number {
+    return this.#records.get(row);
+  }
+
+  /** Leaves a row out: it stands for nothing any more. */
+  drop(row: number): void {
+    this.#time.set(row, NaN);
+    this.#records.set(row, 0);
+  }
+
+  addRecords(row: number, count: number): void {
+    this.#records.set(row, this.#records.get(row) + count);
+  }
+}
