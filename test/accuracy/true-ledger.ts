@@ -30,9 +30,11 @@ function lossOver(boat: TrueBoat, from: number, to: number): number {
   return sum;
 }
 
-/** Metres one turn cost, from 3 s before it until its recovery. [m, positive lost] */
+/** Metres one turn cost, from 3 s before it until its recovery, or until 3 s before the next. [m, positive lost] */
 export function trueTackLoss(boat: TrueBoat, turn: TrueTurn): number {
-  return lossOver(boat, Math.round(turn.start - 3 - boat.t0), Math.round(turn.settled - boat.t0));
+  const next = boat.turns.find((other) => other.start >= turn.end);
+  const to = Math.min(turn.settled, next ? next.start - 3 : Infinity);
+  return lossOver(boat, Math.round(turn.start - 3 - boat.t0), Math.round(to - boat.t0));
 }
 
 /** Metres all tacks of a leg cost; turns that follow before recovery share one window. [m, positive lost] */

@@ -68,12 +68,13 @@ export function sailRace(boat: Boat, course: Course, condition: Condition, chanc
   race(watch);
   return {
     boat,
-    legs: watch.legs,
+    legs: closeLegs(watch),
     finish: watch.finished,
     goHome: (until, seconds) => {
       boat.racing = false;
       boat.settleFrom = Infinity;
       nextWaypoint(watch);
+      stop(watch, 'waiting', chance.between(15, 40));
       runUntil(watch, until, () => idleAbout(watch));
       runUntil(watch, until + seconds, () => sailUp(watch, 'sail-home'));
     },
@@ -248,6 +249,40 @@ function race(watch: Watch): void {
   watch.finished = Math.round(boat.t);
 }
 
+/** Legs end where the boat was nearest the mark itself, a little into the turn: found when the turn has been sailed. */
+function closeLegs(watch: Watch): TrueLeg[] {
+  const { course, boat } = watch;
+  let start = course.gun;
+  return watch.legs.map((leg, k) => {
+    const last = k === watch.legs.length - 1;
+    const end = last ? leg.end : nearest(boat, leg.kind === 'upwind' ? course.windward : course.leeward, leg.end);
+    const closed = { ...leg, start, end };
+    start = end;
+    return closed;
+  });
+}
+
+function nearest(boat: Boat, mark: Place, around: number): number {
+  const { x, y } = boat.log.columns;
+  let best = around;
+  let least = Infinity;
+  for (let t = around - 10; t < around + 15; t++) {
+    const i = t - boat.log.t0;
+    const distance = Math.hypot(x[i]! - mark.x, y[i]! - mark.y);
+    if (distance < least) [best, least] = [t, distance];
+  }
+  return best;
+}
+
+/** Room left between boat and mark. [m] */
+const ROOM = 6;
+
+/** The place steered for: a little to the right of the mark as the boat comes at it, which leaves it to port. */
+function besideMark(mark: Place, axis: number, windward: boolean): Place {
+  const right = windward ? ROOM : -ROOM;
+  return { x: mark.x + right * cosd(axis), y: mark.y - right * sind(axis) };
+}
+
 function planEvents(watch: Watch): Watch['plan'] {
   const { chance, boat } = watch;
   if (!watch.condition.events) return [];
@@ -284,7 +319,7 @@ function round(watch: Watch, windward: boolean): void {
 function reached(watch: Watch, distance: number, beyond: boolean): boolean {
   const passed = distance > watch.lastDistance && distance < 45 && beyond;
   watch.lastDistance = distance;
-  return distance < 6 || passed;
+  return distance < 8 || passed;
 }
 
 /** How far ahead of the mark's level, along the committee's axis; positive: to windward of it. [m] */
@@ -295,7 +330,7 @@ function above(watch: Watch, mark: Place): number {
 
 function beat(watch: Watch): boolean {
   const { boat, course } = watch;
-  const mark = course.windward;
+  const mark = besideMark(course.windward, course.axis, true);
   const { bearing, distance } = towards(boat, mark);
   if (reached(watch, distance, above(watch, mark) > -5)) return true;
   const close = closeAngle(watch);
@@ -353,7 +388,7 @@ function happening(watch: Watch, distance: number): boolean {
 
 function downwind(watch: Watch): boolean {
   const { boat, course } = watch;
-  const mark = course.leeward;
+  const mark = besideMark(course.leeward, course.axis, false);
   const { bearing, distance } = towards(boat, mark);
   if (reached(watch, distance, above(watch, mark) < 5)) return true;
   const needed = signed(boat.felt - bearing);
