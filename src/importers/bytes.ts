@@ -43,7 +43,7 @@ async function* chain(held: Uint8Array[], rest: AsyncIterator<Uint8Array>): Byte
 }
 
 export function join(pieces: readonly Uint8Array[], length: number): Uint8Array {
-  if (pieces.length === 1) return pieces[0]!;
+  if (pieces.length === 1) return pieces[0];
   const all = new Uint8Array(length);
   let at = 0;
   for (const piece of pieces) {

@@ -50,8 +50,8 @@ function readOddCell(text: string, channel: Channel, factor: number): [number, n
   if (channel === 'lat' || channel === 'lon') return [readAngle(text), 1];
   const parts = /^([+-]?\d[\d.,]*)\s*([^\d\s.,][^\d]*)$/.exec(text);
   if (!parts) return [NaN, 1];
-  const own = readUnit(parts[2]!, kindOf(channel));
-  return own ? [readDecimal(parts[1]!), own.factor] : [NaN, factor];
+  const own = readUnit(parts[2], kindOf(channel));
+  return own ? [readDecimal(parts[1]), own.factor] : [NaN, factor];
 }
 
 /** The value in the channel's range; NaN when it cannot be one. */

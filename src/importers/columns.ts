@@ -518,7 +518,7 @@ export function readUnit(text: string, kind: Kind | null): Unit | null {
 }
 
 function unitNamed(name: string): Unit | null {
-  return Object.hasOwn(UNITS, name) ? UNITS[name]! : null;
+  return Object.hasOwn(UNITS, name) ? UNITS[name] : null;
 }
 
 function withNorth(meaning: Meaning | null, north: string): Meaning | null {

@@ -115,7 +115,7 @@ function takeBlock(
   }
   for (let from = 0; from < lines.length;) {
     let to = from;
-    while (to < lines.length && !isOdd(lines[to]!)) to++;
+    while (to < lines.length && !isOdd(lines[to])) to++;
     takeClosed(lines.slice(from, to), delimiter, (cells, k) => one(cells, from + k));
     if (to < lines.length) to += takeOdd(lines, to, layout, one, tally);
     from = to;
@@ -143,14 +143,14 @@ function takeOdd(
   tally: Tally,
 ): number {
   for (let to = at + 1; to < Math.min(lines.length, at + CELL_LINES); to++) {
-    if (!isOdd(lines[to]!)) continue;
+    if (!isOdd(lines[to])) continue;
     const joined = parseRows(lines.slice(at, to + 1).join('\n'), layout.delimiter, true);
-    if (joined.length !== 1 || joined[0]!.length !== layout.headers.length) break;
-    one(joined[0]!, at, to + 1 - at);
+    if (joined.length !== 1 || joined[0].length !== layout.headers.length) break;
+    one(joined[0], at, to + 1 - at);
     return to + 1 - at;
   }
   tally.notice('unclosed-quote', at + 1);
-  one(parseRows(lines[at]!.replaceAll('"', ''), layout.delimiter, false)[0] ?? [''], at, 1);
+  one(parseRows(lines[at].replaceAll('"', ''), layout.delimiter, false)[0] ?? [''], at, 1);
   return 1;
 }
 
@@ -164,7 +164,7 @@ function createRowTaker(layout: TableLayout, clock: TableClock, rows: LogRows, t
   return (cells, line, whole) => {
     if (isBlank(cells)) return;
     tally.read++;
-    if (cells[0]!.startsWith('#')) return tally.ignore('comment');
+    if (cells[0].startsWith('#')) return tally.ignore('comment');
     if (isHeader(cells, headers)) {
       rows.startPiece();
       return tally.ignore('repeated header');
@@ -192,7 +192,7 @@ function isBlank(cells: readonly string[]): boolean {
 
 function isHeader(cells: readonly string[], headers: readonly string[]): boolean {
   return (
-    cells[0]!.trim() === headers[0] &&
+    cells[0].trim() === headers[0] &&
     cells.length === headers.length &&
     cells.every((text, k) => text.trim() === headers[k])
   );
@@ -235,10 +235,10 @@ function positionFault(
   latAt: number,
   lonAt: number,
 ): string | undefined {
-  const lat = values[latAt]!;
-  const lon = values[lonAt]!;
-  const latText = (cells[columns[latAt]!.index] ?? '').trim();
-  const lonText = (cells[columns[lonAt]!.index] ?? '').trim();
+  const lat = values[latAt];
+  const lon = values[lonAt];
+  const latText = (cells[columns[latAt].index] ?? '').trim();
+  const lonText = (cells[columns[lonAt].index] ?? '').trim();
   if (latText === '' && lonText === '') return undefined;
   const others = values.some((value, k) => k !== latAt && k !== lonAt && !Number.isNaN(value));
   const none = (Number.isNaN(lat) && Number.isNaN(lon)) || (lat === 0 && lon === 0);
@@ -264,7 +264,7 @@ function addRow(
     return tally.ignore('row without values');
   }
   const row = rows.add(seconds, line);
-  for (let k = 0; k < columns.length; k++) rows.set(columns[k]!.channel, row, values[k]!);
+  for (let k = 0; k < columns.length; k++) rows.set(columns[k].channel, row, values[k]);
 }
 
 function tellTable(tally: Tally): void {

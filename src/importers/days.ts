@@ -54,12 +54,12 @@ export class DayCount {
     const source = SOURCES.find((one) => this.#bases.has(one));
     const bases = source ? this.#bases.get(source)! : Number.isNaN(date) ? [] : [{ row: 0, base: date * DAY }];
     if (bases.length === 0) return false;
-    const shift = source ? rolledOver(bases[0]!.base, date, tally) : 0;
+    const shift = source ? rolledOver(bases[0].base, date, tally) : 0;
     let k = 0;
     for (let row = 0; row < rows.length; row++) {
-      while (k + 1 < bases.length && bases[k + 1]!.row <= row) k++;
+      while (k + 1 < bases.length && bases[k + 1].row <= row) k++;
       const time = rows.time(row);
-      if (!Number.isNaN(time)) rows.setTime(row, time + bases[k]!.base + shift);
+      if (!Number.isNaN(time)) rows.setTime(row, time + bases[k].base + shift);
     }
     return true;
   }

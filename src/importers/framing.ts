@@ -50,9 +50,9 @@ export async function eachLine(
 
 function trimmed(data: Uint8Array, from: number, to: number): Uint8Array {
   let end = to;
-  while (end > from && (data[end - 1]! <= 32 || data[end - 1] === 0)) end--;
+  while (end > from && (data[end - 1] <= 32 || data[end - 1] === 0)) end--;
   let start = from;
-  while (start < end && data[start]! <= 32) start++;
+  while (start < end && data[start] <= 32) start++;
   return data.subarray(start, end);
 }
 
@@ -71,7 +71,7 @@ export interface Sentence {
 export function sentencesOf(line: Uint8Array): (Sentence | undefined)[] {
   const starts: number[] = [];
   for (let at = 0; at < line.length; at++) {
-    const byte = line[at]!;
+    const byte = line[at];
     if (byte !== DOLLAR && byte !== BANG) continue;
     if (starts.length === 0 || line[at - 3] === STAR) starts.push(at);
   }
@@ -106,9 +106,9 @@ function sentenceAt(line: Uint8Array, from: number, start: number, end: number):
 function checkOf(line: Uint8Array, start: number, end: number): Check {
   let sum = 0;
   let at = start + 1;
-  for (; at < end && line[at] !== STAR; at++) sum ^= line[at]!;
+  for (; at < end && line[at] !== STAR; at++) sum ^= line[at];
   if (at >= end - 1) return 'missing';
-  const written = hex(line[at + 1]!) * 16 + hex(line[at + 2] ?? 0);
+  const written = hex(line[at + 1]) * 16 + hex(line[at + 2] ?? 0);
   return at + 3 === end && written === sum ? 'good' : 'bad';
 }
 
@@ -150,8 +150,8 @@ function tagStamp(text: string): Stamp {
   const block = /^\\([^\\]*)\*([0-9A-Fa-f]{2})\\/.exec(text);
   if (!block) return NO_STAMP;
   let sum = 0;
-  for (let at = 0; at < block[1]!.length; at++) sum ^= block[1]!.charCodeAt(at);
-  const time = /(?:^|,)c:(\d+(?:\.\d+)?)/.exec(block[1]!);
-  if (!time || sum !== parseInt(block[2]!, 16)) return NO_STAMP;
-  return { seconds: fromUnix(readDecimal(time[1]!)), zoned: true, dayless: false };
+  for (let at = 0; at < block[1].length; at++) sum ^= block[1].charCodeAt(at);
+  const time = /(?:^|,)c:(\d+(?:\.\d+)?)/.exec(block[1]);
+  if (!time || sum !== parseInt(block[2], 16)) return NO_STAMP;
+  return { seconds: fromUnix(readDecimal(time[1])), zoned: true, dayless: false };
 }

@@ -62,7 +62,7 @@ export function findLayout(text: string, options: ImportOptions, tally: Tally): 
   let best: Candidate | undefined;
   for (const delimiter of DELIMITERS) {
     for (let line = 0; line < Math.min(lines.length, PREAMBLE); line++) {
-      const candidate = judge(lines[line]!, line, delimiter, options);
+      const candidate = judge(lines[line], line, delimiter, options);
       if (candidate && candidate.score > (best?.score ?? 0)) best = candidate;
     }
   }
@@ -129,7 +129,7 @@ function numbered(lines: readonly string[], options: ImportOptions): Candidate |
   const first = lines.find((line) => line.trim() !== '');
   if (said.length === 0 || first === undefined) return undefined;
   const count = (delimiter: string): number => first.split(delimiter).length;
-  const delimiter = DELIMITERS.toSorted((a, b) => count(b) - count(a))[0]!;
+  const delimiter = DELIMITERS.toSorted((a, b) => count(b) - count(a))[0];
   const headers = Array.from({ length: count(delimiter) }, (_, k) => String(k + 1));
   const meanings = headers.map((header) => meaningOf(header, options));
   return { delimiter, line: -1, headers, meanings, score: 1 };

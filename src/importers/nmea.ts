@@ -140,7 +140,7 @@ class NmeaLog {
       const base = Math.round((this.#leadNow - seconds) / DAY);
       this.days.dated('logger', fix.row, base + Math.floor(seconds / DAY), seconds);
     }
-    const rank = reading.position.decimals * 4 + RANK[formatter]!;
+    const rank = reading.position.decimals * 4 + RANK[formatter];
     if (rank > fix.rank) {
       fix.rank = rank;
       this.#rows.set('lat', fix.row, reading.position.lat);

@@ -14,13 +14,13 @@ export function longestOrdered(time: Float64Array): Uint32Array {
   const ends = new Int32Array(n);
   let longest = 0;
   for (let i = 0; i < n; i++) {
-    const at = firstAbove(time, ends, longest, time[i]!);
-    before[i] = at > 0 ? ends[at - 1]! : -1;
+    const at = firstAbove(time, ends, longest, time[i]);
+    before[i] = at > 0 ? ends[at - 1] : -1;
     ends[at] = i;
     if (at === longest) longest++;
   }
   const kept = new Uint32Array(longest);
-  for (let k = longest - 1, i = ends[longest - 1]!; k >= 0; k--) {
+  for (let k = longest - 1, i = ends[longest - 1]; k >= 0; k--) {
     kept[k] = i;
     i = before[i]!;
   }
@@ -28,7 +28,7 @@ export function longestOrdered(time: Float64Array): Uint32Array {
 }
 
 function isOrdered(time: Float64Array): boolean {
-  for (let i = 1; i < time.length; i++) if (time[i]! < time[i - 1]!) return false;
+  for (let i = 1; i < time.length; i++) if (time[i] < time[i - 1]) return false;
   return true;
 }
 
@@ -38,7 +38,7 @@ function firstAbove(time: Float64Array, ends: Int32Array, count: number, value: 
   let high = count;
   while (low < high) {
     const middle = (low + high) >>> 1;
-    if (time[ends[middle]!]! > value) high = middle;
+    if (time[ends[middle]] > value) high = middle;
     else low = middle + 1;
   }
   return low;
@@ -49,8 +49,8 @@ export function isReversed(time: Float64Array): boolean {
   let back = 0;
   let on = 0;
   for (let i = 1; i < time.length; i++) {
-    if (time[i]! < time[i - 1]!) back++;
-    else if (time[i]! > time[i - 1]!) on++;
+    if (time[i] < time[i - 1]) back++;
+    else if (time[i] > time[i - 1]) on++;
   }
   return back >= 3 && back > 20 * on;
 }

@@ -33,10 +33,10 @@ export function placeBetween(rows: LogRows, anchors: Uint32Array, tally: Tally, 
     if (stretch.waiting.length === 0) continue;
     const times = (lead && timesByLead(stretch, lead)) ?? timesByTurn(stretch, usual);
     stretch.waiting.forEach((row, k) => {
-      const away = Number.isNaN(stretch.start) ? stretch.end - times[k]! : times[k]! - stretch.start;
+      const away = Number.isNaN(stretch.start) ? stretch.end - times[k] : times[k] - stretch.start;
       const between = stretch.before >= 0 && stretch.after >= 0;
       if (between || away <= REACH) {
-        rows.setTime(row, times[k]!);
+        rows.setTime(row, times[k]);
         placed[n++] = row;
       } else tally.reject('no time, and no time stamp near it', rows.line(row), rows.records(row));
     });
@@ -46,8 +46,8 @@ export function placeBetween(rows: LogRows, anchors: Uint32Array, tally: Tally, 
 
 function* stretches(rows: LogRows, anchors: Uint32Array): Generator<Stretch> {
   for (let k = 0; k <= anchors.length; k++) {
-    const before = k > 0 ? anchors[k - 1]! : -1;
-    const after = k < anchors.length ? anchors[k]! : -1;
+    const before = k > 0 ? anchors[k - 1] : -1;
+    const after = k < anchors.length ? anchors[k] : -1;
     const waiting: number[] = [];
     const to = after >= 0 ? after : rows.length;
     for (let row = before + 1; row < to; row++)
@@ -70,7 +70,7 @@ function usualStep(rows: LogRows, anchors: Uint32Array): number {
     if (waiting.length > 0 && !Number.isNaN(step)) steps.push(step);
   }
   const sorted = Float64Array.from(steps).sort();
-  return sorted.length > 0 ? sorted[sorted.length >> 1]! : NaN;
+  return sorted.length > 0 ? sorted[sorted.length >> 1] : NaN;
 }
 
 /** Evenly, or at the usual rate where one side is open or the log paused. */
@@ -88,7 +88,7 @@ function timesByLead(stretch: Stretch, lead: GrowingColumn): number[] | undefine
   const { waiting, before, after, start, end } = stretch;
   const rows = [...(before >= 0 ? [before] : []), ...waiting, ...(after >= 0 ? [after] : [])];
   const stamps = rows.map((row) => lead.get(row));
-  if (stamps.some((stamp, k) => Number.isNaN(stamp) || (k > 0 && stamp <= stamps[k - 1]!))) return undefined;
+  if (stamps.some((stamp, k) => Number.isNaN(stamp) || (k > 0 && stamp <= stamps[k - 1]))) return undefined;
   if (before < 0) return waiting.map((row) => end - (lead.get(after) - lead.get(row)));
   const first = lead.get(before);
   const scale = after < 0 ? 1 : (end - start) / (lead.get(after) - first);

@@ -15,12 +15,12 @@ export class GrowingColumn {
   set(row: number, value: number): void {
     const block = row >>> 15;
     while (this.#blocks.length <= block) this.#blocks.push(new Float64Array(BLOCK).fill(this.#fill));
-    this.#blocks[block]![row & (BLOCK - 1)] = value;
+    this.#blocks[block][row & (BLOCK - 1)] = value;
   }
 
   get(row: number): number {
     const block = this.#blocks[row >>> 15];
-    return block ? block[row & (BLOCK - 1)]! : this.#fill;
+    return block ? block[row & (BLOCK - 1)] : this.#fill;
   }
 }
 

@@ -151,14 +151,14 @@ function rmc(f: readonly string[]): Reading {
     cog: course(f[7]),
     variation: sided(f[9], f[10], 'E', 'W'),
   };
-  return fixOf(f, 2, f[0]!, values, mode(f, 11) === 'S', day);
+  return fixOf(f, 2, f[0], values, mode(f, 11) === 'S', day);
 }
 
 function gga(f: readonly string[]): Reading {
   const quality = mode(f, 5);
   if (quality === '0') return fault(NO_FIX);
   if ((f[0] ?? '') === '') return fault('no time');
-  return fixOf(f, 1, f[0]!, {}, quality === '8');
+  return fixOf(f, 1, f[0], {}, quality === '8');
 }
 
 function gll(f: readonly string[]): Reading {
@@ -227,5 +227,5 @@ const DECODERS: Readonly<Record<string, (fields: readonly string[]) => Reading>>
 
 /** What the sentence of a formatter says; nothing when we do not read that one. */
 export function decode(formatter: string, fields: readonly string[]): Reading {
-  return (Object.hasOwn(DECODERS, formatter) ? DECODERS[formatter]! : () => NOTHING)(fields);
+  return (Object.hasOwn(DECODERS, formatter) ? DECODERS[formatter] : () => NOTHING)(fields);
 }

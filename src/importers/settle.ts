@@ -44,7 +44,7 @@ function stampedRows(rows: LogRows, tally: Tally): Uint32Array {
   }
   const timed = pieces.filter((piece) => !Number.isNaN(piece.first));
   const sorted = timed.toSorted((a, b) => Math.min(a.first, a.last) - Math.min(b.first, b.last));
-  if (sorted.some((piece, k) => k > 0 && piece.first < sorted[k - 1]!.last)) {
+  if (sorted.some((piece, k) => k > 0 && piece.first < sorted[k - 1].last)) {
     tally.issue('tracks-overlap', 'Tracks or segments inside the log overlap in time; they are read as one recording.');
   }
   const stamped = new Uint32Array(rows.length);
@@ -68,9 +68,9 @@ function keepOrder(rows: LogRows, stamped: Uint32Array, tally: Tally): Uint32Arr
   let k = 0;
   for (let i = 0; i < stamped.length; i++) {
     if (k < kept.length && kept[k] === i) k++;
-    else tally.reject('time out of order', rows.line(stamped[i]!), rows.records(stamped[i]!));
+    else tally.reject('time out of order', rows.line(stamped[i]), rows.records(stamped[i]));
   }
-  return kept.map((i) => stamped[i]!);
+  return kept.map((i) => stamped[i]);
 }
 
 function tellSteps(tally: Tally): void {
@@ -101,8 +101,8 @@ function gather(rows: LogRows, placed: Uint32Array, name: string): Settled {
     const values = new Float64Array(order.length);
     let present = 0;
     for (let i = 0; i < order.length; i++) {
-      values[i] = column.get(order[i]!);
-      if (Number.isNaN(values[i]!)) continue;
+      values[i] = column.get(order[i]);
+      if (Number.isNaN(values[i])) continue;
       present++;
       if (WIND.includes(channel)) windy[i] = 1;
     }
@@ -123,7 +123,7 @@ function findBreaks(order: Uint32Array, pieces: readonly number[]): number[] {
     if (row >= from && row < to) return;
     const next = pieces.findIndex((start) => start > row);
     from = next === 0 ? 0 : (pieces.at(next < 0 ? -1 : next - 1) ?? 0);
-    to = next < 0 ? Infinity : pieces[next]!;
+    to = next < 0 ? Infinity : pieces[next];
     if (i > 0) breaks.push(i);
   });
   return breaks;

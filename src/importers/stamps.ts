@@ -26,13 +26,13 @@ export function resolveStamps(rows: LogRows, order: Uint32Array, tally: Tally): 
   let typical = NaN;
   let step = NaN;
   for (let from = 0, to = 0; from < order.length; from = to) {
-    const stamp = rows.time(order[from]!);
-    for (to = from + 1; to < order.length && rows.time(order[to]!) === stamp;) to++;
+    const stamp = rows.time(order[from]);
+    for (to = from + 1; to < order.length && rows.time(order[to]) === stamp;) to++;
     if (to - from > 1) {
       const slots = sortOut(rows, channels, order.subarray(from, to), tally);
       if (slots.rows.length > 1) {
         if (Number.isNaN(typical)) typical = medianStep(rows, order);
-        const next = to < order.length ? rows.time(order[to]!) - stamp : Infinity;
+        const next = to < order.length ? rows.time(order[to]) - stamp : Infinity;
         const span = to < order.length || Number.isNaN(step) ? next : step * slots.count;
         step = spread(rows, slots, stamp, Math.min(span, next, FARTHEST * typical), tally);
       }
@@ -50,7 +50,7 @@ interface Slots {
 }
 
 function sortOut(rows: LogRows, channels: readonly Channel[], group: Uint32Array, tally: Tally): Slots {
-  const slots: Slots = { rows: [group[0]!], turns: [0], count: 1 };
+  const slots: Slots = { rows: [group[0]], turns: [0], count: 1 };
   for (const row of group.subarray(1)) {
     const held = slots.rows.at(-1)!;
     const twin = compare(rows, channels, held, row);
@@ -111,10 +111,10 @@ function spread(rows: LogRows, slots: Slots, stamp: number, span: number, tally:
   }
   const step = span / slots.count;
   slots.rows.forEach((row, k) => {
-    rows.setTime(row, stamp + step * slots.turns[k]!);
+    rows.setTime(row, stamp + step * slots.turns[k]);
     if (k > 0) tally.notice('clock-steps', rows.line(row));
   });
-  tally.notice('stepped stamps', rows.line(slots.rows[0]!));
+  tally.notice('stepped stamps', rows.line(slots.rows[0]));
   return step;
 }
 
@@ -122,10 +122,10 @@ function spread(rows: LogRows, slots: Slots, stamp: number, span: number, tally:
 function medianStep(rows: LogRows, order: Uint32Array): number {
   const steps: number[] = [];
   for (let i = 1; i < order.length; i++) {
-    const step = rows.time(order[i]!) - rows.time(order[i - 1]!);
+    const step = rows.time(order[i]) - rows.time(order[i - 1]);
     if (step > 0) steps.push(step);
   }
   if (steps.length === 0) return Infinity;
   const sorted = Float64Array.from(steps).sort();
-  return sorted[sorted.length >> 1]!;
+  return sorted[sorted.length >> 1];
 }

@@ -82,7 +82,7 @@ export function readOddTime(text: string, order: DateOrder): number {
     return daysFromCivil(Number(y), Number(m), Number(d)) * DAY + Number(hh) * 3600 + Number(mm) * 60 + Number(ss);
   }
   const parted = PARTED.exec(text);
-  return parted ? readDate(parted[1]!, order) * DAY + readTimeOfDay(parted[2]!) : NaN;
+  return parted ? readDate(parted[1], order) * DAY + readTimeOfDay(parted[2]) : NaN;
 }
 
 /** Offset written behind a time [s]; NaN when there is none. */
@@ -101,7 +101,7 @@ export function readDate(text: string, order: DateOrder): number {
   const parts = /^(\d{1,4})[-/.](\d{1,2})[-/.](\d{1,4})/.exec(text);
   if (!parts) return NaN;
   const [a, b, c] = [Number(parts[1]), Number(parts[2]), Number(parts[3])];
-  if (parts[1]!.length > 2) return daysFromCivil(a, b, c);
+  if (parts[1].length > 2) return daysFromCivil(a, b, c);
   const year = c < 80 ? 2000 + c : c < 100 ? 1900 + c : c;
   return order === 'day-first' ? daysFromCivil(year, b, a) : daysFromCivil(year, a, b);
 }

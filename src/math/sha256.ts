@@ -33,14 +33,14 @@ const K = rootsOfPrimes(64, 3);
 function compress(h: Int32Array, w: Int32Array, bytes: Uint8Array, from: number, to: number): void {
   for (let at = from; at < to; at += BLOCK) {
     for (let t = 0, i = at; t < 16; t++, i += 4) {
-      w[t] = (bytes[i]! << 24) | (bytes[i + 1]! << 16) | (bytes[i + 2]! << 8) | bytes[i + 3]!;
+      w[t] = (bytes[i] << 24) | (bytes[i + 1] << 16) | (bytes[i + 2] << 8) | bytes[i + 3];
     }
     for (let t = 16; t < 64; t++) {
-      const x = w[t - 15]!;
-      const y = w[t - 2]!;
+      const x = w[t - 15];
+      const y = w[t - 2];
       const σ0 = ((x >>> 7) | (x << 25)) ^ ((x >>> 18) | (x << 14)) ^ (x >>> 3);
       const σ1 = ((y >>> 17) | (y << 15)) ^ ((y >>> 19) | (y << 13)) ^ (y >>> 10);
-      w[t] = (w[t - 16]! + σ0 + w[t - 7]! + σ1) | 0;
+      w[t] = (w[t - 16] + σ0 + w[t - 7] + σ1) | 0;
     }
     rounds(h, w);
   }
@@ -48,17 +48,17 @@ function compress(h: Int32Array, w: Int32Array, bytes: Uint8Array, from: number,
 
 /** The 64 rounds of one block. */
 function rounds(h: Int32Array, w: Int32Array): void {
-  let a = h[0]!;
-  let b = h[1]!;
-  let c = h[2]!;
-  let d = h[3]!;
-  let e = h[4]!;
-  let f = h[5]!;
-  let g = h[6]!;
-  let k = h[7]!;
+  let a = h[0];
+  let b = h[1];
+  let c = h[2];
+  let d = h[3];
+  let e = h[4];
+  let f = h[5];
+  let g = h[6];
+  let k = h[7];
   for (let t = 0; t < 64; t++) {
     const Σ1 = ((e >>> 6) | (e << 26)) ^ ((e >>> 11) | (e << 21)) ^ ((e >>> 25) | (e << 7));
-    const t1 = (k + Σ1 + (g ^ (e & (f ^ g))) + K[t]! + w[t]!) | 0;
+    const t1 = (k + Σ1 + (g ^ (e & (f ^ g))) + K[t] + w[t]) | 0;
     const Σ0 = ((a >>> 2) | (a << 30)) ^ ((a >>> 13) | (a << 19)) ^ ((a >>> 22) | (a << 10));
     const t2 = (Σ0 + ((a & b) | (c & (a | b)))) | 0;
     k = g;
@@ -70,14 +70,14 @@ function rounds(h: Int32Array, w: Int32Array): void {
     b = a;
     a = (t1 + t2) | 0;
   }
-  h[0] = h[0]! + a;
-  h[1] = h[1]! + b;
-  h[2] = h[2]! + c;
-  h[3] = h[3]! + d;
-  h[4] = h[4]! + e;
-  h[5] = h[5]! + f;
-  h[6] = h[6]! + g;
-  h[7] = h[7]! + k;
+  h[0] = h[0] + a;
+  h[1] = h[1] + b;
+  h[2] = h[2] + c;
+  h[3] = h[3] + d;
+  h[4] = h[4] + e;
+  h[5] = h[5] + f;
+  h[6] = h[6] + g;
+  h[7] = h[7] + k;
 }
 
 /** The message's end: a one bit, zeros, and the length in bits as 64 bits [1, 5.1.1]. */
