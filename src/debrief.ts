@@ -1,6 +1,7 @@
 import type { LatLon, Race } from './files/race-types.js';
 import { eastOf, northOf } from './math/angles.js';
 import { toPlane } from './math/geo.js';
+import { median } from './math/median.js';
 import { logLawFactor } from './physics/air.js';
 import { UserError, type Issue } from './recording/issues.js';
 import type { Frame, Track } from './recording/track.js';
@@ -16,8 +17,9 @@ import { estimateBoat } from './steps/estimate-boat.js';
 import { errorModels } from './steps/error-model.js';
 import { findWind, type FoundWind } from './steps/find-wind.js';
 import { readLogs, type OpenLog, type ReadLogs } from './steps/read-logs.js';
-import { sail, type CurrentAt } from './steps/sail.js';
+import { sail, type CurrentAt, type Sailed } from './steps/sail.js';
 import { windSources } from './steps/wind-sources.js';
+import type { WindAtBoat } from './wind/field.js';
 import { checkRecording } from './steps/check-sensors.js';
 
 export interface DebriefOptions {
@@ -79,10 +81,31 @@ function sailAll(
   const sources = windSources(race, logs, clean, (height) => logLawFactor(height, RIG_HEIGHT));
   const course = coursePlaces(race, clean.frame);
   const current = currentOf(race);
-  const wind = findWind(tracks, sources, (boat, at) =>
-    sail(tracks[boat]!, at, current, (track) => courseFor(race, course, track), race.exclude, thresholds),
+  const sailIn = (boat: number, at: WindAtBoat, foundLeeward: Place | null): Sailed =>
+    sail(
+      tracks[boat],
+      at,
+      current,
+      (track) => ({ ...courseFor(race, course, track), foundLeeward }),
+      race.exclude,
+      thresholds,
+    );
+  const wind = findWind(tracks, sources, (boat, at) => sailIn(boat, at, null));
+  const bottom = course.leeward ? null : leewardOf(wind.sailed);
+  if (!bottom) return { wind, course };
+  return { wind: { ...wind, sailed: wind.atBoats.map((at, boat) => sailIn(boat, at, bottom)) }, course };
+}
+
+/** Where the boats rounded at the bottom: the middle of the ends of all downwind legs that a beat follows. */
+function leewardOf(sailed: readonly Sailed[]): Place | null {
+  const ends = sailed.flatMap((one) =>
+    one.legs.slice(0, -1).flatMap((leg, k) => {
+      const rounds = leg.kind === 'downwind' && one.legs[k + 1].kind === 'upwind';
+      return rounds ? [{ x: one.sailing.x[leg.to], y: one.sailing.y[leg.to] }] : [];
+    }),
   );
-  return { wind, course };
+  const place = { x: median(ends.map((end) => end.x)), y: median(ends.map((end) => end.y)) };
+  return Number.isNaN(place.x) ? null : place;
 }
 
 /** Height at which a dinghy's rig feels the wind, until the boat file says it: common practice, no source. [m] */
@@ -106,7 +129,7 @@ function coursePlaces(race: Race, frame: Frame): CoursePlaces {
   return { windward: place(race.marks.windward), leeward: place(race.marks.leeward) };
 }
 
-function courseFor(race: Race, places: CoursePlaces, track: Track): Course {
+function courseFor(race: Race, places: CoursePlaces, track: Track): Omit<Course, 'foundLeeward'> {
   const row = (time: number | null): number | null => (time === null ? null : time - track.t0);
   return {
     gun: row(race.start),
@@ -122,7 +145,11 @@ function currentOf(race: Race): CurrentAt | null {
   if (!readings || readings.length === 0) return null;
   const vectors = [...readings]
     .sort((a, b) => (a.time ?? -Infinity) - (b.time ?? -Infinity))
-    .map(({ time, set, drift }) => ({ time: time ?? -Infinity, east: drift * eastOf(set), north: drift * northOf(set) }));
+    .map(({ time, set, drift }) => ({
+      time: time ?? -Infinity,
+      east: drift * eastOf(set),
+      north: drift * northOf(set),
+    }));
   return (time) => {
     let k = 0;
     while (k + 1 < vectors.length && vectors[k + 1]!.time <= time) k++;

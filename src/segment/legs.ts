@@ -25,6 +25,8 @@ export interface Course {
   readonly runs: readonly RowRange[];
   readonly windward: Place | null;
   readonly leeward: Place | null;
+  /** Where the fleet was found to round at the bottom, for the end of the last leg; null = not looked for yet. */
+  readonly foundLeeward: Place | null;
 }
 
 /**
@@ -89,6 +91,8 @@ function slowWind(sailing: Sailing): Float64Array {
 interface Piece extends RowRange {
   /** Metres gained to windward, negative going down. */
   readonly rise: number;
+  /** Begins where another piece ends: at a mark. */
+  readonly follows: boolean;
 }
 
 /** Cuts a curve at its turning points: one is final once the curve has gone back by `turnBack`. */
@@ -100,7 +104,7 @@ function monotonePieces(progress: Float64Array, from: number, to: number, turnBa
   let low = from;
   let rising: boolean | null = null;
   const close = (at: number): void => {
-    if (at > start) pieces.push({ from: start, to: at, rise: progress[at] - progress[start] });
+    if (at > start) pieces.push({ from: start, to: at, rise: progress[at] - progress[start], follows: pieces.length > 0 });
     start = at;
   };
   for (let i = from; i < to; i++) {
@@ -196,23 +200,68 @@ function legStart(
   if (gun !== null && piece.rise > 0 && piece.from - gun < 120) return gun;
   const mark = piece.rise > 0 ? course.leeward : course.windward;
   if (mark && piece.from > 0) return closest(sailing, piece.from, mark);
-  if (piece.rise < 0) return turnDown(piece.from, angle);
-  if (course.gun !== null || piece.from === 0) return piece.from;
+  if (piece.from === 0) return 0;
+  if (piece.rise < 0) return corner(piece.from, angle, 1);
+  if (course.gun !== null || piece.follows) return corner(piece.from, angle, -1);
   return sustainedFrom(piece, angle, thresholds);
 }
 
 function legEnd(piece: Piece, sailing: Sailing, angle: Float64Array, course: Course): number {
   const mark = piece.rise > 0 ? course.windward : course.leeward;
   if (mark && piece.to < sailing.n - 1) return closest(sailing, piece.to, mark);
-  return piece.rise > 0 ? turnDown(piece.to, angle) : piece.to;
+  const turned = corner(piece.to, angle, piece.rise > 0 ? 1 : -1);
+  const finish = piece.rise < 0 && course.foundLeeward ? passing(sailing, piece, course.foundLeeward) : null;
+  return finish !== null && finish < turned - 10 ? finish : turned;
 }
 
-/** The windward turn near the highest point: the last row before it on which the boat was still close-hauled, plus one. */
-function turnDown(top: number, angle: Float64Array): number {
-  for (let i = Math.min(top, angle.length - 1); i > Math.max(0, top - 45); i--) {
-    if (Math.abs(angle[i]) < 80) return i + 1;
+/** A boat that comes this close to where others rounded has been there. [m] */
+const AT_MARK = 60;
+
+/** Row of a leg's closest approach to a place, if it comes close: the finish of a boat that sails on past it. */
+function passing(sailing: Sailing, piece: RowRange, place: Place): number | null {
+  let best = -1;
+  let least = AT_MARK;
+  for (let i = piece.from; i < piece.to; i++) {
+    const distance = Math.hypot(sailing.x[i]! - place.x, sailing.y[i]! - place.y);
+    if (distance < least) {
+      least = distance;
+      best = i;
+    }
   }
-  return top;
+  return best < 0 ? null : best;
+}
+
+/** Half the time over which the turn at a mark is looked at. [s] */
+const TURN_HALF = 4;
+/** A rounding turns at least this much in that time. [deg] */
+const TURN_LEAST = 12;
+/** How far from the turning point of the along-wind position the corner may lie. [s] */
+const CORNER_BEFORE = 40;
+const CORNER_AFTER = 20;
+
+/**
+ * The mark rounding near a turning point: where the angle to the wind opens (at the windward mark) or closes (at the
+ * leeward mark) fastest over 8 s. A tack's own opening is passed over: it begins head to wind.
+ *
+ * @param opening +1 at the windward mark, -1 at the leeward mark.
+ * @returns Row at which that turn begins; the turning point itself when the course does not turn near it (a finish, the end of the track).
+ */
+function corner(at: number, angle: Float64Array, opening: 1 | -1): number {
+  let best = at;
+  let most = TURN_LEAST;
+  const first = Math.max(TURN_HALF, at - CORNER_BEFORE);
+  const last = Math.min(angle.length - 1 - TURN_HALF, at + CORNER_AFTER);
+  for (let i = first; i <= last; i++) {
+    const before = Math.abs(angle[i - TURN_HALF]!);
+    const after = Math.abs(angle[i + TURN_HALF]!);
+    if (Math.min(before, after) < 35) continue;
+    const turned = opening * (after - before);
+    if (turned > most) {
+      most = turned;
+      best = i;
+    }
+  }
+  return best === at ? at : Math.max(0, best - TURN_HALF);
 }
 
 /** Without a gun a beat begins with its first close-hauled state that lasts. */

@@ -68,19 +68,22 @@ function between(states: readonly State[], k: number, turning: Float64Array, thr
   return { kind: 'gybe', before, after };
 }
 
-/** The close-hauled state after a turn through the wind, over a short reach if the boat came out of it low. */
+/**
+ * The state after a turn through the wind, if it was a tack: at least one of the two is close-hauled, neither is a run.
+ * Off a tack a boat may come out on a short reach, or reach to the mark from an overstood lay line.
+ */
 function tackTo(states: readonly State[], k: number, thresholds: Thresholds): Turn | null {
-  const entered = states[k];
-  const before = entered.point === 'upwind' ? entered : states[k - 1];
-  if (!before || before.point !== 'upwind' || before.side !== entered.side) return null;
-  if (entered !== before && entered.to - before.to > thresholds.maxTurn) return null;
-  for (let j = k + 1; j < states.length; j++) {
-    const after = states[j];
-    if (after.side === before.side || after.from - before.to > 2 * thresholds.maxTurn) return null;
-    if (after.point === 'upwind') return { kind: 'tack', before, after };
-    if (after.point === 'run') return null;
-  }
-  return null;
+  const entered = states[k]!;
+  const earlier = states[k - 1];
+  const viaReach =
+    entered.point === 'reach' &&
+    earlier?.point === 'upwind' &&
+    earlier.side === entered.side &&
+    entered.to - earlier.to <= thresholds.maxTurn;
+  const before = viaReach ? earlier : entered;
+  const after = states[k + 1]!;
+  if (before.point === 'run' || after.point === 'run') return null;
+  return before.point === 'upwind' || after.point === 'upwind' ? { kind: 'tack', before, after } : null;
 }
 
 /** Change of course between the middles of the two states' nearest ten seconds. [deg] */

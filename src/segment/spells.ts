@@ -1,3 +1,4 @@
+import { angleBetween, directionOf } from '../math/angles.js';
 import { median } from '../math/median.js';
 import type { Leg } from './legs.js';
 import type { Manoeuvre } from './manoeuvres.js';
@@ -141,7 +142,15 @@ function markStops(
   }
 }
 
-/** From the moment after the last tack from which the boat sails below its own angle to the end of the beat. */
+/** Steering within this of the bearing to the leg's end is steering for the mark. [deg] */
+const STEERING_FOR_MARK = 6;
+/** Half the stretch over which the course angle is judged. [s] */
+const FETCH_HALF = 12;
+
+/**
+ * From the moment after the last tack from which the boat sails below its own angle to the end of the beat: either by
+ * `fetching`, or by half of that while it steers for the place where the leg ends.
+ */
 function markFetching(
   sailing: Sailing,
   leg: Leg,
@@ -153,10 +162,18 @@ function markFetching(
   if (Number.isNaN(own)) return;
   const tacks = manoeuvres.filter((m) => m.kind === 'tack' && m.at > leg.from && m.at < leg.to);
   const first = tacks.at(-1)?.exit ?? leg.from;
+  const end = Math.min(leg.to, sailing.n - 1);
   let from = leg.to;
   for (let i = leg.to - Math.round(thresholds.rounding) - 1; i >= first; i--) {
-    const window = sailing.gamma.subarray(Math.max(first, i - 10), Math.min(leg.to, i + 11));
-    if (!(Math.abs(median(window)) > own + thresholds.fetching)) break;
+    const a = Math.max(first, i - FETCH_HALF);
+    const b = Math.min(leg.to, i + FETCH_HALF + 1);
+    const below = Math.abs(median(sailing.gamma.subarray(a, b))) - own;
+    const forMark = angleBetween(
+      directionOf(sailing.x[end]! - sailing.x[i]!, sailing.y[end]! - sailing.y[i]!),
+      directionOf(sailing.x[b - 1]! - sailing.x[a]!, sailing.y[b - 1]! - sailing.y[a]!),
+    );
+    const steersForMark = forMark < STEERING_FOR_MARK && below > thresholds.fetching / 2;
+    if (!(below > thresholds.fetching) && !steersForMark) break;
     from = i;
   }
   for (let i = from; i < leg.to; i++) {

@@ -71,12 +71,16 @@ function estimateLeg(
   };
 }
 
+/** When a boat is at a mark is known to about this: a rounding takes that long. [s] */
+const END_ERROR = 5;
+
 /** Mean velocity made good over a whole leg; its wind error is that of the settled part. */
 function wholeLeg(one: Sailed, leg: Leg, all: SteadyFigures | null, errors: ErrorModel): Figure | null {
   const { metres, seconds } = madeGood(one.sailing, leg.from, leg.to);
   if (seconds === 0) return null;
   const value = (leg.kind === 'downwind' ? -metres : metres) / seconds;
-  const receiver = errors.displacementSe(seconds) / seconds;
+  const ends = (Math.SQRT2 * END_ERROR * Math.abs(value)) / seconds;
+  const receiver = Math.hypot(errors.displacementSe(seconds) / seconds, ends);
   const se = all ? Math.hypot(all.vmg.se, receiver) : Math.hypot(receiver, 0.02 * Math.abs(value));
   return { value, se, sys: all ? all.vmg.sys : 0 };
 }

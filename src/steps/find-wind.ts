@@ -4,7 +4,7 @@ import type { Issue } from '../recording/issues.js';
 import { UserError } from '../recording/issues.js';
 import type { Track } from '../recording/track.js';
 import { tackSign } from '../segment/sailing.js';
-import { estimateLag, estimateOffset, type CourseBlock, type LagEstimate, type OffsetEstimate } from '../wind/align.js';
+import { estimateCarry, estimateLag, estimateOffset, type CourseBlock, type LagEstimate, type OffsetEstimate } from '../wind/align.js';
 import { windAtBoat, type CorrectedSource, type WindAtBoat } from '../wind/field.js';
 import { bisectorOf, guessWindDirection, windFromLooks, type DirectionLook } from '../wind/from-tracks.js';
 import { windSums, type WindSource } from '../wind/source.js';
@@ -39,15 +39,20 @@ export function findWind(tracks: readonly Track[], sources: readonly WindSource[
   const measured = sources.filter((source) => source.kind !== 'by-hand');
   if (measured.length === 0) return windFromTracks(tracks, sources, sailBoat);
   checkOverlap(tracks, measured);
-  let corrected: CorrectedSource[] = measured.map((source) => ({ source, offset: 0, lag: 0 }));
+  let corrected: CorrectedSource[] = measured.map((source) => ({ source, offset: 0, lag: 0, carry: 1 }));
   let offsets: (OffsetEstimate | null)[] = measured.map(() => null);
   let lags: (LagEstimate | null)[] = measured.map(() => null);
   let atBoats = tracks.map((track, boat) => windAtBoat(boat, track, corrected));
   let sailed = atBoats.map((wind, boat) => sailBoat(boat, wind));
   for (let round = 0; round < ROUNDS; round++) {
     lags = corrected.map(({ source }) => (source.kind === 'station' && !source.place ? lagOf(source, sailed) : null));
-    const lagged = measured.map((source, k) => ({ source, offset: 0, lag: usedLag(lags[k]) }));
-    offsets = lagged.map((one, k) => offsetOf(one, k, tracks, sailed, measured, sailBoat));
+    const lagged = measured.map((source, k) => ({
+      source,
+      offset: 0,
+      lag: usedLag(lags[k]),
+      carry: source.kind === 'station' && source.place ? estimateCarry(source, courseBlocks(sailed)) : 1,
+    }));
+    offsets = lagged.map((one, k) => offsetOf(one, k, tracks, measured, sailBoat));
     corrected = lagged.map((one, k) => ({ ...one, offset: offsets[k]?.offset ?? 0 }));
     atBoats = tracks.map((track, boat) => windAtBoat(boat, track, corrected));
     sailed = atBoats.map((wind, boat) => sailBoat(boat, wind));
@@ -92,7 +97,11 @@ function checkOverlap(tracks: readonly Track[], sources: readonly WindSource[]):
 }
 
 function lagOf(source: WindSource, sailed: readonly Sailed[]): LagEstimate | null {
-  const blocks: CourseBlock[] = sailed.flatMap((one, boat) =>
+  return estimateLag(source, courseBlocks(sailed));
+}
+
+function courseBlocks(sailed: readonly Sailed[]): CourseBlock[] {
+  return sailed.flatMap((one, boat) =>
     one.blocks.map((block) => ({
       boat,
       leg: block.leg,
@@ -100,9 +109,10 @@ function lagOf(source: WindSource, sailed: readonly Sailed[]): LagEstimate | nul
       time: block.time,
       seconds: block.seconds,
       course: block.course,
+      x: block.x,
+      y: block.y,
     })),
   );
-  return estimateLag(source, blocks);
 }
 
 /** Direction error of one source from the two tacks of the boats that use it, in its own uncorrected wind. */
@@ -110,14 +120,13 @@ function offsetOf(
   one: CorrectedSource,
   index: number,
   tracks: readonly Track[],
-  sailed: readonly Sailed[],
   sources: readonly WindSource[],
   sailBoat: SailBoat,
 ): OffsetEstimate | null {
   const gammas = tracks.flatMap((track, boat) => {
     if (!usesSource(boat, index, sources)) return [];
     const wind = windAtBoat(boat, track, [one]);
-    const again = one.offset === 0 && sources.length === 1 && one.lag === 0 ? sailed[boat]! : sailBoat(boat, wind);
+    const again = sailBoat(boat, wind);
     return tackDifferences(again, boat);
   });
   return estimateOffset(gammas, one.source.accuracyDir);
@@ -158,7 +167,7 @@ function windFromTracks(tracks: readonly Track[], hand: readonly WindSource[], s
     });
   }
   const first = byHand ?? constantSource(guess, span);
-  let corrected: CorrectedSource[] = [{ source: first, offset: 0, lag: 0 }];
+  let corrected: CorrectedSource[] = [{ source: first, offset: 0, lag: 0, carry: 1 }];
   let atBoats = tracks.map((track, boat) => windAtBoat(boat, track, corrected));
   let sailed = atBoats.map((wind, boat) => sailBoat(boat, wind));
   for (let round = 0; round < ROUNDS + 1; round++) {
@@ -167,7 +176,7 @@ function windFromTracks(tracks: readonly Track[], hand: readonly WindSource[], s
     const found = windFromLooks(looks, span);
     if (!found) break;
     const source = byHand ? { ...found.source, ...speedOf(byHand, found.source) } : found.source;
-    corrected = [{ source, offset: 0, lag: 0 }];
+    corrected = [{ source, offset: 0, lag: 0, carry: 1 }];
     atBoats = tracks.map((track, boat) => windAtBoat(boat, track, corrected));
     sailed = atBoats.map((wind, boat) => sailBoat(boat, wind));
   }

@@ -1,4 +1,5 @@
 import { turn } from '../math/angles.js';
+import { readAt } from './field.js';
 import { readWind, type WindSource } from './source.js';
 
 /** A settled block as alignment sees it. */
@@ -13,6 +14,9 @@ export interface CourseBlock {
   readonly seconds: number;
   /** Course through the water. [deg] */
   readonly course: number;
+  /** Middle, in the local plane. [m] */
+  readonly x: number;
+  readonly y: number;
 }
 
 /** Range in which a lag is sought. [s] */
@@ -77,11 +81,15 @@ function crossing(misfit: readonly number[], best: number, edge: number): number
   return Math.abs(inner - best) + Math.min(1, part);
 }
 
-/** Mean square of the course angle about its mean within each boat, leg and tack. [deg^2] */
+/** Mean square of the course angle about its mean within each boat's tacks, for a lag. [deg^2] */
 function spreadAt(source: WindSource, blocks: readonly CourseBlock[], lag: number): number {
+  return spreadOf(blocks, (block) => readWind(source, block.time - lag, Math.max(source.window, block.seconds)).direction);
+}
+
+function spreadOf(blocks: readonly CourseBlock[], windAt: (block: CourseBlock) => number): number {
   const groups = new Map<string, number[]>();
   for (const block of blocks) {
-    const { direction } = readWind(source, block.time - lag, Math.max(source.window, block.seconds));
+    const direction = windAt(block);
     if (Number.isNaN(direction)) continue;
     const key = `${block.boat}/${block.tack}`;
     const list = groups.get(key) ?? [];
@@ -97,6 +105,31 @@ function spreadAt(source: WindSource, blocks: readonly CourseBlock[], lag: numbe
   }
   return n > 0 && n >= 0.5 * blocks.length ? sum / n : NaN;
 }
+
+/** Shares of the travel time that are tried. */
+const CARRIES = [0, 0.25, 0.5, 0.75, 1];
+
+/**
+ * How much of the travel time at wind speed the wind takes from a placed sensor to the boats: 1 when shifts are carried
+ * along by the wind (the usual case, taken unless the log says otherwise), 0 when they reach the whole course at once.
+ * The share with the least spread of the course angles, if it beats 1 by clear evidence.
+ */
+export function estimateCarry(source: WindSource, blocks: readonly CourseBlock[]): number {
+  if (blocks.length < FEWEST_BLOCKS) return 1;
+  const n = INDEPENDENT * blocks.length;
+  const misfit = CARRIES.map(
+    (carry) =>
+      n * Math.log(spreadOf(blocks, (block) => readAt({ source, offset: 0, lag: 0, carry }, block).direction)),
+  );
+  let best = CARRIES.length - 1;
+  misfit.forEach((value, k) => {
+    if (value < misfit[best]!) best = k;
+  });
+  return misfit.at(-1)! - misfit[best]! > CARRY_EVIDENCE ? CARRIES[best]! : 1;
+}
+
+/** Fall of -2 log likelihood needed before shifts are taken not to be carried by the wind (chi-square, 2 %). */
+const CARRY_EVIDENCE = 5.4;
 
 /** Sailors differ this much between their tacks (half the difference of the two angles); common practice, no source. [deg] */
 const ASYMMETRY = 1;

@@ -8,6 +8,8 @@ export interface CorrectedSource {
   readonly offset: number;
   /** For sources whose place is not known: seconds by which the wind reaches the boats after the sensor. [s] */
   readonly lag: number;
+  /** For sources with a place: share of the travel time at wind speed by which the boats have the wind later. */
+  readonly carry: number;
 }
 
 /** Wind differs by about this over a kilometre of course (the demo's and the harness's too); common practice, no source. */
@@ -53,7 +55,7 @@ export function windAtBoat(
   return { twd, tws, distance };
 }
 
-interface Here {
+export interface Here {
   readonly x: number;
   readonly y: number;
   readonly time: number;
@@ -90,9 +92,9 @@ function combine(
   };
 }
 
-/** One source's wind as it is at the boat. */
-function readAt(
-  { source, offset, lag }: CorrectedSource,
+/** One source's wind as it is at a place and time, and how far away the sensor is. */
+export function readAt(
+  { source, offset, lag, carry }: CorrectedSource,
   here: Here,
 ): { direction: number; speed: number; distance: number } {
   const place = placeOf(source, here.time);
@@ -105,7 +107,7 @@ function readAt(
   const dy = here.y - place.y;
   const distance = Math.hypot(dx, dy);
   const downwind = -(dx * eastOf(slow.direction + offset) + dy * northOf(slow.direction + offset));
-  const travel = slow.speed > 0.5 ? downwind / slow.speed : 0;
+  const travel = slow.speed > 0.5 ? (carry * downwind) / slow.speed : 0;
   const delay = Number.isNaN(travel) ? 0 : Math.max(-600, Math.min(600, travel));
   const window = Math.min(LONGEST_WINDOW, Math.max(source.window, Math.abs(delay) / 3));
   const { direction, speed } = readWind(source, here.time - delay, window);

@@ -1,0 +1,268 @@
+import { circularMean, eastOf, northOf } from '../math/angles.js';
+import { LABEL, type LegRows } from '../segment/spells.js';
+import { tackSign, type RowRange, type Sailing, type Tack } from '../segment/sailing.js';
+import { estimateBlock } from './blocks.js';
+import type { Reference } from './reference.js';
+import { correlatedError, type ErrorModel, type Figure } from './steady.js';
+
+const RAD = Math.PI / 180;
+
+export const CAUSES = [
+  'manoeuvres',
+  'start',
+  'high',
+  'low',
+  'trim',
+  'speed',
+  'overstood',
+  'stopped',
+  'shifts',
+] as const;
+export type Cause = (typeof CAUSES)[number];
+
+export interface LedgerFigures {
+  readonly available: Figure;
+  readonly made: Figure;
+  readonly lost: Figure;
+  readonly entries: Readonly<Record<Cause, Figure>>;
+}
+
+/** A piece of a leg: a block of steady sailing (settled or fetching), or a window in which the boat was busy. */
+interface Piece extends RowRange {
+  readonly label: number;
+}
+
+/** Sums over a piece's rows: reference's best, made along the instantaneous and along the mean wind. [m], and seconds. */
+interface Sums {
+  readonly best: number;
+  readonly made: number;
+  readonly madeMean: number;
+  readonly seconds: number;
+}
+
+export interface LedgerInput {
+  readonly sailing: Sailing;
+  readonly tws: Float64Array;
+  readonly leg: RowRange;
+  readonly rows: LegRows;
+  readonly reference: Reference;
+  readonly errors: ErrorModel;
+  /** Share (0..1) of the low sailing after the last tack that overstanding explains. */
+  readonly overstoodShare: number;
+  /** Direction of the leg's mean wind where it is shared with other boats; else the leg's own. [deg] */
+  readonly meanWind?: number;
+}
+
+/**
+ * Where a beat's metres went. lost = available - made is divided so that the entries sum to it exactly:
+ *
+ *     available = sum V*(W),  made = sum V . w_mean
+ *     per block:  high or low = T V*(W) - T v(gamma, W) cos gamma;  speed = the rest of the block's sum V* - V . w
+ *     per window: its sum V* - V . w, less the blocks' mean rates of high, low and speed nearby times its length
+ *     shifts = sum V . w - V . w_mean
+ */
+export function legLedger(input: LedgerInput): LedgerFigures {
+  const { sailing, leg } = input;
+  const meanWind = input.meanWind ?? circularMean(sailing.twd.subarray(leg.from, leg.to)).mean;
+  const pieces = piecesOf(input.rows, leg);
+  const sums = pieces.map((piece) => sumOver(input, piece, meanWind));
+  const parts = pieces.map((piece, k) => (isBlock(piece) ? blockParts(input, piece, sums[k]!) : null));
+  const entries: Record<Cause, number> = Object.fromEntries(CAUSES.map((cause) => [cause, 0])) as never;
+  pieces.forEach((piece, k) => {
+    const sum = sums[k]!;
+    entries.shifts += sum.made - sum.madeMean;
+    const part = parts[k];
+    if (part) addBlock(entries, part, piece, input.overstoodShare);
+    else addWindow(entries, piece, sum, nearRates(pieces, parts, k));
+  });
+  const available = sums.reduce((total, sum) => total + sum.best, 0);
+  const made = sums.reduce((total, sum) => total + sum.madeMean, 0);
+  return withErrors(input, entries, available, made);
+}
+
+function isBlock(piece: Piece): boolean {
+  return piece.label === LABEL.settled || piece.label === LABEL.fetching;
+}
+
+/** Longest piece of fetching treated as one block. [s] */
+const FETCH_BLOCK = 30;
+
+/** Cuts a leg into settled blocks, fetching blocks and windows; rows in a gap are left out of both sides. */
+function piecesOf(rows: LegRows, leg: RowRange): Piece[] {
+  const pieces: Piece[] = [];
+  const { labels } = rows;
+  let k = 0;
+  while (k < labels.length) {
+    const label = labels[k]!;
+    let end = k + 1;
+    while (end < labels.length && labels[end] === label) end++;
+    if (label === LABEL.settled) {
+      const from = leg.from + k;
+      const blocks = rows.blocks.filter((block) => block.from >= from && block.from < leg.from + end);
+      pieces.push(...blocks.map((block) => ({ from: block.from, to: block.to, label })));
+    } else if (label === LABEL.fetching) {
+      const n = Math.max(1, Math.round((end - k) / FETCH_BLOCK));
+      for (let i = 0; i < n; i++) {
+        const from = leg.from + k + Math.round((i * (end - k)) / n);
+        pieces.push({ from, to: leg.from + k + Math.round(((i + 1) * (end - k)) / n), label });
+      }
+    } else if (label !== LABEL.gap) pieces.push({ from: leg.from + k, to: leg.from + end, label });
+    k = end;
+  }
+  return pieces;
+}
+
+function sumOver(input: LedgerInput, piece: RowRange, meanWind: number): Sums {
+  const { sailing, tws, reference } = input;
+  let best = 0;
+  let made = 0;
+  let madeMean = 0;
+  let seconds = 0;
+  for (let i = piece.from; i < piece.to; i++) {
+    const toWind = sailing.ux[i]! * eastOf(sailing.twd[i]!) + sailing.uy[i]! * northOf(sailing.twd[i]!);
+    const offered = reference.bestVmg(tws[i]!);
+    if (Number.isNaN(toWind + offered)) continue;
+    best += offered;
+    made += toWind;
+    madeMean += sailing.ux[i]! * eastOf(meanWind) + sailing.uy[i]! * northOf(meanWind);
+    seconds++;
+  }
+  return { best, made, madeMean, seconds };
+}
+
+interface BlockParts {
+  readonly seconds: number;
+  readonly high: number;
+  readonly low: number;
+  readonly speed: number;
+}
+
+function blockParts(input: LedgerInput, piece: Piece, sum: Sums): BlockParts {
+  const tack: Tack = input.sailing.gamma[piece.from]! >= 0 ? 'starboard' : 'port';
+  const block = estimateBlock(input.sailing, input.tws, { ...piece, tack, spell: 0 }, 0);
+  const { reference } = input;
+  const astray =
+    sum.seconds *
+    (reference.bestVmg(block.tws) - reference.speed(block.gamma, block.tws) * Math.cos(block.gamma * RAD));
+  const off = Number.isNaN(astray) ? 0 : Math.max(0, astray);
+  const isHigh = block.gamma < reference.bestGamma(block.tws);
+  return {
+    seconds: sum.seconds,
+    high: isHigh ? off : 0,
+    low: isHigh ? 0 : off,
+    speed: sum.best - sum.made - off,
+  };
+}
+
+function addBlock(entries: Record<Cause, number>, part: BlockParts, piece: Piece, overstoodShare: number): void {
+  const overstood = piece.label === LABEL.fetching ? overstoodShare * part.low : 0;
+  entries.high += part.high;
+  entries.low += part.low - overstood;
+  entries.overstood += overstood;
+  entries.speed += part.speed;
+}
+
+interface Rates {
+  readonly high: number;
+  readonly low: number;
+  readonly speed: number;
+}
+
+/** Blocks this close to a window say what high, low and speed went on costing in it. [s] */
+const NEAR = 90;
+
+/** Mean rates of high, low and speed in the settled blocks within 90 s on both sides of a window. [m/s] */
+function nearRates(pieces: readonly Piece[], parts: readonly (BlockParts | null)[], at: number): Rates {
+  const window = pieces[at]!;
+  let seconds = 0;
+  const sum = { high: 0, low: 0, speed: 0 };
+  pieces.forEach((piece, k) => {
+    const part = parts[k];
+    if (!part || piece.label !== LABEL.settled) return;
+    if (piece.to <= window.from - NEAR || piece.from >= window.to + NEAR) return;
+    seconds += part.seconds;
+    sum.high += part.high;
+    sum.low += part.low;
+    sum.speed += part.speed;
+  });
+  if (seconds === 0) return sum;
+  return { high: sum.high / seconds, low: sum.low / seconds, speed: sum.speed / seconds };
+}
+
+const WINDOW_CAUSE: Readonly<Record<number, Cause>> = {
+  [LABEL.manoeuvre]: 'manoeuvres',
+  [LABEL.unsettled]: 'manoeuvres',
+  [LABEL.start]: 'start',
+  [LABEL.rounding]: 'start',
+};
+
+function addWindow(entries: Record<Cause, number>, piece: Piece, sum: Sums, rates: Rates): void {
+  const total = sum.best - sum.made;
+  if (piece.label === LABEL.stopped) {
+    entries.stopped += total;
+    return;
+  }
+  const high = rates.high * sum.seconds;
+  const low = rates.low * sum.seconds;
+  const speed = rates.speed * sum.seconds;
+  entries.high += high;
+  entries.low += low;
+  entries.speed += speed;
+  entries[WINDOW_CAUSE[piece.label] ?? 'manoeuvres'] += total - high - low - speed;
+}
+
+/** How a share of error in wind speed shows in the reference's best VMG: d ln V* / d ln W, about 0.6; from the curve. */
+function elasticity(reference: Reference, tws: number): number {
+  return Math.log(reference.bestVmg(tws * 1.02) / reference.bestVmg(tws * 0.98)) / Math.log(1.02 / 0.98);
+}
+
+/**
+ * Errors of the entries. A direction error turns made-good on both tacks in opposite ways, which shows in speed and
+ * shifts; a wind speed error scales what was available, which shows in speed; the receiver shows where it was.
+ */
+function withErrors(
+  input: LedgerInput,
+  entries: Record<Cause, number>,
+  available: number,
+  made: number,
+): LedgerFigures {
+  const { sailing, tws, leg, rows, errors, reference } = input;
+  const blocks = rows.blocks.map((block) => estimateBlock(sailing, tws, block, 0));
+  const cross = blocks.map((b) => tackSign(b.tack) * b.seconds * b.speed * Math.sin(b.gamma * RAD) * RAD);
+  const offered = blocks.map((b) => b.seconds * reference.bestVmg(b.tws) * elasticity(reference, b.tws));
+  const direction = correlatedError(blocks, cross, errors.mismatch.direction);
+  const windSpeed = correlatedError(blocks, offered, errors.mismatch.speed);
+  const sum = (values: readonly number[]): number => values.reduce((total, value) => total + value, 0);
+  const seconds = blocks.map((b) => b.seconds);
+  const total = Math.max(1, sum(seconds));
+  const scale = (leg.to - leg.from) / total;
+  const imbalance = sum(cross);
+  const centred = cross.map((value, k) => value - (imbalance * seconds[k]!) / total);
+  const swing = correlatedError(blocks, centred, { ...errors.mismatch.direction, slow: 0 });
+  const receiver = Math.SQRT2 * errors.displacementSe(leg.to - leg.from);
+  const sysDirection = Math.abs(imbalance) * errors.sysDirection;
+  const sysWind = sum(offered) * scale * errors.sysSpeed;
+  const windows = leg.to - leg.from - total;
+  const speedRate = total > 0 ? (Math.hypot(direction, windSpeed) / total) * windows : 0;
+  const busy = Math.hypot(receiver, 0.5 * speedRate);
+  const figure = (value: number, se: number, sys = 0): Figure => ({ value, se: value === 0 ? 0 : se, sys });
+  const angleRate = Math.abs(entries.high) + Math.abs(entries.low);
+  const angle = Math.min(angleRate, Math.hypot(direction, 0.2 * angleRate));
+  return {
+    available: figure(available, windSpeed * scale, sysWind),
+    made: figure(made, Math.hypot(receiver, errors.leastGamma * RAD * Math.abs(sum(cross)))),
+    lost: figure(available - made, Math.hypot(receiver, windSpeed * scale), sysWind),
+    entries: {
+      manoeuvres: figure(entries.manoeuvres, busy),
+      start: figure(entries.start, busy),
+      high: figure(entries.high, angle, sysDirection),
+      low: figure(entries.low, angle, sysDirection),
+      trim: figure(0, 0),
+      speed: figure(entries.speed, Math.hypot(direction, windSpeed * scale, receiver), Math.hypot(sysDirection, sysWind)),
+      overstood: figure(entries.overstood, Math.hypot(receiver, 0.2 * entries.overstood)),
+      stopped: figure(entries.stopped, receiver),
+      shifts: figure(entries.shifts, swing * scale),
+    },
+  };
+}
+
