@@ -7,7 +7,7 @@ export const CAUSE_WORDS: Readonly<Record<Cause, string>> = {
   high: 'Sailing high',
   low: 'Sailing low',
   trim: 'Trim',
-  speed: 'Speed at the angle sailed',
+  speed: 'Speed for the angle',
   overstood: 'Overstanding',
   stopped: 'Stopped',
   shifts: 'Shifts',

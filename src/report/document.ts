@@ -1,5 +1,5 @@
 import { clientHash, clientScript, style, styleHash } from './generated/client.js';
-import { html, trusted, type Safe } from './html.js';
+import { html, verbatim, type Safe } from './html.js';
 import { sanitizeJson } from './json.js';
 
 export interface Document {
@@ -14,30 +14,24 @@ const POLICY = `default-src 'none'; script-src '${clientHash}'; style-src '${sty
 
 /** The whole page as one string. */
 export function document({ title, body, data }: Document): string {
-  const blocks = Object.entries(data).map(
-    ([id, value]) =>
-      html`<script type="application/json" id="${id}">
-        ${sanitizeJson(value)}
-      </script>`,
+  const blocks = Object.entries(data).map(([id, value]) =>
+    verbatim('script', ` type="application/json" id="${id}"`, sanitizeJson(value)),
   );
-  return html`<!doctype html>
-    <html lang="en">
-      <head>
-        <meta charset="utf-8" />
-        <meta http-equiv="Content-Security-Policy" content="${POLICY}" />
-        <meta name="viewport" content="width=device-width, initial-scale=1" />
-        <meta name="color-scheme" content="light dark" />
-        <meta name="generator" content="legwork" />
-        <title>${title}</title>
-        <style>
-          ${trusted(style)}
-        </style>
-      </head>
-      <body>
-        ${body} ${blocks}
-        <script>
-          ${trusted(clientScript)};
-        </script>
-      </body>
-    </html> `.safe;
+  const head = html`<meta charset="utf-8" />
+    <meta http-equiv="Content-Security-Policy" content="${POLICY}" />
+    <meta name="viewport" content="width=device-width, initial-scale=1" />
+    <meta name="color-scheme" content="light dark" />
+    <meta name="generator" content="legwork" />
+    <title>${title}</title>`;
+  const parts = [
+    '<!doctype html>\n<html lang="en">\n<head>',
+    head.safe,
+    verbatim('style', '', style).safe,
+    '</head>\n<body>',
+    body.safe,
+    ...blocks.map((block) => block.safe),
+    verbatim('script', '', clientScript).safe,
+    '</body>\n</html>\n',
+  ];
+  return parts.join('\n');
 }

@@ -64,7 +64,7 @@ function trim(value: number): string {
 
 /** How a quantity is known, as one sentence for hover, focus or a tap. */
 export function errorSentence(q: Quantity, unit: Unit): string {
-  const digits = DIGITS[unit] + (unit === 'm' || unit === 'percent' ? 0 : 0);
+  const digits = unit === 'm' ? 1 : DIGITS[unit];
   const parts = [
     q.se === null ? 'no error could be stated' : `±\u00a0${withUnit(q.se, unit, digits)} (one standard error)`,
     ...(q.sys
@@ -84,6 +84,8 @@ export interface QuantityOptions {
   readonly digits?: number;
   /** Leave the visible error out (it stays in the note). */
   readonly bare?: boolean;
+  /** Leave the unit to the head of the row. */
+  readonly unitless?: boolean;
 }
 
 /**
@@ -94,7 +96,7 @@ export interface QuantityOptions {
  */
 export function quantity(q: Q, unit: Unit, options: QuantityOptions = {}): Safe {
   if (!q) return html`<span class="none" title="not known">–</span>`;
-  const { times = 1, sign = false, digits = DIGITS[unit], bare = false } = options;
+  const { times = 1, sign = false, digits = DIGITS[unit], bare = false, unitless = false } = options;
   const shown = scaled(q, times);
   const pm =
     shown.se !== null && !bare
@@ -105,10 +107,9 @@ export function quantity(q: Q, unit: Unit, options: QuantityOptions = {}): Safe 
   return html`<button
     type="button"
     class="q b-${q.basis}"
-    data-note="${errorSentence(shown, unit)}"
     title="${errorSentence(shown, unit)}"
   >
-    ${number(shown.value, digits, sign)}<span class="u">${SUFFIX[unit]}</span>${pm}
+    ${number(shown.value, digits, sign)}${!unitless && html`<span class="u">${SUFFIX[unit]}</span>`}${pm}
   </button>`;
 }
 

@@ -31,9 +31,19 @@ function render(part: Part): string {
 
 /** Tagged template: the literal pieces are markup, everything in `${}` is text unless it came from `html`. */
 export function html(pieces: TemplateStringsArray, ...parts: readonly Part[]): Safe {
-  let out = pieces[0];
-  for (let i = 0; i < parts.length; i++) out += render(parts[i]) + pieces[i + 1];
+  let out = folded(pieces[0]!);
+  for (let i = 0; i < parts.length; i++) out += render(parts[i]) + folded(pieces[i + 1]!);
   return { safe: out };
+}
+
+/** Line breaks of the source mean no more in markup than one space. */
+function folded(piece: string): string {
+  return piece.includes('\n') ? piece.replace(/\s*\n\s*/g, ' ') : piece;
+}
+
+/** An element whose content must stand as it is, byte for byte: a script, a style sheet, data. */
+export function verbatim(tag: 'script' | 'style', attributes: string, content: string): Safe {
+  return { safe: `<${tag}${attributes}>${content}</${tag}>` };
 }
 
 /** Markup from a chart or from a build step; the caller answers for it. */

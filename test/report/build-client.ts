@@ -46,10 +46,10 @@ export async function buildClient(): Promise<string> {
     '/* Made by `npm run build:client` from src/report/client and style.css. Do not edit. */',
     '/* prettier-ignore */',
     `export const clientScript = ${JSON.stringify(js)};`,
-    `export const clientHash = ${JSON.stringify(digest(js))};`,
+    `export const clientHash = '${digest(js)}';`,
     '/* prettier-ignore */',
     `export const style = ${JSON.stringify(css)};`,
-    `export const styleHash = ${JSON.stringify(digest(css))};`,
+    `export const styleHash = '${digest(css)}';`,
     '',
   ].join('\n');
 }

@@ -19,7 +19,7 @@ describe('the page as a string', () => {
   test('a hostile name never becomes markup, in either page', () => {
     const { result, series } = renamed(sample(), HOSTILE);
     for (const page of [debriefPage(result, series), comparePage(result, series)]) {
-      expect(page).not.toContain('<img');
+      expect(page.includes('<img')).toBe(false);
       expect(page.match(/<script/g)).toHaveLength(page.match(/<\/script>/g)!.length);
       expect(page).toContain('&lt;img src=x onerror=alert(1)&gt;');
     }
@@ -31,7 +31,7 @@ describe('the page as a string', () => {
     const body = page.slice(page.indexOf('<body>')).replace(/<script[\s\S]*?<\/script>/g, '');
     expect(body).not.toMatch(/\s(?:style|on[a-z]+)="/);
     expect(body).not.toMatch(/\s(?:src|href)="(?!#)/);
-    expect(page).toContain("default-src 'none'");
+    expect(page).toContain("default-src &#39;none&#39;");
   });
 
   test.each([

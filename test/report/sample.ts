@@ -114,11 +114,10 @@ function simulate(helm: Helm, seed: number): Sim {
     y += speed * northOf(course);
     const target = mode === 'up' ? BEAT : 0;
     const toGo = mode === 'up' ? target - up : up;
-    const half = mode === 'up' ? Math.tan(helm.gamma * RAD) : Math.tan(38 * RAD);
-    // Wind over the starboard side takes a boat going upwind to the left of the course, and to the right going down.
-    const side = mode === 'up' ? -tack : tack;
-    const outside = side * right > Math.min(helm.corridor, Math.max(6, toGo * half));
-    if (outside && sinceTurn > 35) {
+    const half = Math.tan((mode === 'up' ? helm.gamma : 38) * RAD);
+    // Wind over the starboard side takes a boat to the left of the wind's eye, upwind and down.
+    const limit = Math.min(mode === 'up' ? helm.corridor : 90, Math.max(6, toGo * half));
+    if (-tack * right > limit && sinceTurn > 30 && toGo > 25) {
       tacks.push({ at: i, from: tack, kind: mode === 'up' ? 'tack' : 'gybe' });
       tack = -tack;
       sinceTurn = 0;

@@ -17,7 +17,7 @@ export interface DragAngleOptions {
 }
 
 export const DRAG_DEFAULTS: DragAngleOptions = { width: 460, rowHeight: 46 };
-const LEFT = 118;
+const LEFT = 142;
 
 /** Rig and hull drag angles end to end: together they are the course angle to the apparent wind. */
 export function dragAngles(rows: readonly DragAngleRow[], options: Partial<DragAngleOptions> = {}): string {

@@ -12,7 +12,7 @@ export interface PolarOptions {
   readonly height: number;
 }
 
-export const POLAR_DEFAULTS: PolarOptions = { width: 460, height: 420 };
+export const POLAR_DEFAULTS: PolarOptions = { width: 460, height: 330 };
 
 interface Fan {
   readonly cx: number;
@@ -25,10 +25,8 @@ interface Fan {
 export function polar(result: Result, series: RaceSeries, options: Partial<PolarOptions> = {}): string {
   const o = { ...POLAR_DEFAULTS, ...options };
   const speeds = series.boats.flatMap((b) => b.blocks.map((k) => toKnots(k.speed)));
-  const limit = Math.max(
-    3,
-    Math.ceil(Math.max(0, ...speeds, ...result.boats.map((b) => optimumOf(b, 'speed_kn')?.value ?? 0)) + 0.3),
-  );
+  const known = result.boats.map((b) => optimumOf(b, 'speed_kn')?.value ?? 0);
+  const limit = Math.max(3, 0.3 + Math.max(0, ...speeds, ...known));
   const cy = o.height - 26;
   const scale = scaleLinear([0, limit], [0, Math.min(cy - 16, o.width / 2 / Math.sin(64 * RAD) - 18)]);
   const fan: Fan = { cx: o.width / 2, cy, r: scale, limit };
@@ -91,6 +89,9 @@ function rings(fan: Fan): string {
   return out.join('');
 }
 
+/** A paper-coloured edge keeps words legible over lines. */
+const EDGE = { 'paint-order': 'stroke', stroke: PAPER, 'stroke-width': 3.5 };
+
 /** Equal VMG is a level line: the best of the day, and the bound set by the angle to the apparent wind. */
 function vmgLines(result: Result, fan: Fan, width: number): string {
   const best = dayBest(result);
@@ -100,7 +101,7 @@ function vmgLines(result: Result, fan: Fan, width: number): string {
     const y = fan.cy - fan.r(knots);
     return (
       line(20, y, width - 20, y, INK, { 'stroke-width': 0.9, 'stroke-dasharray': dash }) +
-      text(22, y - 4, words, { size: 11, italic: true })
+      text(width / 2, y - 4, words, { size: 11, italic: true, anchor: 'middle', extra: EDGE })
     );
   };
   return (

@@ -26,7 +26,7 @@ export function tackOverlay(boat: BoatSeries, options: Partial<TackOverlayOption
   const curves = tacks.map((k) => curveOf(boat, boat.manoeuvres[k]!.at, o));
   const values = curves.flatMap((c) => c.map((p) => p[1])).filter(Number.isFinite);
   const x = scaleLinear([-o.before, o.after], [44, o.width - 12]);
-  const y = scaleLinear([Math.min(0, ...values), Math.max(1, ...values)], [o.height - 28, 22]).nice(4);
+  const y = scaleLinear(reachOf(values), [o.height - 28, 22]).nice(4);
   const body = [
     leftAxis(y, 44, o.width - 12, { count: 4 }),
     footAxis(x, o.height - 28, { count: 6 }),
@@ -43,6 +43,11 @@ export function tackOverlay(boat: BoatSeries, options: Partial<TackOverlayOption
     line(44, o.height - 28, o.width - 12, o.height - 28, RULE),
   ];
   return picture(o.width, o.height, labelOf(boat, tacks.length, curves), body.join(''), { class: 'tack-overlay' });
+}
+
+/** A rounding among the tacks must not flatten the rest: two knots astern is as far as the sheet goes. */
+function reachOf(values: readonly number[]): [number, number] {
+  return [Math.max(-2, Math.min(0, ...values)), Math.max(1, ...values)];
 }
 
 type Point = readonly [seconds: number, knots: number];
@@ -67,7 +72,7 @@ function curve(
   return el('path', {
     class: 'tack-curve',
     'data-turn': k,
-    d: pathOf(points.map(([t, v]) => [x(t), y(v)])),
+    d: pathOf(points.map(([t, v]) => [x(t), y(v < -2 ? NaN : v)])),
     fill: 'none',
     stroke: onto === 'port' ? PORT : STARBOARD,
     'stroke-dasharray': onto === 'port' ? '5 2.5' : undefined,

@@ -19,7 +19,7 @@ export interface WaterfallOptions {
 
 export const WATERFALL_DEFAULTS: WaterfallOptions = { width: 460, rowHeight: 27 };
 
-const LEFT = 168;
+const LEFT = 176;
 const RIGHT = 64;
 
 /** Where the steps of a waterfall begin and end: running sums before shifts, shifts apart from zero. */
@@ -55,7 +55,7 @@ export function waterfall(data: WaterfallData, options: Partial<WaterfallOptions
     totalRow(parts.lost, parts.steps.length * o.rowHeight, o, x),
     parts.shifts ? shiftRow(parts.shifts, (parts.steps.length + 1) * o.rowHeight + 8, o, x) : '',
     footAxis(x, foot, { count: 5 }),
-    text(o.width - RIGHT + 8, foot + 18, 'metres', { size: 11, italic: true, fill: SOFT }),
+    text(o.width, foot + 18, 'metres', { size: 11, italic: true, fill: SOFT, anchor: 'end' }),
   ];
   return picture(o.width, foot + 26, waterfallLabel(data), body.join(''), { class: 'waterfall' });
 }

@@ -1,1 +1,35 @@
-document.documentElement.classList.add('live');
+import { circularMean } from '../../math/angles.js';
+import { mountInstruments } from './instruments.js';
+import { createClock, localise } from './locale.js';
+import { mountMap } from './map.js';
+import { mountPicks } from './picks.js';
+import { readRace, type Race } from './race.js';
+import { mountScrub } from './scrub.js';
+import { mountSeries } from './series.js';
+import { createStore } from './store.js';
+import { mountStrips } from './strip.js';
+import { mountTips } from './tips.js';
+
+/** Mean wind of the race, the top of the chart. [deg true] */
+function meanWind(race: Race): number {
+  const { mean } = circularMean(race.boats.map((b) => circularMean(b.columns.twd).mean));
+  return Number.isFinite(mean) ? mean : 0;
+}
+
+function start(): void {
+  document.documentElement.classList.add('live');
+  const race = readRace();
+  const clock = createClock(race.zone);
+  localise(document, clock);
+  mountTips();
+  if (race.boats.length === 0) return;
+  const store = createStore(race.from, race.to);
+  mountMap(race, store, meanWind(race));
+  mountInstruments(race, store);
+  mountPicks(race, store, clock);
+  mountSeries(race, store, clock);
+  mountStrips(race, store);
+  mountScrub(race, store, clock);
+}
+
+start();

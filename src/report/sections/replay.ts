@@ -19,13 +19,20 @@ export function replay(result: Result, series: RaceSeries): Safe {
     'chart',
     'The race on the chart',
     html`<div class="bench">
-      <div class="map-frame">
-        <div class="map-tools" hidden></div>
-        ${trusted(trackMap(result, series))}
-        <p class="plate-words">Circles are tacks, squares gybes. ${marks}</p>
+        <div class="map-frame" tabindex="0" role="group" aria-label="Chart: arrow keys move it, plus and minus zoom">
+          <div class="map-tools" hidden></div>
+          ${trusted(trackMap(result, series))}
+          <p class="plate-words">
+            Circles are tacks, squares gybes. ${marks}
+            <span class="only-live"
+              >A finger or the mouse along a track moves the time; elsewhere it moves the chart. The red ray is the
+              course, the dark one the bow: between them lies leeway.</span
+            >
+          </p>
+        </div>
+        <div class="instruments" id="instruments" hidden></div>
       </div>
-      <div class="instruments" id="instruments" hidden></div>
-    </div>`,
+      <div id="strips" class="strips" hidden></div>`,
     'wide',
   );
 }
@@ -87,6 +94,6 @@ export function scrubBar(series: RaceSeries): Safe {
         <option value="leg">leg</option>
         <option value="ten">10 seconds</option></select
       ><button type="button" id="on" aria-label="Step on">▸</button></span
-    ><button type="button" id="run" aria-pressed="false">Run</button>
+    ><button type="button" id="run" aria-pressed="false">Run</button><p id="said" class="vh" aria-live="polite"></p>
   </div>`;
 }
