@@ -1,4 +1,5 @@
 import { factorAt, UNIFORM, type Activity } from './activity.js';
+import { dampedError } from './doppler.js';
 import type { Stretch } from './gaps.js';
 import { predict, startState, updatePosition, updateVelocity, type NoiseModel, type Observations } from './kalman.js';
 
@@ -17,6 +18,8 @@ export const RECEIVER = { correlated: 1.5, correlation: 80 } as const;
 export interface TrackNoise extends NoiseModel {
   /** Whether Doppler velocities took part. */
   readonly dopplerUsed: boolean;
+  /** By how much logged velocities trailed the fixes; undone. [s] */
+  readonly dopplerLag: number;
   /** Median step between fixes. [s] */
   readonly step: number;
 }
@@ -93,6 +96,7 @@ const BOUNDS: Record<Parameter, readonly [number, number]> = {
 export const DEFAULT_NOISE: TrackNoise = {
   ...toNoise({ accel: PRIOR.accel.value, white: PRIOR.white.value, drift: driftRate(RECEIVER), doppler: 0.1 }),
   dopplerUsed: false,
+  dopplerLag: 0,
   step: 1,
 };
 
@@ -119,17 +123,15 @@ const SAMPLE_ROWS = 700;
  *
  * @param observations Positions and Doppler velocities.
  * @param stretches    Where they hang together.
- * @param step         Median step between fixes. [s]
- * @param activity     How hard the boat manoeuvres, second by second.
+ * @param log          Median step between fixes [s], how hard the boat manoeuvres, lag undone in the velocities [s].
  */
 export function estimateNoise(
   observations: Observations,
   stretches: readonly Stretch[],
-  step: number,
-  activity: Activity = UNIFORM,
+  { step, activity, lag }: { step: number; activity: Activity; lag: number },
 ): TrackNoise {
   const pieces = samplePieces(stretches);
-  const hasDoppler = pieces.some(({ from, to }) => observations.vx.subarray(from, to).some((v) => v === v));
+  const hasDoppler = observations.vx.some((v) => v === v);
   const names: Parameter[] = hasDoppler ? ['accel', 'white', 'drift', 'doppler'] : ['accel', 'white', 'drift'];
   const score = (p: Parameters) =>
     pieces.reduce((sum, piece) => sum + logLikelihood(observations, piece, toNoise(p), activity), logPrior(p, names));
@@ -142,8 +144,9 @@ export function estimateNoise(
   if (pieces.length > 0) for (const factor of [4, 2, Math.SQRT2]) best = climb(best, names, factor, score);
   // Readings closer than the correlation time of the Doppler error do not count as so many.
   const crowding = Math.sqrt(Math.max(1, DOPPLER_CORRELATION / step));
-  const noise = toNoise({ ...best, doppler: best.doppler * crowding });
-  return { ...noise, dopplerUsed: hasDoppler, step };
+  const damped = dampedError(lag);
+  const noise = toNoise({ ...best, accel: best.accel * damped, doppler: best.doppler * crowding * damped });
+  return { ...noise, dopplerUsed: hasDoppler, dopplerLag: lag, step };
 }
 
 /** Up to eight pieces, evenly spread over the rows of the stretches. */

@@ -4,6 +4,7 @@ import type { Issue } from '../recording/issues.js';
 import type { Recording } from '../recording/recording.js';
 import type { Track } from '../recording/track.js';
 import { activityOf, type Activity } from './activity.js';
+import { dopplerLag, undoLag } from './doppler.js';
 import { findStretches, fixRows, stepping, type Gap, type Stretch } from './gaps.js';
 import { attachInstruments } from './instruments.js';
 import { smoothStretch, type Observations } from './kalman.js';
@@ -59,7 +60,9 @@ export function smoothTrack(recording: Recording, frame: Frame, options: SmoothO
   const near = dropFar(observations, findStretches(observations, breaks).stretches, rejections);
   const step = stepping(observations.time, fixRows(observations)).median;
   const activity = activityOf(observations, near, step);
-  const noise = options.noise ?? estimateNoise(observations, near, step, activity);
+  const lag = options.noise?.dopplerLag ?? dopplerLag(observations, near, activity);
+  if (lag > 0) undoLag(observations, lag, activity);
+  const noise = options.noise ?? estimateNoise(observations, near, { step, activity, lag });
   const jumps = gateAll(observations, near, noise, activity, rejections);
   breaks.push(...jumps.rows);
   breaks.sort((p, q) => p - q);
