@@ -117,7 +117,8 @@ export function rigCurve(rig: RigSpec, dragFactor = 1): (incidence: number, flat
   const stall = stallIncidence(rig);
   const full = cambered(rig, stall) * RAD * slope;
   const cdStall = rig.viscous * full * full + induced * rig.clMax ** 2;
-  const turned = stallTurn(stall, (2 * rig.viscous * full * slope) / (ACROSS - cdStall));
+  const filling = 1 + (rig.camber / LUFF) * Math.exp(-stall / LUFF);
+  const turned = stallTurn(stall, (2 * rig.viscous * full * slope * filling) / (ACROSS - cdStall));
   return (incidence, flat = 1) => {
     if (incidence > stall) {
       const θ = turned(incidence);
