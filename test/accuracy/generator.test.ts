@@ -158,14 +158,14 @@ describe('its logs', () => {
     }
   });
 
-  it('take under 150 ms for two boats and 75 minutes', () => {
+  it('take under 150 ms of processor time for two boats and 75 minutes', () => {
     const settings = condition('speed', {});
     const times = [1, 2, 3, 4, 5].map((seed) => {
-      const from = performance.now();
+      const from = process.cpuUsage();
       generateRace(settings, seed);
-      return performance.now() - from;
+      return process.cpuUsage(from).user / 1000;
     });
-    // The best of five: a shared machine may stall any one of them.
+    // The best of five: the first solves the boat's table, and a shared machine may slow any one of them.
     expect(Math.min(...times)).toBeLessThan(150);
   });
 });

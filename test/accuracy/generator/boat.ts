@@ -25,8 +25,8 @@ export interface BoatKind {
 }
 
 const AWA = [0, 12, 18, 22, 26, 30, 36, 44, 55, 70, 90, 110, 130, 150, 180];
-const LIFT = [0, 0.22, 0.66, 0.95, 1.13, 1.23, 1.31, 1.34, 1.31, 1.18, 0.97, 0.7, 0.44, 0.2, 0];
-const DRAG = [0.13, 0.14, 0.162, 0.186, 0.213, 0.245, 0.3, 0.385, 0.52, 0.72, 0.95, 1.12, 1.22, 1.28, 1.3];
+const LIFT = [0, 0.42, 0.8, 1.0, 1.13, 1.22, 1.3, 1.33, 1.3, 1.17, 0.97, 0.7, 0.44, 0.2, 0];
+const DRAG = [0.13, 0.148, 0.178, 0.204, 0.23, 0.262, 0.312, 0.39, 0.52, 0.72, 0.95, 1.12, 1.22, 1.28, 1.3];
 const KNOTS = [0, 1, 2, 3, 3.5, 4, 4.5, 4.8, 5.2, 5.6, 6, 7, 8, 9, 10, 12, 14];
 const NEWTON = [0, 4, 13, 28, 37, 48, 61, 71, 89, 111, 136, 196, 248, 300, 355, 470, 600];
 
@@ -122,6 +122,18 @@ interface Table {
   readonly heel: Float64Array;
 }
 
+/** Luffing, the steady state is a full stop, but a boat comes to it slowly: speed falls off gently below close-hauled. */
+function carryWay(table: Table): void {
+  for (let k = table.speed.length - 1; k > 0; k--) {
+    const gamma = ((k - 1) % GAMMA_COUNT) * GAMMA_STEP;
+    const carried = table.speed[k]! * (gamma >= 24 ? 0.86 : 0.6);
+    if (gamma > 42 || table.speed[k - 1]! >= carried) continue;
+    table.speed[k - 1] = carried;
+    table.leeway[k - 1] = table.leeway[k]! + 0.6;
+    table.heel[k - 1] = table.heel[k]!;
+  }
+}
+
 const tables = new Map<string, Table[]>();
 
 function tableOf(boat: BoatKind): Table[] {
@@ -135,6 +147,7 @@ function tableOf(boat: BoatKind): Table[] {
       const state = steadyState(boat, tws, (k % GAMMA_COUNT) * GAMMA_STEP, error);
       [table.speed[k], table.leeway[k], table.heel[k]] = state;
     }
+    carryWay(table);
     return table;
   });
   tables.set(boat.name, made);

@@ -341,7 +341,8 @@ function beat(watch: Watch): boolean {
   const belowOther = side * signed(bearing - groundCourse(watch, -side * close));
   if (below >= 0 && below < 170) {
     const needed = Math.abs(signed(boat.felt - bearing));
-    steerAt(watch, side * Math.max(close, Math.min(needed, close + below)), below > 1.5 ? 'fetch' : 'beat');
+    const fetching = below > (boat.phase === 'fetch' ? 0.3 : 1.5);
+    steerAt(watch, side * Math.max(close, Math.min(needed, close + below)), fetching ? 'fetch' : 'beat');
     return false;
   }
   if (happening(watch, distance)) return false;
