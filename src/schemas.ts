@@ -1,11 +1,15 @@
+import type { ZodType } from 'zod';
+
 /** JSON Schemas (draft 2020-12) of the files people write and of the files the program writes, by file name. */
 export async function jsonSchemas(): Promise<Map<string, object>> {
   const { z } = await import('zod');
   const { raceFileSchema } = await import('./files/race-schema.js');
+  const { boatFileSchema } = await import('./files/boat-schema.js');
   const results = await import('./result/schema.js');
-  const output = (schema: Parameters<typeof z.toJSONSchema>[0]): object => z.toJSONSchema(schema);
+  const output = (schema: ZodType): object => z.toJSONSchema(schema);
   return new Map<string, object>([
     ['race.schema.json', withExtensions(z.toJSONSchema(raceFileSchema, { io: 'input' }))],
+    ['boat.schema.json', withExtensions(z.toJSONSchema(boatFileSchema, { io: 'input' }))],
     ['result.schema.json', output(results.resultSchema)],
     ['inspect.schema.json', output(results.inspectSchema)],
     ['optimum.schema.json', output(results.optimumSchema)],

@@ -11,6 +11,7 @@ const REFUSALS: Readonly<Record<string, [string, string]>> = {
   EDQUOT: ['could not be written: the disk quota is used up', 'Make room, or choose another place with --out.'],
   EISDIR: ['is a folder', 'Name a file.'],
   ENOTDIR: ['goes through a file as if it were a folder', 'Check the path.'],
+  EEXIST: ['goes through a file as if it were a folder', 'Check the path.'],
   EMFILE: ['could not be opened: too many files are open', 'Close some and try again.'],
   ENAMETOOLONG: ['has too long a name', 'Choose a shorter one.'],
   ELOOP: ['is a link that leads to itself', 'Check the path.'],
