@@ -27,12 +27,15 @@ export interface Kendall {
  * @param t      Times, or any covariate.
  * @param y      Values, as many.
  * @param weight Weight of the pair of points i and j, symmetric, 1 when left out. [> 0]
+ * @param cleared How many covariates t and y have been cleared of. Residuals keep n - 1 - cleared directions of n - 1, so
+ *   S scatters by the root of (n - 1)/(n - 1 - cleared) more, as a partial correlation does [4]: it is shrunk by that.
  * @returns The test; p is 1 where nothing can be told (fewer than 3 points, no spread).
  *
  * [1] M. G. Kendall, Rank Correlation Methods, 4th ed. 1970, chapters 1, 4 and 5.
  * [2] H. B. Mann, Nonparametric tests against trend, Econometrica 13, 1945.
  * [3] H. E. Daniels, The relation between measures of correlation in the universe of sample permutations, Biometrika
  *     33, 1944 (checked here against enumeration).
+ * [4] R. A. Fisher, The distribution of the partial correlation coefficient, Metron 3, 1924 (from memory).
  * @example
  * mannKendall([1, 2, 3, 4], [5, 6, 8, 9]).s; // => 6
  */
@@ -40,12 +43,13 @@ export function mannKendall(
   t: ArrayLike<number>,
   y: ArrayLike<number>,
   weight?: (i: number, j: number) => number,
+  cleared = 0,
 ): Kendall {
   const n = t.length;
   if (n < 3) return { s: 0, variance: NaN, z: 0, p: 1, exact: false };
   const sums = pairSums(t, y, weight);
   const variance = permutationVariance(n, sums);
-  const s = sums.s;
+  const s = sums.s * Math.sqrt(Math.max(0, n - 1 - cleared) / (n - 1));
   const step = weight ? sums.meanWeight : 1;
   const z = variance > 0 ? (Math.sign(s) * Math.max(0, Math.abs(s) - step)) / Math.sqrt(variance) : 0;
   const exactP = exactProbability(t, y, s, sums.ties, weight);

@@ -1,4 +1,3 @@
-import { createSha256 } from '../math/sha256.js';
 import type { BoatResult, Result } from '../result/result.js';
 import { beats, QUANTITIES, windOf, type QuantityKey, type Value } from './quantities.js';
 import { sailorName, type Sailors } from './sailors.js';
@@ -63,46 +62,4 @@ function observe(result: Result, boat: BoatResult, sailors: Sailors): Observatio
 /** Order of code units: the same everywhere, whatever the reader's language. */
 export function compareText(a: string, b: string): number {
   return a < b ? -1 : a > b ? 1 : 0;
-}
-
-/** Day a race is filed under (UTC), null when nothing in it has a time. */
-export function logbookDay(result: Result): string | null {
-  return startOf(result)?.slice(0, 10) ?? null;
-}
-
-/** Eight characters that tell a race from others on the same day: the digest of its name and start. */
-export function logbookDigest(result: Result): string {
-  const hash = createSha256();
-  hash.update(new TextEncoder().encode(`${result.race.name}\n${startOf(result) ?? ''}`));
-  return hash.digest().slice(0, 8);
-}
-
-/** The gun; without one the earliest leg of any boat. */
-function startOf(result: Result): string | null {
-  const legs = result.boats.flatMap((boat) => boat.legs.map((leg) => leg.start));
-  return result.race.start ?? (legs.length > 0 ? legs.reduce((a, b) => (Date.parse(b) < Date.parse(a) ? b : a)) : null);
-}
-
-/** True when two results are of one race: same name and start. */
-export function sameRace(a: Result, b: Result): boolean {
-  return a.race.name === b.race.name && startOf(a) === startOf(b);
-}
-
-/**
- * A race filed again: the newer result stands, and boats that only the older one knows are kept.
- *
- * @param older What is filed.
- * @param newer What comes.
- * @returns The result to file.
- */
-export function mergeResults(older: Result, newer: Result): Result {
-  const known = new Set(newer.boats.map((boat) => boat.name));
-  const kept = older.boats.filter((boat) => !known.has(boat.name));
-  if (kept.length === 0) return newer;
-  const files = new Set(newer.inputs.map((input) => input.file));
-  return {
-    ...newer,
-    inputs: [...newer.inputs, ...older.inputs.filter((input) => !files.has(input.file))],
-    boats: [...newer.boats, ...kept],
-  };
 }

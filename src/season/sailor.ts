@@ -1,7 +1,7 @@
 import { byBoat, byCrewMass, byWind, type Group } from './bands.js';
 import type { Observation } from './logbook.js';
 import { QUANTITIES, type QuantityKey, type SeasonQuantity } from './quantities.js';
-import { raceTrend, type Trend } from './trend.js';
+import { LEAST_RACES, raceTrend, type Trend } from './trend.js';
 
 /** One sailor's season before verdicts. */
 export interface SailorSeason {
@@ -91,8 +91,12 @@ function notes(
       quantity.byReference && own.length < joined.filter((race) => race.values[quantity.key]).length,
   );
   if (mixed) found.push('races measured against another kind of reference are left out of share and settled speed');
-  if (trends.some(({ trend }) => trend.n >= 6 && !trend.windAllowedFor)) {
+  const tested = trends.filter(({ trend }) => trend.n >= LEAST_RACES);
+  if (tested.some(({ trend }) => trend.wind === 'not known')) {
     found.push('the wind speed is not known for enough races: it is not allowed for');
+  }
+  if (tested.some(({ trend }) => trend.wind === 'one with time')) {
+    found.push('the wind rose or fell evenly with the season: its effect cannot be told from a trend');
   }
   return found;
 }

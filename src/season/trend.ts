@@ -1,7 +1,7 @@
 import { mannKendall } from '../math/kendall.js';
 import { median, robustSpread } from '../math/median.js';
 import { normalUpperQuantile } from '../math/normal.js';
-import { weightedMean } from '../math/stats.js';
+import { standardDeviation, weightedMean } from '../math/stats.js';
 import { theilSen } from '../math/theil-sen.js';
 
 /** Whether a quantity changed from race to race, the wind allowed for. */
@@ -24,8 +24,8 @@ export interface Trend {
   readonly intercept: number;
   /** Two-sided p-value before any adjustment; NaN for fewer races than a verdict needs. */
   readonly p: number;
-  /** True when the wind was allowed for. */
-  readonly windAllowedFor: boolean;
+  /** Whether the wind was allowed for; `one with time`: it rose or fell so evenly that the two cannot be told apart. */
+  readonly wind: 'allowed for' | 'not known' | 'one with time';
   /** Standard deviation of races about the line. */
   readonly scatter: number;
 }
@@ -33,9 +33,11 @@ export interface Trend {
 /** Below this many races no verdict: of 5 races in order, chance deals the best order once in 60. */
 export const LEAST_RACES = 6;
 /** Beyond this many, neighbours in time are averaged: every pair of points is looked at. */
-const MOST_POINTS = 200;
+const MOST_POINTS = 120;
 /** Errors that differ by less than this do not weigh: all alike, the test is exact. */
 const ALIKE = 1.1;
+/** Where less than this of the spread of the days is left once the wind is taken off, wind and time are one. */
+const LEAST_OWN_TIME = 0.15;
 
 /**
  * Trend of one quantity: Theil-Sen slope, Mann-Kendall significance.
@@ -53,27 +55,49 @@ const ALIKE = 1.1;
  */
 export function raceTrend(points: readonly RacePoint[]): Trend {
   const races = thin([...points].sort((a, b) => a.day - b.day));
-  const windAllowedFor = races.length >= LEAST_RACES && windKnown(races);
-  const usable = windAllowedFor ? races.filter(({ wind }) => Number.isFinite(wind)) : races;
-  const days = usable.map(({ day }) => day);
-  const values = usable.map(({ value }) => value);
-  const winds = usable.map(({ wind }) => wind);
-  const t = windAllowedFor ? residuals(winds, days) : days;
-  const y = windAllowedFor ? residuals(winds, values) : values;
+  const { t, y, usable, wind } = clearOfWind(races);
+  const told = wind !== 'one with time';
   const errors = raceErrors(t, y, usable);
   const alike = Math.max(...errors) <= ALIKE * Math.min(...errors);
-  const line = theilSen(t, y, 0.6827, alike ? undefined : errors);
+  const line = told ? theilSen(t, y, 0.6827, alike ? undefined : errors) : NO_LINE;
   const weight = alike ? undefined : (i: number, j: number): number => 1 / Math.hypot(errors[i], errors[j]);
-  const rest = y.map((value, i) => value - line.slope * t[i]);
+  const enough = told && points.length >= LEAST_RACES;
   return {
     n: points.length,
     slope: line.slope,
     se: (line.high - line.low) / 2,
-    intercept: median(values.map((value, i) => value - line.slope * days[i])),
-    p: points.length < LEAST_RACES ? NaN : mannKendall(t, y, weight).p,
-    windAllowedFor,
-    scatter: robustSpread(rest),
+    intercept: median(usable.map(({ value, day }) => value - line.slope * day)),
+    p: enough ? mannKendall(t, y, weight, wind === 'allowed for' ? 1 : 0).p : NaN,
+    wind,
+    scatter: robustSpread(y.map((value, i) => value - line.slope * t[i])),
   };
+}
+
+const NO_LINE = { slope: NaN, low: NaN, high: NaN };
+
+interface Cleared {
+  readonly t: readonly number[];
+  readonly y: readonly number[];
+  readonly usable: readonly RacePoint[];
+  readonly wind: Trend['wind'];
+}
+
+function clearOfWind(races: readonly RacePoint[]): Cleared {
+  const days = races.map(({ day }) => day);
+  const plain = { t: days, y: races.map(({ value }) => value), usable: races };
+  if (races.length < LEAST_RACES || !windKnown(races)) return { ...plain, wind: 'not known' };
+  const usable = races.filter(({ wind }) => Number.isFinite(wind));
+  const winds = usable.map(({ wind }) => wind);
+  const t = residuals(
+    winds,
+    usable.map(({ day }) => day),
+  );
+  const y = residuals(
+    winds,
+    usable.map(({ value }) => value),
+  );
+  const left = [standardDeviation, robustSpread].map((spread) => spread(t) / spread(usable.map(({ day }) => day)));
+  return { t, y, usable, wind: Math.min(...left) < LEAST_OWN_TIME ? 'one with time' : 'allowed for' };
 }
 
 /** The wind must be known for two races in three, six at least, and differ. */
