@@ -16,7 +16,8 @@ export const DEG = 180 / Math.PI;
  */
 export function wrap360(angle: number): number {
   const wrapped = angle - 360 * Math.floor(angle / 360);
-  return wrapped >= 360 ? 0 : wrapped;
+  // Rounding can leave a tiny negative angle below 0 or at 360.
+  return wrapped >= 360 || wrapped < 0 ? 0 : wrapped;
 }
 
 /**
