@@ -104,11 +104,7 @@ export function quantity(q: Q, unit: Unit, options: QuantityOptions = {}): Safe 
           >±${html`<span class="n" data-v="${trim(shown.se)}" data-d="${digits}">${plain(shown.se, digits)}</span>`}</small
         >`
       : '';
-  return html`<button
-    type="button"
-    class="q b-${q.basis}"
-    title="${errorSentence(shown, unit)}"
-  >
+  return html`<button type="button" class="q b-${q.basis}" title="${errorSentence(shown, unit)}">
     ${number(shown.value, digits, sign)}${!unitless && html`<span class="u">${SUFFIX[unit]}</span>`}${pm}
   </button>`;
 }

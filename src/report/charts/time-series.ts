@@ -11,14 +11,22 @@ export interface PanelKind {
   readonly key: 'angle' | 'speed' | 'vmg' | 'direction' | 'wind';
   readonly title: string;
   readonly unit: string;
+  /** Scaled to the beats: what lies beyond is cut off, so that a run does not flatten them. */
+  readonly beats?: boolean;
   /** Values at all rows in the unit of the panel. */
   readonly values: (boat: BoatSeries) => Float64Array;
 }
 
 export const PANELS: readonly PanelKind[] = [
-  { key: 'angle', title: 'Course angle to the true wind', unit: '°', values: (b) => b.gamma.map(Math.abs) },
+  {
+    key: 'angle',
+    title: 'Course angle to the true wind',
+    unit: '°',
+    beats: true,
+    values: (b) => b.gamma.map(Math.abs),
+  },
   { key: 'speed', title: 'Speed', unit: 'kn', values: (b) => b.speed.map(toKnots) },
-  { key: 'vmg', title: 'VMG', unit: 'kn', values: (b) => b.vmg.map(toKnots) },
+  { key: 'vmg', title: 'VMG', unit: 'kn', beats: true, values: (b) => b.vmg.map(toKnots) },
   { key: 'direction', title: 'Wind direction', unit: '°', values: (b) => unwrap(b.twd) },
   { key: 'wind', title: 'Wind speed', unit: 'kn', values: (b) => b.tws.map(toKnots) },
 ];
@@ -51,7 +59,7 @@ export function timePanel(panel: PanelKind, series: RaceSeries, options: Partial
   const [t0, t1] = timeSpan(series);
   const columns = series.boats.map((b) => panel.values(b));
   const x = scaleLinear([t0, t1], [MARGIN.left, o.width - MARGIN.right]);
-  const y = scaleLinear(rangeOf(columns), [o.height - MARGIN.bottom, MARGIN.top]).nice(4);
+  const y = scaleLinear(panelRange(panel, series, columns), [o.height - MARGIN.bottom, MARGIN.top]).nice(4);
   const write = panel.key === 'direction' ? wrap360 : undefined;
   const body = [
     ...legBands(series, x, o.height),
@@ -72,6 +80,18 @@ function panelLabel(panel: PanelKind, series: RaceSeries, columns: readonly Floa
     return `${b.name}: middle half ${at(0.25)} to ${at(0.75)} ${panel.unit}`;
   });
   return `${panel.title} against time. ${parts.join('; ')}.`;
+}
+
+/** Range of a panel: of settled sailing with room for tacks where it is scaled to the beats, else of all rows. */
+function panelRange(panel: PanelKind, series: RaceSeries, columns: readonly Float64Array[]): [number, number] {
+  const settled = columns.map((c, i) => c.filter((_, row) => series.boats[i]!.settled[row]));
+  return panel.beats && settled.some((c) => c.some(Number.isFinite)) ? beatRange(settled) : rangeOf(columns);
+}
+
+/** Settled values with room below for the dip of a tack. */
+export function beatRange(settled: readonly Float64Array[]): [number, number] {
+  const [low, high] = rangeOf(settled);
+  return [low - 1.2 * (high - low), high + 0.5 * (high - low)];
 }
 
 /** The middle 99 % of all values: a single spike must not flatten the line. */
@@ -137,7 +157,7 @@ function boatLine(boat: BoatSeries, values: Float64Array, index: number, x: Scal
   const [low, high] = y.domain() as [number, number];
   for (let i = 0; i < boat.n; i += step) {
     const v = values[i];
-    at.push([x(boat.t0 + i), Number.isFinite(v) ? y(Math.max(low, Math.min(high, v))) : NaN]);
+    at.push([x(boat.t0 + i), v >= low && v <= high ? y(v) : NaN]);
   }
   return el('path', {
     d: pathOf(at),

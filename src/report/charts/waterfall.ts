@@ -15,6 +15,8 @@ export interface WaterfallOptions {
   readonly rowHeight: number;
   /** Right end of the scale, shared between boats; from the data when left out. [m] */
   readonly reach?: number;
+  /** Left end, likewise. [m] */
+  readonly floor?: number;
 }
 
 export const WATERFALL_DEFAULTS: WaterfallOptions = { width: 460, rowHeight: 27 };
@@ -45,8 +47,8 @@ export function waterfall(data: WaterfallData, options: Partial<WaterfallOptions
   const o = { ...WATERFALL_DEFAULTS, ...options };
   const parts = steps(data.entries);
   const reach = o.reach ?? waterfallReach([data]);
-  const low = Math.min(0, ...parts.steps.map((s) => Math.min(s.from, s.to)), parts.shifts?.metres.value ?? 0);
-  const x = scaleLinear([low, reach], [LEFT, o.width - RIGHT]).nice(5);
+  const low = o.floor ?? waterfallFloor([data]);
+  const x = scaleLinear([low, reach], [LEFT, o.width - RIGHT]);
   const rows = parts.steps.length + 1 + (parts.shifts ? 1 : 0);
   const foot = rows * o.rowHeight + (parts.shifts ? 16 : 8);
   const body = [
@@ -58,6 +60,15 @@ export function waterfall(data: WaterfallData, options: Partial<WaterfallOptions
     text(o.width, foot + 18, 'metres', { size: 11, italic: true, fill: SOFT, anchor: 'end' }),
   ];
   return picture(o.width, foot + 26, waterfallLabel(data), body.join(''), { class: 'waterfall' });
+}
+
+export function waterfallFloor(all: readonly WaterfallData[]): number {
+  const ends = all.flatMap((d) => {
+    const parts = steps(d.entries);
+    const shifts = parts.shifts?.metres;
+    return [...parts.steps.map((s) => Math.min(s.from, s.to)), shifts ? shifts.value - (shifts.se ?? 0) : 0];
+  });
+  return Math.min(0, ...ends);
 }
 
 export function waterfallReach(all: readonly WaterfallData[]): number {

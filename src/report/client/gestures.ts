@@ -39,7 +39,10 @@ export function mountGestures(svg: SVGSVGElement, hands: MapHands): void {
     if (!before) return;
     const now = onSheet(event);
     if (mode === 'scrub') put(event, 8 * reach(event));
-    else hands.move(mode === 'pinch' ? pinched(hands.view(), held, event.pointerId, now) : panned(hands.view(), before, now));
+    else
+      hands.move(
+        mode === 'pinch' ? pinched(hands.view(), held, event.pointerId, now) : panned(hands.view(), before, now),
+      );
     held.set(event.pointerId, now);
   });
   const release = (event: PointerEvent): void => {
@@ -76,7 +79,8 @@ function pinched(view: MapView, held: ReadonlyMap<number, Hold>, id: number, now
   const before = held.get(id)!;
   const other = [...held].find(([key]) => key !== id)?.[1];
   if (!other) return view;
-  const ratio = Math.hypot(now.x - other.x, now.y - other.y) / Math.max(10, Math.hypot(before.x - other.x, before.y - other.y));
+  const ratio =
+    Math.hypot(now.x - other.x, now.y - other.y) / Math.max(10, Math.hypot(before.x - other.x, before.y - other.y));
   const middle = { x: (now.x + other.x) / 2, y: (now.y + other.y) / 2 };
   return panned(zoomed(view, middle, ratio), { x: before.x / 2, y: before.y / 2 }, { x: now.x / 2, y: now.y / 2 });
 }

@@ -44,9 +44,20 @@ export function mountInstruments(race: Race, store: Store): void {
   };
   const lines = LINES.filter((l) => race.boats.some((b) => known(race, b.index, l)));
   const heads = race.boats.map((b) => make('th', { scope: 'col' }, dotSwatch(b.index), ' ', make('bdi', {}, b.name)));
-  const rows = [row('doing', 'Doing', ''), row('leg', 'Leg', ''), ...lines.map((l) => row(l.key, l.words, l.unit)), row('behind', 'Behind the reference on this leg', 'm')];
+  const rows = [
+    row('doing', 'Doing', ''),
+    row('leg', 'Leg', ''),
+    ...lines.map((l) => row(l.key, l.words, l.unit)),
+    row('behind', 'Behind the reference on this leg', 'm'),
+  ];
   const head = make('thead', {}, make('tr', {}, make('td', {}), ...heads));
-  const table = make('table', { class: 'plain readings' }, make('caption', {}, 'At the cursor'), head, make('tbody', {}, ...rows));
+  const table = make(
+    'table',
+    { class: 'plain readings' },
+    make('caption', {}, 'At the cursor'),
+    head,
+    make('tbody', {}, ...rows),
+  );
   const gap = make('p', { class: 'plate-words', id: 'gap' });
   const triangles = race.boats.map((b) => createTriangle(b.index, b.name));
   home.append(table, gap, make('div', { class: 'triangles' }, ...triangles.map((t) => t.element)));

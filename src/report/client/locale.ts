@@ -32,7 +32,10 @@ export interface Clock {
 export function createClock(wanted: string): Clock {
   const zone = zoneKnown(wanted) ? wanted : 'UTC';
   const formats = Object.fromEntries(
-    Object.entries(OPTIONS).map(([style, options]) => [style, new Intl.DateTimeFormat(undefined, { ...options, timeZone: zone })]),
+    Object.entries(OPTIONS).map(([style, options]) => [
+      style,
+      new Intl.DateTimeFormat(undefined, { ...options, timeZone: zone }),
+    ]),
   );
   return { zone, write: (seconds, style) => formats[style]!.format(seconds * 1000) };
 }
@@ -58,8 +61,10 @@ export function localise(root: ParentNode, clock: Clock): void {
   for (const element of root.querySelectorAll('[data-t]')) {
     const given = element.getAttribute('data-ms');
     const seconds = (given === null ? Date.parse(element.getAttribute('datetime') ?? '') : Number(given)) / 1000;
-    if (Number.isFinite(seconds)) element.textContent = clock.write(seconds, element.getAttribute('data-t') as TimeStyle);
+    if (Number.isFinite(seconds))
+      element.textContent = clock.write(seconds, element.getAttribute('data-t') as TimeStyle);
   }
   const words = document.getElementById('zone-words');
-  if (words) words.textContent = clock.zone === 'UTC' ? 'UTC' : `${clock.zone.split('/').pop()!.replace(/_/g, ' ')} time`;
+  if (words)
+    words.textContent = clock.zone === 'UTC' ? 'UTC' : `${clock.zone.split('/').pop()!.replace(/_/g, ' ')} time`;
 }

@@ -59,7 +59,12 @@ function mountTools(map: Living, tools: HTMLElement): void {
     redrawSheet(map);
   };
   const fit = (): void => {
-    map.view = fitView(placesIn(map.race, null, map.race.from, map.race.to), map.view.up, map.view.width, map.view.height);
+    map.view = fitView(
+      placesIn(map.race, null, map.race.from, map.race.to),
+      map.view.up,
+      map.view.width,
+      map.view.height,
+    );
     redrawSheet(map);
   };
   const turn = button('North up', 'Turn the chart: north or wind at the top', () => {
@@ -141,15 +146,50 @@ function drawBoat(map: Living, boat: Boat, time: number): SVGElement[] {
     `M0 0l${(length * eastOf(direction - view.up)).toFixed(1)} ${(-length * northOf(direction - view.up)).toFixed(1)}`;
   const sides = laylineRays(boat, time, r.twd);
   return [
-    draw('path', { d: wake(map, boat, time), fill: 'none', stroke: colour, 'stroke-width': 4, opacity: 0.55, 'stroke-linecap': 'round' }),
+    draw('path', {
+      d: wake(map, boat, time),
+      fill: 'none',
+      stroke: colour,
+      'stroke-width': 4,
+      opacity: 0.55,
+      'stroke-linecap': 'round',
+    }),
     draw(
       'g',
       { class: 'boat', 'data-boat': boat.index, transform: `translate(${at.x.toFixed(1)} ${at.y.toFixed(1)})` },
-      ...sides.map(({ course, side }) => draw('path', { d: ray(course, 150), fill: 'none', stroke: side === 'port' ? PORT : STARBOARD, 'stroke-width': 1, 'stroke-dasharray': '2 4' })),
+      ...sides.map(({ course, side }) =>
+        draw('path', {
+          d: ray(course, 150),
+          fill: 'none',
+          stroke: side === 'port' ? PORT : STARBOARD,
+          'stroke-width': 1,
+          'stroke-dasharray': '2 4',
+        }),
+      ),
       draw('path', { class: 'course', d: ray(r.course, 62), fill: 'none', stroke: CURSOR, 'stroke-width': 1.5 }),
-      draw('path', { class: 'bow', d: ray(r.bow, 46), fill: 'none', stroke: INK, 'stroke-width': 1.1, 'stroke-dasharray': r.bowLogged ? undefined : '2 2' }),
-      draw('path', { class: 'wind-barb', d: ray(r.twd, 30), fill: 'none', stroke: INK, 'stroke-width': 1, opacity: 0.6 }),
-      draw('path', { d: 'M0 -13C5 -6 5.5 3 4 10H-4C-5.5 3 -5 -6 0 -13Z', fill: colour, stroke: 'var(--paper)', 'stroke-width': 1.2, transform: `rotate(${(r.bow - view.up).toFixed(1)})` }),
+      draw('path', {
+        class: 'bow',
+        d: ray(r.bow, 46),
+        fill: 'none',
+        stroke: INK,
+        'stroke-width': 1.1,
+        'stroke-dasharray': r.bowLogged ? undefined : '2 2',
+      }),
+      draw('path', {
+        class: 'wind-barb',
+        d: ray(r.twd, 30),
+        fill: 'none',
+        stroke: INK,
+        'stroke-width': 1,
+        opacity: 0.6,
+      }),
+      draw('path', {
+        d: 'M0 -13C5 -6 5.5 3 4 10H-4C-5.5 3 -5 -6 0 -13Z',
+        fill: colour,
+        stroke: 'var(--paper)',
+        'stroke-width': 1.2,
+        transform: `rotate(${(r.bow - view.up).toFixed(1)})`,
+      }),
     ),
   ];
 }
@@ -201,10 +241,19 @@ function showPick(map: Living, { pick, window }: Moment): void {
     path.classList.toggle('dim', off);
   }
   for (const pin of map.svg.querySelectorAll('.tack-pin')) {
-    const on = pick?.turn !== undefined && pin.getAttribute('data-boat') === String(pick.boat) && pin.getAttribute('data-turn') === String(pick.turn);
+    const on =
+      pick?.turn !== undefined &&
+      pin.getAttribute('data-boat') === String(pick.boat) &&
+      pin.getAttribute('data-turn') === String(pick.turn);
     pin.classList.toggle('picked', on);
   }
   if (!pick) return;
-  map.view = fitView(placesIn(map.race, map.race.boats[pick.boat]!, window[0], window[1]), map.view.up, map.view.width, map.view.height, 90);
+  map.view = fitView(
+    placesIn(map.race, map.race.boats[pick.boat]!, window[0], window[1]),
+    map.view.up,
+    map.view.width,
+    map.view.height,
+    90,
+  );
   redrawSheet(map);
 }

@@ -23,7 +23,11 @@ function pickOf(target: HTMLElement | SVGElement): Pick {
   const plate = target.closest('[data-boat]');
   const boat = Number(target.dataset.boat ?? plate?.getAttribute('data-boat') ?? 0);
   const { leg, turn } = target.dataset;
-  return { boat, ...(leg === undefined ? {} : { leg: Number(leg) }), ...(turn === undefined ? {} : { turn: Number(turn) }) };
+  return {
+    boat,
+    ...(leg === undefined ? {} : { leg: Number(leg) }),
+    ...(turn === undefined ? {} : { turn: Number(turn) }),
+  };
 }
 
 function same(a: Pick | null, b: Pick): boolean {
@@ -50,16 +54,30 @@ function mark(pick: Pick | null): void {
 function figuresOf(race: Race, pick: Pick, clock: Clock): Node[] {
   const boat = race.boats[pick.boat]!;
   const rows = pick.turn !== undefined ? turnFigures(race, boat, pick.turn) : legFigures(boat, pick.leg ?? 0);
-  const span = pick.turn !== undefined ? boat.header.turns[pick.turn]!.at : boat.header.legs.find((l) => l.index === pick.leg)!.from;
-  const what = pick.turn !== undefined ? boat.header.turns[pick.turn]!.kind : `lap ${boat.legs[pick.leg ?? 0]!.lap}, ${boat.legs[pick.leg ?? 0]!.kind}`;
+  const span =
+    pick.turn !== undefined
+      ? boat.header.turns[pick.turn]!.at
+      : boat.header.legs.find((l) => l.index === pick.leg)!.from;
+  const what =
+    pick.turn !== undefined
+      ? boat.header.turns[pick.turn]!.kind
+      : `lap ${boat.legs[pick.leg ?? 0]!.lap}, ${boat.legs[pick.leg ?? 0]!.kind}`;
   const body = rows.map(([words, value]) => make('tr', {}, make('th', { scope: 'row' }, words), make('td', {}, value)));
-  return [make('table', { class: 'plain' }, make('caption', {}, make('bdi', {}, boat.name), `: ${what}, ${clock.write(span, 'hms')}`), make('tbody', {}, ...body))];
+  return [
+    make(
+      'table',
+      { class: 'plain' },
+      make('caption', {}, make('bdi', {}, boat.name), `: ${what}, ${clock.write(span, 'hms')}`),
+      make('tbody', {}, ...body),
+    ),
+  ];
 }
 
 function legFigures(boat: Boat, index: number): [string, string][] {
   const f = boat.legs[index]!;
   const span = boat.header.legs.find((l) => l.index === index)!;
-  const known = (v: number | null, digits: number, unit: string): string => (v === null ? '–' : `${localNumber(v, digits)}${unit}`);
+  const known = (v: number | null, digits: number, unit: string): string =>
+    v === null ? '–' : `${localNumber(v, digits)}${unit}`;
   return [
     ['Minutes', localNumber((span.to - span.from) / 60, 1)],
     ['VMG, whole leg', known(f.vmg, 2, ' kn')],

@@ -70,7 +70,8 @@ export function legAt(boat: Boat, time: number): { facts: LegFacts; index: numbe
 /** What the boat is doing, in words. */
 export function doingAt(race: Race, boat: Boat, time: number): string {
   const turn = boat.header.turns.find((m) => time >= m.entry && time < m.exit);
-  if (turn) return turn.kind === 'tack' || turn.kind === 'gybe' ? `${turn.kind} onto ${turn.to}` : turn.kind.replace('-', ' ');
+  if (turn)
+    return turn.kind === 'tack' || turn.kind === 'gybe' ? `${turn.kind} onto ${turn.to}` : turn.kind.replace('-', ' ');
   const row = rowAt(race, boat, time);
   const gamma = row < 0 ? NaN : boat.columns.gamma[row]!;
   const tack = Number.isFinite(gamma) ? (gamma > 0 ? 'starboard tack' : 'port tack') : '';

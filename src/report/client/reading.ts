@@ -73,4 +73,3 @@ export function referenceRate(race: Race, available: number | null, seconds: num
   const best = Math.max(...race.boats.flatMap((b) => b.legs.map((l) => l.settledVmg ?? -Infinity)));
   return Number.isFinite(best) ? (best * 1852) / 3600 : NaN;
 }
-

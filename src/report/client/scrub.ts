@@ -19,7 +19,10 @@ export function eventsOf(race: Race, stride: Stride): Event[] {
     if (stride === 'tack') {
       for (const t of header.turns) {
         if (t.kind !== 'tack' && t.kind !== 'gybe') continue;
-        out.push({ at: t.at, words: `${name}: ${t.kind} onto ${t.to}${t.loss === null ? '' : `, cost ${localNumber(t.loss, 1)} m`}` });
+        out.push({
+          at: t.at,
+          words: `${name}: ${t.kind} onto ${t.to}${t.loss === null ? '' : `, cost ${localNumber(t.loss, 1)} m`}`,
+        });
       }
     }
     if (stride === 'settled') for (const [at] of header.settled) out.push({ at, words: `${name} settled` });
@@ -51,7 +54,7 @@ export function mountScrub(race: Race, store: Store, clock: Clock): void {
   const stride = byId('stride') as HTMLSelectElement | null;
   const said = byId('said');
   if (!bar || !cursor || !out || !stride || !said) return;
-  bar.hidden = false;
+  showFrom(bar, byId('chart'));
   const step = (direction: 1 | -1): void => {
     const { time } = store.now();
     if (stride.value === 'ten') return store.set({ time: time + 10 * direction });
@@ -69,6 +72,17 @@ export function mountScrub(race: Race, store: Store, clock: Clock): void {
     cursor.setAttribute('aria-valuetext', clock.write(time, 'hms'));
     out.textContent = clock.write(time, 'hms');
   });
+}
+
+/** The bar keeps out of the way of the first screen: it comes when the chart does. */
+function showFrom(bar: HTMLElement, chart: HTMLElement | null): void {
+  const look = (): void => {
+    const top = chart ? chart.getBoundingClientRect().top : 0;
+    bar.hidden = top > window.innerHeight * 0.85 && !bar.contains(document.activeElement);
+  };
+  window.addEventListener('scroll', look, { passive: true });
+  window.addEventListener('resize', look);
+  look();
 }
 
 /** Keys that work where nothing else wants them: comma and full stop step, J and L go ten seconds. */

@@ -1,6 +1,7 @@
 import uPlot from 'uplot';
 import { unwrap, wrap360 } from '../../math/angles.js';
 import { toKnots } from '../../math/units.js';
+import { beatRange } from '../charts/time-series.js';
 import { boatPaint, RULE, SOFT } from '../palette.js';
 import { button, byId, make, paint } from './dom.js';
 import { localNumber, type Clock } from './locale.js';
@@ -16,12 +17,21 @@ interface Panel {
   readonly unit: string;
   readonly digits: number;
   readonly values: (boat: Boat) => Float64Array;
+  /** Scaled to the beats unless only other sailing is in view. */
+  readonly beats?: boolean;
 }
 
 const PANELS: readonly Panel[] = [
-  { key: 'angle', title: 'Course angle to the true wind', unit: '°', digits: 1, values: (b) => b.columns.gamma.map(Math.abs) },
+  {
+    key: 'angle',
+    title: 'Course angle to the true wind',
+    unit: '°',
+    digits: 1,
+    beats: true,
+    values: (b) => b.columns.gamma.map(Math.abs),
+  },
   { key: 'speed', title: 'Speed', unit: 'kn', digits: 2, values: (b) => b.columns.speed.map(toKnots) },
-  { key: 'vmg', title: 'VMG', unit: 'kn', digits: 2, values: (b) => b.columns.vmg.map(toKnots) },
+  { key: 'vmg', title: 'VMG', unit: 'kn', digits: 2, beats: true, values: (b) => b.columns.vmg.map(toKnots) },
   { key: 'direction', title: 'Wind direction', unit: '°', digits: 0, values: (b) => unwrap(b.columns.twd) },
   { key: 'wind', title: 'Wind speed', unit: 'kn', digits: 1, values: (b) => b.columns.tws.map(toKnots) },
 ];
@@ -38,7 +48,12 @@ export function mountSeries(race: Race, store: Store, clock: Clock): void {
   if (!home) return;
   home.hidden = false;
   const times = commonTimes(race);
-  const tools = make('div', { class: 'map-tools' }, button('All times', 'Show the whole race', () => store.set({ window: [race.from, race.to] })), make('span', { class: 'soft' }, 'Drag across the curves to look closer.'));
+  const tools = make(
+    'div',
+    { class: 'map-tools' },
+    button('All times', 'Show the whole race', () => store.set({ window: [race.from, race.to] })),
+    make('span', { class: 'soft' }, 'Drag across the curves to look closer.'),
+  );
   home.append(tools);
   const living: Living[] = [];
   for (const panel of PANELS) {
@@ -46,9 +61,12 @@ export function mountSeries(race: Race, store: Store, clock: Clock): void {
     if (!columns.some((c) => c.some((v) => v !== null))) continue;
     living.push(mountPanel(home, panel, race, store, clock, [times, ...columns]));
   }
-  const resize = (): void => living.forEach(({ plot }) => plot.setSize({ width: home.clientWidth, height: plot.height }));
+  const resize = (): void =>
+    living.forEach(({ plot }) => plot.setSize({ width: home.clientWidth, height: plot.height }));
   new ResizeObserver(resize).observe(home);
-  matchMedia('(prefers-color-scheme: dark)').addEventListener('change', () => living.forEach(({ plot }) => plot.redraw()));
+  matchMedia('(prefers-color-scheme: dark)').addEventListener('change', () =>
+    living.forEach(({ plot }) => plot.redraw()),
+  );
   store.listen((now, before) => {
     for (const l of living) {
       if (now.window !== before.window) l.plot.setScale('x', { min: now.window[0], max: now.window[1] });
@@ -81,10 +99,25 @@ function follow({ plot, readouts, data, panel }: Living, race: Race, time: numbe
   });
 }
 
-function mountPanel(home: HTMLElement, panel: Panel, race: Race, store: Store, clock: Clock, data: (number | null)[][]): Living {
-  const readouts = race.boats.map((b) => make('output', { 'data-panel': panel.key, 'data-boat': b.index, 'aria-live': 'off' }));
-  const heads = race.boats.map((b, k) => make('span', { class: 'reading' }, make('bdi', {}, b.name), ' ', readouts[k]!));
-  const frame = make('div', { class: 'live-panel', role: 'img', 'aria-label': `${panel.title} against time; the figures are in the table below` });
+function mountPanel(
+  home: HTMLElement,
+  panel: Panel,
+  race: Race,
+  store: Store,
+  clock: Clock,
+  data: (number | null)[][],
+): Living {
+  const readouts = race.boats.map((b) =>
+    make('output', { 'data-panel': panel.key, 'data-boat': b.index, 'aria-live': 'off' }),
+  );
+  const heads = race.boats.map((b, k) =>
+    make('span', { class: 'reading' }, make('bdi', {}, b.name), ' ', readouts[k]!),
+  );
+  const frame = make('div', {
+    class: 'live-panel',
+    role: 'img',
+    'aria-label': `${panel.title} against time; the figures are in the table below`,
+  });
   home.append(make('div', { class: 'live-head' }, make('i', {}, `${panel.title}, ${panel.unit}`), ...heads), frame);
   const plot = new uPlot(optionsFor(panel, race, store, clock, home.clientWidth), data as uPlot.AlignedData, frame);
   mountTouch(plot, store);
@@ -93,18 +126,35 @@ function mountPanel(home: HTMLElement, panel: Panel, race: Race, store: Store, c
 
 function optionsFor(panel: Panel, race: Race, store: Store, clock: Clock, width: number): uPlot.Options {
   const font = '12px Georgia, serif';
-  const axis = { stroke: () => paint(SOFT), grid: { stroke: () => paint(RULE), width: 1 }, ticks: { stroke: () => paint(RULE), width: 1 }, font };
+  const axis = {
+    stroke: () => paint(SOFT),
+    grid: { stroke: () => paint(RULE), width: 1 },
+    ticks: { stroke: () => paint(RULE), width: 1 },
+    font,
+  };
   const write = (v: number): string => localNumber(panel.key === 'direction' ? wrap360(v) : v, 0);
   return {
     width,
     height: window.innerWidth < 640 ? 118 : 138,
     legend: { show: false },
-    scales: { x: { time: false } },
+    scales: { x: { time: false }, y: { range: yRange(panel, race) } },
     padding: [8, 8, 0, 0],
-    cursor: { y: false, points: { show: false }, drag: { x: true, y: false, setScale: false }, bind: { dblclick: () => () => (store.set({ window: [race.from, race.to] }), null) } },
+    cursor: {
+      y: false,
+      points: { show: false },
+      drag: { x: true, y: false, setScale: false },
+      bind: { dblclick: () => () => (store.set({ window: [race.from, race.to] }), null) },
+    },
     series: [{}, ...race.boats.map((b) => lineOf(b))],
     axes: [
-      { ...axis, size: 26, gap: 3, values: (u, ticks) => ticks.map((t) => clock.write(t, u.scales.x!.max! - u.scales.x!.min! < 300 ? 'hms' : 'hm')), incrs: [1, 5, 10, 30, 60, 120, 300, 600, 900, 1800, 3600, 7200, 14400] },
+      {
+        ...axis,
+        size: 26,
+        gap: 3,
+        values: (u, ticks) =>
+          ticks.map((t) => clock.write(t, u.scales.x!.max! - u.scales.x!.min! < 300 ? 'hms' : 'hm')),
+        incrs: [1, 5, 10, 30, 60, 120, 300, 600, 900, 1800, 3600, 7200, 14400],
+      },
       { ...axis, size: 42, gap: 4, values: (_u, ticks) => ticks.map(write) },
     ],
     hooks: {
@@ -114,6 +164,24 @@ function optionsFor(panel: Panel, race: Race, store: Store, clock: Clock, width:
       draw: [(u) => markTurns(u, race)],
     },
   };
+}
+
+/** As on the still pictures: to the scale of settled sailing, unless nothing in view is near it. */
+function yRange(panel: Panel, race: Race): uPlot.Range.Function {
+  const fitted = (min: number, max: number): uPlot.Range.MinMax => uPlot.rangeNum(min, max, 0.08, true);
+  const settled = race.boats.map((b) => {
+    const values = panel.values(b);
+    return values.filter((_, i) =>
+      b.header.settled.some(([from, to]) => inside(b.header.t0 + i * race.step, from, to)),
+    );
+  });
+  if (!panel.beats || !settled.some((c) => c.some(Number.isFinite))) return (_u, min, max) => fitted(min, max);
+  const [low, high] = beatRange(settled);
+  return (_u, min, max) => (max < low || min > high ? fitted(min, max) : [low, high]);
+}
+
+function inside(time: number, from: number, to: number): boolean {
+  return time >= from && time < to;
 }
 
 function lineOf(boat: Boat): uPlot.Series {
@@ -178,4 +246,3 @@ function mountTouch(plot: uPlot, store: Store): void {
   plot.over.addEventListener('pointerdown', move);
   plot.over.addEventListener('pointermove', move);
 }
-

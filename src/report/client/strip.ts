@@ -19,7 +19,15 @@ export function mountStrips(race: Race, store: Store): void {
   if (!home || !race.boats.some((b) => b.header.legs.length > 0)) return;
   home.hidden = false;
   const strips = race.boats.map((b) => createStrip(race, b, store));
-  home.append(make('h3', {}, 'Running account'), make('p', { class: 'plate-words' }, 'Starboard tack above the line, port below, full where settled; notches are turns. The curve is metres behind the reference since each beat began; shifts are not in it.'), ...strips.map((s) => s.element));
+  home.append(
+    make('h3', {}, 'Running account'),
+    make(
+      'p',
+      { class: 'plate-words' },
+      'Starboard tack above the line, port below, full where settled; notches are turns. The curve is metres behind the reference since each beat began; shifts are not in it.',
+    ),
+    ...strips.map((s) => s.element),
+  );
   store.listen(({ time, window }) => strips.forEach((s) => s.show(time, window)));
 }
 
@@ -32,12 +40,29 @@ function createStrip(race: Race, boat: Boat, store: Store): Strip {
   const out = make('output', { 'data-strip': boat.index, 'aria-live': 'off' });
   const span = race.to - race.from;
   const x = (t: number): number => ((t - race.from) / span) * WIDTH;
-  const cursor = draw('line', { y1: 0, y2: LANE + BAND + 2, stroke: CURSOR, 'stroke-width': 2, 'vector-effect': 'non-scaling-stroke' });
-  const body = draw('svg', { viewBox: `0 0 ${WIDTH} ${LANE + BAND + 2}`, preserveAspectRatio: 'none', class: 'strip', role: 'img', 'aria-label': `Running account of ${boat.name}` });
+  const cursor = draw('line', {
+    y1: 0,
+    y2: LANE + BAND + 2,
+    stroke: CURSOR,
+    'stroke-width': 2,
+    'vector-effect': 'non-scaling-stroke',
+  });
+  const body = draw('svg', {
+    viewBox: `0 0 ${WIDTH} ${LANE + BAND + 2}`,
+    preserveAspectRatio: 'none',
+    class: 'strip',
+    role: 'img',
+    'aria-label': `Running account of ${boat.name}`,
+  });
   body.append(...bands(race, boat, x), ...lossCurve(race, boat, x), cursor);
   body.addEventListener('pointerdown', (event) => put(event, body, store));
   body.addEventListener('pointermove', (event) => event.buttons > 0 && put(event, body, store));
-  const element = make('div', { class: 'strip-row' }, make('div', { class: 'strip-head' }, make('bdi', {}, boat.name), ' ', out), body);
+  const element = make(
+    'div',
+    { class: 'strip-row' },
+    make('div', { class: 'strip-head' }, make('bdi', {}, boat.name), ' ', out),
+    body,
+  );
   const show = (time: number, window: readonly [number, number]): void => {
     cursor.setAttribute('x1', String(x(time)));
     cursor.setAttribute('x2', String(x(time)));
@@ -57,14 +82,42 @@ function put(event: PointerEvent, body: SVGElement, store: Store): void {
 
 function bands(race: Race, boat: Boat, x: (t: number) => number): SVGElement[] {
   const middle = LANE + BAND / 2;
-  const out: SVGElement[] = [draw('line', { x1: 0, x2: WIDTH, y1: middle, y2: middle, stroke: SOFT, 'stroke-width': 1, 'vector-effect': 'non-scaling-stroke' })];
+  const out: SVGElement[] = [
+    draw('line', {
+      x1: 0,
+      x2: WIDTH,
+      y1: middle,
+      y2: middle,
+      stroke: SOFT,
+      'stroke-width': 1,
+      'vector-effect': 'non-scaling-stroke',
+    }),
+  ];
   for (const [from, to] of boat.header.settled) {
     const row = rowAt(race, boat, Math.floor((from + to) / 2));
     const starboard = row >= 0 && boat.columns.gamma[row]! > 0;
-    out.push(draw('rect', { x: x(from), y: starboard ? LANE : middle, width: Math.max(0.5, x(to) - x(from)), height: BAND / 2, fill: starboard ? STARBOARD : PORT }));
+    out.push(
+      draw('rect', {
+        x: x(from),
+        y: starboard ? LANE : middle,
+        width: Math.max(0.5, x(to) - x(from)),
+        height: BAND / 2,
+        fill: starboard ? STARBOARD : PORT,
+      }),
+    );
   }
   for (const turn of boat.header.turns) {
-    out.push(draw('line', { x1: x(turn.at), x2: x(turn.at), y1: LANE - 3, y2: LANE + BAND + 2, stroke: INK, 'stroke-width': 1.6, 'vector-effect': 'non-scaling-stroke' }));
+    out.push(
+      draw('line', {
+        x1: x(turn.at),
+        x2: x(turn.at),
+        y1: LANE - 3,
+        y2: LANE + BAND + 2,
+        stroke: INK,
+        'stroke-width': 1.6,
+        'vector-effect': 'non-scaling-stroke',
+      }),
+    );
   }
   return out;
 }
@@ -79,8 +132,19 @@ function lossCurve(race: Race, boat: Boat, x: (t: number) => number): SVGElement
   });
   const most = Math.max(20, ...curves.flatMap((c) => c.map((p) => p[1])));
   return curves.map((curve) => {
-    const d = curve.map(([t, v], i) => `${i ? 'L' : 'M'}${x(t).toFixed(1)} ${(LANE - 6 - (Math.max(0, v) / most) * (LANE - 10)).toFixed(1)}`).join('');
-    return draw('path', { d, fill: 'none', stroke: boat.index === 0 ? LOSS : boatPaint(boat.index).colour, 'stroke-width': 1.8, 'vector-effect': 'non-scaling-stroke' });
+    const d = curve
+      .map(
+        ([t, v], i) =>
+          `${i ? 'L' : 'M'}${x(t).toFixed(1)} ${(LANE - 6 - (Math.max(0, v) / most) * (LANE - 10)).toFixed(1)}`,
+      )
+      .join('');
+    return draw('path', {
+      d,
+      fill: 'none',
+      stroke: boat.index === 0 ? LOSS : boatPaint(boat.index).colour,
+      'stroke-width': 1.8,
+      'vector-effect': 'non-scaling-stroke',
+    });
   });
 }
 
@@ -95,4 +159,3 @@ function behindCurve(race: Race, boat: Boat, span: { from: number; to: number },
   }
   return out;
 }
-

@@ -4,8 +4,18 @@ import { draw } from './dom.js';
 /** The line and sign of a boat, as in the masthead. */
 export function dotSwatch(index: number): SVGElement {
   const { colour, dash } = boatPaint(index);
-  const line = draw('path', { d: 'M1 8H35', stroke: colour, 'stroke-width': 2.6, 'stroke-dasharray': dash || undefined });
-  return draw('svg', { class: 'swatch', viewBox: '0 0 36 16', 'aria-hidden': 'true' }, line, boatSign(index, 18, 8, 4.4));
+  const line = draw('path', {
+    d: 'M1 8H35',
+    stroke: colour,
+    'stroke-width': 2.6,
+    'stroke-dasharray': dash || undefined,
+  });
+  return draw(
+    'svg',
+    { class: 'swatch', viewBox: '0 0 36 16', 'aria-hidden': 'true' },
+    line,
+    boatSign(index, 18, 8, 4.4),
+  );
 }
 
 /** Circle, square, triangle, diamond: the same signs as on the still pictures. */

@@ -38,20 +38,48 @@ function arrow(a: Corner, b: Corner, colour: string, width: number, name: string
   if (!(length > 4)) return [];
   const ux = (b.x - a.x) / length;
   const uy = (b.y - a.y) / length;
-  const wing = (s: number): string => `${(b.x - 9 * ux + s * 4 * uy).toFixed(1)} ${(b.y - 9 * uy - s * 4 * ux).toFixed(1)}`;
+  const wing = (s: number): string =>
+    `${(b.x - 9 * ux + s * 4 * uy).toFixed(1)} ${(b.y - 9 * uy - s * 4 * ux).toFixed(1)}`;
   return [
-    draw('line', { x1: a.x, y1: a.y, x2: b.x, y2: b.y, stroke: colour, 'stroke-width': width, 'stroke-dasharray': dash, 'data-side': name }),
+    draw('line', {
+      x1: a.x,
+      y1: a.y,
+      x2: b.x,
+      y2: b.y,
+      stroke: colour,
+      'stroke-width': width,
+      'stroke-dasharray': dash,
+      'data-side': name,
+    }),
     draw('path', { d: `M${b.x.toFixed(1)} ${b.y.toFixed(1)}L${wing(1)}L${wing(-1)}Z`, fill: colour }),
   ];
 }
 
 function note(at: Corner, words: string, anchor: string, fill: string): SVGElement {
-  return draw('text', { x: at.x, y: at.y, 'font-size': 12, fill, 'text-anchor': anchor, 'paint-order': 'stroke', stroke: 'var(--paper)', 'stroke-width': 3 }, words);
+  return draw(
+    'text',
+    {
+      x: at.x,
+      y: at.y,
+      'font-size': 12,
+      fill,
+      'text-anchor': anchor,
+      'paint-order': 'stroke',
+      stroke: 'var(--paper)',
+      'stroke-width': 3,
+    },
+    words,
+  );
 }
 
 export function createTriangle(index: number, name: string): Triangle {
   const svg = draw('svg', { viewBox: `0 0 ${WIDTH} ${HEIGHT}`, role: 'img', class: 'triangle', 'data-boat': index });
-  const element = make('figure', { class: 'triangle-plate' }, make('figcaption', {}, make('bdi', {}, name), make('span', { class: 'soft' }, ' triangle of speeds')), svg);
+  const element = make(
+    'figure',
+    { class: 'triangle-plate' },
+    make('figcaption', {}, make('bdi', {}, name), make('span', { class: 'soft' }, ' triangle of speeds')),
+    svg,
+  );
   return { element, show: (reading) => redraw(svg, index, name, reading) };
 }
 
@@ -60,24 +88,42 @@ function redraw(svg: SVGElement, index: number, name: string, reading: Reading):
   svg.replaceChildren();
   if (!known) {
     svg.setAttribute('aria-label', `Triangle of speeds of ${name}: not known here.`);
-    svg.append(note({ x: WIDTH / 2, y: HEIGHT / 2 }, Number.isFinite(reading.speed) ? 'wind speed not known' : 'not sailing', 'middle', SOFT));
+    svg.append(
+      note(
+        { x: WIDTH / 2, y: HEIGHT / 2 },
+        Number.isFinite(reading.speed) ? 'wind speed not known' : 'not sailing',
+        'middle',
+        SOFT,
+      ),
+    );
     return;
   }
   const [begin, boat, wind] = corners(reading);
-  const scale = Math.min((HEIGHT - 34) / (wind.y - Math.min(0, boat.y)), (WIDTH / 2 - 20) / Math.max(1, Math.abs(boat.x)));
+  const scale = Math.min(
+    (HEIGHT - 34) / (wind.y - Math.min(0, boat.y)),
+    (WIDTH / 2 - 20) / Math.max(1, Math.abs(boat.x)),
+  );
   const shift = { x: WIDTH / 2 - (boat.x * scale) / 2, y: 16 - Math.min(0, boat.y) * scale };
   const at = (c: Corner): Corner => ({ x: shift.x + c.x * scale, y: shift.y + c.y * scale });
   const [o, b, w] = [at(begin), at(boat), at(wind)];
   const left = boat.x > 0 ? 'end' : 'start';
   const right = boat.x > 0 ? 'start' : 'end';
   svg.setAttribute('data-scale', String(scale));
-  svg.setAttribute('aria-label', `Triangle of speeds of ${name}: boat ${localNumber(reading.speed, 1)}, true wind ${localNumber(reading.tws, 1)}, apparent wind ${localNumber(reading.aws, 1)} knots.`);
+  svg.setAttribute(
+    'aria-label',
+    `Triangle of speeds of ${name}: boat ${localNumber(reading.speed, 1)}, true wind ${localNumber(reading.tws, 1)}, apparent wind ${localNumber(reading.aws, 1)} knots.`,
+  );
   svg.append(
     ...arrow(o, w, INK, 1.8, 'true'),
     ...arrow(b, w, SOFT, 1.8, 'apparent', '5 3'),
     ...arrow(o, b, boatPaint(index).colour, 2.6, 'boat'),
     note({ x: o.x + (left === 'end' ? -8 : 8), y: (o.y + w.y) / 2 + 6 }, 'true wind', left, INK),
     note({ x: (b.x + w.x) / 2 + (right === 'end' ? -10 : 10), y: (b.y + w.y) / 2 }, 'apparent', right, SOFT),
-    note({ x: b.x + (right === 'end' ? 4 : -4), y: b.y - 5 }, 'boat', right === 'end' ? 'start' : 'end', boatPaint(index).colour),
+    note(
+      { x: b.x + (right === 'end' ? 4 : -4), y: b.y - 5 },
+      'boat',
+      right === 'end' ? 'start' : 'end',
+      boatPaint(index).colour,
+    ),
   );
 }

@@ -1,5 +1,5 @@
 import type { BoatResult, Result } from '../../result/result.js';
-import { waterfall, waterfallReach } from '../charts/waterfall.js';
+import { waterfall, waterfallFloor, waterfallReach } from '../charts/waterfall.js';
 import { CAUSE_MEANING, CAUSE_WORDS, REFERENCE_WORDS } from '../causes.js';
 import { causeTotals, total, upwindLegs } from '../figures.js';
 import { inline, quantity } from '../format.js';
@@ -44,9 +44,10 @@ export function ledger(result: Result): Safe {
   const withLedger = result.boats.filter((b) => upwindLegs(b).some(({ leg }) => leg.ledger));
   const data = withLedger.map((b) => ({ boat: b.name, entries: causeTotals(b) }));
   const reach = waterfallReach(data);
+  const floor = waterfallFloor(data);
   const plates = withLedger.map((boat, i) =>
     figure({
-      svg: waterfall(data[i]!, { reach }),
+      svg: waterfall(data[i]!, { reach, floor }),
       title: html`${swatch(result.boats.indexOf(boat))} ${nameOf(boat.name)}`,
       summary: summaryOf(boat),
       table: ledgerTable(boat),

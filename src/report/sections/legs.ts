@@ -54,22 +54,22 @@ function rowsFor(best: DayBest | null): Row[] {
     { head: html`less ${term('dayBest')}`, unit: 'kn', get: (leg) => (best && best.leg !== leg ? difference(leg.steady?.vmg_kn ?? null, best.vmg) : null), options: { sign: true }, className: 'sub', ownOnly: true },
     ...bothTacks('vmg_kn', 'kn'),
     { head: 'VMG, whole leg', unit: 'kn', get: (leg) => leg.vmg_kn },
-    { head: term('courseAngle', 'Course angle to true wind'), unit: 'deg', get: steady('gamma_deg'), className: 'main' },
+    { head: term('courseAngle', 'Course angle, true wind'), unit: 'deg', get: steady('gamma_deg'), className: 'main' },
     ...bothTacks('gamma_deg', 'deg'),
     { head: term('tackingAngle', 'Tacking angle'), unit: 'deg', get: steady('tacking_angle_deg') },
     { head: term('speed', 'Speed'), unit: 'kn', get: steady('speed_kn'), className: 'main' },
     ...bothTacks('speed_kn', 'kn'),
     { head: term('apparentAngle', 'Apparent wind angle'), unit: 'deg', get: steady('awa_deg'), className: 'main' },
     { head: 'less the day’s best’s', unit: 'deg', get: (leg) => (best && best.leg !== leg ? difference(leg.steady?.awa_deg ?? null, best.leg.steady?.awa_deg ?? null) : null), options: { sign: true }, className: 'sub', ownOnly: true },
-    { head: term('beta', 'Course angle to apparent wind'), unit: 'deg', get: steady('beta_deg') },
+    { head: term('beta', 'Course angle, apparent'), unit: 'deg', get: steady('beta_deg') },
     { head: term('leeway', 'Leeway'), unit: 'deg', get: steady('leeway_deg') },
     { head: term('sheeting', 'Sheeting angle'), unit: 'deg', get: steady('sheeting_deg') },
     { head: html`Each tack ${term('tackCost', 'cost')}`, unit: 'm', get: (leg, boat) => tackCost(boat, leg), options: { digits: 1 }, className: 'main' },
     { head: 'True wind', unit: 'kn', get: steady('tws_kn'), options: { digits: 1 } },
-    { head: html`Share of ${term('optimum')}`, unit: 'percent', get: (leg) => leg.efficiency, options: { times: 100 } },
-    { head: 'Model’s optimum', unit: 'kn', get: (leg) => leg.optimum?.vmg_kn ?? null },
-    { head: 'at a course angle of', unit: 'deg', get: (leg) => leg.optimum?.gamma_deg ?? null, className: 'sub', unitInHead: true },
-    { head: term('ceiling', 'Upper bound, no score'), unit: 'kn', get: (leg) => leg.ceiling_vmg_kn },
+    { head: term('optimum', 'Share of the model’s'), unit: 'percent', get: (leg) => leg.efficiency, options: { times: 100 } },
+    { head: term('optimum', 'Model’s optimum'), unit: 'kn', get: (leg) => leg.optimum?.vmg_kn ?? null },
+    { head: 'at course angle', unit: 'deg', get: (leg) => leg.optimum?.gamma_deg ?? null, className: 'sub', unitInHead: true },
+    { head: term('ceiling', 'Upper bound'), unit: 'kn', get: (leg) => leg.ceiling_vmg_kn },
   ]; // prettier-ignore
 }
 
@@ -107,10 +107,14 @@ function boatTable(boat: BoatResult, index: number, best: DayBest | null): Safe 
   const showBest = best !== null && !(best.boat === boat && legs.length === 1);
   const rows = rowsFor(best).filter((row) => legs.some(({ leg }) => row.get(leg, boat)));
   const body = rows.map((row) => {
-    const cells = legs.map(({ leg }) => html`<td>${quantity(row.get(leg, boat), row.unit, { ...row.options, unitless: true })}</td>`);
+    const cells = legs.map(
+      ({ leg }) => html`<td>${quantity(row.get(leg, boat), row.unit, { ...row.options, unitless: true })}</td>`,
+    );
     const bestCell =
       showBest &&
-      html`<td class="best">${row.ownOnly ? '' : quantity(row.get(best.leg, best.boat), row.unit, { ...row.options, unitless: true })}</td>`;
+      html`<td class="best">
+        ${row.ownOnly ? '' : quantity(row.get(best.leg, best.boat), row.unit, { ...row.options, unitless: true })}
+      </td>`;
     return html`<tr class="${row.className ?? 'lone'}">
       <th scope="row">${row.head}${unitOf(row)}</th>
       ${cells}${bestCell}

@@ -94,6 +94,7 @@ export function scrubBar(series: RaceSeries): Safe {
         <option value="leg">leg</option>
         <option value="ten">10 seconds</option></select
       ><button type="button" id="on" aria-label="Step on">▸</button></span
-    ><button type="button" id="run" aria-pressed="false">Run</button><p id="said" class="vh" aria-live="polite"></p>
+    ><button type="button" id="run" aria-pressed="false">Run</button>
+    <p id="said" class="vh" aria-live="polite"></p>
   </div>`;
 }

@@ -12,7 +12,8 @@ import {
   type DayBest,
 } from '../figures.js';
 import { inline, number, plural, quantity } from '../format.js';
-import { html, nameOf, type Part, type Safe } from '../html.js';
+import { el } from '../charts/svg.js';
+import { html, nameOf, trusted, type Part, type Safe } from '../html.js';
 import { term } from '../terms.js';
 import { swatch } from './masthead.js';
 import { section } from './figure.js';
@@ -49,6 +50,14 @@ function angleLine(boat: BoatResult): Part {
   </p>`;
 }
 
+/** A bar as long as its share of the largest. */
+function bar(share: number): Safe {
+  const rect = el('rect', { width: 100 * Math.max(0, Math.min(1, share)), height: 10 });
+  return trusted(
+    el('svg', { class: 'bar', viewBox: '0 0 100 10', preserveAspectRatio: 'none', 'aria-hidden': 'true' }, rect),
+  );
+}
+
 /** The three largest items of the ledger, shifts apart, each beside the least of the other boats. */
 function findings(result: Result, boat: BoatResult): Safe {
   const losses = largestLosses(boat, 3);
@@ -65,8 +74,7 @@ function findings(result: Result, boat: BoatResult): Safe {
         ${number(other.metres.value, 0)}${beyondError(excess) ? '' : '; not apart beyond the error'}</span
       >`;
     return html`<li>
-      <meter min="0" max="${most.toFixed(1)}" value="${metres.value.toFixed(1)}" aria-hidden="true"></meter
-      ><span class="what" title="${CAUSE_MEANING[cause]}">${CAUSE_WORDS[cause]}</span>
+      ${bar(metres.value / most)}<span class="what" title="${CAUSE_MEANING[cause]}">${CAUSE_WORDS[cause]}</span>
       <span class="metres">${quantity(metres, 'm')}</span>${note}
     </li>`;
   });
