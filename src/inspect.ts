@@ -1,9 +1,10 @@
+import type { Race } from './files/race-types.js';
 import { importLog } from './importers/index.js';
 import type { ImportedLog, ImportOptions, LogSource } from './importers/types.js';
 import { makeFrame, middleOf } from './math/geo.js';
 import { median } from './math/median.js';
-import type { Issue } from './recording/issues.js';
-import type { Recording } from './recording/recording.js';
+import { UserError, type Issue } from './recording/issues.js';
+import { channelValues, type Channel, type Recording } from './recording/recording.js';
 import type { InputEntry, Warning } from './result/result.js';
 import { smoothTrack } from './smooth/index.js';
 
@@ -12,7 +13,7 @@ export interface InspectFile extends InputEntry {
   readonly columns: readonly { readonly header: string; readonly means: string | null; readonly unit: string | null }[];
   readonly from: string | null;
   readonly to: string | null;
-  /** Rows a second, from the median step; null with fewer than two rows. */
+  /** Positions a second (wind readings where there are none), from the median step; null with fewer than two. */
   readonly rate_hz: number | null;
   readonly stretches: readonly { readonly from: string; readonly to: string; readonly what: string }[];
   readonly warnings: readonly Warning[];
@@ -41,8 +42,65 @@ export async function inspect(
   options: ImportOptions = {},
 ): Promise<InspectResult> {
   const found: InspectFile[] = [];
-  for (const file of files) found.push(inspectLog(file, await importLog(open(file), options)));
+  for (const file of files) {
+    const log = await importLog(open(file), options);
+    found.push({ ...inspectLog(file, log), stretches: await racing(file, log, open, options) });
+  }
   return { format: 'legwork-inspect', version: 1, files: found };
+}
+
+/** Fewer fixes than this (a minute of the usual one a second) hold no beat. */
+const FEWEST_FIXES = 60;
+
+/**
+ * Stretches that look like racing: the legs a debrief of this log alone finds, with the wind it carries or, without
+ * any, the direction its own tacks tell. Nothing where it finds none.
+ */
+async function racing(
+  file: string,
+  log: ImportedLog,
+  open: (file: string) => LogSource,
+  options: ImportOptions,
+): Promise<InspectFile['stretches']> {
+  if (log.fixes < FEWEST_FIXES) return [];
+  const { debrief } = await import('./debrief.js');
+  try {
+    const { result } = await debrief(raceOf(file, options), open);
+    return result.boats[0].legs.map(({ start, end, kind, tacks, gybes }) => ({
+      from: start,
+      to: end,
+      what: `${LEG_WORDS[kind]}${turnWords(kind === 'upwind' ? tacks : gybes, kind === 'upwind' ? 'tack' : 'gybe')}`,
+    }));
+  } catch (error) {
+    if (error instanceof UserError) return [];
+    throw error;
+  }
+}
+
+const LEG_WORDS = { upwind: 'beat', downwind: 'run', reach: 'reach' } as const;
+
+const turnWords = (count: number, word: string): string =>
+  count === 0 ? '' : `, ${count} ${word}${count === 1 ? '' : 's'}`;
+
+/** The log as the only boat of a race of which nothing else is known. */
+function raceOf(file: string, options: ImportOptions): Race {
+  const { zone, date, columns } = options;
+  const reference = { file, ...(date && { date }), ...(columns && { columns }), clockS: 0 };
+  const boat = { name: file, sailor: file, track: [reference], instruments: [], boat: 'single-hander' };
+  return {
+    name: file,
+    start: null,
+    finish: null,
+    zone: zone ?? null,
+    wind: [],
+    current: null,
+    marks: {},
+    runs: [],
+    exclude: [],
+    boats: [boat],
+    boatAssumed: false,
+    notes: null,
+  };
 }
 
 /** One log's books, span, gaps and warnings. */
@@ -50,13 +108,9 @@ export function inspectLog(file: string, log: ImportedLog): InspectFile {
   const { recording } = log;
   const { time } = recording;
   const track = log.fixes >= 3 ? smoothed(recording, file) : null;
-  const step = time.length > 1 ? median(time.slice(1).map((t, i) => t - time[i])) : NaN;
+  const step = medianStep(recording, log.fixes > 0 ? 'lat' : log.samples > 0 ? windChannel(recording) : null);
   const gaps = track ? track.gaps : holes(time, step);
-  const moved = (track?.rejected ?? []).map(({ reason, count, firstTime }) => ({
-    code: 'fixes-not-used',
-    message: `${count} ${count === 1 ? 'fix' : 'fixes'} not used, ${reason}; the first at ${iso(firstTime)}.`,
-  }));
-  const issues: readonly Issue[] = [...log.issues, ...(track?.issues ?? []), ...moved];
+  const issues: readonly Issue[] = [...log.issues, ...(track?.issues ?? [])];
   return {
     file,
     sha256: log.sha256,
@@ -83,6 +137,15 @@ function smoothed(recording: Recording, file: string) {
   const middle = lat && lon ? middleOf(lat, lon) : null;
   return middle && smoothTrack(recording, makeFrame(middle.lat, middle.lon), { file });
 }
+
+/** Seconds from one record to the next, of those that hold a channel where one is named; NaN with fewer than two. */
+function medianStep(recording: Recording, channel: Channel | null): number {
+  const { time } = channel === null ? recording : channelValues(recording, channel);
+  return time.length > 1 ? median(time.slice(1).map((t, i) => t - time[i])) : NaN;
+}
+
+const windChannel = ({ channels }: Recording): Channel | null =>
+  (['tws', 'twd', 'twdMagnetic', 'aws', 'awa'] as const).find((channel) => channels[channel]) ?? null;
 
 /** Holes of a log without positions. */
 function holes(time: Float64Array, step: number): { from: number; seconds: number }[] {

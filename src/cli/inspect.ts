@@ -1,4 +1,5 @@
 import type { Command } from 'commander';
+import { basename, isAbsolute } from 'node:path';
 import { inspect, resultFiles } from '../index.js';
 import type { ImportOptions, InspectFile } from '../index.js';
 import { exitCodeOf, tellFailure } from './failures.js';
@@ -55,7 +56,7 @@ async function runInspect(words: readonly string[], flags: InspectFlags): Promis
   const files: InspectFile[] = [];
   let worst = 0;
   for (const path of paths) {
-    const name = path === '-' ? STDIN_NAME : forMessages(path);
+    const name = path === '-' ? STDIN_NAME : resultName(path);
     progress.say(`reading ${name}`);
     try {
       files.push(...(await inspect([name], () => logSource(name, path), options)).files);
@@ -73,6 +74,12 @@ async function runInspect(words: readonly string[], flags: InspectFlags): Promis
   else if (flags.json !== undefined) await writeWhole(flags.json, json);
   if (!flags.quiet && flags.json !== '-') await print(`${files.map((file) => fileText(file)).join('\n\n')}\n`);
   return worst;
+}
+
+/** From the working folder, or by its own name where it lies elsewhere: never an absolute path. */
+function resultName(path: string): string {
+  const shown = forMessages(path);
+  return isAbsolute(shown) || shown.startsWith('..') ? basename(shown) : shown;
 }
 
 /** A log in words. */
@@ -109,7 +116,9 @@ function gapLines({ gaps }: InspectFile): string[] {
   const longest = Math.max(...gaps.map(({ seconds }) => seconds));
   const shown = gaps.slice(0, 5).map(({ from, seconds }) => `${from.slice(11, 19)} ${duration(seconds)}`);
   const more = gaps.length > shown.length ? ', ...' : '';
-  return [`  ${gaps.length} gaps, the longest ${duration(longest)}: ${shown.join(', ')}${more}`];
+  return [
+    `  ${gaps.length} ${gaps.length === 1 ? 'gap' : 'gaps'}, the longest ${duration(longest)}: ${shown.join(', ')}${more}`,
+  ];
 }
 
 function spanText(from: string, to: string): string {
