@@ -20,7 +20,8 @@ import { readLogs, type OpenLog, type ReadLogs } from './steps/read-logs.js';
 import { sail, type CurrentAt, type Sailed } from './steps/sail.js';
 import { windSources } from './steps/wind-sources.js';
 import type { WindAtBoat } from './wind/field.js';
-import { checkRecording } from './steps/check-sensors.js';
+import { checkRecording, clockIssues } from './steps/check-sensors.js';
+import { engineRows } from './steps/find-engine.js';
 
 export interface DebriefOptions {
   /** Version of the program, for the result. */
@@ -45,12 +46,19 @@ export interface Debrief {
  */
 export async function debrief(race: Race, open: OpenLog, options: DebriefOptions = {}): Promise<Debrief> {
   const logs = await readLogs(race, open);
-  const clean = cleanTracks(logs, (recording, file) => checkRecording(recording, file));
-  const { wind, course } = sailAll(race, logs, clean, options.thresholds ?? THRESHOLDS);
+  const clean = cleanTracks(logs, checkRecording);
+  const { wind, course, issues: seen } = sailAll(race, logs, clean, options.thresholds ?? THRESHOLDS);
   mustHaveBeat(wind);
   const errors = errorModels(clean, wind, (boat) => (seconds) => receiverDisplacementSe(seconds, boat.noise));
   const estimates = wind.sailed.map((one, k) => estimateBoat(one, errors[k]!, clean.boats[k]!.track.awa));
-  const issues: Issue[] = [...logs.issues, ...clean.issues, ...wind.issues, ...assumptions(race)];
+  const issues: Issue[] = [
+    ...logs.issues,
+    ...clockIssues(logs),
+    ...clean.issues,
+    ...seen,
+    ...wind.issues,
+    ...assumptions(race),
+  ];
   const result = assemble({
     race,
     version: options.version ?? '0.0.0',
@@ -76,9 +84,11 @@ function sailAll(
   logs: ReadLogs,
   clean: CleanTracks,
   thresholds: Thresholds,
-): { wind: FoundWind; course: CoursePlaces } {
+): { wind: FoundWind; course: CoursePlaces; issues: readonly Issue[] } {
   const tracks = clean.boats.map((boat) => boat.track);
-  const sources = windSources(race, logs, clean, (height) => logLawFactor(height, RIG_HEIGHT));
+  const { sources, issues: windIssues } = windSources(race, logs, clean, (height) => logLawFactor(height, RIG_HEIGHT));
+  const engine = engineRows(clean.boats, sources);
+  const issues = [...windIssues, ...engine.issues];
   const course = coursePlaces(race, clean.frame);
   const current = currentOf(race);
   const sailIn = (boat: number, at: WindAtBoat, foundLeeward: Place | null): Sailed =>
@@ -87,13 +97,21 @@ function sailAll(
       at,
       current,
       (track) => ({ ...courseFor(race, course, track), foundLeeward }),
-      race.exclude,
+      excludedRows(tracks[boat], race.exclude, engine.masks[boat]),
       thresholds,
     );
   const wind = findWind(tracks, sources, (boat, at) => sailIn(boat, at, null));
   const bottom = course.leeward ? null : leewardOf(wind.sailed);
-  if (!bottom) return { wind, course };
-  return { wind: { ...wind, sailed: wind.atBoats.map((at, boat) => sailIn(boat, at, bottom)) }, course };
+  if (!bottom) return { wind, course, issues };
+  return { wind: { ...wind, sailed: wind.atBoats.map((at, boat) => sailIn(boat, at, bottom)) }, course, issues };
+}
+
+/** Rows that are not to be judged: excluded by the race file, or under engine. */
+function excludedRows(track: Track, spans: Race['exclude'], engine: Uint8Array): Uint8Array {
+  return engine.map((motoring, i) => {
+    const time = track.t0 + i;
+    return motoring || spans.some((span) => time >= span.from && time <= span.to) ? 1 : 0;
+  });
 }
 
 /** Where the boats rounded at the bottom: the middle of the ends of all downwind legs that a beat follows. */

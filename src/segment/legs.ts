@@ -126,6 +126,15 @@ function monotonePieces(progress: Float64Array, from: number, to: number, turnBa
   return pieces;
 }
 
+/** A rise or fall smaller than this share of the race's beats is waiting or a harbour, not a leg. */
+const SMALL = 0.3;
+/** A beat that ends within this share of its height of where others were rounded ends at the mark. */
+const AT_WINDWARD = 0.15;
+const AT_WINDWARD_LEAST = 80;
+
+/** A beat that no rounding follows outweighs a single rounded one when it is this much higher: the log ends on it. */
+const HIGHER = 1.3;
+
 /** Leaves out the sail out, waiting and the sail home. */
 function racingPieces(
   pieces: readonly Piece[],
@@ -133,25 +142,31 @@ function racingPieces(
   course: Course,
   thresholds: Thresholds,
 ): readonly Piece[] {
-  const rounded = pieces.map((piece, k) => piece.rise > 0 && isRounded(pieces, k, thresholds));
+  const isRounded = pieces.map((piece, k) => piece.rise > 0 && roundedBy(pieces, k, thresholds));
+  const height = Math.max(0, ...pieces.filter((_, k) => isRounded[k]).map((piece) => piece.rise));
+  const rounded = isRounded.map((is, k) => is && pieces[k].rise >= SMALL * height);
   if (!rounded.includes(true)) {
-    return course.gun !== null ? pieces : pieces.filter((piece) => piece.rise > 0 || piece.to - piece.from > 180);
+    const sustained = pieces.filter((piece) => piece.rise > 0 && piece.to - piece.from > 180);
+    return course.gun !== null ? pieces : sustained;
   }
-  const tops = pieces.filter((_, k) => rounded[k]).map((piece) => placeAt(sailing, piece.to));
-  const mark = course.windward ?? medianPlace(tops);
-  const lengths = median(pieces.filter((_, k) => rounded[k]).map((piece) => piece.rise));
+  const tops = pieces.filter((_, k) => rounded[k]);
+  const mark = course.windward ?? medianPlace(tops.map((piece) => placeAt(sailing, piece.to)));
+  const near = Math.max(AT_WINDWARD_LEAST, AT_WINDWARD * median(tops.map((piece) => piece.rise)));
   const first = rounded.indexOf(true);
-  return pieces.filter((piece, k) => {
-    if (course.gun === null && k < first) return false;
-    if (piece.rise < 0 || rounded[k]) return true;
-    if (course.gun !== null && k === 0) return true;
-    const end = placeAt(sailing, piece.to);
-    return Math.hypot(end.x - mark.x, end.y - mark.y) < Math.max(80, 0.15 * lengths);
+  return pieces.flatMap((piece, k) => {
+    if (course.gun === null && k < first) return [];
+    if (course.gun !== null && k === 0 && piece.rise > 0) return [piece];
+    if (Math.abs(piece.rise) < SMALL * height) return [];
+    if (rounded[k]) return [piece];
+    if (piece.rise < 0) return k > first ? [piece] : [];
+    const to = passing(sailing, piece, mark, near);
+    if (to !== null && to - piece.from >= thresholds.minLeg) return [{ ...piece, to }];
+    return course.gun === null && tops.length === 1 && piece.rise > HIGHER * height ? [piece] : [];
   });
 }
 
 /** A beat is rounded when a leg down of at least a third of its height follows within a minute. */
-function isRounded(pieces: readonly Piece[], k: number, thresholds: Thresholds): boolean {
+function roundedBy(pieces: readonly Piece[], k: number, thresholds: Thresholds): boolean {
   const up = pieces[k];
   const down = pieces[k + 1];
   return !!down && down.rise < -up.rise / 3 && down.from - up.to <= thresholds.minLeg;
@@ -210,7 +225,7 @@ function legEnd(piece: Piece, sailing: Sailing, angle: Float64Array, course: Cou
   const mark = piece.rise > 0 ? course.windward : course.leeward;
   if (mark && piece.to < sailing.n - 1) return closest(sailing, piece.to, mark);
   const turned = corner(piece.to, angle, piece.rise > 0 ? 1 : -1);
-  const finish = piece.rise < 0 && course.foundLeeward ? passing(sailing, piece, course.foundLeeward) : null;
+  const finish = piece.rise < 0 && course.foundLeeward ? passing(sailing, piece, course.foundLeeward, AT_MARK) : null;
   return finish !== null && finish < turned - 10 ? finish : turned;
 }
 
@@ -218,9 +233,9 @@ function legEnd(piece: Piece, sailing: Sailing, angle: Float64Array, course: Cou
 const AT_MARK = 60;
 
 /** Row of a leg's closest approach to a place, if it comes close: the finish of a boat that sails on past it. */
-function passing(sailing: Sailing, piece: RowRange, place: Place): number | null {
+function passing(sailing: Sailing, piece: RowRange, place: Place, within: number): number | null {
   let best = -1;
-  let least = AT_MARK;
+  let least = within;
   for (let i = piece.from; i < piece.to; i++) {
     const distance = Math.hypot(sailing.x[i]! - place.x, sailing.y[i]! - place.y);
     if (distance < least) {
@@ -284,6 +299,12 @@ function reachesApart(
   let at = range.from;
   for (const reach of states) {
     const lead = reach.from - at < thresholds.minLeg / 2 ? at : reach.from;
+    const before = out.at(-1);
+    if (lead === at && before?.kind === 'reach') {
+      out[out.length - 1] = { ...before, to: reach.to };
+      at = reach.to;
+      continue;
+    }
     if (lead > at) out.push({ kind: 'downwind', from: at, to: lead });
     out.push({ kind: 'reach', from: lead, to: reach.to });
     at = reach.to;

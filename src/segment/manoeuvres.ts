@@ -42,7 +42,7 @@ export function findManoeuvres(sailing: Sailing, thresholds: Thresholds): Manoeu
     const found = between(states, k, turning, thresholds);
     if (found) list.push(complete(found, sailing, turning, usual, thresholds));
   }
-  list.push(...changesOfPoint(states, sailing, list, thresholds));
+  list.push(...changesOfPoint(states, sailing, angle, list, thresholds));
   list.sort((a, b) => a.time - b.time);
   return { states, list: trimToNext(list), usual };
 }
@@ -97,11 +97,12 @@ function sideName(side: 1 | -1): Tack {
   return side > 0 ? 'starboard' : 'port';
 }
 
+/** Unknown rows within a turn from which on its moment is told from the courses before and after. [s] */
+const BLIND = 4;
+
 /** Row (fractional) at which the unwrapped angle passes the wind's eye (or dead downwind) between two rows. */
-function passage(turning: Float64Array, from: number, to: number, downwind: boolean): number {
-  const start = turning[from];
-  const end = turning[to];
-  const middle = (start + end) / 2;
+function passage(sailing: Sailing, turning: Float64Array, from: number, to: number, downwind: boolean): number {
+  const middle = (turning[from] + turning[to]) / 2;
   const level = downwind ? 360 * Math.round((middle - 180) / 360) + 180 : 360 * Math.round(middle / 360);
   const crossings: number[] = [];
   let last = from;
@@ -109,10 +110,28 @@ function passage(turning: Float64Array, from: number, to: number, downwind: bool
     if (Number.isNaN(turning[i])) continue;
     const a = turning[last] - level;
     const b = turning[i] - level;
-    if (a === 0 || a * b < 0) crossings.push(last + ((i - last) * a) / (a - b || 1));
+    if (a === 0 || a * b < 0) {
+      const blind = i - last > BLIND ? meeting(sailing, last, i) : null;
+      crossings.push(blind ?? last + ((i - last) * a) / (a - b || 1));
+    }
     last = i;
   }
   return crossings.length > 0 ? crossings[Math.floor((crossings.length - 1) / 2)] : (from + to) / 2;
+}
+
+/**
+ * Row at which a boat turned while it was not seen: where the straight lines sailed before and after meet.
+ *     p1 + a v1 = p2 - b v2,  a, b >= 0
+ *
+ * @returns null where the lines do not meet within the gap.
+ */
+function meeting(sailing: Sailing, before: number, after: number): number | null {
+  const { x, y, ux, uy } = sailing;
+  const cross = ux[before] * uy[after] - uy[before] * ux[after];
+  const dx = x[after] - x[before];
+  const dy = y[after] - y[before];
+  const a = (dx * uy[after] - dy * ux[after]) / cross;
+  return a >= 0 && a <= after - before ? before + a : null;
 }
 
 /** Adds times to a turn: passage, entry and exit. */
@@ -125,7 +144,7 @@ function complete(
 ): Manoeuvre {
   const { kind, before, after } = found;
   const first = before.to - 1;
-  const row = passage(turning, first, after.from, kind === 'gybe');
+  const row = passage(sailing, turning, first, after.from, kind === 'gybe');
   const at = Math.round(row);
   const entry = helmDown(turning, Math.max(before.from, at - thresholds.maxTurn), at) - thresholds.beforeTack;
   const exit = settledAgain(sailing, at, after, usual, thresholds);
@@ -169,14 +188,22 @@ function meanOf(values: Float64Array, from: number, to: number): number {
   return sum / (to - from);
 }
 
-/** Rounding up and bearing away: close-hauled for a while, then off the wind for a while on the same side, or back. */
+/** Rounding up or bearing away changes the course by at least this ... [deg] */
+const POINT_CHANGE = 25;
+/** ... between the means of this long before and after. [s] */
+const POINT_SECONDS = 20;
+
+/** Rounding up and bearing away: close-hauled for a while, then off the wind for a while, or back. */
 function changesOfPoint(
   states: readonly State[],
   sailing: Sailing,
+  angle: Float64Array,
   turns: readonly Manoeuvre[],
   thresholds: Thresholds,
 ): Manoeuvre[] {
   const long = states.filter((state) => state.to - state.from >= 2 * thresholds.minState);
+  const size = (from: number, to: number): number =>
+    median(Array.from(angle.subarray(Math.max(0, from), Math.min(angle.length, to)), Math.abs));
   const out: Manoeuvre[] = [];
   for (let k = 0; k + 1 < long.length; k++) {
     const before = long[k];
@@ -184,10 +211,10 @@ function changesOfPoint(
     const up = before.point !== 'upwind' && after.point === 'upwind';
     const away = before.point === 'upwind' && after.point !== 'upwind';
     if ((!up && !away) || after.from - before.to > 2 * thresholds.maxTurn) continue;
+    const change = size(after.from, after.from + POINT_SECONDS) - size(before.to - POINT_SECONDS, before.to);
+    if (Math.abs(change) < POINT_CHANGE) continue;
     const at = Math.round((before.to + after.from) / 2);
-    const inTurn = turns.some((turn) => turn.at >= before.to - 2 && turn.at <= after.from + 2);
-    if (inTurn && before.side === after.side) continue;
-    const exit = Math.min(sailing.n, Math.round(after.from + thresholds.settleMin));
+    if (turns.some((turn) => turn.at >= before.to - 2 && turn.at <= after.from + 2)) continue;
     out.push({
       kind: up ? 'round-up' : 'bear-away',
       from: sideName(before.side),
@@ -195,7 +222,7 @@ function changesOfPoint(
       time: sailing.t0 + at,
       entry: Math.max(0, Math.round(before.to - thresholds.beforeTack)),
       at,
-      exit,
+      exit: Math.min(sailing.n, Math.round(after.from + thresholds.settleMin)),
     });
   }
   return out;

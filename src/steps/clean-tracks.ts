@@ -1,4 +1,5 @@
 import { makeFrame, middleOf } from '../math/geo.js';
+import type { LatLon } from '../files/race-types.js';
 import type { Issue } from '../recording/issues.js';
 import type { Recording } from '../recording/recording.js';
 import type { Frame, Track } from '../recording/track.js';
@@ -20,7 +21,11 @@ export interface CleanTracks {
 }
 
 /** What the sensors' checks do to a recording before it is used. */
-export type CheckRecording = (recording: Recording, file: string) => { recording: Recording; issues: readonly Issue[] };
+export type CheckRecording = (
+  recording: Recording,
+  file: string,
+  place: LatLon | null,
+) => { recording: Recording; issues: readonly Issue[] };
 
 /** Smooths every boat's track onto whole seconds in one local plane and puts its instruments on the same rows. */
 export function cleanTracks(logs: ReadLogs, check: CheckRecording): CleanTracks {
@@ -28,13 +33,13 @@ export function cleanTracks(logs: ReadLogs, check: CheckRecording): CleanTracks 
   const issues: Issue[] = [];
   const boats = logs.boats.map((boat): CleanBoat => {
     const file = boat.trackFiles[0] ?? '';
-    const checked = check(boat.track, file);
+    const checked = check(boat.track, file, frame);
     issues.push(...checked.issues);
     const smooth = smoothTrack(checked.recording, frame, { file });
     issues.push(...smooth.issues);
     let track = smooth.track;
     for (const own of boat.instruments) {
-      const instruments = check(own.recording, own.file);
+      const instruments = check(own.recording, own.file, frame);
       issues.push(...instruments.issues);
       track = attachInstruments(track, instruments.recording);
     }

@@ -31,14 +31,15 @@ export type CurrentAt = (time: number) => { readonly east: number; readonly nort
 /**
  * Divides a boat's track into manoeuvres, legs, settled spells and blocks in a given wind.
  *
- * @param current null: not known, velocities over ground stand for those through the water.
+ * @param current  null: not known, velocities over ground stand for those through the water.
+ * @param excluded 1 on rows that are not to be judged.
  */
 export function sail(
   track: Track,
   wind: WindAtBoat,
   current: CurrentAt | null,
   courseOf: (track: Track) => Course,
-  excluded: readonly { readonly from: number; readonly to: number }[],
+  excluded: Uint8Array,
   thresholds: Thresholds,
 ): Sailed {
   const { ux, uy } = throughWater(track, current, excluded);
@@ -57,17 +58,17 @@ export function sail(
   return { sailing, tws, manoeuvres: list, states, usual, legs, rows, blocks, own };
 }
 
-/** Velocity through the water; NaN over excluded spans. */
+/** Velocity through the water; NaN on excluded rows. */
 function throughWater(
   track: Track,
   current: CurrentAt | null,
-  excluded: readonly { readonly from: number; readonly to: number }[],
+  excluded: Uint8Array,
 ): { ux: Float64Array; uy: Float64Array } {
   const ux = Float64Array.from(track.vx);
   const uy = Float64Array.from(track.vy);
   for (let i = 0; i < track.n; i++) {
     const time = track.t0 + i;
-    if (excluded.some((span) => time >= span.from && time <= span.to)) ux[i] = uy[i] = NaN;
+    if (excluded[i]) ux[i] = uy[i] = NaN;
     if (!current) continue;
     const { east, north } = current(time);
     ux[i] = ux[i]! - east;

@@ -1,11 +1,13 @@
 import type { Race } from '../files/race-types.js';
 import { eastInPlane, northInPlane, toPlane } from '../math/geo.js';
+import type { Issue } from '../recording/issues.js';
 import { channelValues, countFixes } from '../recording/recording.js';
 import type { Frame } from '../recording/track.js';
 import { smoothTrack } from '../smooth/index.js';
 import { onBoardSource } from '../wind/on-board.js';
 import type { SensorPlace, WindSource } from '../wind/source.js';
 import { handSource, stationSource } from '../wind/station.js';
+import { checkRecording } from './check-sensors.js';
 import type { CleanTracks } from './clean-tracks.js';
 import type { ReadLogs, WindLog } from './read-logs.js';
 
@@ -19,15 +21,18 @@ export function windSources(
   logs: ReadLogs,
   clean: CleanTracks,
   heightFactor: (height: number) => number,
-): WindSource[] {
+): { sources: readonly WindSource[]; issues: readonly Issue[] } {
   const sources: WindSource[] = [];
+  const issues: Issue[] = [];
   clean.boats.forEach((boat, k) => {
     const file = boat.logs.instruments[0]?.file ?? boat.logs.trackFiles[0] ?? '';
     const own = onBoardSource(boat.track, file, k);
     if (own) sources.push(own);
   });
   for (const log of logs.winds) {
-    const source = logSource(log, clean.frame, heightFactor);
+    const checked = checkRecording(log.recording, log.reference.file, log.reference.at ?? clean.frame);
+    issues.push(...checked.issues);
+    const source = logSource({ ...log, recording: checked.recording }, clean.frame, heightFactor);
     if (source) sources.push(source);
   }
   const span = {
@@ -37,7 +42,7 @@ export function windSources(
   for (const wind of race.wind) {
     if (wind.kind === 'by-hand') sources.push(handSource(wind.readings, wind, span));
   }
-  return sources;
+  return { sources, issues };
 }
 
 /** A wind log: a moving boat's apparent wind is made true by its own motion, anything else is a station. */
@@ -57,7 +62,6 @@ function logSource(log: WindLog, frame: Frame, heightFactor: (height: number) =>
     offset: reference.offset,
     factor: reference.heightM === undefined ? 1 : heightFactor(reference.heightM),
     clockS: 0,
-    variation: meanVariation(log),
   });
 }
 
@@ -78,9 +82,4 @@ function loggedPlace({ recording }: WindLog, frame: Frame): SensorPlace {
     ys[i] = northInPlane(frame, lat.value[k]!);
   }
   return { xs, ys };
-}
-
-function meanVariation({ recording }: WindLog): number {
-  const { value } = channelValues(recording, 'variation');
-  return value.length > 0 ? value.reduce((sum, v) => sum + v, 0) / value.length : 0;
 }

@@ -15,29 +15,25 @@ export interface StationOptions {
   readonly place: SensorPlace;
   readonly accuracyDir: number;
   readonly accuracySpeed: number;
-  /** Added to its direction: the user's offset, and the variation where it logs magnetic. [deg] */
+  /** Added to its direction. [deg] */
   readonly offset: number;
   /** Multiplies its speed: from its height to the rig's. */
   readonly factor: number;
   /** Added to its clock. [s] */
   readonly clockS: number;
-  /** Magnetic variation for a log of magnetic directions, east positive. [deg] */
-  readonly variation: number;
 }
 
 /** A fixed station's log of true wind as a source. null when it holds no direction. */
 export function stationSource(recording: Recording, options: StationOptions): WindSource | null {
-  const magnetic = !recording.channels.twd && !!recording.channels.twdMagnetic;
-  const direction = channelValues(recording, magnetic ? 'twdMagnetic' : 'twd');
+  const direction = channelValues(recording, 'twd');
   if (direction.time.length === 0) return null;
   const speed = channelValues(recording, 'tws');
-  const shift = options.offset + (magnetic ? options.variation : 0);
   const t0 = Math.floor(direction.time[0] + options.clockS);
   const n = Math.ceil(direction.time.at(-1)! + options.clockS) - t0 + 1;
-  const east = toSeconds(direction.time, Float64Array.from(direction.value, (d) => eastOf(d + shift)), t0, n, options);
+  const east = toSeconds(direction.time, Float64Array.from(direction.value, (d) => eastOf(d + options.offset)), t0, n, options);
   const north = toSeconds(
     direction.time,
-    Float64Array.from(direction.value, (d) => northOf(d + shift)),
+    Float64Array.from(direction.value, (d) => northOf(d + options.offset)),
     t0,
     n,
     options,
