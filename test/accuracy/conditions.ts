@@ -38,12 +38,16 @@ export const TRIALS: readonly Trial[] = [
   trial(3, 'fresh and steady', { tws: [15, 18], shift: [3, 5] }),
   trial(3, 'minute rows', { stationEvery: 60, station: 'away' }),
   trial(3, 'short laps', { laps: 3, beat: [450, 600] }),
-  trial(2, 'fault: pinching', { faults: { pinch: 5 } }),
-  trial(2, 'fault: slow', { faults: { slow: 0.05 } }),
-  trial(2, 'fault: bad tacks', { faults: { tackCost: 2 } }),
-  trial(2, 'fault: overstanding', { faults: { overstand: 60 } }),
-  trial(2, 'fault: headed tack', { faults: { headed: true } }),
-  trial(2, 'fault: sheeting', { faults: { sheeting: 6 } }),
+  ...(
+    [
+      ['pinching', { pinch: 5 }],
+      ['slow', { slow: 0.05 }],
+      ['bad tacks', { tackCost: 2 }],
+      ['overstanding', { overstand: 60 }],
+      ['headed tack', { headed: true }],
+      ['sheeting', { sheeting: 6 }],
+    ] as const
+  ).map(([name, faults]) => trial(2, `fault: ${name}`, { faults, events: false })),
 ];
 
 /** Upwind legs of one race under a condition. */

@@ -5,6 +5,8 @@ import { condition, generateRace, PHASES, type TrueBoat } from './generator/inde
 import { performanceOf, SINGLE_HANDER, steadyState } from './generator/boat.js';
 import { cosd, signed, sind } from './generator/directions.js';
 import { placer } from './generator/logs.js';
+import { TRIALS } from './conditions.js';
+import { SHOWS_IN, trueExcess, type PlantedCause } from './planted.js';
 
 const KNOT = 1852 / 3600;
 
@@ -167,5 +169,22 @@ describe('its logs', () => {
     });
     // The best of five: the first solves the boat's table, and a shared machine may slow any one of them.
     expect(Math.min(...times)).toBeLessThan(150);
+  });
+});
+
+describe('planted faults', () => {
+  const faulty = TRIALS.filter((t) => Object.keys(t.condition.faults).length > 0).map(
+    (t) => [t.condition.name, t] as const,
+  );
+
+  it.each(faulty)('are really there, and cost more than chance elsewhere: %s', (_, { condition: c }) => {
+    const causes = SHOWS_IN[Object.keys(c.faults)[0] as keyof typeof SHOWS_IN];
+    const metres = [1, 2, 3, 4, 5, 6].map((seed) => {
+      const excess = trueExcess(generateRace(c, seed).truth);
+      return causes.reduce((sum, cause) => sum + (excess[cause as PlantedCause] ?? 0), 0);
+    });
+    const mean = metres.reduce((sum, m) => sum + m, 0) / metres.length;
+    expect(mean).toBeGreaterThan(15);
+    expect(metres.filter((m) => m > 0).length).toBeGreaterThanOrEqual(5);
   });
 });

@@ -5,7 +5,7 @@
  */
 import { TRIALS } from './conditions.js';
 import { CORRECTIONS, QUANTITIES, type Measured } from './measure.js';
-import { runTrial } from './run.js';
+import { meanExcess, runTrial, type Run } from './run.js';
 import { f1, summarise, summariseSamples, type Summary } from './summary.js';
 
 const HEAD = ['quantity', 'n', 'null', 'bias', 'mean', 'p50', 'p90', 'max', 'rms err/se', 'with sys'];
@@ -39,6 +39,15 @@ function rowsOf(m: Measured, own: boolean): string[][] {
   return rows;
 }
 
+/** Where the faulty boat loses more than the others. [m a race] */
+function excessLines(run: Run): string {
+  const lines = meanExcess(run).map(
+    ({ cause, truth, stated, n }) =>
+      `| ${cause.padEnd(10)} | ${truth.toFixed(0).padStart(5)} | ${(n > 0 ? stated.toFixed(0) : '-').padStart(6)} |`,
+  );
+  return ['| m more     | truth | stated |', '| ---------- | ----: | -----: |', ...lines].join('\n');
+}
+
 async function main(args: readonly string[]): Promise<void> {
   const long = args.includes('--long');
   const own = args.includes('--own');
@@ -46,7 +55,8 @@ async function main(args: readonly string[]): Promise<void> {
   for (const trial of TRIALS) {
     const { name } = trial.condition;
     if (only.length > 0 && !only.some((part) => name.includes(part))) continue;
-    const { measured, races, upwindLegs, seconds } = await runTrial(trial, long);
+    const run = await runTrial(trial, long);
+    const { measured, races, upwindLegs, seconds } = run;
     const { tacks, legs } = measured;
     console.log(`\n### ${name}\n`);
     console.log(
@@ -55,6 +65,7 @@ async function main(args: readonly string[]): Promise<void> {
         `legs ${legs.found} found, ${legs.missed} missed, ${legs.extra} extra\n`,
     );
     console.log(table(rowsOf(measured, own)));
+    if (Object.keys(trial.condition.faults).length > 0) console.log(`\n${excessLines(run)}`);
   }
 }
 

@@ -3,6 +3,7 @@ import { debrief } from '../../src/debrief.js';
 import { seedsOf, type Trial } from './conditions.js';
 import { generateRace } from './generator/index.js';
 import { emptyMeasured, measure, type Measured } from './measure.js';
+import { CAUSES, statedExcess, trueExcess, type PlantedCause } from './planted.js';
 
 export interface Run {
   readonly measured: Measured;
@@ -10,18 +11,36 @@ export interface Run {
   /** True upwind legs of all boats. */
   readonly upwindLegs: number;
   readonly seconds: number;
+  /** Metres the first boat lost more than the others, race by race: in truth, and as stated (null: no ledger). */
+  readonly excess: readonly {
+    readonly truth: Record<PlantedCause, number>;
+    readonly stated: Record<PlantedCause, number> | null;
+  }[];
 }
 
 export async function runTrial(trial: Trial, long = false): Promise<Run> {
   const measured = emptyMeasured();
   const seeds = seedsOf(trial, long);
+  const excess: Run['excess'][number][] = [];
   let upwindLegs = 0;
   const from = performance.now();
   for (const seed of seeds) {
     const { race, open, truth } = generateRace(trial.condition, seed);
     const { result, series } = await debrief(race, open);
     measure(result, series, truth, measured);
+    excess.push({ truth: trueExcess(truth), stated: statedExcess(result) });
     for (const boat of truth.boats) upwindLegs += boat.legs.filter((leg) => leg.kind === 'upwind').length;
   }
-  return { measured, races: seeds.length, upwindLegs, seconds: (performance.now() - from) / 1000 };
+  return { measured, races: seeds.length, upwindLegs, seconds: (performance.now() - from) / 1000, excess };
+}
+
+/** Mean excess by cause: in truth, and as stated in the races that have a ledger. [m] */
+export function meanExcess(run: Run): { cause: PlantedCause; truth: number; stated: number; n: number }[] {
+  const told = run.excess.filter((one) => one.stated !== null);
+  return CAUSES.map((cause) => ({
+    cause,
+    truth: run.excess.reduce((sum, one) => sum + one.truth[cause], 0) / run.excess.length,
+    stated: told.reduce((sum, one) => sum + one.stated![cause], 0) / told.length,
+    n: told.length,
+  }));
 }

@@ -126,10 +126,10 @@ interface Table {
 function carryWay(table: Table): void {
   for (let k = table.speed.length - 1; k > 0; k--) {
     const gamma = ((k - 1) % GAMMA_COUNT) * GAMMA_STEP;
-    const carried = table.speed[k]! * (gamma >= 24 ? 0.86 : 0.6);
-    if (gamma > 42 || table.speed[k - 1]! >= carried) continue;
+    const carried = table.speed[k] * (gamma >= 24 ? 0.86 : 0.6);
+    if (gamma > 42 || table.speed[k - 1] >= carried) continue;
     table.speed[k - 1] = carried;
-    table.leeway[k - 1] = table.leeway[k]! + 0.6;
+    table.leeway[k - 1] = table.leeway[k] + 0.6;
     table.heel[k - 1] = table.heel[k]!;
   }
 }

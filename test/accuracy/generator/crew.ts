@@ -45,7 +45,7 @@ export function drawCrew(condition: Condition, index: number, name: string, chan
     performance: performanceOf(SINGLE_HANDER, sheeting),
     clean: performanceOf(SINGLE_HANDER, 0),
     faults,
-    angle: spread * chance.between(-1.5, 2.5) - (faults.pinch ?? 0),
+    angle: faults.pinch === undefined ? spread * chance.between(-1.5, 2.5) : -faults.pinch,
     speed: 1 - spread * chance.between(0, 0.03),
     sheeting,
     drop: [Math.min(0.8, 0.35 * stretch), Math.min(0.85, 0.5 * stretch)],

@@ -268,7 +268,7 @@ function nearest(boat: Boat, mark: Place, around: number): number {
   let least = Infinity;
   for (let t = around - 10; t < around + 15; t++) {
     const i = t - boat.log.t0;
-    const distance = Math.hypot(x[i]! - mark.x, y[i]! - mark.y);
+    const distance = Math.hypot(x[i] - mark.x, y[i] - mark.y);
     if (distance < least) [best, least] = [t, distance];
   }
   return best;
