@@ -84,9 +84,9 @@ export function dice(seed: number): Dice {
 /** Value of a table at x, straight between its points, flat beyond them. */
 export function between(points: readonly (readonly [number, number])[], x: number): number {
   let i = 1;
-  while (i < points.length - 1 && x > points[i]![0]) i++;
-  const [x0, y0] = points[i - 1]!;
-  const [x1, y1] = points[i]!;
+  while (i < points.length - 1 && x > points[i][0]) i++;
+  const [x0, y0] = points[i - 1];
+  const [x1, y1] = points[i];
   const f = Math.min(1, Math.max(0, (x - x0) / (x1 - x0)));
   return y0 + (y1 - y0) * f;
 }

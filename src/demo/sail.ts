@@ -25,8 +25,9 @@ export interface Sailor {
   /** Close-hauled angle to the wind [deg] and speed as a share of the table's. */
   readonly angle: number;
   readonly speed: number;
-  /** Tacks when headed by this. [deg] */
+  /** Tacks when headed by this [deg], but not sooner than this after the last turn. [s] */
   readonly shift: number;
+  readonly hold: number;
   /** Where it is at the gun. */
   readonly atGun: Place;
   /** Before the gun: how long at which angle to the wind (signed: positive on starboard tack). */
@@ -101,6 +102,7 @@ export function sailAfternoon(sailor: Sailor, windAt: WindAt, course: Course): {
   for (const story of sailor.beats) {
     state.beatBegun = state.second;
     state.tacks = 0;
+    state.lastTurn = state.second;
     sailTo(state, course.windward, () => beat(state, course.windward, story));
     turnTo(state, 160, 10, 0, 8);
     sailTo(state, course.leeward, () => run(state, course.leeward));
@@ -120,7 +122,7 @@ function begin(sailor: Sailor, windAt: WindAt, place: Place): State {
     second: 0,
     x: place.x,
     y: place.y,
-    angle: sailor.before[0]![1],
+    angle: sailor.before[0][1],
     speed: 3,
     felt: wind.direction,
     usual: WIND_FROM,
@@ -198,7 +200,7 @@ function beat(state: State, mark: Place, story: BeatStory): void {
   const room = distance * sine(side * apart(state.felt + side * close, bearing));
   const fetches = room >= (story.overstand ?? 3) && side * apart(state.felt + side * close, bearing) < 150;
   const corner = side > 0 && room > -60 && distance > 150 && held > 30 && room < 0;
-  const headed = side * apart(state.usual, state.felt) < -sailor.shift && held > 55 && !isBlind(state, story);
+  const headed = side * apart(state.usual, state.felt) < -sailor.shift && held > sailor.hold && !isBlind(state, story);
   if ((fetches && held > 12) || corner || (headed && distance > 80)) tackNow(state, side, story);
 }
 

@@ -39,8 +39,8 @@ export function lakeWind(seconds: number): WindAt {
     const i = Math.floor(place);
     const f = place - i;
     return {
-      direction: directions[i]! * (1 - f) + directions[i + 1]! * f,
-      speed: speeds[i]! * (1 - f) + speeds[i + 1]! * f,
+      direction: directions[i] * (1 - f) + directions[i + 1] * f,
+      speed: speeds[i] * (1 - f) + speeds[i + 1] * f,
     };
   };
 }

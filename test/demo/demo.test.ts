@@ -35,7 +35,10 @@ describe('its arithmetic', () => {
     for (const name of readdirSync(folder)) {
       const used = readFileSync(new URL(name, folder), 'utf8').match(/Math\.\w+/g) ?? [];
       for (const call of used) {
-        expect(['Math.sqrt', 'Math.abs', 'Math.min', 'Math.max', 'Math.floor', 'Math.round', 'Math.imul'], name).toContain(call);
+        expect(
+          ['Math.sqrt', 'Math.abs', 'Math.min', 'Math.max', 'Math.floor', 'Math.round', 'Math.imul'],
+          name,
+        ).toContain(call);
       }
     }
   });
@@ -43,21 +46,23 @@ describe('its arithmetic', () => {
 
 describe('its files', () => {
   it('are these, byte for byte', () => {
-    const digests = [...files].map(([name, text]) => `${name} ${createHash('sha256').update(text).digest('hex').slice(0, 16)}`);
+    const digests = [...files].map(
+      ([name, text]) => `${name} ${createHash('sha256').update(text).digest('hex').slice(0, 16)}`,
+    );
     expect(digests).toMatchInlineSnapshot(`
       [
-        "race.yaml a29211c266bd1c46",
-        "corrie.gpx f6081f79ebdec522",
-        "corrie-mast.csv cae04dae45730937",
-        "linnet.csv ad4d986e10bc1178",
-        "committee.csv d493f11d5d99864d",
+        "race.yaml f338346303c2058e",
+        "corrie.gpx 0017377fd85f3f8f",
+        "corrie-mast.csv be1b5c6b3f2913ed",
+        "linnet.csv 8ad2fcff5758ce70",
+        "committee.csv 1b187e94d64e6f53",
       ]
     `);
     expect(demoFiles()).toEqual(files);
   });
 
   it('are all named in the race file, and nothing else is', () => {
-    const named = [...files.get('race.yaml')!.matchAll(/(?:file|track|instruments): (\S+)/g)].map((m) => m[1]!);
+    const named = [...files.get('race.yaml')!.matchAll(/(?:file|track|instruments): (\S+)/g)].map((m) => m[1]);
     expect(new Set([...named, 'race.yaml'])).toEqual(new Set(files.keys()));
   });
 
@@ -80,19 +85,24 @@ function linnet(): (Row & { sog: number; cog: number })[] {
     .slice(1)
     .map((line) => {
       const [time, lat, lon, sog, cog] = line.split(',');
-      return { t: Date.parse(time!) / 1000, lat: Number(lat), lon: Number(lon), sog: Number(sog), cog: Number(cog) };
+      return { t: Date.parse(time) / 1000, lat: Number(lat), lon: Number(lon), sog: Number(sog), cog: Number(cog) };
     });
 }
 
 function corrie(): Row[] {
   const points = files.get('corrie.gpx')!.matchAll(/lat="([^"]+)" lon="([^"]+)"><time>([^<]+)/g);
-  return [...points].map((m) => ({ t: Date.parse(m[3]!) / 1000, lat: Number(m[1]), lon: Number(m[2]) }));
+  return [...points].map((m) => ({ t: Date.parse(m[3]) / 1000, lat: Number(m[1]), lon: Number(m[2]) }));
 }
 
 /** The committee's wind, a minute's mean around a time. */
 function windAt(t: number): { direction: number; knots: number } {
-  const rows = files.get('committee.csv')!.trim().split('\n').slice(1).map((line) => line.split(','));
-  const near = rows.filter(([time]) => Math.abs(Date.parse(time!) / 1000 - t) <= 30);
+  const rows = files
+    .get('committee.csv')!
+    .trim()
+    .split('\n')
+    .slice(1)
+    .map((line) => line.split(','));
+  const near = rows.filter(([time]) => Math.abs(Date.parse(time) / 1000 - t) <= 30);
   const east = near.reduce((sum, r) => sum + Math.sin((Number(r[1]) * Math.PI) / 180), 0);
   const north = near.reduce((sum, r) => sum + Math.cos((Number(r[1]) * Math.PI) / 180), 0);
   return {
@@ -108,17 +118,17 @@ function firstBeat(rows: readonly Row[]): { angle: number; knots: number }[] {
   for (let t = gun + 40; t < gun + 480; t += 30) {
     const [a, b, c] = [t, t + 15, t + 30].map((at) => rows.find((row) => row.t === at)!);
     const leg = (p: Row, q: Row): [number, number] => [(q.lon - p.lon) * 76186.6, (q.lat - p.lat) * 111170.2];
-    const [first, second] = [leg(a!, b!), leg(b!, c!)];
+    const [first, second] = [leg(a, b), leg(b, c)];
     const course = (v: [number, number]): number => (Math.atan2(v[0], v[1]) * 180) / Math.PI;
     if (Math.abs(apart(course(first), course(second))) > 10) continue;
-    const [east, north] = leg(a!, c!);
+    const [east, north] = leg(a, c);
     const angle = Math.abs(apart(course([east, north]), windAt(t + 15).direction));
     stretches.push({ angle, knots: Math.hypot(east, north) / 30 / KNOT });
   }
   return stretches;
 }
 
-const median = (values: number[]): number => values.sort((a, b) => a - b)[Math.floor(values.length / 2)]!;
+const median = (values: number[]): number => values.sort((a, b) => a - b)[Math.floor(values.length / 2)];
 
 describe('its afternoon', () => {
   it('has Corrie sail higher and Linnet faster', () => {
@@ -141,7 +151,7 @@ describe('its afternoon', () => {
     let worst = 0;
     for (let i = 60; i < rows.length; i += 30) {
       const path = rows.slice(i - 30, i).reduce((sum, r) => sum + r.sog * KNOT, 0);
-      const [p, q] = [rows[i - 30]!, rows[i]!];
+      const [p, q] = [rows[i - 30], rows[i]];
       const straight = Math.hypot((q.lon - p.lon) * 76186.6, (q.lat - p.lat) * 111170.2);
       worst = Math.max(worst, straight - path);
     }
