@@ -174,7 +174,7 @@ function writtenForm({ name, description, hull, foils, rig, crew, stability, tun
   });
   const rows = hull.table?.speed.map((speed, i): [number, number] => [
     rounded(toKnots(speed)),
-    hull.table!.resistance[i]!,
+    hull.table!.resistance[i],
   ]);
   return {
     boat: name,

@@ -153,6 +153,6 @@ export function beaufort(knots: number): number {
   if (Number.isNaN(knots)) return NaN;
   const whole = Math.round(knots);
   let force = 0;
-  while (force < 12 && whole >= BEAUFORT_FROM[force + 1]!) force++;
+  while (force < 12 && whole >= BEAUFORT_FROM[force + 1]) force++;
   return force;
 }

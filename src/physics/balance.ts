@@ -173,7 +173,7 @@ function heelOf(stability: Stability, arm: number, fromDrag: number, fromLift: n
     if (Math.abs(gap) < 1e-12) return heel + gap;
     const next = heel - (gap * (heel - before)) / (gap - gapBefore);
     [before, gapBefore] = [heel, gap];
-    heel = next >= 0 && next <= stability.heelLimit ? next : heel + gap;
+    heel = next >= 0 && next < 60 ? next : heel + gap;
   }
   return heel;
 }
@@ -211,7 +211,7 @@ function overpoweredLoads(model: ForceModel, flow: Flow): Loads | null {
   const { limit } = model.stability;
   if (loadsAt(model, flow, model.stall).moment <= limit) return null;
   const loads = easedLoads(model, flow, model.stall);
-  return loadsAt(model, flow, loads.sailed + SLOPE_STEP).excess > loads.excess ? loads : null;
+  return loadsAt(model, flow, loads.sailed - SLOPE_STEP).excess < loads.excess ? loads : null;
 }
 
 /** Forces at an incidence, or where that cannot be held at the one that can. */

@@ -121,12 +121,12 @@ export function optimumTable(
   options: { readonly polar?: boolean } = {},
 ): OptimumTable {
   const inside = winds.map((kn) => (kn * 1852) / 3600);
-  const rows = inside.map((tws, i) => optimumRow(winds[i]!, bestUpwind(model, tws)));
+  const rows = inside.map((tws, i) => optimumRow(winds[i], bestUpwind(model, tws)));
   const table = { format: 'legwork-optimum', version: 1, boat: name, rows } as const;
   if (!options.polar) return table;
   const points = inside.flatMap((tws, i) =>
     polar(model, [tws]).map(({ gamma, speed }) => ({
-      tws_kn: winds[i]!,
+      tws_kn: winds[i],
       gamma_deg: gamma,
       speed_kn: toKnots(speed),
     })),

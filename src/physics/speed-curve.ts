@@ -38,7 +38,7 @@ interface Column {
  * degrees, laid out around each wind's best course. Between nodes: cubic in both directions.
  *
  * In winds of 2 to 12 m/s it agrees with the model to 0.2 % of the speed from 6 degrees inside to 12 outside the best
- * course, to 0.1 % of the best speed made good and 0.2 degrees of the best course, and off the wind to 1 %. Closer to the wind than the boat can sail the
+ * course, to 0.1 % of the best speed made good and 0.3 degrees of the best course, and off the wind to 1 %. Closer to the wind than the boat can sail the
  * speed is drawn on to zero.
  *
  * @param model Boat.
@@ -66,6 +66,7 @@ export function speedCurve(model: ForceModel): SpeedCurve {
   const bestGamma = (tws: number): number => across(tws, (c) => c.gamma);
   const speed = (gamma: number, tws: number): number => {
     const best = bestGamma(tws);
+    if (Number.isNaN(gamma) || Number.isNaN(best)) return NaN;
     return Math.max(0, tws * across(tws, (c) => ratioAt(c, gamma, best)));
   };
   const bestVmg = (tws: number): number => {
@@ -125,5 +126,5 @@ function alongNodes(node: (k: number) => number, last: number, at: number, first
 
 /** Cubic between the middle two of four equidistant values, its slopes those of the neighbours' chords. */
 function catmullRom(part: number, [a, b, c, d]: readonly number[]): number {
-  return hermite(part, b!, c!, (c! - a!) / 2, (d! - b!) / 2);
+  return hermite(part, b, c, (c - a) / 2, (d - b) / 2);
 }

@@ -10,13 +10,16 @@ export interface Stability {
   readonly limit: number;
   /** Heel at that limit. [deg] */
   readonly heelLimit: number;
-  /** Heel at a heeling moment, rising smoothly to the heel limit; beyond the limit it stays there. [deg] */
+  /** Heel at a heeling moment, rising smoothly to the heel limit and on (trial states in a solve go beyond it). [deg] */
   heel(moment: number): number;
   /** Righting moment of the hull at a heel. [N m] */
   hull(heel: number): number;
   /** Righting moment of the crew with its mass at a distance from the centreline. [N m] */
   crew(lever: number, heel: number): number;
 }
+
+/** No trial state heels further than at this many times the moment that can be held. */
+const MOST_OVERLOAD = 1.4;
 
 /**
  * Righting moments of a boat. The crew moves so that moment is balanced at the heel
@@ -37,6 +40,7 @@ export function stabilityOf(boat: BoatSpec, crewMass: number): Stability {
     factor * (boat.hull.mass + crewMass) * metacentricHeight * Math.sin(RAD * heel);
   const crew = (lever: number, heel: number): number => factor * crewMass * lever * Math.cos(RAD * heel);
   const limit = hull(heelLimit) + crew(boat.crew.lever, heelLimit);
-  const heel = (moment: number): number => heelLimit * Math.pow(Math.min(Math.max(moment / limit, 0), 1), heelPower);
+  const heel = (moment: number): number =>
+    heelLimit * Math.pow(Math.min(Math.max(moment / limit, 0), MOST_OVERLOAD), heelPower);
   return { limit, heelLimit, heel, hull, crew };
 }

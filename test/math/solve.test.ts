@@ -91,7 +91,7 @@ describe('monotone curve', () => {
         );
         for (const [px, py] of points) expect(curve(px)).toBeCloseTo(py, 9);
         let last = -Infinity;
-        for (let at = points[0]![0]; at <= x; at += 0.05) {
+        for (let at = points[0][0]; at <= x; at += 0.05) {
           expect(curve(at)).toBeGreaterThanOrEqual(last - 1e-9);
           last = curve(at);
         }

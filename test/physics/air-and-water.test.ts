@@ -29,7 +29,7 @@ describe('wind over height', () => {
       [0.005, 1.332607, 1.268622, 1.188211, 1.137075, 1.183363],
       [0.03, 1.484946, 1.383226, 1.261439, 1.187271, 1.261593],
     ] as const) {
-      heights.forEach(([from, to], i) => expect(logLawFactor(from, to, z0)).toBeCloseTo(factors[i]!, 5));
+      heights.forEach(([from, to], i) => expect(logLawFactor(from, to, z0)).toBeCloseTo(factors[i], 5));
     }
   });
 
@@ -38,7 +38,7 @@ describe('wind over height', () => {
       [0.11, 1.232055, 1.193677, 1.141607, 1.106047, 1.128453],
       [0.14, 1.304209, 1.252725, 1.183595, 1.136872, 1.166264],
     ] as const) {
-      heights.forEach(([from, to], i) => expect(powerLawFactor(from, to, p)).toBeCloseTo(factors[i]!, 5));
+      heights.forEach(([from, to], i) => expect(powerLawFactor(from, to, p)).toBeCloseTo(factors[i], 5));
     }
   });
 

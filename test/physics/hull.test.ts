@@ -58,7 +58,7 @@ describe('residuary resistance', () => {
     expect(rows.length).toBe(308);
     // 14 rows a hull; the fifth repeats the fourth's resistances.
     const kept = rows.filter((_, i) => Math.floor(i / 14) !== 4);
-    const points = kept.filter((row) => row[5]! >= 0.15).map((row) => [row[5]!, row[6]!] as const);
+    const points = kept.filter((row) => row[5] >= 0.15).map((row) => [row[5], row[6]] as const);
     expect(points.length).toBe(273);
     const residuals = (scale: (fn: number) => number): number[] =>
       points.map(([fn, r]) => Math.log((1000 * residuaryPerWeight(fn, FITTED) * scale(fn)) / r));
@@ -88,14 +88,14 @@ describe('hull', () => {
   const [dinghy] = BUILT_IN_BOATS;
 
   it('of the single-hander resists by 50 to 90 N near 4.8 kn without side force (common practice, no source)', () => {
-    const newtons = hullCurve(dinghy!, dinghy!.crew.mass, WATER.fresh15)(4.8 * KNOT, 0);
+    const newtons = hullCurve(dinghy, dinghy.crew.mass, WATER.fresh15)(4.8 * KNOT, 0);
     expect(newtons).toBeGreaterThan(45);
     expect(newtons).toBeLessThan(85);
   });
 
   it('is the sum of friction, residuary and foil drag', () => {
     const speed = 1.2;
-    const { hull, foils, crew } = dinghy!;
+    const { hull, foils, crew } = dinghy;
     const mass = hull.mass + crew.mass;
     const water = WATER.fresh15;
     const friction = hull.formFactor * frictionResistance(speed, hull.waterline, hull.wettedArea, water);
@@ -103,15 +103,15 @@ describe('hull', () => {
     const residuary =
       hull.residuaryFactor * residuaryPerWeight(froude(speed, hull.waterline), slenderness) * mass * 9.80665;
     const foil = 0.5 * water.density * speed ** 2 * foils.profileDrag * (foils.board.area + foils.rudder.area);
-    expect(hullCurve(dinghy!, crew.mass, water)(speed, 0)).toBeCloseTo(friction + residuary + foil, 10);
+    expect(hullCurve(dinghy, crew.mass, water)(speed, 0)).toBeCloseTo(friction + residuary + foil, 10);
   });
 
   it('follows its own table where it has one, between and beyond its rows without waves', () => {
     const speed = [1, 2, 2.5, 3];
     const resistance = [8, 40, 75, 140];
-    const boat = { ...dinghy!, hull: { ...dinghy!.hull, table: { speed, resistance } } };
+    const boat = { ...dinghy, hull: { ...dinghy.hull, table: { speed, resistance } } };
     const curve = hullCurve(boat, boat.crew.mass, WATER.fresh15);
-    speed.forEach((v, i) => expect(curve(v, 0)).toBeCloseTo(resistance[i]!, 10));
+    speed.forEach((v, i) => expect(curve(v, 0)).toBeCloseTo(resistance[i], 10));
     for (let v = 0; v < 4; v += 0.01) expect(curve(v + 0.01, 0)).toBeGreaterThanOrEqual(curve(v, 0));
     expect(curve(2, 100) / curve(2, 0)).toBeCloseTo(1 + boat.hull.waveDrag, 6);
     const tuned = { ...boat, tuning: { ...UNTUNED, hullResistance: 1.1 } };
@@ -119,12 +119,12 @@ describe('hull', () => {
   });
 
   it('is held up by crew and hull', () => {
-    const stability = stabilityOf(dinghy!, dinghy!.crew.mass);
-    const { heelLimit, metacentricHeight } = dinghy!.stability;
+    const stability = stabilityOf(dinghy, dinghy.crew.mass);
+    const { heelLimit, metacentricHeight } = dinghy.stability;
     const cos = Math.cos((heelLimit * Math.PI) / 180);
     const sin = Math.sin((heelLimit * Math.PI) / 180);
-    const { mass, lever } = dinghy!.crew;
-    const byHand = 9.80665 * (mass * lever * cos + (dinghy!.hull.mass + mass) * metacentricHeight * sin);
+    const { mass, lever } = dinghy.crew;
+    const byHand = 9.80665 * (mass * lever * cos + (dinghy.hull.mass + mass) * metacentricHeight * sin);
     expect(stability.limit).toBeCloseTo(byHand, 8);
     expect(stability.heel(stability.limit)).toBe(heelLimit);
     expect(stability.heel(-5)).toBe(0);
