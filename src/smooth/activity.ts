@@ -60,7 +60,7 @@ export function activityOf(o: Observations, stretches: readonly Stretch[], step:
 function chords(o: Observations, { from, to }: Stretch, t0: number, x: Float32Array, y: Float32Array): void {
   let last = -1;
   for (let row = from; row < to; row++) {
-    if (o.x[row] !== o.x[row]) continue;
+    if (o.x[row] !== o.x[row] || isSpike(o, last, row, to)) continue;
     if (last >= 0) {
       const start = o.time[last];
       const share = 1 / (o.time[row] - start);
@@ -72,6 +72,24 @@ function chords(o: Observations, { from, to }: Stretch, t0: number, x: Float32Ar
     }
     last = row;
   }
+}
+
+/** A fix this far off the chord of its neighbours is an outlier: a receiver's own step ... [m] */
+const SPIKE_FLOOR = 4;
+/** ... and what a boat does that turns 6 m/s into the opposite within a step. [m/s] */
+const SPIKE_SPEED = 12;
+
+/** Whether a fix stands out from the chord between the last good fix and the next one. */
+function isSpike(o: Observations, last: number, row: number, to: number): boolean {
+  let next = row + 1;
+  while (next < to && o.x[next] !== o.x[next]) next++;
+  if (last < 0 || next >= to) return false;
+  const [before, after] = [o.time[row] - o.time[last], o.time[next] - o.time[row]];
+  const share = before / (before + after);
+  const east = o.x[row] - o.x[last] - share * (o.x[next] - o.x[last]);
+  const north = o.y[row] - o.y[last] - share * (o.y[next] - o.y[last]);
+  const limit = SPIKE_FLOOR + SPIKE_SPEED * share * after;
+  return east * east + north * north > limit * limit;
 }
 
 /** Squared change of velocity over `half` seconds before and after each second. */

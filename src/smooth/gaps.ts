@@ -28,11 +28,16 @@ const SAMPLED_STEPS = 20000;
 /** Velocities before, across and after a hole agree within this share of the speed, plus 0.3 m/s of receiver noise. */
 const AGREE_SHARE = 0.25;
 const AGREE_FLOOR = 0.3;
+/** Out of a tack a boat gains half its speed on the new course; a tack within the hole would differ by 0.7 of it. */
+const AGREE_ONE_SIDE = 0.45;
 
-/** Steps between fixes: the median, and whether the logger chose its points by the shape of the track. */
+/** Steps between fixes. */
 export interface Stepping {
   readonly median: number;
+  /** Whether the logger chose its points by the shape of the track. */
   readonly irregular: boolean;
+  /** The longest it leaves out as a habit: one step in twenty is as long. */
+  readonly habit: number;
 }
 
 /** Rows that hold a position. */
@@ -48,15 +53,16 @@ export function fixRows(observations: Observations): Int32Array {
 
 /** How the fixes follow each other. */
 export function stepping(time: Float64Array, rows: Int32Array): Stepping {
-  if (rows.length < 2) return { median: 1, irregular: false };
+  if (rows.length < 2) return { median: 1, irregular: false, habit: 1 };
   // A sample of the steps, evenly spread, says as much as all of them.
   const stride = Math.max(1, Math.floor(rows.length / SAMPLED_STEPS));
   const steps = new Float64Array(Math.ceil((rows.length - 1) / stride));
   for (let k = 1, i = 0; k < rows.length; k += stride) steps[i++] = time[rows[k]] - time[rows[k - 1]];
-  const median = steps.slice().sort()[steps.length >> 1];
+  const sorted = steps.slice().sort();
+  const median = sorted[sorted.length >> 1];
   let odd = 0;
   for (const step of steps) if (Math.abs(step - median) > IRREGULAR_STEP * median && step > 0.5) odd++;
-  return { median, irregular: odd > IRREGULAR_SHARE * steps.length };
+  return { median, irregular: odd > IRREGULAR_SHARE * steps.length, habit: sorted[Math.floor(0.95 * steps.length)] };
 }
 
 /**
@@ -85,7 +91,8 @@ export function findStretches(
     while (nextBreak < breaks.length && breaks[nextBreak] <= rows[k - 1]) nextBreak++;
     const broken = nextBreak < breaks.length && breaks[nextBreak] <= rows[k];
     const hole = observations.time[rows[k]] - observations.time[rows[k - 1]];
-    const bridged = step.irregular && hole <= LONGEST_BRIDGE && goesStraightOn(observations, rows, k);
+    const bridged =
+      step.irregular && hole <= LONGEST_BRIDGE && goesStraightOn(observations, rows, k, hole <= step.habit);
     if (!broken && (hole <= limit || bridged)) continue;
     stretches.push({ from: rows[from], to: rows[k - 1] + 1 });
     gaps.push({ from: observations.time[rows[k - 1]], seconds: hole });
@@ -94,16 +101,25 @@ export function findStretches(
   return { stretches: rows.length > 0 ? stretches : [], gaps, step };
 }
 
-/** Whether velocity before, across and after the hole before the k-th fix is the same. */
-function goesStraightOn(o: Observations, rows: Int32Array, k: number): boolean {
-  if (k < 2 || k + 1 >= rows.length) return false;
-  const [across, before, after] = [k, k - 1, k + 1].map((j) => velocityInto(o, rows[j - 1], rows[j]));
-  const tolerance = AGREE_FLOOR + AGREE_SHARE * Math.hypot(across.x, across.y);
-  const differs = (v: { x: number; y: number }) => Math.hypot(v.x - across.x, v.y - across.y) > tolerance;
-  return !differs(before) && !differs(after);
+/**
+ * Whether velocity before, across and after the hole before the k-th fix is the same. Where a hole is `usual` for the
+ * logger one side is enough: it ends, or begins, at a turn.
+ */
+function goesStraightOn(o: Observations, rows: Int32Array, k: number, usual: boolean): boolean {
+  const across = velocityInto(o, rows, k);
+  const speed = Math.hypot(across.x, across.y);
+  const agrees = (j: number, tolerance: number) => {
+    if (j < 1 || j >= rows.length) return false;
+    const v = velocityInto(o, rows, j);
+    return Math.hypot(v.x - across.x, v.y - across.y) <= AGREE_FLOOR + tolerance * speed;
+  };
+  if (usual) return agrees(k - 1, AGREE_ONE_SIDE) || agrees(k + 1, AGREE_ONE_SIDE);
+  return agrees(k - 1, AGREE_SHARE) && agrees(k + 1, AGREE_SHARE);
 }
 
-function velocityInto(o: Observations, from: number, to: number): { x: number; y: number } {
+/** Velocity from the fix before to the k-th. */
+function velocityInto(o: Observations, rows: Int32Array, k: number): { x: number; y: number } {
+  const [from, to] = [rows[k - 1], rows[k]];
   const dt = o.time[to] - o.time[from];
   return { x: (o.x[to] - o.x[from]) / dt, y: (o.y[to] - o.y[from]) / dt };
 }

@@ -28,7 +28,7 @@ export interface Gated {
 
 /**
  * Finds fixes the boat cannot have made, by the innovation of the filter: distance from where the boat should be,
- * against its standard deviation and what a hard manoeuvre can do in that time.
+ * against its standard deviation or what a hard manoeuvre can do in that time.
  */
 export function gate(o: Observations, stretch: Stretch, noise: NoiseModel, activity = UNIFORM): Gated {
   const rejected: number[] = [];
@@ -86,7 +86,7 @@ function gateLimit(s: Float64Array, sinceAccepted: number, noise: NoiseModel): n
     0.5 * MANOEUVRE_ACCELERATION * sinceAccepted * sinceAccepted,
     (2 * speed + 2) * sinceAccepted,
   );
-  return Math.max(GATE_FLOOR, GATE * Math.sqrt(variance)) + manoeuvre;
+  return Math.max(GATE * Math.sqrt(variance), GATE_FLOOR + 2 * noise.white + manoeuvre);
 }
 
 /** Whether the fixes set aside follow each other as a boat's would, long enough. */

@@ -123,3 +123,19 @@ export function record(path: Path, receiver: Receiver, times = fixTimes(path, re
   const time = Float64Array.from(times, (t) => T0 + t);
   return createRecording({ time, channels: doppler === undefined ? columns : { ...columns, sog, cog } });
 }
+
+/**
+ * The times at which a logger that leaves out points on straight lines would write one: at least every `longest`
+ * seconds, and when the course has changed by 10 degrees since the last.
+ */
+export function thinned(path: Path, longest: number): number[] {
+  const times = [0];
+  const end = (path.x.length - 1) * path.dt;
+  for (let t = 1; t <= end; t++) {
+    const last = at(path, times[times.length - 1]);
+    const now = at(path, t);
+    const turned = Math.abs(Math.atan2(now.vx * last.vy - now.vy * last.vx, now.vx * last.vx + now.vy * last.vy));
+    if (turned > Math.PI / 18 || t - times[times.length - 1] >= longest) times.push(t);
+  }
+  return times;
+}
