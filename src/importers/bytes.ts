@@ -34,11 +34,11 @@ export async function peek(bytes: Bytes, size: number): Promise<{ head: Uint8Arr
     length += next.value.length;
   }
   const head = join(held, length);
-  return { head, all: chain(held, iterator) };
+  return { head, all: chain(head, iterator) };
 }
 
-async function* chain(held: Uint8Array[], rest: AsyncIterator<Uint8Array>): Bytes {
-  for (let piece = held.shift(); piece; piece = held.shift()) yield piece;
+async function* chain(head: Uint8Array, rest: AsyncIterator<Uint8Array>): Bytes {
+  if (head.length > 0) yield head;
   for (let next = await rest.next(); !next.done; next = await rest.next()) yield next.value;
 }
 

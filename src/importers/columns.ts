@@ -490,7 +490,8 @@ export interface Header {
 
 /** What a header says, as far as it is known. */
 export function readHeader(header: string): Header {
-  const { words, unit: said } = splitUnit(header);
+  const all = wordsOf(header);
+  const { words, unit: said } = MEANING_OF.has(all.join(' ')) ? { words: all, unit: null } : splitUnit(header);
   const qualifiers = { utc: false, sensor: false, north: '' };
   const meaning = lookUp(words, qualifiers);
   const fits = meaning !== null && said !== null && said.kind === kindOf(meaning);

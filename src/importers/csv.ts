@@ -117,7 +117,7 @@ function takeBlock(
     let to = from;
     while (to < lines.length && !isOdd(lines[to])) to++;
     takeClosed(lines.slice(from, to), delimiter, (cells, k) => one(cells, from + k));
-    if (to < lines.length) to += takeOdd(lines, to, layout, one, tally);
+    if (to < lines.length) to += takeOdd(lines, to, first, layout, one, tally);
     from = to;
   }
   return first + lines.length;
@@ -138,6 +138,7 @@ function takeClosed(
 function takeOdd(
   lines: readonly string[],
   at: number,
+  first: number,
   layout: TableLayout,
   one: (cells: readonly string[], at: number, span: number) => void,
   tally: Tally,
@@ -149,7 +150,7 @@ function takeOdd(
     one(joined[0], at, to + 1 - at);
     return to + 1 - at;
   }
-  tally.notice('unclosed-quote', at + 1);
+  tally.notice('unclosed-quote', first + at);
   one(parseRows(lines[at].replaceAll('"', ''), layout.delimiter, false)[0] ?? [''], at, 1);
   return 1;
 }

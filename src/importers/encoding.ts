@@ -63,7 +63,12 @@ function withoutZeros(text: string, tally: Tally): string {
 /** The same stream in bytes that are ASCII where the text is: itself, unless it is UTF-16. */
 export async function* asAscii(bytes: Bytes, encoding: string, tally: Tally): Bytes {
   if (!encoding.startsWith('utf-16')) {
-    yield* bytes;
+    let first = true;
+    for await (const piece of bytes) {
+      const marked = first && piece[0] === 0xef && piece[1] === 0xbb && piece[2] === 0xbf;
+      yield marked ? piece.subarray(3) : piece;
+      first = false;
+    }
     return;
   }
   const encoder = new TextEncoder();

@@ -166,7 +166,7 @@ export async function readGpx(
   zone: ZoneClock | null,
 ): Promise<GpxRead> {
   const walk = new GpxWalk(createPointTaker(rows, tally, zone), rows, tally);
-  const parser = openParser(walk, tally);
+  const { parser, fault } = openParser(walk, tally);
   const feed = createFilter(tally);
   for await (const text of texts) parser.write(feed(text));
   parser.write(feed(null));
@@ -179,13 +179,17 @@ export async function readGpx(
     // Everything that can be said of the end has been said by the error handler.
   }
   if (open) tally.issue('file-truncated', `The file is cut at line ${line}; what is complete before it is read.`, line);
-  tellOdd(tally);
+  tellOdd(tally, fault());
   return { name: walk.names.find((name) => name !== '') ?? '', columns: gpxColumns(rows, walk.seen) };
 }
 
-function openParser(walk: GpxWalk, tally: Tally): SaxesParser {
+function openParser(walk: GpxWalk, tally: Tally): { parser: SaxesParser; fault: () => string } {
   const parser = new SaxesParser({ xmlns: false, position: true });
-  parser.on('error', (error) => tally.notice(`xml: ${error.message.replace(/^[\d:]+\s*/, '')}`, parser.line));
+  let fault = '';
+  parser.on('error', (error) => {
+    fault ||= error.message.replace(/^[\d:]+\s*|\.$/g, '');
+    tally.notice('xml', parser.line);
+  });
   parser.on('doctype', () =>
     tally.issue('doctype', 'The file declares a document type, which GPX has not; it is not used.', parser.line),
   );
@@ -201,7 +205,7 @@ function openParser(walk: GpxWalk, tally: Tally): SaxesParser {
   });
   parser.on('text', (text) => walk.text(text));
   parser.on('cdata', (text) => walk.text(text));
-  return parser;
+  return { parser, fault: () => fault };
 }
 
 /**
@@ -233,10 +237,10 @@ function createFilter(tally: Tally): (text: string | null) => string {
   };
 }
 
-/** What the parser and the filter noticed, as issues. Errors of XML are told by the first of each kind. */
-function tellOdd(tally: Tally): void {
+/** What the parser and the filter noticed, as issues. */
+function tellOdd(tally: Tally, fault: string): void {
   tally.tellZone();
-  tally.tellAll('xml: ', 'xml-errors', (what, n) => `Not well-formed XML (${what.replace(/\.$/, '')}), ${n} time(s).`);
+  tally.tell('xml', 'xml-errors', (n) => `Not well-formed XML in ${n} place(s), the first: ${fault}.`);
   tally.tell('too deep', 'xml-depth', () => `Elements nested more than ${DEEPEST} deep are left out.`);
   tally.tell('too long', 'xml-text', () => `Text longer than ${LONGEST} letters without a tag is left out.`);
   tally.tell('bare-ampersand', 'bare-ampersand', (n) => `${n} ampersand(s) that begin no entity are read as written.`);

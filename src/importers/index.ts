@@ -62,9 +62,12 @@ function refuseUseless(kind: LogKind, settled: Settled, tally: Tally): void {
   if (settled.recording.time.length > 0 && Object.keys(settled.recording.channels).some((one) => USEFUL.has(one)))
     return;
   const worst = tally.rejections.list().toSorted((a, b) => b.count - a.count)[0];
+  const held = Object.entries(tally.ignoredTypes()).map(([type, count]) => `${count} ${type}`);
   const why = worst
     ? ` ${worst.count} of ${tally.read} records: ${worst.reason}, first at line ${worst.first_line}.`
-    : '';
+    : held.length > 0
+      ? ` It holds ${held.join(', ')}.`
+      : '';
   throw new UserError(`${tally.file}: no position with a time and no wind or heading is to be had from it.${why}`, {
     exitCode: 2,
     suggestion: WHAT_TO_DO[kind],

@@ -129,7 +129,8 @@ function numbered(lines: readonly string[], options: ImportOptions): Candidate |
   const first = lines.find((line) => line.trim() !== '');
   if (said.length === 0 || first === undefined) return undefined;
   const count = (delimiter: string): number => first.split(delimiter).length;
-  const delimiter = DELIMITERS.toSorted((a, b) => count(b) - count(a))[0];
+  // The comma last: it may be the decimal sign.
+  const delimiter = DELIMITERS.toReversed().toSorted((a, b) => count(b) - count(a))[0];
   const headers = Array.from({ length: count(delimiter) }, (_, k) => String(k + 1));
   const meanings = headers.map((header) => meaningOf(header, options));
   return { delimiter, line: -1, headers, meanings, score: 1 };

@@ -232,7 +232,7 @@ function timeByLead(
 ): void {
   if (log.daylessLeads > 0 && Number.isNaN(date)) throw dateMissing(tally.file);
   const base = log.daylessLeads > 0 ? date * DAY : 0;
-  if (log.unzonedLeads > 0 && options.zone === undefined) tally.notice('zone-assumed', 1);
+  if (log.unzonedLeads > 0 && options.zone === undefined) tally.notice('zone-assumed', 1, log.unzonedLeads);
   for (let row = 0; row < rows.length; row++) rows.setTime(row, lead.get(row) + base);
 }
 

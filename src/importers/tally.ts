@@ -40,10 +40,10 @@ export class Tally {
   }
 
   /** Counts one more of a kind of trouble; `seen` and `tell` turn it into an issue at the end. */
-  notice(what: string, line: number): void {
+  notice(what: string, line: number, count = 1): void {
     const sighting = this.#sightings.get(what);
-    if (sighting) sighting.count++;
-    else this.#sightings.set(what, { count: 1, line });
+    if (sighting) sighting.count += count;
+    else this.#sightings.set(what, { count, line });
   }
 
   seen(what: string): number {
@@ -63,12 +63,6 @@ export class Tally {
       'zone-assumed',
       (n) => `${n} time(s) carry no zone and are read as UTC; give the zone if the clock showed local time.`,
     );
-  }
-
-  /** Makes an issue of each thing noticed under a name that begins with `prefix`, ten at most. */
-  tellAll(prefix: string, code: string, message: (what: string, count: number) => string): void {
-    const found = [...this.#sightings].filter(([what]) => what.startsWith(prefix)).slice(0, 10);
-    for (const [what, { count, line }] of found) this.issue(code, message(what.slice(prefix.length), count), line);
   }
 
   get ignored(): number {
