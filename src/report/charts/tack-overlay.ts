@@ -10,9 +10,11 @@ export interface TackOverlayOptions {
   /** Seconds shown before and after head to wind. */
   readonly before: number;
   readonly after: number;
+  /** Place of the boat in the result, for picking a curve. */
+  readonly boat: number;
 }
 
-export const OVERLAY_DEFAULTS: TackOverlayOptions = { width: 460, height: 230, before: 12, after: 40 };
+export const OVERLAY_DEFAULTS: TackOverlayOptions = { width: 460, height: 230, before: 12, after: 40, boat: 0 };
 
 /** Places in `boat.manoeuvres` of the tacks. */
 export function tacksOf(boat: BoatSeries): number[] {
@@ -42,7 +44,7 @@ export function tackOverlay(boat: BoatSeries, options: Partial<TackOverlayOption
     text(44, 12, 'VMG, kn, against seconds from head to wind', { size: 12, italic: true }),
     line(44, o.height - 28, o.width - 12, o.height - 28, RULE),
   ];
-  return picture(o.width, o.height, labelOf(boat, tacks.length, curves), body.join(''), { class: 'tack-overlay' });
+  return picture(o.width, o.height, labelOf(boat, tacks.length, curves), body.join(''), { class: 'tack-overlay', 'data-boat': o.boat });
 }
 
 /** A rounding among the tacks must not flatten the rest: two knots astern is as far as the sheet goes. */

@@ -36,7 +36,9 @@ export function byId(id: string): HTMLElement | null {
 
 /** A button that does one thing. */
 export function button(words: string, label: string, act: () => void): HTMLButtonElement {
-  const made = make('button', { type: 'button', class: 'tool', 'aria-label': label, title: label }, words);
+  // Words name the button themselves; a bare sign needs a name.
+  const name = words.length > 1 ? undefined : label;
+  const made = make('button', { type: 'button', class: 'tool', 'aria-label': name, title: label }, words);
   made.addEventListener('click', act);
   return made;
 }

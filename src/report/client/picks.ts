@@ -20,8 +20,7 @@ export function mountPicks(race: Race, store: Store, clock: Clock): void {
 }
 
 function pickOf(target: HTMLElement | SVGElement): Pick {
-  const plate = target.closest('[data-boat]');
-  const boat = Number(target.dataset.boat ?? plate?.getAttribute('data-boat') ?? 0);
+  const boat = Number(target.closest('[data-boat]')?.getAttribute('data-boat') ?? 0);
   const { leg, turn } = target.dataset;
   return {
     boat,

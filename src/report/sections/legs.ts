@@ -14,8 +14,6 @@ interface Row {
   readonly className?: string;
   /** Left out of the column of the day's best. */
   readonly ownOnly?: boolean;
-  /** Write the unit in the head though the row is a lesser one. */
-  readonly unitInHead?: boolean;
 }
 
 type SideKey = Exclude<keyof TackSide, 'seconds'>;
@@ -68,25 +66,24 @@ function rowsFor(best: DayBest | null): Row[] {
     { head: 'True wind', unit: 'kn', get: steady('tws_kn'), options: { digits: 1 } },
     { head: term('optimum', 'Share of the model’s'), unit: 'percent', get: (leg) => leg.efficiency, options: { times: 100 } },
     { head: term('optimum', 'Model’s optimum'), unit: 'kn', get: (leg) => leg.optimum?.vmg_kn ?? null },
-    { head: 'at course angle', unit: 'deg', get: (leg) => leg.optimum?.gamma_deg ?? null, className: 'sub', unitInHead: true },
+    { head: 'at course angle', unit: 'deg', get: (leg) => leg.optimum?.gamma_deg ?? null, className: 'sub' },
     { head: term('ceiling', 'Upper bound'), unit: 'kn', get: (leg) => leg.ceiling_vmg_kn },
   ]; // prettier-ignore
 }
 
-const UNIT_WORDS: Readonly<Record<Unit, string>> = { kn: 'kn', deg: '°', m: 'm', percent: '%', s: 's', count: '' };
+const UNIT_WORDS: Readonly<Record<Unit, string>> = { kn: 'kn', deg: '', m: 'm', percent: '%', s: 's', count: '' };
 
 function unitOf(row: Row): Part {
-  if (row.className === 'sub' && !row.unitInHead) return null;
+  if (row.className === 'sub') return null;
   return html` <span class="soft">${UNIT_WORDS[row.unit]}</span>`;
 }
 
 function legHead({ leg, index }: NumberedLeg, boat: number): Safe {
   const seconds = secondsOf(leg.end) - secondsOf(leg.start);
   return html`<th scope="col">
-    <button type="button" class="pick" data-boat="${boat}" data-leg="${index}">Lap ${leg.lap}</button><br /><span
-      class="soft"
-      >${time(secondsOf(leg.start), 'hm')}, ${duration(seconds)} min</span
-    >
+    <button type="button" class="pick" data-boat="${boat}" data-leg="${index}">Lap ${leg.lap}</button>
+    <span class="soft under">${time(secondsOf(leg.start), 'hm')}, </span
+    ><span class="soft under">${duration(seconds)} min</span>
   </th>`;
 }
 
@@ -108,12 +105,13 @@ function boatTable(boat: BoatResult, index: number, best: DayBest | null): Safe 
   const rows = rowsFor(best).filter((row) => legs.some(({ leg }) => row.get(leg, boat)));
   const body = rows.map((row) => {
     const cells = legs.map(
-      ({ leg }) => html`<td>${quantity(row.get(leg, boat), row.unit, { ...row.options, unitless: true })}</td>`,
+      ({ leg }) =>
+        html`<td>${quantity(row.get(leg, boat), row.unit, { ...row.options, unitless: row.unit !== 'deg' })}</td>`,
     );
     const bestCell =
       showBest &&
       html`<td class="best">
-        ${row.ownOnly ? '' : quantity(row.get(best.leg, best.boat), row.unit, { ...row.options, unitless: true })}
+        ${row.ownOnly ? '' : quantity(row.get(best.leg, best.boat), row.unit, { ...row.options, unitless: row.unit !== 'deg' })}
       </td>`;
     return html`<tr class="${row.className ?? 'lone'}">
       <th scope="row">${row.head}${unitOf(row)}</th>
@@ -123,7 +121,7 @@ function boatTable(boat: BoatResult, index: number, best: DayBest | null): Safe 
   const bestHead =
     showBest &&
     html`<th scope="col" class="best">
-      Day’s best<br /><span class="soft">${nameOf(best.boat.name)}, lap ${best.leg.lap}</span>
+      Day’s best <span class="soft under">${nameOf(best.boat.name)}, lap ${best.leg.lap}</span>
     </th>`;
   return html`<div class="leg-sheet">
     <div class="scroll" tabindex="0" role="region" aria-label="Upwind legs of ${boat.name}">

@@ -53,7 +53,7 @@ export function tacks(result: Result, series: RaceSeries): Safe {
       ? []
       : [
           figure({
-            svg: tackOverlay(s),
+            svg: tackOverlay(s, { boat: i }),
             title: html`${swatch(i)} ${nameOf(s.name)}`,
             summary: 'Whole lines go onto starboard, broken lines onto port; the heavy line is the middle one.',
             table: overlayTable(s),

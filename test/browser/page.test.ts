@@ -1,0 +1,345 @@
+import { mkdtempSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
+import { createRequire } from 'node:module';
+import { tmpdir } from 'node:os';
+import { join } from 'node:path';
+import type { BrowserContextOptions, Page } from 'playwright-core';
+import { afterAll, beforeAll, describe, expect, test } from 'vitest';
+import { eastOf, northOf, turn } from '../../src/math/angles.js';
+import { toKnots } from '../../src/math/units.js';
+import { comparePage, debriefPage } from '../../src/report/page.js';
+import { bareSample, noWindSpeedSample, renamed, sample, type Sample } from '../report/sample.js';
+import { openBrowser } from './browser.js';
+
+/** The page in a real browser, opened from a file with the network off. One browser for all. */
+const browser = await openBrowser();
+const folder = mkdtempSync(join(tmpdir(), 'legwork-page-'));
+const HOSTILE = '</script><img src=x onerror=alert(1)>';
+
+const full = sample();
+const FILES: Readonly<Record<string, string>> = {
+  full: debriefPage(full.result, full.series),
+  compare: comparePage(full.result, full.series),
+  bare: pageOf(bareSample()),
+  nowind: pageOf(noWindSpeedSample()),
+  hostile: pageOf(renamed(full, HOSTILE)),
+};
+
+function pageOf({ result, series }: Sample): string {
+  return debriefPage(result, series);
+}
+
+interface Opened {
+  readonly page: Page;
+  /** Console errors, page errors, dialogs and requests that leave the file. */
+  readonly trouble: string[];
+  readonly close: () => Promise<void>;
+}
+
+async function open(name: string, options: BrowserContextOptions = {}): Promise<Opened> {
+  const context = await browser!.newContext({
+    viewport: { width: 1280, height: 900 },
+    locale: 'en-GB',
+    offline: true,
+    ...options,
+  });
+  const page = await context.newPage();
+  const trouble: string[] = [];
+  page.on('console', (m) => m.type() === 'error' && trouble.push(m.text()));
+  page.on('pageerror', (e) => trouble.push(e.message));
+  page.on('dialog', (d) => {
+    trouble.push(`dialog: ${d.message()}`);
+    void d.dismiss();
+  });
+  page.on('request', (r) => !r.url().startsWith('file:') && trouble.push(`asks for ${r.url()}`));
+  await page.goto(`file://${folder}/${name}.html`);
+  return { page, trouble, close: () => context.close() };
+}
+
+/** Puts the cursor to a time and waits until the page has followed. */
+async function scrubTo(page: Page, time: number): Promise<void> {
+  await page.evaluate((t) => {
+    const cursor = document.getElementById('cursor') as HTMLInputElement;
+    cursor.value = String(t);
+    cursor.dispatchEvent(new Event('input', { bubbles: true }));
+    return new Promise((done) => requestAnimationFrame(() => requestAnimationFrame(done)));
+  }, time);
+}
+
+/** A number as an English page writes it. */
+function read(text: string): number {
+  return Number(text.replace('−', '-').replace(/[^\d.-]/g, '') || NaN);
+}
+
+async function readout(page: Page, key: string, boat: number): Promise<number> {
+  return read(await page.locator(`[data-read="${key}"][data-boat="${boat}"]`).innerText());
+}
+
+describe.skipIf(!browser)('the page in a browser', () => {
+  beforeAll(() => {
+    for (const [name, text] of Object.entries(FILES)) writeFileSync(join(folder, `${name}.html`), text);
+  });
+  afterAll(async () => {
+    await browser?.close();
+    rmSync(folder, { recursive: true, force: true });
+  });
+
+  test.each(Object.keys(FILES))('%s opens from a file with the network off, without an error', async (name) => {
+    const { page, trouble, close } = await open(name);
+    await page.waitForSelector('html.live');
+    await page.evaluate(() => window.scrollTo(0, document.body.scrollHeight));
+    expect(trouble).toEqual([]);
+    await close();
+  });
+
+  test('a hostile name is shown as text and makes no element', async () => {
+    const { page, trouble, close } = await open('hostile');
+    await page.waitForSelector('html.live');
+    expect(await page.locator('img').count()).toBe(0);
+    expect(await page.locator('h1').innerText()).toBe(HOSTILE);
+    expect(await page.locator('#instruments bdi').first().innerText()).toBe(HOSTILE);
+    expect(trouble).toEqual([]);
+    await close();
+  });
+
+  test('the numbers at the cursor are those of the series, at five times', async () => {
+    const { page, close } = await open('full');
+    for (const row of [40, 333, 700, 1234, 1900]) {
+      await scrubTo(page, full.series.boats[0]!.t0 + row);
+      for (const [i, boat] of full.series.boats.entries()) {
+        expect(await readout(page, 'speed', i)).toBeCloseTo(toKnots(boat.speed[row]!), 1);
+        expect(await readout(page, 'vmg', i)).toBeCloseTo(toKnots(boat.vmg[row]!), 1);
+        expect(Math.abs((await readout(page, 'angle', i)) - Math.abs(boat.gamma[row]!))).toBeLessThan(0.11);
+        expect(Math.abs(turn(await readout(page, 'twd', i), boat.twd[row]!))).toBeLessThan(0.56);
+        const live = page.locator(`output[data-panel="speed"][data-boat="${i}"]`);
+        expect(read(await live.innerText())).toBeCloseTo(toKnots(boat.speed[row]!), 1);
+      }
+    }
+    await close();
+  });
+
+  test('clock, slider, curves and boats all move with the cursor', async () => {
+    const { page, close } = await open('full');
+    const state = (): Promise<string[]> =>
+      page.evaluate(() => [
+        document.getElementById('clock')!.textContent,
+        (document.getElementById('cursor') as HTMLInputElement).value,
+        document.querySelector('#map .boat')!.getAttribute('transform')!,
+        (document.querySelector('.u-cursor-x') as HTMLElement).style.transform,
+        document.querySelector('.strip line:last-child')!.getAttribute('x1')!,
+        document.querySelector('.triangle [data-side=boat]')!.getAttribute('x2')!,
+      ]);
+    const t0 = full.series.boats[0]!.t0;
+    await scrubTo(page, t0 + 100);
+    const before = await state();
+    await scrubTo(page, t0 + 260);
+    const after = await state();
+    for (const [i, value] of before.entries()) expect(after[i]).not.toBe(value);
+    expect(after[0]).toBe('14:09:20'); // 12:05:00 UTC and 260 s, in a zone two hours ahead in April
+    await close();
+  });
+
+  test('the boat lies on its own track: where the paths of the chart put that second', async () => {
+    const { page, close } = await open('full');
+    for (const row of [90, 512, 1500]) {
+      await scrubTo(page, full.series.boats[0]!.t0 + row);
+      for (const [i, boat] of full.series.boats.entries()) {
+        const [matrix, shift] = await page.evaluate(
+          (k) => [
+            document.querySelector('#map .world')!.getAttribute('transform')!,
+            document.querySelector(`#map .boat[data-boat="${k}"]`)!.getAttribute('transform')!,
+          ],
+          i,
+        );
+        const [a, b, c, d, e, f] = matrix!.match(/-?[\d.]+/g)!.map(Number) as [
+          number,
+          number,
+          number,
+          number,
+          number,
+          number,
+        ];
+        const [x, y] = [boat.x[row]!, -boat.y[row]!];
+        const [sx, sy] = shift!.match(/-?[\d.]+/g)!.map(Number) as [number, number];
+        expect(Math.hypot(a * x + c * y + e - sx, b * x + d * y + f - sy)).toBeLessThan(0.3);
+      }
+    }
+    await close();
+  });
+
+  test('the triangle of speeds closes: apparent wind is the wind less the boat, as in the series', async () => {
+    const { page, close } = await open('full');
+    for (const row of [60, 450, 800, 1234, 1700]) {
+      await scrubTo(page, full.series.boats[0]!.t0 + row);
+      for (const [i, boat] of full.series.boats.entries()) {
+        const sides = await page.evaluate((k) => {
+          const svg = document.querySelector(`.triangle[data-boat="${k}"]`)!;
+          const scale = Number(svg.getAttribute('data-scale'));
+          const of = (side: string): number[] => {
+            const line = svg.querySelector(`[data-side=${side}]`)!;
+            const at = (name: string): number => Number(line.getAttribute(name)) / scale;
+            return [at('x2') - at('x1'), at('y2') - at('y1')];
+          };
+          return { boat: of('boat'), wind: of('true'), apparent: of('apparent') };
+        }, i);
+        // The air past the boat from the velocities of the series alone: wind vector less water velocity.
+        const from = boat.twd[row]!;
+        const airE = -boat.tws[row]! * eastOf(from) - boat.ux[row]!;
+        const airN = -boat.tws[row]! * northOf(from) - boat.uy[row]!;
+        expect(Math.hypot(...(sides.apparent as [number, number]))).toBeCloseTo(toKnots(Math.hypot(airE, airN)), 1);
+        expect(Math.hypot(...(sides.boat as [number, number]))).toBeCloseTo(toKnots(boat.speed[row]!), 1);
+        expect(Math.hypot(...(sides.wind as [number, number]))).toBeCloseTo(toKnots(boat.tws[row]!), 1);
+        expect(sides.boat[0]! + sides.apparent[0]!).toBeCloseTo(sides.wind[0]!, 2);
+        expect(sides.boat[1]! + sides.apparent[1]!).toBeCloseTo(sides.wind[1]!, 2);
+        // On starboard tack the wind comes over the right side, so with the wind from the top she goes to the left.
+        expect(Math.sign(sides.boat[0]!)).toBe(-Math.sign(boat.gamma[row]!));
+      }
+    }
+    await close();
+  });
+
+  test('steps go from tack to tack', async () => {
+    const { page, close } = await open('full');
+    const tacks = full.series.boats.flatMap((b) => b.manoeuvres.filter((m) => m.kind === 'tack' || m.kind === 'gybe').map((m) => b.t0 + m.at)).sort((a, b) => a - b); // prettier-ignore
+    await page.locator('#chart').scrollIntoViewIfNeeded();
+    for (const at of tacks.slice(0, 3)) {
+      await page.locator('#on').click();
+      await expect.poll(() => page.locator('#cursor').inputValue()).toBe(String(at));
+    }
+    await close();
+  });
+
+  test('the keyboard reaches words, figures, legs, chart and cursor, and always shows where it is', async () => {
+    const { page, close } = await open('full');
+    const met = new Set<string>();
+    let unseen = 0;
+    for (let i = 0; i < 260; i++) {
+      await page.keyboard.press('Tab');
+      const at = await page.evaluate(() => {
+        const e = document.activeElement as HTMLElement;
+        const style = getComputedStyle(e);
+        return {
+          name: e.id || e.className.toString() || e.tagName,
+          outline: style.outlineStyle !== 'none' && parseFloat(style.outlineWidth) > 0,
+        };
+      });
+      if (at.name === 'BODY') break;
+      if (!at.outline) unseen++;
+      for (const part of at.name.split(' ')) met.add(part);
+      if (met.has('run')) break;
+    }
+    for (const part of ['skip', 'term', 'q', 'pick', 'map-frame', 'tool', 'cursor', 'back', 'stride', 'on', 'run'])
+      expect(met).toContain(part);
+    expect(unseen).toBe(0);
+    await page.locator('#cursor').focus();
+    const before = Number(await page.locator('#cursor').inputValue());
+    await page.keyboard.press('ArrowRight');
+    await page.keyboard.press('ArrowRight');
+    expect(Number(await page.locator('#cursor').inputValue())).toBe(before + 2);
+    await close();
+  });
+
+  test('a figure tells its error on focus, arrows go to the next one, Escape closes', async () => {
+    const { page, close } = await open('full');
+    const first = page.locator('table.legs .q').first();
+    await first.focus();
+    expect(await page.locator('#tip').innerText()).toMatch(/one standard error.*worked out from measurements/);
+    const before = await page.locator('#tip').innerText();
+    await page.keyboard.press('ArrowDown');
+    expect(await page.locator('#tip').innerText()).not.toBe(before);
+    await page.keyboard.press('Escape');
+    expect(await page.locator('#tip').isVisible()).toBe(false);
+    await close();
+  });
+
+  test.each(['light', 'dark'] as const)('axe finds nothing serious (%s)', async (colorScheme) => {
+    const axe = readFileSync(createRequire(import.meta.url).resolve('axe-core/axe.min.js'), 'utf8');
+    for (const name of ['full', 'bare', 'compare']) {
+      const { page, close } = await open(name, { colorScheme });
+      await page.waitForSelector('html.live');
+      await page.locator('#trust').scrollIntoViewIfNeeded();
+      // The page's own policy forbids a foreign script in a script element; the test's way in is not the page's.
+      await page.evaluate(axe);
+      const found = await page.evaluate(async () => {
+        const { axe } = window as unknown as {
+          axe: { run: () => Promise<{ violations: { id: string; impact: string; nodes: { html: string }[] }[] }> };
+        };
+        return (await axe.run()).violations
+          .filter((v) => v.impact === 'serious' || v.impact === 'critical')
+          .map((v) => `${v.id}: ${v.nodes[0]!.html.slice(0, 160)}`);
+      });
+      expect(found).toEqual([]);
+      await close();
+    }
+  });
+
+  test.each([360, 640, 768, 1280])('nothing is wider than a window of %i', async (width) => {
+    for (const name of ['full', 'compare', 'bare']) {
+      const { page, close } = await open(name, { viewport: { width, height: 800 } });
+      await page.waitForSelector('html.live');
+      expect(await page.evaluate(() => document.documentElement.scrollWidth)).toBe(width);
+      await close();
+    }
+  });
+
+  test('a race of two boats and two laps prints on two leaves before the appendix', async () => {
+    const { page, close } = await open('full');
+    await page.waitForSelector('html.live');
+    await page.evaluate(() => document.querySelector('.after')!.remove());
+    const pdf = (await page.pdf({ preferCSSPageSize: true, printBackground: true })).toString('latin1');
+    expect(pdf.match(/\/Type\s*\/Page\b(?!s)/g)).toHaveLength(2);
+    await close();
+  });
+
+  test('without a script there are tables, pictures and words that open', async () => {
+    const { page, close } = await open('full', { javaScriptEnabled: false });
+    expect(await page.locator('table.legs').first().isVisible()).toBe(true);
+    expect(await page.locator('#map').isVisible()).toBe(true);
+    expect(await page.locator('.still svg').count()).toBe(5);
+    expect(await page.locator('.still svg').first().isVisible()).toBe(true);
+    expect(await page.locator('#scrub').isVisible()).toBe(false);
+    await page.locator('#verdict .term').first().click();
+    expect(await page.locator('#word-settled').isVisible()).toBe(true);
+    expect(await page.locator('.day time').nth(1).innerText()).toBe('12:05'); // UTC, as the page says
+    await close();
+  });
+
+  test('numbers follow the reader, times follow the race', async () => {
+    const { page, close } = await open('full', { locale: 'de-DE', timezoneId: 'Pacific/Auckland' });
+    await page.waitForSelector('html.live');
+    const vmg = full.result.boats[0]!.legs[0]!.steady!.vmg_kn!.value;
+    expect(await page.locator('table.legs .q .n').first().innerText()).toBe(vmg.toFixed(2).replace('.', ','));
+    expect(await page.locator('.day time').nth(1).innerText()).toBe('14:05'); // Zurich keeps summer time on 18 April
+    await close();
+  });
+
+  test('a finger on a track moves the cursor there', async () => {
+    const { page, close } = await open('full', {
+      viewport: { width: 360, height: 740 },
+      hasTouch: true,
+      isMobile: true,
+    });
+    await page.waitForSelector('html.live');
+    const boat = full.series.boats[0]!;
+    await scrubTo(page, boat.t0 + 200);
+    await page.locator('#map').scrollIntoViewIfNeeded();
+    const target = await page.evaluate(() => {
+      const pin = document.querySelector('#map .tack-pin[data-boat="0"][data-turn="1"]')!.getBoundingClientRect();
+      return { x: pin.x + pin.width / 2, y: pin.y + pin.height / 2 };
+    });
+    await page.touchscreen.tap(target.x, target.y);
+    await expect.poll(async () => Math.abs(Number(await page.locator('#cursor').inputValue()) - boat.t0 - boat.manoeuvres[1]!.at)).toBeLessThan(8); // prettier-ignore
+    await close();
+  });
+
+  test('a picked leg stands alone, and is let go again', async () => {
+    const { page, close } = await open('full');
+    const leg = page.locator('table.legs .pick').nth(1);
+    await leg.click();
+    await expect.poll(() => leg.getAttribute('aria-pressed')).toBe('true');
+    expect(await page.locator('#picked caption').innerText()).toContain('lap 2');
+    expect(await page.locator('.leg-path.dim').count()).toBe(6); // of two boats' four legs each, one number stays
+    await leg.click();
+    await expect.poll(() => page.locator('.leg-path.dim').count()).toBe(0);
+    await close();
+  });
+});
