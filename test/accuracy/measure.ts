@@ -278,7 +278,8 @@ function measureUpwind(
   });
   const every = Array.from({ length: leg.end - leg.start }, (_, i) => leg.start - boat.t0 + i);
   const entry = (cause: string): Q => result.ledger?.entries.find((e) => e.cause === cause)?.metres ?? null;
-  const best = mean(boat.bestVmg, mine);
+  // Against the debrief's own optimum: its boat model is not on trial here, an invented boat is no judge of it.
+  const best = (result.optimum?.vmg_kn?.value ?? NaN) * KNOT;
   const seen: Seen[] = [
     { quantity: 'gamma', q: steady?.gamma_deg ?? null, ...both(boat.gamma) },
     side(steady?.port, -1, 'gamma port'),

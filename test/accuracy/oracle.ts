@@ -137,7 +137,7 @@ function legResult(boat: TrueBoat, leg: TrueLeg, slips: Slips): LegResult {
     gybes: 0,
     vmg_kn: q(sum / (leg.end - leg.start) / KNOT, slips),
     steady: upwind ? steadyOf(boat, leg, slips) : null,
-    optimum: null,
+    optimum: upwind ? optimumOf(boat, leg, slips) : null,
     ceiling_vmg_kn: null,
     efficiency: upwind ? efficiencyOf(boat, leg, slips) : null,
     share: null,
@@ -152,6 +152,13 @@ function legResult(boat: TrueBoat, leg: TrueLeg, slips: Slips): LegResult {
       : null,
     notes: [],
   };
+}
+
+function optimumOf(boat: TrueBoat, leg: TrueLeg, slips: Slips): LegResult['optimum'] {
+  const rows = settledRows(boat, leg);
+  const best = rows.reduce((sum, i) => sum + boat.bestVmg[i]!, 0) / rows.length;
+  const rest = { gamma_deg: null, speed_kn: null, beta_deg: null, leeway_deg: null, sheeting_deg: null };
+  return { ...rest, vmg_kn: q(best / KNOT, slips) };
 }
 
 function efficiencyOf(boat: TrueBoat, leg: TrueLeg, slips: Slips): Q {

@@ -30,10 +30,11 @@ function lossOver(boat: TrueBoat, from: number, to: number): number {
   return sum;
 }
 
-/** Metres one turn cost, from 3 s before it until its recovery, or until 3 s before the next. [m, positive lost] */
+/** Metres one turn cost, from 3 s before it until its recovery, 3 s before the next, or the mark. [m, positive lost] */
 export function trueTackLoss(boat: TrueBoat, turn: TrueTurn): number {
   const next = boat.turns.find((other) => other.start >= turn.end);
-  const to = Math.min(turn.settled, next ? next.start - 3 : Infinity);
+  const leg = boat.legs.find((l) => turn.time >= l.start && turn.time < l.end);
+  const to = Math.min(turn.settled, next ? next.start - 3 : Infinity, leg ? leg.end : Infinity);
   return lossOver(boat, Math.round(turn.start - 3 - boat.t0), Math.round(to - boat.t0));
 }
 
