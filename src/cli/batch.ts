@@ -1,3 +1,4 @@
+import { UserError } from '../index.js';
 import type { RaceSeries, Result } from '../index.js';
 import { exitCodeOf, tellFailure } from './failures.js';
 import { expandInputs } from './inputs.js';
@@ -67,7 +68,7 @@ async function runJob(
   const places = await placesFor(flags, slug, task.suffix, several);
   checkPlaces(places, job.paths);
   progress.say(`${job.race.name}: working`);
-  const worked = await task.work(job);
+  const worked = await task.work(job).catch(withZoneHint(job));
   const result = withIssues(worked.result, job);
   await writeOutputs(places, result, worked.series, () => task.page(result, worked.series));
   const filed = flags.logbook === undefined ? [] : [await fileInLogbook(flags.logbook, result, job.day)];
@@ -75,6 +76,15 @@ async function runJob(
   if (flags.quiet || places.json === '-') return [];
   return [...task.summary(result, job), ...placeLines(places), ...filed];
 }
+
+/** Nothing to be analysed where a time was read as UTC for want of a zone: most likely that is why. */
+const withZoneHint =
+  (job: Job) =>
+  (error: unknown): never => {
+    const assumed = job.issues.find(({ code }) => code === 'zone-assumed');
+    if (!(error instanceof UserError) || error.exitCode !== 1 || !assumed) throw error;
+    throw new UserError(`${error.message}\n${assumed.message}`, { exitCode: 1 });
+  };
 
 /** What was said while the race was put together stands first. */
 function withIssues(result: Result, job: Job): Result {

@@ -147,7 +147,7 @@ async function raceFilesIn(folder: string): Promise<Source[]> {
     if ((await kindOf(path)) !== 'file') continue;
     const text = await readText(path);
     const isRace =
-      /^\s*["']?(races?|boats)["']?\s*:/m.test(text) && !/"format"\s*:\s*"legwork-/.test(text.slice(0, 200));
+      /(^|[{,])\s*["']?(races?|boats)["']?\s*:/m.test(text) && !/"format"\s*:\s*"legwork-/.test(text.slice(0, 200));
     if (isRace) found.push({ kind: 'race-file', path, shown: forMessages(path) });
   }
   return found;

@@ -103,7 +103,7 @@ async function mustBeThere(file: string, path: string, draft: RaceDraft): Promis
   if (path === '-') return;
   const kind = await kindOf(path);
   if (kind === 'file') return;
-  const who = draft.file ?? 'the command line';
+  const who = (await raceParts()).whereNamed(draft, file);
   if (kind === 'folder') throw unusable(`${who}: ${file} is a folder, not a log.`, 'Name the files in it.');
   const near = await nearestName(path);
   const place =

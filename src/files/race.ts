@@ -192,6 +192,21 @@ export function logFiles(draft: RaceDraft): string[] {
   return [...new Set([...files, ...stations])];
 }
 
+/** Where a draft names a log: `race.yaml:12`. */
+export function whereNamed(draft: RaceDraft, file: string): string {
+  const { boats, wind } = draft.content;
+  for (const [i, boat] of boats.entries()) {
+    for (const key of ['track', 'instruments'] as const) {
+      if (filesOf(boat[key]).includes(file)) return draft.where(['boats', i, key]);
+    }
+  }
+  const list = Array.isArray(wind) ? wind : [wind];
+  const at = list.findIndex(
+    (entry) => entry === file || (typeof entry === 'object' && entry && 'file' in entry && entry.file === file),
+  );
+  return draft.where(at < 0 ? [] : ['wind', at]);
+}
+
 /** Files of a `track` or `instruments` value. */
 export function filesOf(logs: WrittenLogs | null | undefined): string[] {
   if (logs === undefined || logs === null) return [];

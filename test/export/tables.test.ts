@@ -44,16 +44,16 @@ describe('the table of legs', () => {
   });
   it.each(['=1+1', '+1', '-1', '@SUM(A1)', '\t=1', ' =1', '\r=1'])('a boat called %j is no formula', (name) => {
     const [row] = read(legsCsv(inventedResult(name)));
-    expect(row!.boat!.startsWith("'")).toBe(true);
-    expect(row!.boat!.slice(1)).toBe(name);
+    expect(row.boat.startsWith("'")).toBe(true);
+    expect(row.boat.slice(1)).toBe(name);
   });
   it('negative numbers stay numbers', () => {
-    expect(read(legsCsv(inventedResult()))[0]!.shifts_m).toBe('-2');
+    expect(read(legsCsv(inventedResult()))[0].shifts_m).toBe('-2');
   });
   it('a table without legs is its header', () => {
     const text = legsCsv({ ...inventedResult(), boats: [] });
     expect(text.split('\r\n')).toHaveLength(2);
-    expect(legColumns({ ...inventedResult(), boats: [] })[0]!.values).toEqual([]);
+    expect(legColumns({ ...inventedResult(), boats: [] })[0].values).toEqual([]);
   });
 });
 
@@ -82,19 +82,19 @@ describe('the table of seconds', () => {
 describe('GeoJSON', () => {
   it('has tracks, legs, manoeuvres and marks, longitude first, 7 decimals', async () => {
     const { features } = await raceGeoJson(inventedResult(), inventedSeries());
-    expect(features.map((f) => [f.properties!.what, f.geometry.type])).toEqual([
+    expect(features.map((f) => [(f.properties as { what: string }).what, f.geometry.type])).toEqual([
       ['mark', 'Point'],
       ['mark', 'LineString'],
       ['track', 'MultiLineString'],
       ['leg', 'MultiLineString'],
       ['manoeuvre', 'Point'],
     ]);
-    expect((features[0]!.geometry as Point).coordinates).toEqual([9, 0.001]);
+    expect((features[0].geometry as Point).coordinates).toEqual([9, 0.001]);
     // The gap of two seconds is no line.
-    expect((features[2]!.geometry as MultiLineString).coordinates.map((line) => line.length)).toEqual([4, 4]);
-    expect(features[4]!.properties).toMatchObject({ kind: 'tack', time: '2026-04-18T12:00:07.000Z', loss_m: null });
+    expect((features[2].geometry as MultiLineString).coordinates.map((line) => line.length)).toEqual([4, 4]);
+    expect(features[4].properties).toMatchObject({ kind: 'tack', time: '2026-04-18T12:00:07.000Z', loss_m: null });
     const numbers = JSON.stringify(features).match(/-?\d+\.\d+/g) ?? [];
-    expect(Math.max(...numbers.map((number) => number.split('.')[1]!.length))).toBeLessThanOrEqual(7);
+    expect(Math.max(...numbers.map((number) => number.split('.')[1].length))).toBeLessThanOrEqual(7);
   });
   it('is JSON, one feature a line', async () => {
     const text = await geoJsonText(inventedResult(), inventedSeries());
@@ -103,13 +103,13 @@ describe('GeoJSON', () => {
   });
   it('is cut at the 180th meridian (RFC 7946, 3.1.9)', async () => {
     const { features } = await raceGeoJson(inventedResult(), inventedSeries('Ann', 179.99997));
-    const { coordinates } = features[2]!.geometry as MultiLineString;
+    const { coordinates } = features[2].geometry as MultiLineString;
     for (const line of coordinates) {
-      for (let i = 1; i < line.length; i++) expect(Math.abs(line[i]![0]! - line[i - 1]![0]!)).toBeLessThan(1);
+      for (let i = 1; i < line.length; i++) expect(Math.abs(line[i][0] - line[i - 1][0])).toBeLessThan(1);
     }
     expect(coordinates).toHaveLength(3);
-    expect(coordinates[1]!.at(-1)![0]).toBe(180);
-    expect(coordinates[2]![0]![0]).toBe(-180);
+    expect(coordinates[1].at(-1)![0]).toBe(180);
+    expect(coordinates[2][0][0]).toBe(-180);
   });
   it('cuts both ways, and the ends meet half-way', () => {
     // From 179 to -179 (2 degrees) the meridian is half-way: latitude 0 to 1 gives 0.5.
@@ -157,7 +157,7 @@ describe('GeoJSON', () => {
   });
   it('a track of one position is left out, not broken', async () => {
     const series = inventedSeries();
-    const boat = series.boats[0]!;
+    const boat = series.boats[0];
     const lonely = { ...boat, x: boat.x.map((x, i) => (i === 0 ? x : NaN)) };
     const { features } = await raceGeoJson(inventedResult(), { ...series, boats: [lonely] });
     expect(features.some((f) => (f.geometry as LineString).coordinates.length < 2 && f.geometry.type !== 'Point')).toBe(
@@ -189,7 +189,7 @@ describe('Parquet', () => {
       steady_gamma_deg: 45,
       vmg_kn: null,
     });
-    expect(new Date(rows[0]!.start as Date).toISOString()).toBe('2026-04-18T12:00:00.000Z');
+    expect(new Date(rows[0].start as Date).toISOString()).toBe('2026-04-18T12:00:00.000Z');
   });
   it('is the same bytes again', async () => {
     const once = await parquetBytes(inventedResult(), inventedSeries());
