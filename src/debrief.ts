@@ -1,5 +1,5 @@
 import type { LatLon, Race } from './files/race-types.js';
-import { eastOf, northOf } from './math/angles.js';
+import { circularMean, eastOf, northOf } from './math/angles.js';
 import { toPlane } from './math/geo.js';
 import { median } from './math/median.js';
 import { logLawFactor } from './physics/air.js';
@@ -13,7 +13,9 @@ import { receiverDisplacementSe } from './smooth/index.js';
 import { assemble } from './steps/assemble.js';
 import { boatSeries, placesOf } from './steps/series.js';
 import { cleanTracks, type CleanTracks } from './steps/clean-tracks.js';
-import { estimateBoat } from './steps/estimate-boat.js';
+import { boatFromText, boatModels, modelOf, type RaceModel } from './steps/boat-models.js';
+import { estimateBoat, type BoatEstimate } from './steps/estimate-boat.js';
+import { judge } from './steps/judge.js';
 import { errorModels } from './steps/error-model.js';
 import { findWind, type FoundWind } from './steps/find-wind.js';
 import { readLogs, type OpenLog, type ReadLogs } from './steps/read-logs.js';
@@ -26,6 +28,10 @@ import { engineRows } from './steps/find-engine.js';
 export interface DebriefOptions {
   /** Version of the program, for the result. */
   readonly version?: string;
+  /** What the ledger is measured against; default: the model for one boat, the day's best sailing for more. */
+  readonly reference?: 'model' | 'best' | { readonly file: string; readonly text: string };
+  /** Take every boat's metres along one mean wind a lap, as a comparison needs it. */
+  readonly shareWind?: boolean;
   /** Thresholds of segmentation, for tests that move them. */
   readonly thresholds?: Thresholds;
 }
@@ -59,7 +65,18 @@ export async function debrief(race: Race, open: OpenLog, options: DebriefOptions
     ...wind.issues,
     ...assumptions(race),
   ];
+  const models = await boatModels(race, open);
+  const judgements = judge({
+    sailed: wind.sailed,
+    estimates,
+    models,
+    reference: await referenceOf(race, options),
+    windward: course.windward,
+    sharedWind: options.shareWind ? (lap) => meanWindOfLap(estimates, lap) : null,
+  });
   const result = assemble({
+    models,
+    judgements,
     race,
     version: options.version ?? '0.0.0',
     files: logs.files,
@@ -76,6 +93,18 @@ export async function debrief(race: Race, open: OpenLog, options: DebriefOptions
     boats: clean.boats.map((boat, k) => boatSeries(boat.track, wind.sailed[k]!, estimates[k]!)),
   };
   return { result, series };
+}
+
+async function referenceOf(race: Race, options: DebriefOptions): Promise<'model' | 'best' | RaceModel> {
+  const { reference } = options;
+  if (reference === undefined) return race.boats.length > 1 ? 'best' : 'model';
+  return typeof reference === 'string' ? reference : modelOf(await boatFromText(reference.text, reference.file));
+}
+
+/** Mean direction of the wind over all boats' beats of a lap. [deg] */
+function meanWindOfLap(estimates: readonly BoatEstimate[], lap: number): number {
+  const beats = estimates.flatMap((boat) => boat.legs.filter((l) => l.leg.kind === 'upwind' && l.leg.lap === lap));
+  return circularMean(beats.map((leg) => leg.twd)).mean;
 }
 
 /** Wind and sailing of all boats: each needs the other, so they are found together. */

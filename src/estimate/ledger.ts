@@ -171,22 +171,30 @@ interface Rates {
 /** Blocks this close to a window say what high, low and speed went on costing in it. [s] */
 const NEAR = 90;
 
-/** Mean rates of high, low and speed in the settled blocks within 90 s on both sides of a window. [m/s] */
+/**
+ * Mean rates of high, low and speed in the settled blocks within 90 s of a window: of those before it and those after it
+ * apart, then of the two, so that a shift in the manoeuvre does not lean the mean. [m/s]
+ */
 function nearRates(pieces: readonly Piece[], parts: readonly (BlockParts | null)[], at: number): Rates {
-  const window = pieces[at]!;
-  let seconds = 0;
-  const sum = { high: 0, low: 0, speed: 0 };
-  pieces.forEach((piece, k) => {
-    const part = parts[k];
-    if (!part || piece.label !== LABEL.settled) return;
-    if (piece.to <= window.from - NEAR || piece.from >= window.to + NEAR) return;
-    seconds += part.seconds;
-    sum.high += part.high;
-    sum.low += part.low;
-    sum.speed += part.speed;
-  });
-  if (seconds === 0) return sum;
-  return { high: sum.high / seconds, low: sum.low / seconds, speed: sum.speed / seconds };
+  const window = pieces[at];
+  const side = (before: boolean): Rates | null => {
+    let seconds = 0;
+    const sum = { high: 0, low: 0, speed: 0 };
+    pieces.forEach((piece, k) => {
+      const part = parts[k];
+      if (!part || piece.label !== LABEL.settled || piece.from < window.from !== before) return;
+      if (piece.to <= window.from - NEAR || piece.from >= window.to + NEAR) return;
+      seconds += part.seconds;
+      sum.high += part.high;
+      sum.low += part.low;
+      sum.speed += part.speed;
+    });
+    return seconds > 0 ? { high: sum.high / seconds, low: sum.low / seconds, speed: sum.speed / seconds } : null;
+  };
+  const sides = [side(true), side(false)].filter((rates) => rates !== null);
+  const mean = (pick: (rates: Rates) => number): number =>
+    sides.length > 0 ? sides.reduce((sum, rates) => sum + pick(rates), 0) / sides.length : 0;
+  return { high: mean((r) => r.high), low: mean((r) => r.low), speed: mean((r) => r.speed) };
 }
 
 const WINDOW_CAUSE: Readonly<Record<number, Cause>> = {

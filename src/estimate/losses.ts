@@ -21,15 +21,25 @@ export function madeGood(sailing: Sailing, from: number, to: number): { metres: 
   return { metres, seconds };
 }
 
-/** Settled blocks of the same leg within 90 s on both sides of rows [entry, exit). */
+/**
+ * Settled blocks of the same leg within 90 s of rows [entry, exit), and weights that give the sailing before and the
+ * sailing after the same say, so that a shift in the manoeuvre does not lean the mean.
+ */
 export function blocksNear(
   blocks: readonly BlockEstimate[],
   leg: number,
   window: { readonly entry: number; readonly exit: number },
-): BlockEstimate[] {
-  return blocks.filter(
+): { near: BlockEstimate[]; weights: number[]; seconds: number } {
+  const near = blocks.filter(
     (block) => block.leg === leg && block.to > window.entry - NEAR && block.from < window.exit + NEAR,
   );
+  const isBefore = (block: BlockEstimate): boolean => block.from < window.entry;
+  const total = (before: boolean): number =>
+    near.filter((block) => isBefore(block) === before).reduce((sum, block) => sum + block.seconds, 0);
+  const [before, after] = [total(true), total(false)];
+  const sides = (before > 0 ? 1 : 0) + (after > 0 ? 1 : 0);
+  const weights = near.map((block) => block.seconds / (sides * (isBefore(block) ? before : after)));
+  return { near, weights, seconds: before + after };
 }
 
 /**
@@ -45,10 +55,8 @@ export function manoeuvreLoss(
   leg: number,
   errors: ErrorModel,
 ): Figure | null {
-  const near = blocksNear(blocks, leg, manoeuvre);
-  const total = near.reduce((sum, block) => sum + block.seconds, 0);
-  if (total < 20) return null;
-  const weights = near.map((block) => block.seconds / total);
+  const { near, weights, seconds: settled } = blocksNear(blocks, leg, manoeuvre);
+  if (settled < 20) return null;
   const rate = near.reduce((sum, block, k) => sum + weights[k]! * block.vmg, 0);
   const { metres, seconds } = madeGood(sailing, manoeuvre.entry, manoeuvre.exit);
   const cross = near.reduce((sum, b, k) => sum + weights[k]! * b.speed * Math.sin(b.gamma * RAD), 0);

@@ -1,3 +1,7 @@
+import type { SpeedCurve } from '../physics/speed-curve.js';
+
+const RAD = Math.PI / 180;
+
 /** What a ledger is measured against: speed at every course angle and wind. Angles [deg], speeds [m/s]. */
 export interface Reference {
   readonly kind: 'model' | 'best' | 'file';
@@ -7,53 +11,70 @@ export interface Reference {
   readonly bestGamma: (tws: number) => number;
 }
 
-/** Speed of a boat over course angle and wind, and its best; a model's speed curve. */
-export interface SpeedCurve {
-  readonly speed: (gamma: number, tws: number) => number;
-  readonly bestVmg: (tws: number) => number;
-  readonly bestGamma: (tws: number) => number;
-}
-
 /** The model as it stands. */
 export function modelReference(curve: SpeedCurve, kind: 'model' | 'file' = 'model'): Reference {
-  return { kind, speed: curve.speed, bestVmg: curve.bestVmg, bestGamma: curve.bestGamma };
+  return {
+    kind,
+    speed: (gamma, tws) => curve.speed(gamma, tws),
+    bestVmg: (tws) => curve.bestVmg(tws),
+    bestGamma: (tws) => curve.bestGamma(tws),
+  };
+}
+
+/** How a model is moved to what was sailed: its speeds times `scale`, its angles lower by `turn`. */
+export interface Anchor {
+  readonly scale: number;
+  /** [deg] */
+  readonly turn: number;
 }
 
 /**
- * The model moved so that its best point is what the day's best boat settled at:
+ * Anchor that puts the model's best point where the day's best boat settled:
  *
- *     v(gamma, W) = k v_model(gamma - D, W),   D = gamma_best - gamma*(W_best),   k from the speeds there.
+ *     v(gamma, W) = k v_model(gamma - D, W)
  *
  * A turned curve's best is not the model's best turned: D is set so that the turned curve's best is the achieved angle.
  *
- * @param gamma, speed, tws Settled medians of the boat with the day's best settled VMG.
+ * @param gamma, speed, tws Settled medians of the boat with the day's best settled VMG. [deg], [m/s], [m/s]
  */
-export function bestReference(curve: SpeedCurve, gamma: number, speed: number, tws: number): Reference {
-  const turned = turnFor(curve, gamma, tws);
-  const scale = speed / curve.speed(gamma - turned, tws);
-  const at = (g: number, w: number): number => scale * curve.speed(g - turned, w);
-  const cache = new Map<number, { gamma: number; vmg: number }>();
-  const best = (w: number): { gamma: number; vmg: number } => {
-    const key = Math.round(w * 20);
-    let found = cache.get(key);
-    if (!found) {
-      found = maximum((g) => at(g, key / 20) * Math.cos((g * Math.PI) / 180), curve.bestGamma(key / 20) + turned);
-      cache.set(key, found);
+export function anchorAt(curve: SpeedCurve, gamma: number, speed: number, tws: number): Anchor {
+  const turn = turnFor(curve, gamma, tws);
+  return { scale: speed / curve.speed(gamma - turn, tws), turn };
+}
+
+/** Winds between which the anchored best is drawn straight. [m/s] */
+const WIND_STEP = 0.05;
+
+/** The model moved by an anchor. */
+export function anchoredReference(curve: SpeedCurve, { scale, turn }: Anchor): Reference {
+  const at = (gamma: number, tws: number): number => scale * curve.speed(gamma - turn, tws);
+  const found = new Map<number, Best>();
+  const best = (step: number): Best => {
+    let one = found.get(step);
+    if (!one) {
+      const tws = step * WIND_STEP;
+      one = maximum((gamma) => at(gamma, tws) * Math.cos(gamma * RAD), curve.bestGamma(tws) + turn);
+      found.set(step, one);
     }
-    return found;
+    return one;
   };
-  const between = (w: number, pick: (b: { gamma: number; vmg: number }) => number): number => {
-    if (Number.isNaN(w)) return NaN;
-    const low = Math.floor(w * 20) / 20;
-    const part = (w - low) * 20;
-    return pick(best(low)) * (1 - part) + pick(best(low + 0.05)) * part;
+  const between = (tws: number, pick: (one: Best) => number): number => {
+    if (Number.isNaN(tws)) return NaN;
+    const step = Math.floor(tws / WIND_STEP);
+    const part = tws / WIND_STEP - step;
+    return pick(best(step)) * (1 - part) + pick(best(step + 1)) * part;
   };
   return {
     kind: 'best',
     speed: at,
-    bestVmg: (w) => between(w, (b) => b.vmg),
-    bestGamma: (w) => between(w, (b) => b.gamma),
+    bestVmg: (tws) => between(tws, (one) => one.vmg),
+    bestGamma: (tws) => between(tws, (one) => one.gamma),
   };
+}
+
+interface Best {
+  readonly gamma: number;
+  readonly vmg: number;
 }
 
 /**
@@ -61,7 +82,6 @@ export function bestReference(curve: SpeedCurve, gamma: number, speed: number, t
  * taken at the angle a where its own logarithmic slope is tan gamma, and D = gamma - a. Bisection; the slope falls with a.
  */
 function turnFor(curve: SpeedCurve, gamma: number, tws: number): number {
-  const RAD = Math.PI / 180;
   const slope = (a: number): number =>
     Math.log(curve.speed(a + 0.5, tws) / curve.speed(a - 0.5, tws)) / RAD - Math.tan(gamma * RAD);
   let low = curve.bestGamma(tws) - 14;
@@ -75,7 +95,7 @@ function turnFor(curve: SpeedCurve, gamma: number, tws: number): number {
 }
 
 /** Maximum of a smooth hump within 15 degrees of a guess, by golden section. */
-function maximum(f: (gamma: number) => number, guess: number): { gamma: number; vmg: number } {
+function maximum(f: (gamma: number) => number, guess: number): Best {
   const ratio = (Math.sqrt(5) - 1) / 2;
   let low = guess - 15;
   let high = guess + 15;

@@ -83,6 +83,10 @@ type Mark = (from: number, to: number, label: Label) => void;
 function markWindows(leg: Leg, manoeuvres: readonly Manoeuvre[], mark: Mark): void {
   for (const manoeuvre of manoeuvres) {
     if (manoeuvre.exit <= leg.from || manoeuvre.entry >= leg.to) continue;
+    if (manoeuvre.kind === 'full-turn') {
+      mark(Math.max(leg.from, manoeuvre.entry), Math.min(leg.to, manoeuvre.exit), LABEL.stopped);
+      continue;
+    }
     const atStart = manoeuvre.at <= leg.from + 5;
     const atEnd = manoeuvre.at >= leg.to - 3 && manoeuvre.kind !== 'tack';
     mark(
@@ -116,30 +120,21 @@ function markTroubles(sailing: Sailing, leg: Leg, usual: number, thresholds: Thr
     if (trouble && slowFrom < 0) slowFrom = i;
     if (trouble || slowFrom < 0) continue;
     if (i - slowFrom > thresholds.flicker) {
-      mark(slowFrom - thresholds.beforeTack, Math.min(leg.to, i + thresholds.settleMin), LABEL.unsettled);
-      markStops(sailing, slowFrom, i, usual, thresholds, mark);
+      const label = hasStop(sailing, slowFrom, i, usual, thresholds) ? LABEL.stopped : LABEL.unsettled;
+      mark(slowFrom - thresholds.beforeTack, Math.min(leg.to, i + thresholds.settleMin), label);
     }
     slowFrom = -1;
   }
 }
 
-function markStops(
-  sailing: Sailing,
-  from: number,
-  to: number,
-  usual: number,
-  thresholds: Thresholds,
-  mark: Mark,
-): void {
-  let stopFrom = -1;
-  for (let i = from; i <= to; i++) {
-    const stopped = i < to && sailing.speed[i] < thresholds.stopped * usual;
-    if (stopped && stopFrom < 0) stopFrom = i;
-    if (!stopped && stopFrom >= 0) {
-      if (i - stopFrom >= thresholds.minStop) mark(from, to, LABEL.stopped);
-      stopFrom = -1;
-    }
+/** Whether the boat lay stopped within rows [from, to). */
+function hasStop(sailing: Sailing, from: number, to: number, usual: number, thresholds: Thresholds): boolean {
+  let since = from;
+  for (let i = from; i < to; i++) {
+    if (!(sailing.speed[i] < thresholds.stopped * usual)) since = i + 1;
+    else if (i + 1 - since >= thresholds.minStop) return true;
   }
+  return false;
 }
 
 /** Steering within this of the bearing to the leg's end is steering for the mark. [deg] */

@@ -6,8 +6,10 @@ import type {
   Basis,
   BoatResult,
   InputEntry,
+  Ledger,
   LegResult,
   ManoeuvreResult,
+  OptimumResult,
   Q,
   Result,
   Steady,
@@ -20,7 +22,9 @@ import type { BoatEstimate, LegEstimate } from './estimate-boat.js';
 import type { CleanBoat } from './clean-tracks.js';
 import type { FoundWind } from './find-wind.js';
 import type { ReadFile } from './read-logs.js';
-import type { Sailed } from './sail.js';
+import { CAUSES, type LedgerFigures } from '../estimate/ledger.js';
+import type { RaceModel } from './boat-models.js';
+import type { Judgement, LegJudgement, Optimum } from './judge.js';
 
 export interface Assembly {
   readonly race: Race;
@@ -31,6 +35,8 @@ export interface Assembly {
   readonly handWind: boolean;
   readonly estimates: readonly BoatEstimate[];
   readonly issues: readonly Issue[];
+  readonly models: readonly RaceModel[];
+  readonly judgements: readonly Judgement[];
 }
 
 /** The result file's object from the estimates: units of the outside, notes, warnings. */
@@ -47,7 +53,7 @@ export function assemble(a: Assembly): Result {
     inputs: a.files.map((file) => inputEntry(file, a.boats)),
     wind: windOf(a),
     corrections: { twd_offset_deg: twdOffset(a.wind), current: null },
-    boats: a.boats.map((boat, k) => boatResult(boat, a.wind.sailed[k]!, a.estimates[k]!, a)),
+    boats: a.boats.map((boat, k) => boatResult(boat, k, a)),
     warnings: a.issues.map(({ code, message, file }): Warning => ({ code, message, ...(file ? { file } : {}) })),
   };
 }
@@ -108,12 +114,14 @@ function twdOffset(wind: FoundWind): Q {
   return offset ? quantity({ value: offset.offset, se: offset.se }, 'inferred') : null;
 }
 
-function boatResult(boat: CleanBoat, one: Sailed, estimate: BoatEstimate, a: Assembly): BoatResult {
+function boatResult(boat: CleanBoat, k: number, a: Assembly): BoatResult {
   const { reference } = boat.logs;
+  const estimate = a.estimates[k];
+  const model = a.models[k];
   return {
     name: reference.name,
     sailor: reference.sailor,
-    model: { boat: reference.boat, tuned: false, sha256: '' },
+    model: { boat: reference.boat, tuned: model.tuned, sha256: model.sha256 },
     corrections: { compass_offset_deg: null, awa_offset_deg: null },
     manoeuvres: estimate.manoeuvres.map(({ manoeuvre, loss }): ManoeuvreResult => ({
       kind: manoeuvre.kind,
@@ -123,34 +131,62 @@ function boatResult(boat: CleanBoat, one: Sailed, estimate: BoatEstimate, a: Ass
       seconds: manoeuvre.exit - manoeuvre.entry,
       loss_m: quantity(loss, 'derived'),
     })),
-    legs: estimate.legs.map((leg) => legResult(leg, one, a)),
+    legs: estimate.legs.map((leg, index) => legResult(leg, k, index, a)),
     hints: [],
   };
 }
 
-function legResult(estimate: LegEstimate, one: Sailed, a: Assembly): LegResult {
+function legResult(estimate: LegEstimate, boat: number, index: number, a: Assembly): LegResult {
   const { leg, all } = estimate;
+  const { sailing } = a.wind.sailed[boat];
+  const { reference, legs } = a.judgements[boat];
+  const judged = legs[index];
   const inferred = a.wind.directionInferred;
-  const notes: string[] = [];
-  const steady = all ? steadyOf(estimate, inferred) : null;
-  if (leg.kind === 'upwind' && !all) notes.push('no settled close-hauled sailing on this leg');
-  if (leg.kind !== 'upwind') notes.push('settled figures are for beats only');
-  if (all && Number.isNaN(all.tws.value)) notes.push('wind speed unknown');
   return {
     kind: leg.kind,
     lap: leg.lap,
-    start: isoTime(one.sailing.t0 + leg.from),
-    end: isoTime(one.sailing.t0 + leg.to),
+    start: isoTime(sailing.t0 + leg.from),
+    end: isoTime(sailing.t0 + leg.to),
     tacks: estimate.tacks,
     gybes: estimate.gybes,
     vmg_kn: knotsQuantity(estimate.vmg, inferred ? 'inferred' : 'derived'),
-    steady,
-    optimum: null,
+    steady: all ? steadyOf(estimate, inferred) : null,
+    optimum: judged.optimum && optimumResult(judged.optimum),
     ceiling_vmg_kn: all ? knotsQuantity(all.ceiling, 'derived') : null,
-    efficiency: null,
-    share: null,
-    ledger: null,
-    notes,
+    efficiency: quantity(judged.efficiency, 'inferred'),
+    share: quantity(judged.share, 'inferred'),
+    ledger: judged.ledger && ledgerResult(judged.ledger, reference.kind),
+    notes: legNotes(estimate, judged),
+  };
+}
+
+function legNotes({ leg, all }: LegEstimate, judged: LegJudgement): string[] {
+  if (leg.kind !== 'upwind') return ['settled figures are for beats only'];
+  if (!all) return ['no settled close-hauled sailing on this leg'];
+  const notes: string[] = [];
+  if (Number.isNaN(all.tws.value)) notes.push('wind speed unknown');
+  if (judged.ledger) notes.push('trim: leeway was not measured, so its metres stay in speed');
+  return notes;
+}
+
+function optimumResult(best: Optimum): OptimumResult {
+  return {
+    gamma_deg: quantity(best.gamma, 'inferred'),
+    speed_kn: knotsQuantity(best.speed, 'inferred'),
+    vmg_kn: knotsQuantity(best.vmg, 'inferred'),
+    beta_deg: quantity(best.beta, 'inferred'),
+    leeway_deg: quantity(best.leeway, 'inferred'),
+    sheeting_deg: quantity(best.sheeting, 'inferred'),
+  };
+}
+
+function ledgerResult(ledger: LedgerFigures, reference: Ledger['reference']): Ledger {
+  return {
+    reference,
+    available_m: quantity(ledger.available, 'inferred'),
+    made_m: quantity(ledger.made, 'derived'),
+    lost_m: quantity(ledger.lost, 'inferred'),
+    entries: CAUSES.map((cause) => ({ cause, metres: quantity(ledger.entries[cause], 'inferred') })),
   };
 }
 

@@ -1,0 +1,182 @@
+import { legLedger, type LedgerFigures } from '../estimate/ledger.js';
+import { overstoodShare } from '../estimate/overstanding.js';
+import { anchorAt, anchoredReference, modelReference, type Anchor, type Reference } from '../estimate/reference.js';
+import type { Figure } from '../estimate/steady.js';
+import { median } from '../math/median.js';
+import type { SailingState } from '../physics/balance.js';
+import { bestDownwind, bestUpwind } from '../physics/optimum.js';
+import type { Place } from '../segment/legs.js';
+import type { RaceModel } from './boat-models.js';
+import type { BoatEstimate, LegEstimate } from './estimate-boat.js';
+import type { Sailed } from './sail.js';
+
+export interface Optimum {
+  readonly gamma: Figure;
+  readonly speed: Figure;
+  readonly vmg: Figure;
+  readonly beta: Figure;
+  readonly leeway: Figure;
+  readonly sheeting: Figure;
+}
+
+/** What a leg is set beside. All null where the wind speed is not known. */
+export interface LegJudgement {
+  readonly optimum: Optimum | null;
+  readonly efficiency: Figure | null;
+  readonly share: Figure | null;
+  readonly ledger: LedgerFigures | null;
+}
+
+export interface Judgement {
+  readonly reference: Reference;
+  readonly legs: readonly LegJudgement[];
+}
+
+export interface JudgeInput {
+  readonly sailed: readonly Sailed[];
+  readonly estimates: readonly BoatEstimate[];
+  readonly models: readonly RaceModel[];
+  /** `best` needs settled sailing in known wind; without it the model stands alone. */
+  readonly reference: 'model' | 'best' | RaceModel;
+  readonly windward: Place | null;
+  /** Wind direction every boat's made-good is taken along, per lap; null: each leg's own. */
+  readonly sharedWind: ((lap: number) => number) | null;
+}
+
+/** Sets every leg of every boat beside the model and the reference. */
+export function judge(input: JudgeInput): Judgement[] {
+  const anchor = input.reference === 'best' ? anchorOfBest(input) : null;
+  return input.sailed.map((one, k) => {
+    const model = input.models[k];
+    const reference =
+      typeof input.reference === 'object'
+        ? modelReference(input.reference.curve, 'file')
+        : anchor
+          ? anchoredReference(model.curve, anchor)
+          : modelReference(model.curve);
+    const legs = input.estimates[k].legs.map((leg, index) => judgeLeg(input, one, k, leg, index, reference));
+    return { reference, legs };
+  });
+}
+
+/** Settled VMG over the model's best in the same wind, block by block: the median. NaN without known wind. */
+function settledShare(one: Sailed, model: RaceModel): number {
+  return median(one.blocks.map((block) => block.vmg / model.curve.bestVmg(block.tws)));
+}
+
+/** Index of the boat with the best settled VMG of the day for its wind; -1 when none has settled sailing in known wind. */
+export function bestBoat(sailed: readonly Sailed[], models: readonly RaceModel[]): number {
+  const shares = sailed.map((one, k) => settledShare(one, models[k]));
+  let best = -1;
+  shares.forEach((share, k) => {
+    if (!Number.isNaN(share) && (best < 0 || share > shares[best])) best = k;
+  });
+  return best;
+}
+
+function anchorOfBest({ sailed, models }: JudgeInput): Anchor | null {
+  const best = bestBoat(sailed, models);
+  if (best < 0) return null;
+  const { blocks } = sailed[best];
+  const of = (pick: (b: (typeof blocks)[number]) => number): number => median(blocks.map(pick));
+  const anchor = anchorAt(models[best].curve, of((b) => b.gamma), of((b) => b.speed), of((b) => b.tws));
+  return Number.isFinite(anchor.scale) && anchor.scale > 0 ? anchor : null;
+}
+
+const NOTHING: LegJudgement = { optimum: null, efficiency: null, share: null, ledger: null };
+
+function judgeLeg(
+  input: JudgeInput,
+  one: Sailed,
+  boat: number,
+  leg: LegEstimate,
+  index: number,
+  reference: Reference,
+): LegJudgement {
+  const model = input.models[boat];
+  const { errors } = input.estimates[boat];
+  if (leg.leg.kind === 'reach') return NOTHING;
+  if (leg.leg.kind === 'downwind') {
+    const tws = meanTws(one, leg);
+    return Number.isNaN(tws.value) ? NOTHING : { ...NOTHING, optimum: optimumAt(model, tws, bestDownwind) };
+  }
+  if (!leg.all || Number.isNaN(leg.all.tws.value)) return NOTHING;
+  const optimum = optimumAt(model, leg.all.tws, bestUpwind);
+  const rows = one.rows[index];
+  const share = overstood(input, one, leg, index);
+  const ledger = rows
+    ? legLedger({
+        sailing: one.sailing,
+        tws: one.tws,
+        leg: leg.leg,
+        rows,
+        reference,
+        errors,
+        overstoodShare: share,
+        ...(input.sharedWind ? { meanWind: input.sharedWind(leg.leg.lap) } : {}),
+      })
+    : null;
+  return { optimum, efficiency: ratio(leg.all.vmg, optimum.vmg), share: ledger && shareOf(ledger), ledger };
+}
+
+function meanTws(one: Sailed, leg: LegEstimate): Figure {
+  let sum = 0;
+  let n = 0;
+  for (let i = leg.leg.from; i < leg.leg.to; i++) {
+    if (Number.isNaN(one.tws[i])) continue;
+    sum += one.tws[i];
+    n++;
+  }
+  const value = n > 0 ? sum / n : NaN;
+  return { value, se: 0.02 * value, sys: 0.02 * value };
+}
+
+/** A built-in boat stands for a type, not for this boat and crew: common practice, no source. [fraction of its speed] */
+const MODEL_SYS = { untuned: 0.08, tuned: 0.03 };
+/** What that is worth in its angles. [deg] */
+const MODEL_ANGLE_SYS = { untuned: 2, tuned: 1 };
+
+/** The model's best in a wind, with what the wind's error makes of it, by central differences of 2 %. */
+function optimumAt(model: RaceModel, tws: Figure, best: (m: RaceModel['model'], tws: number) => SailingState): Optimum {
+  const at = best(model.model, tws.value);
+  const low = best(model.model, tws.value * 0.98);
+  const high = best(model.model, tws.value * 1.02);
+  const kind = model.tuned ? 'tuned' : 'untuned';
+  const figure = (pick: (state: SailingState) => number, own: (value: number) => number): Figure => {
+    const slope = (pick(high) - pick(low)) / (0.04 * tws.value);
+    const value = pick(at);
+    return { value, se: Math.abs(slope) * tws.se, sys: Math.hypot(slope * tws.sys, own(value)) };
+  };
+  const angle = (): number => MODEL_ANGLE_SYS[kind];
+  const share = (value: number): number => MODEL_SYS[kind] * value;
+  return {
+    gamma: figure((s) => s.gamma, angle),
+    speed: figure((s) => s.speed, share),
+    vmg: figure((s) => Math.abs(s.vmg), share),
+    beta: figure((s) => s.beta, angle),
+    leeway: figure((s) => s.leeway, angle),
+    sheeting: figure((s) => s.sheeting, angle),
+  };
+}
+
+function overstood(input: JudgeInput, one: Sailed, leg: LegEstimate, index: number): number {
+  const rows = one.rows[index];
+  if (!rows || !leg.all) return 0;
+  const end = Math.min(leg.leg.to, one.sailing.n - 1);
+  const mark = input.windward ?? { x: one.sailing.x[end], y: one.sailing.y[end] };
+  return overstoodShare(one.sailing, leg.leg, rows, one.manoeuvres, one.own, leg.all.gamma.se, mark);
+}
+
+/** a / b with errors; the two wind errors act against each other through the optimum only. */
+function ratio(a: Figure, b: Figure): Figure {
+  const value = a.value / b.value;
+  return {
+    value,
+    se: value * Math.hypot(a.se / a.value, b.se / b.value),
+    sys: Math.abs(value) * Math.hypot(a.sys / a.value, b.sys / b.value),
+  };
+}
+
+function shareOf(ledger: LedgerFigures): Figure {
+  return ratio(ledger.made, ledger.available);
+}
