@@ -266,11 +266,14 @@ function withErrors(
       high: figure(entries.high, angle, sysDirection),
       low: figure(entries.low, angle, sysDirection),
       trim: figure(0, 0),
-      speed: figure(entries.speed, Math.hypot(direction, windSpeed * scale, receiver), Math.hypot(sysDirection, sysWind)),
+      speed: figure(
+        entries.speed,
+        Math.hypot(direction, windSpeed * scale, receiver),
+        Math.hypot(sysDirection, sysWind),
+      ),
       overstood: figure(entries.overstood, Math.hypot(receiver, 0.2 * entries.overstood)),
       stopped: figure(entries.stopped, receiver),
       shifts: figure(entries.shifts, swing * scale),
     },
   };
 }
-

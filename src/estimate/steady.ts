@@ -113,9 +113,18 @@ export function steadyFigures(blocks: readonly BlockEstimate[], errors: ErrorMod
     speed: { value: speed, se: receiver, sys: 0 },
     vmg: { value: at((b) => b.vmg), se: Math.hypot(cross * turnSe, receiver), sys: cross * gammaSys },
     tws: { value: tws, se: tws * windSpeed, sys: tws * errors.sysSpeed },
-    aws: propagate(slope.aws, at((b) => b.aws)),
-    beta: propagate(slope.beta, at((b) => b.beta)),
-    ceiling: propagate(slope.ceiling, at((b) => ceilingVmg(b.tws, b.beta))),
+    aws: propagate(
+      slope.aws,
+      at((b) => b.aws),
+    ),
+    beta: propagate(
+      slope.beta,
+      at((b) => b.beta),
+    ),
+    ceiling: propagate(
+      slope.ceiling,
+      at((b) => ceilingVmg(b.tws, b.beta)),
+    ),
   };
 }
 

@@ -104,7 +104,8 @@ function monotonePieces(progress: Float64Array, from: number, to: number, turnBa
   let low = from;
   let rising: boolean | null = null;
   const close = (at: number): void => {
-    if (at > start) pieces.push({ from: start, to: at, rise: progress[at] - progress[start], follows: pieces.length > 0 });
+    if (at > start)
+      pieces.push({ from: start, to: at, rise: progress[at] - progress[start], follows: pieces.length > 0 });
     start = at;
   };
   for (let i = from; i < to; i++) {
@@ -204,13 +205,7 @@ function closest(sailing: Sailing, row: number, mark: Place): number {
   return best;
 }
 
-function legStart(
-  piece: Piece,
-  sailing: Sailing,
-  angle: Float64Array,
-  course: Course,
-  thresholds: Thresholds,
-): number {
+function legStart(piece: Piece, sailing: Sailing, angle: Float64Array, course: Course, thresholds: Thresholds): number {
   const gun = course.gun === null ? null : Math.max(0, Math.ceil(course.gun));
   if (gun !== null && piece.rise > 0 && piece.from - gun < 120) return gun;
   const mark = piece.rise > 0 ? course.leeward : course.windward;

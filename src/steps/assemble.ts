@@ -61,7 +61,9 @@ export function assemble(a: Assembly): Result {
 /** Counts of one file; fixes the smoother turned away are taken off those the importer kept. */
 function inputEntry({ file, log }: ReadFile, boats: readonly CleanBoat[]): InputEntry {
   const user = boats.find((boat) => boat.logs.trackFiles.includes(file) && boat.logs.trackFiles.length === 1);
-  const later = user ? user.rejected.map((r) => ({ reason: r.reason, count: r.count, first_line: r.firstRow + 1 })) : [];
+  const later = user
+    ? user.rejected.map((r) => ({ reason: r.reason, count: r.count, first_line: r.firstRow + 1 }))
+    : [];
   const lost = later.reduce((sum, r) => sum + r.count, 0);
   const gaps = boats.find((boat) => boat.logs.trackFiles[0] === file)?.gaps ?? [];
   return {

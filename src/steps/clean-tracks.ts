@@ -43,7 +43,13 @@ export function cleanTracks(logs: ReadLogs, check: CheckRecording): CleanTracks 
       issues.push(...instruments.issues);
       track = attachInstruments(track, instruments.recording);
     }
-    return { logs: boat, track: { ...track, name: boat.reference.name }, noise: smooth.noise, rejected: smooth.rejected, gaps: smooth.gaps };
+    return {
+      logs: boat,
+      track: { ...track, name: boat.reference.name },
+      noise: smooth.noise,
+      rejected: smooth.rejected,
+      gaps: smooth.gaps,
+    };
   });
   return { frame, boats, issues };
 }

@@ -4,7 +4,14 @@ import type { Issue } from '../recording/issues.js';
 import { UserError } from '../recording/issues.js';
 import type { Track } from '../recording/track.js';
 import { tackSign } from '../segment/sailing.js';
-import { estimateCarry, estimateLag, estimateOffset, type CourseBlock, type LagEstimate, type OffsetEstimate } from '../wind/align.js';
+import {
+  estimateCarry,
+  estimateLag,
+  estimateOffset,
+  type CourseBlock,
+  type LagEstimate,
+  type OffsetEstimate,
+} from '../wind/align.js';
 import { windAtBoat, type CorrectedSource, type WindAtBoat } from '../wind/field.js';
 import { bisectorOf, guessWindDirection, windFromLooks, type DirectionLook } from '../wind/from-tracks.js';
 import { windSums, type WindSource } from '../wind/source.js';
@@ -57,7 +64,15 @@ export function findWind(tracks: readonly Track[], sources: readonly WindSource[
     atBoats = tracks.map((track, boat) => windAtBoat(boat, track, corrected));
     sailed = atBoats.map((wind, boat) => sailBoat(boat, wind));
   }
-  return { sources: corrected, atBoats, sailed, offsets, lags, directionInferred: false, issues: lagIssues(measured, lags) };
+  return {
+    sources: corrected,
+    atBoats,
+    sailed,
+    offsets,
+    lags,
+    directionInferred: false,
+    issues: lagIssues(measured, lags),
+  };
 }
 
 function usedLag(estimate: LagEstimate | null | undefined): number {

@@ -79,7 +79,12 @@ function anchorOfBest({ sailed, models }: JudgeInput): Anchor | null {
   if (best < 0) return null;
   const { blocks } = sailed[best];
   const of = (pick: (b: (typeof blocks)[number]) => number): number => median(blocks.map(pick));
-  const anchor = anchorAt(models[best].curve, of((b) => b.gamma), of((b) => b.speed), of((b) => b.tws));
+  const anchor = anchorAt(
+    models[best].curve,
+    of((b) => b.gamma),
+    of((b) => b.speed),
+    of((b) => b.tws),
+  );
   return Number.isFinite(anchor.scale) && anchor.scale > 0 ? anchor : null;
 }
 

@@ -83,7 +83,10 @@ function crossing(misfit: readonly number[], best: number, edge: number): number
 
 /** Mean square of the course angle about its mean within each boat's tacks, for a lag. [deg^2] */
 function spreadAt(source: WindSource, blocks: readonly CourseBlock[], lag: number): number {
-  return spreadOf(blocks, (block) => readWind(source, block.time - lag, Math.max(source.window, block.seconds)).direction);
+  return spreadOf(
+    blocks,
+    (block) => readWind(source, block.time - lag, Math.max(source.window, block.seconds)).direction,
+  );
 }
 
 function spreadOf(blocks: readonly CourseBlock[], windAt: (block: CourseBlock) => number): number {
@@ -118,8 +121,7 @@ export function estimateCarry(source: WindSource, blocks: readonly CourseBlock[]
   if (blocks.length < FEWEST_BLOCKS) return 1;
   const n = INDEPENDENT * blocks.length;
   const misfit = CARRIES.map(
-    (carry) =>
-      n * Math.log(spreadOf(blocks, (block) => readAt({ source, offset: 0, lag: 0, carry }, block).direction)),
+    (carry) => n * Math.log(spreadOf(blocks, (block) => readAt({ source, offset: 0, lag: 0, carry }, block).direction)),
   );
   let best = CARRIES.length - 1;
   misfit.forEach((value, k) => {

@@ -168,7 +168,10 @@ export function windFromLooks(
   return { source, se: variance.map((v) => Math.sqrt(v)) };
 }
 
-function walkSmoother(information: Float64Array, weighted: Float64Array): { value: Float64Array; variance: Float64Array } {
+function walkSmoother(
+  information: Float64Array,
+  weighted: Float64Array,
+): { value: Float64Array; variance: Float64Array } {
   const n = information.length;
   const value = new Float64Array(n);
   const variance = new Float64Array(n);

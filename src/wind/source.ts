@@ -4,9 +4,7 @@ export type WindKind = 'station' | 'on-board' | 'tracks' | 'by-hand';
 
 /** Where a wind sensor is, in the local plane: fixed, moving (one entry a row of the source), or not known. [m] */
 export type SensorPlace =
-  | { readonly x: number; readonly y: number }
-  | { readonly xs: Float64Array; readonly ys: Float64Array }
-  | null;
+  { readonly x: number; readonly y: number } | { readonly xs: Float64Array; readonly ys: Float64Array } | null;
 
 /**
  * One source of true wind on whole UTC seconds. Direction is where the wind comes from; sums allow a mean over any

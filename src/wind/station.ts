@@ -30,7 +30,13 @@ export function stationSource(recording: Recording, options: StationOptions): Wi
   const speed = channelValues(recording, 'tws');
   const t0 = Math.floor(direction.time[0] + options.clockS);
   const n = Math.ceil(direction.time.at(-1)! + options.clockS) - t0 + 1;
-  const east = toSeconds(direction.time, Float64Array.from(direction.value, (d) => eastOf(d + options.offset)), t0, n, options);
+  const east = toSeconds(
+    direction.time,
+    Float64Array.from(direction.value, (d) => eastOf(d + options.offset)),
+    t0,
+    n,
+    options,
+  );
   const north = toSeconds(
     direction.time,
     Float64Array.from(direction.value, (d) => northOf(d + options.offset)),
