@@ -1,5 +1,5 @@
 import { DEG } from '../math/angles.js';
-import { rowAt, type BetweenBoat } from './boat.js';
+import { rowAt, type BetweenBoat, type UpwindLeg } from './boat.js';
 import { sharedDirection, WindSum, type UnitVector } from './shared-wind.js';
 
 /** Blocks of settled sailing that two boats share: same second, same tack, close by. */
@@ -7,7 +7,7 @@ import { sharedDirection, WindSum, type UnitVector } from './shared-wind.js';
 export interface PairingOptions {
   /** Farther apart than this the wind is not shared. 300 m: gusts resemble each other over a few hundred metres. [m] */
   readonly maxDistance: number;
-  /** Nearer to the windward mark than this the boats steer for the mark. [m] */
+  /** Nearer to the windward mark than this the boats steer for the mark; on a short beat, a third of it. [m] */
   readonly markClear: number;
   /** Length aimed at, and the least. 30 s: longer than helm and waves, shorter than a tack's sailing. [s] */
   readonly blockSeconds: number;
@@ -83,12 +83,13 @@ export function pairBlocks(
 /** Stretches in which every second counts for both boats, on one tack, at least the least length. */
 function commonStretches(first: BetweenBoat, second: BetweenBoat, options: PairingOptions): Stretch[] {
   const stretches: Stretch[] = [];
-  for (const { lap, from, to } of first.legs) {
+  for (const leg of first.legs) {
+    const { lap, from, to } = leg;
     const other = second.legs.find((leg) => leg.lap === lap);
     if (!other) continue;
     let start = -1;
     for (let row = from; row <= to; row++) {
-      const tack = row < to ? sharedTack(first, row, second, other, options) : 0;
+      const tack = row < to ? sharedTack(first, row, leg, second, other, options) : 0;
       const goesOn = start >= 0 && tack !== 0 && tack === first.tack[start];
       if (goesOn) continue;
       if (start >= 0 && row - start >= options.minSeconds) {
@@ -105,22 +106,25 @@ function commonStretches(first: BetweenBoat, second: BetweenBoat, options: Pairi
 function sharedTack(
   first: BetweenBoat,
   row: number,
+  own: UpwindLeg,
   second: BetweenBoat,
-  leg: { from: number; to: number },
+  leg: UpwindLeg,
   options: PairingOptions,
 ): number {
   const other = rowAt(second, first.t0 + row - options.shift);
   if (other < leg.from || other >= leg.to || !first.settled[row] || !second.settled[other]) return 0;
   const tack = first.tack[row];
   if (tack !== second.tack[other]) return 0;
-  if (nearMark(first, row, options) || nearMark(second, other, options)) return 0;
+  if (nearMark(first, row, own, options) || nearMark(second, other, leg, options)) return 0;
   const distance = Math.hypot(first.x[row] - second.x[other], first.y[row] - second.y[other]);
   const known = !Number.isNaN(first.ux[row]) && !Number.isNaN(second.ux[other]);
   return known && distance <= options.maxDistance ? tack : 0;
 }
 
-function nearMark(boat: BetweenBoat, row: number, options: PairingOptions): boolean {
-  return boat.toMark !== undefined && boat.toMark[row] < options.markClear;
+function nearMark(boat: BetweenBoat, row: number, leg: UpwindLeg, options: PairingOptions): boolean {
+  if (!boat.toMark) return false;
+  const clear = Math.min(options.markClear, boat.toMark[leg.from] / 3);
+  return boat.toMark[row] < (Number.isNaN(clear) ? options.markClear : clear);
 }
 
 /** Vector means first, then speed and angle: a mean of angles or speeds would read noise as a loss. */

@@ -64,29 +64,24 @@ function summarise(blocks: readonly PairBlock[]): Omit<PairComparison, 'boats' |
  * All pairs of a fleet, in the order given, with verdicts that hold for the report as a whole.
  *
  * @param boats   Two boats or more.
- * @param options Distances and lengths; `pairs` limits the comparison to the pairs of names given.
+ * @param options Distances and lengths; `only` limits the comparison to the boats named.
  * @returns One result a pair.
  */
 export function comparePairs(
   boats: readonly BetweenBoat[],
-  options: Partial<PairingOptions> & { pairs?: readonly (readonly [string, string])[] } = {},
+  options: Partial<PairingOptions> & { only?: readonly string[] } = {},
 ): { results: PairResult[]; comparisons: PairComparison[] } {
-  const { pairs, ...pairing } = options;
-  const comparisons = pairsOf(boats, pairs).map(([first, second]) => comparePair(first, second, pairing));
+  const { only, ...pairing } = options;
+  const comparisons = pairsOf(boats, only).map(([first, second]) => comparePair(first, second, pairing));
   const chances = chancesOf(comparisons);
   const results = comparisons.map((pair, k) => pairResult(pair, chances[k]));
   return { results, comparisons };
 }
 
-function pairsOf(
-  boats: readonly BetweenBoat[],
-  wanted?: readonly (readonly [string, string])[],
-): [BetweenBoat, BetweenBoat][] {
-  const all = boats.flatMap((first, i) =>
-    boats.slice(i + 1).map((second): [BetweenBoat, BetweenBoat] => [first, second]),
-  );
-  if (!wanted) return all;
-  return all.filter(([a, b]) => wanted.some((pair) => pair.includes(a.name) && pair.includes(b.name)));
+/** Every two boats once, in the order given. */
+export function pairsOf(boats: readonly BetweenBoat[], only?: readonly string[]): [BetweenBoat, BetweenBoat][] {
+  const wanted = only ? boats.filter(({ name }) => only.includes(name)) : boats;
+  return wanted.flatMap((first, i) => wanted.slice(i + 1).map((second): [BetweenBoat, BetweenBoat] => [first, second]));
 }
 
 function pairResult(pair: PairComparison, p: PairChances): PairResult {

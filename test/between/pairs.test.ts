@@ -178,7 +178,7 @@ describe('a pair result', () => {
     expect(rest.vmg.value).not.toBeNaN();
   });
   it('compares only the pairs asked for', () => {
-    const only = comparePairs(fleet, { pairs: [['Boat 3', 'Boat 1']] }).results;
+    const only = comparePairs(fleet, { only: ['Boat 3', 'Boat 1'] }).results;
     expect(only.map(({ boats }) => boats)).toEqual([['Boat 1', 'Boat 3']]);
   });
 });

@@ -1,0 +1,95 @@
+import { onOneClock, type ClockCorrection } from './between/common-clock.js';
+import type { BetweenBoat } from './between/boat.js';
+import { ladder, type LadderLeg } from './between/ladder.js';
+import { comparePairs, pairsOf, type PairComparison } from './between/pairs.js';
+import { debrief, type Debrief, type DebriefOptions } from './debrief.js';
+import type { Race } from './files/race-types.js';
+import type { LogSource } from './importers/types.js';
+import { UserError } from './recording/issues.js';
+import type { BoatResult, Warning } from './result/result.js';
+import type { BoatSeries, MarkPlace } from './result/series.js';
+
+export interface CompareOptions extends DebriefOptions {
+  /** Names of the boats to compare, all when left out. */
+  readonly pairs?: readonly string[];
+}
+
+/** Gains of the first boat over the second along each beat, for the page. */
+export interface PairLadder {
+  readonly boats: readonly [string, string];
+  readonly legs: readonly LadderLeg[];
+}
+
+export interface Comparison extends Debrief {
+  /** What stands behind `result.pairs`, in the same order: blocks and sampling errors. */
+  readonly comparisons: readonly PairComparison[];
+  readonly ladders: readonly PairLadder[];
+}
+
+/**
+ * Boats of one race against each other.
+ *
+ *     debrief -> boats on one clock -> pairs of settled blocks, ladders -> result with pairs
+ *
+ * @param race What is to be compared.
+ * @param open Opens a log by the name it has in `race`.
+ * @throws UserError when there are fewer than two boats, or for what a debrief cannot use.
+ */
+export async function compare(
+  race: Race,
+  open: (file: string) => LogSource,
+  options: CompareOptions = {},
+): Promise<Comparison> {
+  const { pairs: only, ...rest } = options;
+  if (race.boats.length < 2) {
+    throw new UserError(`${race.name}: one boat alone cannot be compared`, {
+      exitCode: 2,
+      suggestion: 'Give the tracks of two boats or more.',
+    });
+  }
+  const { result, series } = await debrief(race, open, rest);
+  const marks = race.runs.length > 0 ? [] : series.marks;
+  const { boats, corrected } = onOneClock(series.boats.map((boat, k) => betweenBoat(boat, result.boats[k], marks)));
+  const { results: pairs, comparisons } = comparePairs(boats, only ? { only } : {});
+  const ladders = pairsOf(boats, only).map(([first, second]) => ({
+    boats: [first.name, second.name] as const,
+    legs: ladder(first, second),
+  }));
+  const warnings = [...result.warnings, ...corrected.map(clockWarning)];
+  return { result: { ...result, pairs, warnings }, series, comparisons, ladders };
+}
+
+function betweenBoat(series: BoatSeries, result: BoatResult, marks: readonly MarkPlace[]): BetweenBoat {
+  const { name, t0, n, x, y, ux, uy, twd, tws, settled, gamma } = series;
+  const windward = marks.find(({ role }) => role === 'windward')?.places ?? [];
+  const distance = (i: number): number => Math.min(...windward.map((mark) => Math.hypot(x[i] - mark.x, y[i] - mark.y)));
+  return {
+    name,
+    t0,
+    n,
+    x,
+    y,
+    ux,
+    uy,
+    twd,
+    tws,
+    settled,
+    tack: Int8Array.from(gamma, (angle) => (Number.isNaN(angle) ? 0 : angle >= 0 ? 1 : -1)),
+    ...(windward.length > 0 ? { toMark: x.map((_, i) => distance(i)) } : {}),
+    legs: series.legs.flatMap(({ index, from, to }) => {
+      const leg = result.legs[index];
+      return leg.kind === 'upwind' ? [{ lap: leg.lap, from, to }] : [];
+    }),
+    manoeuvres: series.manoeuvres.map(({ kind, entry, at, exit }) => ({ kind, from: entry, at, to: exit })),
+  };
+}
+
+function clockWarning({ name, correction, skew }: ClockCorrection): Warning {
+  const ahead = correction < 0 ? 'ahead of' : 'behind';
+  return {
+    code: 'clock-skew',
+    message:
+      `The clock of ${name} is ${Math.abs(correction)} s ${ahead} the others' (${skew.note}, give or take ` +
+      `${Math.round(skew.se)} s). For the comparison it was set right; its own figures stand as logged.`,
+  };
+}
