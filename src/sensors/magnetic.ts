@@ -33,13 +33,14 @@ export interface Declination {
 }
 
 /**
- * Magnetic declination at sea level.
+ * Magnetic declination.
  *
  *     se² = 0.26² + (5417/H)²  [deg, H the horizontal field in nT; 1, error model]  + (0.15 x years off)²
  *
  * @param lat  Latitude. [deg]
  * @param lon  Longitude. [deg]
  * @param time UTC epoch. [s]
+ * @param altitude Height above the ellipsoid; 0 for boats. [km]
  * @returns Declination, east positive, its standard error and how far the date lies outside the model. [deg]
  *
  * Dates outside the model take the value of its nearest date. Accuracy is poor where H < 2000 nT, near the magnetic
@@ -47,9 +48,9 @@ export interface Declination {
  *
  * [1] The US/UK World Magnetic Model for 2025-2030, NOAA/NCEI and BGS, 2024.
  */
-export function declination(lat: number, lon: number, time: number): Declination {
+export function declination(lat: number, lon: number, time: number, altitude = 0): Declination {
   const within = Math.min(MODEL_SPAN.to, Math.max(MODEL_SPAN.from, time));
-  const point = geomagnetism.model(new Date(within * 1000)).point([lat, wrap180(lon), 0]);
+  const point = geomagnetism.model(new Date(within * 1000)).point([lat, wrap180(lon), altitude]);
   const yearsOff = Math.abs(time - within) / YEAR;
   const se = Math.hypot(0.26, 5417 / point.h, SE_PER_YEAR * yearsOff);
   return { value: point.decl, se, yearsOff };
