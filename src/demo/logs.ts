@@ -7,7 +7,7 @@ import type { WindAt } from './wind.js';
 const KNOT = 1852 / 3600;
 
 /** Middle of the start line; metres a degree there (WGS84 at 46.912 N). */
-export const ORIGIN = { lat: 46.912, lon: 9.061, metresLat: 111170.2, metresLon: 76186.6 } as const;
+export const ORIGIN = { lat: 46.912, lon: 9.061, metresLat: 111169.1, metresLon: 76180.8 } as const;
 
 export function position({ x, y }: Place): [string, string] {
   return [(ORIGIN.lat + y / ORIGIN.metresLat).toFixed(7), (ORIGIN.lon + x / ORIGIN.metresLon).toFixed(7)];

@@ -34,6 +34,7 @@ describe.each(GATES)('$condition', (gate) => {
 
   it('drops no leg in silence', () => {
     const { quantities, nulls } = run.measured;
+    expect(run.failed).toEqual([]);
     for (const quantity of ['gamma', 'speed %', 'vmg %'] as const) {
       expect(quantities[quantity].length + nulls[quantity], quantity).toBe(run.upwindLegs);
       expect(nulls[quantity], `${quantity} without a value`).toBe(0);

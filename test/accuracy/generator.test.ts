@@ -103,6 +103,18 @@ describe('its truth', () => {
   });
 });
 
+describe('its windows', () => {
+  it.each(race.truth.boats.map((boat) => [boat.name, boat] as const))('cover the day without a gap: %s', (_, boat) => {
+    expect(boat.windows.map((w) => w.what)).toEqual(['sail-out', 'milling', 'race', 'waiting', 'sail-home']);
+    expect(boat.windows[0].from).toBe(boat.t0);
+    boat.windows.slice(1).forEach((w, k) => expect(w.from).toBe(boat.windows[k].to));
+    expect(boat.windows.find((w) => w.what === 'race')).toMatchObject({
+      from: race.truth.gun,
+      to: boat.legs.at(-1)!.end,
+    });
+  });
+});
+
 describe('its logs', () => {
   it('are the same bytes for the same seed, and others for another', () => {
     const settings = condition('generator test', { current: 0.6, mastheads: 2 });
@@ -179,12 +191,12 @@ describe('planted faults', () => {
 
   it.each(faulty)('are really there, and cost more than chance elsewhere: %s', (_, { condition: c }) => {
     const causes = SHOWS_IN[Object.keys(c.faults)[0] as keyof typeof SHOWS_IN];
-    const metres = [1, 2, 3, 4, 5, 6].map((seed) => {
+    const metres = [1, 2, 3, 4].map((seed) => {
       const excess = trueExcess(generateRace(c, seed).truth);
       return causes.reduce((sum, cause) => sum + (excess[cause as PlantedCause] ?? 0), 0);
     });
     const mean = metres.reduce((sum, m) => sum + m, 0) / metres.length;
     expect(mean).toBeGreaterThan(15);
-    expect(metres.filter((m) => m > 0).length).toBeGreaterThanOrEqual(5);
+    expect(metres.filter((m) => m > 0).length).toBeGreaterThanOrEqual(3);
   });
 });

@@ -156,7 +156,7 @@ function legResult(boat: TrueBoat, leg: TrueLeg, slips: Slips): LegResult {
 
 function optimumOf(boat: TrueBoat, leg: TrueLeg, slips: Slips): LegResult['optimum'] {
   const rows = settledRows(boat, leg);
-  const best = rows.reduce((sum, i) => sum + boat.bestVmg[i]!, 0) / rows.length;
+  const best = rows.reduce((sum, i) => sum + boat.bestVmg[i], 0) / rows.length;
   const rest = { gamma_deg: null, speed_kn: null, beta_deg: null, leeway_deg: null, sheeting_deg: null };
   return { ...rest, vmg_kn: q(best / KNOT, slips) };
 }

@@ -64,6 +64,7 @@ async function main(args: readonly string[]): Promise<void> {
         `(${tacks.hits} found, ${tacks.missed} missed, ${tacks.extra} extra); ` +
         `legs ${legs.found} found, ${legs.missed} missed, ${legs.extra} extra\n`,
     );
+    for (const line of run.failed) console.log(`FAILED ${line}\n`);
     console.log(table(rowsOf(measured, own)));
     if (Object.keys(trial.condition.faults).length > 0) console.log(`\n${excessLines(run)}`);
   }

@@ -51,10 +51,10 @@ describe('its files', () => {
     );
     expect(digests).toMatchInlineSnapshot(`
       [
-        "race.yaml f338346303c2058e",
-        "corrie.gpx 0017377fd85f3f8f",
+        "race.yaml 89cbf4231a340090",
+        "corrie.gpx 7a0ae752b7f937a1",
         "corrie-mast.csv be1b5c6b3f2913ed",
-        "linnet.csv 8ad2fcff5758ce70",
+        "linnet.csv ed531556588b84a4",
         "committee.csv 1b187e94d64e6f53",
       ]
     `);
@@ -117,7 +117,7 @@ function firstBeat(rows: readonly Row[]): { angle: number; knots: number }[] {
   const stretches: { angle: number; knots: number }[] = [];
   for (let t = gun + 40; t < gun + 480; t += 30) {
     const [a, b, c] = [t, t + 15, t + 30].map((at) => rows.find((row) => row.t === at)!);
-    const leg = (p: Row, q: Row): [number, number] => [(q.lon - p.lon) * 76186.6, (q.lat - p.lat) * 111170.2];
+    const leg = (p: Row, q: Row): [number, number] => [(q.lon - p.lon) * 76180.8, (q.lat - p.lat) * 111169.1];
     const [first, second] = [leg(a, b), leg(b, c)];
     const course = (v: [number, number]): number => (Math.atan2(v[0], v[1]) * 180) / Math.PI;
     if (Math.abs(apart(course(first), course(second))) > 10) continue;
@@ -152,7 +152,7 @@ describe('its afternoon', () => {
     for (let i = 60; i < rows.length; i += 30) {
       const path = rows.slice(i - 30, i).reduce((sum, r) => sum + r.sog * KNOT, 0);
       const [p, q] = [rows[i - 30], rows[i]];
-      const straight = Math.hypot((q.lon - p.lon) * 76186.6, (q.lat - p.lat) * 111170.2);
+      const straight = Math.hypot((q.lon - p.lon) * 76180.8, (q.lat - p.lat) * 111169.1);
       worst = Math.max(worst, straight - path);
     }
     // A straight line is never longer than the way sailed, but for the receiver's wander.

@@ -18,7 +18,15 @@ import { sailRace, type Course, type Voyage } from './voyage.js';
 import { drawWind, type Wind } from './wind.js';
 
 export { condition, USUAL, type Condition, type Faults } from './condition.js';
-export { PHASES, type Phase, type TrueBoat, type TrueLeg, type TrueTurn, type Truth } from './truth.js';
+export {
+  PHASES,
+  type Phase,
+  type TrueBoat,
+  type TrueLeg,
+  type TrueTurn,
+  type TrueWindow,
+  type Truth,
+} from './truth.js';
 
 export interface GeneratedRace {
   readonly race: Race;
@@ -140,6 +148,7 @@ function trueBoat(voyage: Voyage, compassError: number | null, mastheadError: nu
     settled: log.settled.slice(0, n),
     turns: nearMarks(log.turns, voyage.legs),
     legs: voyage.legs,
+    windows: voyage.windows(),
     compassError,
     mastheadError,
     habit: { angle: crew.angle, speed: crew.speed * (1 - (crew.faults.slow ?? 0)), sheeting: crew.sheeting },

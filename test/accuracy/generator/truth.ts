@@ -46,6 +46,13 @@ export interface TrueLeg {
   readonly end: number;
 }
 
+/** A part of the day, UTC seconds, end not included. */
+export interface TrueWindow {
+  readonly what: 'sail-out' | 'milling' | 'race' | 'waiting' | 'sail-home';
+  readonly from: number;
+  readonly to: number;
+}
+
 /** One row a second on whole UTC seconds; row i is at t0 + i. */
 export interface TrueBoat {
   readonly name: string;
@@ -83,6 +90,7 @@ export interface TrueBoat {
   readonly settled: Uint8Array;
   readonly turns: readonly TrueTurn[];
   readonly legs: readonly TrueLeg[];
+  readonly windows: readonly TrueWindow[];
   /** What its instruments add to the truth (so the correction is the opposite); null without a masthead log. [deg] */
   readonly compassError: number | null;
   readonly mastheadError: number | null;

@@ -3,7 +3,7 @@ import type { Condition } from './condition.js';
 import { cosd, pointing, signed, sind } from './directions.js';
 import { advance, perform, RATE, sideOf, type Act, type Boat } from './hull.js';
 import type { Chance } from './random.js';
-import type { Phase, TrueLeg } from './truth.js';
+import type { Phase, TrueLeg, TrueWindow } from './truth.js';
 
 export interface Place {
   readonly x: number;
@@ -40,6 +40,8 @@ export interface Voyage {
   readonly finish: number;
   /** Waits until `until`, then sails home for `seconds`. */
   readonly goHome: (until: number, seconds: number) => void;
+  /** Parts of the day so far. */
+  readonly windows: () => TrueWindow[];
 }
 
 const TOO_LONG = 2400;
@@ -66,8 +68,14 @@ export function sailRace(boat: Boat, course: Course, condition: Condition, chanc
   runUntil(watch, course.gun - 24, () => steerFor(watch, watch.waypoint, 'approach'));
   runUntil(watch, course.gun, () => closeHauled(watch));
   race(watch);
+  const windows: TrueWindow[] = [
+    { what: 'sail-out', from: boat.log.t0, to: armed },
+    { what: 'milling', from: armed, to: course.gun },
+    { what: 'race', from: course.gun, to: watch.finished },
+  ];
   return {
     boat,
+    windows: () => windows,
     legs: closeLegs(watch),
     finish: watch.finished,
     goHome: (until, seconds) => {
@@ -77,6 +85,10 @@ export function sailRace(boat: Boat, course: Course, condition: Condition, chanc
       stop(watch, 'waiting', chance.between(15, 40));
       runUntil(watch, until, () => idleAbout(watch));
       runUntil(watch, until + seconds, () => sailUp(watch, 'sail-home'));
+      windows.push(
+        { what: 'waiting', from: watch.finished, to: until },
+        { what: 'sail-home', from: until, to: until + seconds },
+      );
     },
   };
 }
