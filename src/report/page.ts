@@ -20,7 +20,7 @@ import { termCards } from './terms.js';
  * @returns One self-contained HTML document; the same input gives the same bytes.
  */
 export function debriefPage(result: Result, series: RaceSeries): string {
-  return page(result, series, 'Debrief', [
+  return page(result, series, 'Debrief', 'debrief', [
     verdicts(result),
     legs(result),
     replay(result, series),
@@ -35,13 +35,8 @@ export function debriefPage(result: Result, series: RaceSeries): string {
  * @returns One self-contained HTML document; the same input gives the same bytes.
  */
 export function comparePage(result: Result, series: RaceSeries): string {
-  return page(result, series, 'Boat against boat', [
-    pairs(result),
-    verdicts(result),
-    legs(result),
-    replay(result, series),
-    ledger(result),
-  ]);
+  const front = [pairs(result), verdicts(result), ledger(result), legs(result), replay(result, series)];
+  return page(result, series, 'Boat against boat', 'compare', front);
 }
 
 const NAVIGATION: readonly (readonly [string, string])[] = [
@@ -67,13 +62,13 @@ function contents(withPairs: boolean): Safe {
   </nav>`;
 }
 
-function page(result: Result, series: RaceSeries, kind: string, front: readonly Part[]): string {
+function page(result: Result, series: RaceSeries, kind: string, className: string, front: readonly Part[]): string {
   const appendix = html`<div class="after">
     ${seriesSection(series)}${tacks(result, series)}${angles(result, series)}${otherLegs(result)}${trust(result)}${glossary()}
   </div>`;
   const body = html`<a class="skip" href="#verdict">To the verdict</a
     >${masthead(result, series, kind)}${contents((result.pairs?.length ?? 0) > 0)}
-    <main>${front}${appendix}</main>
+    <main class="${className}">${front}${appendix}</main>
     ${scrubBar(series)}
     <div id="tip" class="card" popover="manual" role="status"></div>
     ${termCards()}`;

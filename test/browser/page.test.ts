@@ -281,8 +281,8 @@ describe.skipIf(!browser)('the page in a browser', () => {
     }
   });
 
-  test('a race of two boats and two laps prints on two leaves before the appendix', async () => {
-    const { page, close } = await open('full');
+  test.each(['full', 'compare'])('%s: two boats and two laps print on two leaves before the appendix', async (name) => {
+    const { page, close } = await open(name);
     await page.waitForSelector('html.live');
     await page.evaluate(() => document.querySelector('.after')!.remove());
     const pdf = (await page.pdf({ preferCSSPageSize: true, printBackground: true })).toString('latin1');

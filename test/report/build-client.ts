@@ -19,12 +19,24 @@ async function script(): Promise<string> {
     format: 'iife',
     target: TARGET,
     write: false,
+    metafile: true,
     legalComments: 'none',
     charset: 'ascii',
     absWorkingDir: ROOT,
     tsconfig: `${ROOT}src/report/client/tsconfig.json`,
   });
-  return out.outputFiles[0]!.text.trim();
+  const [made] = Object.values(out.metafile.outputs);
+  return notices(made!.inputs) + out.outputFiles[0]!.text.trim();
+}
+
+/** Parts of other hands in the bundle: their licences ask that the notice goes with every copy. */
+function notices(inputs: Readonly<Record<string, { bytesInOutput: number }>>): string {
+  const held = Object.entries(inputs).filter(([, { bytesInOutput }]) => bytesInOutput > 0);
+  const names = new Set(held.flatMap(([file]) => /node_modules\/([^/]+)\//.exec(file)?.[1] ?? []));
+  const texts = [...names]
+    .sort()
+    .map((name) => `${name}:\n${readFileSync(`${ROOT}node_modules/${name}/LICENSE`, 'utf8').trim()}`);
+  return `/*\n${texts.join('\n\n')}\n*/\n`;
 }
 
 async function sheet(): Promise<string> {

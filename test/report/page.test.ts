@@ -31,7 +31,7 @@ describe('the page as a string', () => {
     const body = page.slice(page.indexOf('<body>')).replace(/<script[\s\S]*?<\/script>/g, '');
     expect(body).not.toMatch(/\s(?:style|on[a-z]+)="/);
     expect(body).not.toMatch(/\s(?:src|href)="(?!#)/);
-    expect(page).toContain("default-src &#39;none&#39;");
+    expect(page).toContain('default-src &#39;none&#39;');
   });
 
   test.each([

@@ -45,35 +45,33 @@ function pairPlate(pair: PairResult): Safe {
     d &&
     html`${nameOf(first)} less ${nameOf(second)}: ${inline(d, 'kn', { sign: true })} of ${term('vmg')}, over
     ${plural(pair.blocks, 'pair')} of stretches sailed side by side on one tack (${duration(pair.settled_s)} minutes).`;
+  const heads = ['Leg', 'VMG', 'by height', 'by speed', 'Course angle', 'Gained', 'Stretches'];
+  const bars = [
+    { name: 'VMG', value: d },
+    { name: 'by height', value: pair.height_part_kn },
+    { name: 'by speed', value: pair.speed_part_kn },
+  ];
+  const plate = figure({
+    svg: pairBars(bars, { first, second }),
+    title: html`${nameOf(first)} and ${nameOf(second)}`,
+    summary: html`Bars are two standard errors here. ${term('height', 'Height')} and ${term('quickness', 'speed')} add
+    up to the whole.`,
+  });
+  const notes = html`<ul class="notes">
+    ${pair.notes.map((n) => html`<li>${n}</li>`)}
+  </ul>`;
   return html`<div class="pair">
-    ${verdictOf(pair)}${figure({
-      svg: pairBars(
-        [
-          { name: 'VMG', value: d },
-          { name: 'by height', value: pair.height_part_kn },
-          { name: 'by speed', value: pair.speed_part_kn },
-        ],
-        { first, second },
-      ),
-      title: html`${nameOf(first)} and ${nameOf(second)}`,
-      summary: html`${amount} Bars are two standard errors here. ${term('height', 'Height')} and
-      ${term('quickness', 'speed')} add up to the whole.`,
-      table: table(
-        'Differences by leg, first less second',
-        ['Leg', 'VMG', 'by height', 'by speed', 'Course angle', 'Gained', 'Stretches'],
-        rows,
-      ),
-    })}${
-      pair.notes.length > 0 &&
-      html`<ul class="notes">
-        ${pair.notes.map((n) => html`<li>${n}</li>`)}
-      </ul>`
-    }
+    <div>
+      ${verdictOf(pair)}
+      <p>${amount}</p>
+      ${table('Differences, first less second', heads, rows)} ${pair.notes.length > 0 && notes}
+    </div>
+    ${plate}
   </div>`;
 }
 
 /** Boat against boat where they sailed in the same wind. */
 export function pairs(result: Result): Part {
   if (!result.pairs || result.pairs.length === 0) return null;
-  return section('pairs', 'Side by side', html`<div class="plates">${result.pairs.map(pairPlate)}</div>`);
+  return section('pairs', 'Side by side', html`${result.pairs.map(pairPlate)}`);
 }

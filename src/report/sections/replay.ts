@@ -50,8 +50,8 @@ export function seriesSection(series: RaceSeries): Safe {
     html`<div id="live-series" class="live-series" hidden></div>
       <div class="stills">${still}</div>
       <p class="plate-words">
-        Ticks at the head are tacks and
-        gybes.${missing.length > 0 && html` Not known in this race: ${missing.map((p) => p.title.toLowerCase()).join(', ')}.`}
+        Ticks at the head are tacks and gybes. Course angle and VMG are drawn to the scale of the
+        beats.${missing.length > 0 && html` Not known in this race: ${missing.map((p) => p.title.toLowerCase()).join(', ')}.`}
       </p>
       <details class="figures">
         <summary>The figures behind it, one row a minute</summary>
