@@ -97,3 +97,7 @@ export const season = async (
 /** The files of the demo race, by name. */
 export const demoFiles = async (): Promise<ReadonlyMap<string, string>> =>
   (await import('./demo/index.js')).demoFiles();
+
+/** Names of the built-in boats. */
+export const builtInBoats = async (): Promise<string[]> =>
+  (await import('./physics/built-in.js')).BUILT_IN_BOATS.map((boat) => boat.name);

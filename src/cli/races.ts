@@ -1,5 +1,5 @@
 import { basename, dirname, isAbsolute, relative, resolve, sep } from 'node:path';
-import { importLog, raceParts, readRaces } from '../index.js';
+import { builtInBoats, importLog, raceParts, readRaces } from '../index.js';
 import type { ImportOptions, Issue, LogGlance, LogSource, Overrides, Race, RaceDraft } from '../index.js';
 import { forMessages, kindOf, logSource, readText, standardInput, STDIN_NAME, unusable } from './files.js';
 import { nearestName } from './inputs.js';
@@ -66,6 +66,7 @@ async function prepare(plain: RaceDraft, names: FileNames, options: RaceOptions,
   const draft = parts.overridden(plain, { ...options, wind, ...(boat === undefined ? {} : { boat }) });
   const files = parts.logFiles(draft);
   for (const file of files) await mustBeThere(file, names.pathOf(file), draft);
+  await boatsMustBeKnown(draft, names, options.boat === undefined ? null : `--boat ${options.boat}`);
   const unnamed = parts.unnamedTracks(draft);
   const first = parts.filesOf(draft.content.boats[0].track)[0];
   const dayWanted = parts.needsDay(draft) || !draft.content.start;
@@ -112,6 +113,23 @@ async function mustBeThere(file: string, path: string, draft: RaceDraft): Promis
     `${who}: the log ${file} is not there.`,
     `${near === null ? 'Check the name.' : `Is it ${near}?`}${place}`,
   );
+}
+
+/** A boat is built in or a file. */
+async function boatsMustBeKnown(draft: RaceDraft, names: FileNames, option: string | null): Promise<void> {
+  const { content } = draft;
+  const known = await builtInBoats();
+  const written: [string | null | undefined, PropertyKey[]][] = [
+    [content.boat, ['boat']],
+    ...content.boats.map((boat, i): [string | null | undefined, PropertyKey[]] => [boat.boat, ['boats', i, 'boat']]),
+  ];
+  for (const [boat, path] of written) {
+    if (!boat || known.includes(boat) || (await kindOf(names.pathOf(boat))) === 'file') continue;
+    throw unusable(
+      `${option ?? `${draft.where(path)}: ${boat}`}: neither a built-in boat nor a boat file that is there.`,
+      `The built-in boats are ${known.join(', ')}${option === null ? '; paths are relative to the race file' : ''}.`,
+    );
+  }
 }
 
 /** Looks into the beginning of a log; at all of it where the beginning does not tell. */

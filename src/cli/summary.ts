@@ -36,7 +36,7 @@ function titleLines(result: Result, job: Job): string[] {
   return [outColour.bold(title), wind];
 }
 
-const HEAD = ['boat', 'beat', 'from', 'min', 'tacks', 'angle °', 'speed kn', 'VMG kn', 'of best', 'lost m'];
+const HEAD = ['boat', 'beat', 'start', 'min', 'tacks', 'angle °', 'speed kn', 'VMG kn', 'of best', 'lost m'];
 
 /** Beats of all boats, one line each. */
 function legTable(result: Result, zone: string | null): string[] {
@@ -44,10 +44,11 @@ function legTable(result: Result, zone: string | null): string[] {
     boat.legs.filter((leg) => leg.kind === 'upwind').map((leg) => legRow(boat, leg, zone)),
   );
   if (rows.length === 0) return ['No beat.'];
-  const widths = HEAD.map((head, i) => Math.max(head.length, ...rows.map((row) => row[i].length)));
+  const heads = HEAD.map((head) => (head === 'start' && zone === null ? 'start UTC' : head));
+  const widths = heads.map((head, i) => Math.max(head.length, ...rows.map((row) => row[i].length)));
   const line = (cells: readonly string[]): string =>
     cells.map((cell, i) => (i === 0 ? cell.padEnd(widths[i]) : cell.padStart(widths[i]))).join('  ');
-  return [outColour.dim(line(HEAD)), ...rows.map(line)];
+  return [outColour.dim(line(heads)), ...rows.map(line)];
 }
 
 function legRow(boat: BoatResult, leg: LegResult, zone: string | null): string[] {
