@@ -46,7 +46,7 @@ const CORRIE: Sailor = {
   hold: 50,
   atGun: onCourse(30, -4),
   before: [...MILLING, [24, 41]],
-  beats: [{ badTack: 2 }, { overstand: 60 }],
+  beats: [{ badTack: 2 }, { blind: [300, 600], overstand: 55 }],
 };
 
 const LINNET: Sailor = {

@@ -52,8 +52,8 @@ describe('its files', () => {
     expect(digests).toMatchInlineSnapshot(`
       [
         "race.yaml 89cbf4231a340090",
-        "corrie.gpx 7a0ae752b7f937a1",
-        "corrie-mast.csv be1b5c6b3f2913ed",
+        "corrie.gpx 3645bdddea712580",
+        "corrie-mast.csv 48c1436bce6be6fb",
         "linnet.csv ed531556588b84a4",
         "committee.csv 1b187e94d64e6f53",
       ]
