@@ -116,6 +116,15 @@ function contentOf(file: BoatFile) {
   };
 }
 
+interface ResistanceTable {
+  readonly speed: readonly number[];
+  readonly resistance: readonly number[];
+}
+
+function tableOf(rows: readonly (readonly [number, number])[]): ResistanceTable {
+  return { speed: rows.map(([knots]) => fromKnots(knots)), resistance: rows.map(([, newtons]) => newtons) };
+}
+
 function hullOf(hull: BoatFile['hull']) {
   const rows = hull.resistance;
   return {

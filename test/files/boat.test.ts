@@ -8,7 +8,7 @@ import { KNOT } from '../../src/math/units.js';
 
 /** The two types are declared apart so that neither folder leans on the other; here they are held together. */
 const asSpec = (boat: BoatContent): BoatSpec => boat;
-const known = BUILT_IN_BOATS as readonly BoatContent[];
+const known: readonly BoatContent[] = BUILT_IN_BOATS;
 
 const MINIMAL = `
 boat: Plover
