@@ -133,9 +133,7 @@ function hullOf(hull: BoatFile['hull']) {
     wettedArea: hull.wetted_m2,
     formFactor: hull.form_factor ?? 1.1,
     residuaryFactor: hull.residuary_factor ?? 1,
-    ...(rows && {
-      table: { speed: rows.map(([kn]) => fromKnots(kn)), resistance: rows.map(([, newtons]) => newtons) },
-    }),
+    ...(rows && { table: tableOf(rows) }),
     heelDrag: hull.heel_drag ?? 0.5,
     waveDrag: hull.wave_drag ?? 0.15,
   };
