@@ -64,7 +64,7 @@ function trim(value: number): string {
 
 /** How a quantity is known, as one sentence for hover, focus or a tap. */
 export function errorSentence(q: Quantity, unit: Unit): string {
-  const digits = unit === 'm' ? 1 : DIGITS[unit];
+  const digits = digitsFor(q, unit === 'm' ? 1 : DIGITS[unit]);
   const parts = [
     q.se === null ? 'no error could be stated' : `±\u00a0${withUnit(q.se, unit, digits)} (one standard error)`,
     ...(q.sys
@@ -75,6 +75,11 @@ export function errorSentence(q: Quantity, unit: Unit): string {
     BASIS_WORDS[q.basis],
   ];
   return `${withUnit(q.value, unit, digits)}: ${parts.join('; ')}.`;
+}
+
+/** One more figure where the error would else read as none. */
+function digitsFor(q: Quantity, digits: number): number {
+  return q.se !== null && q.se > 0 && Number(q.se.toFixed(digits)) === 0 ? digits + 1 : digits;
 }
 
 export interface QuantityOptions {
@@ -96,8 +101,9 @@ export interface QuantityOptions {
  */
 export function quantity(q: Q, unit: Unit, options: QuantityOptions = {}): Safe {
   if (!q) return html`<span class="none" title="not known">–</span>`;
-  const { times = 1, sign = false, digits = DIGITS[unit], bare = false, unitless = false } = options;
+  const { times = 1, sign = false, bare = false, unitless = false } = options;
   const shown = scaled(q, times);
+  const digits = digitsFor(shown, options.digits ?? DIGITS[unit]);
   const pm =
     shown.se !== null && !bare
       ? html` <small class="pm"
@@ -120,8 +126,9 @@ export function scaled(q: Quantity, times: number): Quantity {
 
 /** A quantity within a sentence: no control, only text the client localises. */
 export function inline(q: Quantity, unit: Unit, options: QuantityOptions = {}): Safe {
-  const { times = 1, sign = false, digits = DIGITS[unit] } = options;
+  const { times = 1, sign = false } = options;
   const shown = scaled(q, times);
+  const digits = digitsFor(shown, options.digits ?? DIGITS[unit]);
   const pm = shown.se === null ? '' : html` ± ${number(shown.se, digits)}`;
   return html`<span class="nb">${number(shown.value, digits, sign)}${pm}${SUFFIX[unit]}</span>`;
 }

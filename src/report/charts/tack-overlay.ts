@@ -12,19 +12,25 @@ export interface TackOverlayOptions {
   readonly after: number;
   /** Place of the boat in the result, for picking a curve. */
   readonly boat: number;
+  /** Only tacks on these legs. */
+  readonly legs?: ReadonlySet<number>;
 }
 
 export const OVERLAY_DEFAULTS: TackOverlayOptions = { width: 460, height: 230, before: 12, after: 40, boat: 0 };
 
-/** Places in `boat.manoeuvres` of the tacks. */
-export function tacksOf(boat: BoatSeries): number[] {
-  return boat.manoeuvres.flatMap((m, k) => (m.kind === 'tack' ? [k] : []));
+/** Places in `boat.manoeuvres` of the tacks; within the legs named where there are any. */
+export function tacksOf(boat: BoatSeries, legs?: ReadonlySet<number>): number[] {
+  const beats = boat.legs.filter((l) => legs?.has(l.index));
+  return boat.manoeuvres.flatMap((m, k) => {
+    const within = !legs || beats.some((l) => m.at >= l.from && m.at < l.to);
+    return m.kind === 'tack' && within ? [k] : [];
+  });
 }
 
 /** VMG of every tack of a boat on one clock that stands at zero when she is head to wind. */
 export function tackOverlay(boat: BoatSeries, options: Partial<TackOverlayOptions> = {}): string {
   const o = { ...OVERLAY_DEFAULTS, ...options };
-  const tacks = tacksOf(boat);
+  const tacks = tacksOf(boat, o.legs);
   const curves = tacks.map((k) => curveOf(boat, boat.manoeuvres[k]!.at, o));
   const values = curves.flatMap((c) => c.map((p) => p[1])).filter(Number.isFinite);
   const x = scaleLinear([-o.before, o.after], [44, o.width - 12]);
@@ -44,7 +50,10 @@ export function tackOverlay(boat: BoatSeries, options: Partial<TackOverlayOption
     text(44, 12, 'VMG, kn, against seconds from head to wind', { size: 12, italic: true }),
     line(44, o.height - 28, o.width - 12, o.height - 28, RULE),
   ];
-  return picture(o.width, o.height, labelOf(boat, tacks.length, curves), body.join(''), { class: 'tack-overlay', 'data-boat': o.boat });
+  return picture(o.width, o.height, labelOf(boat, tacks.length, curves), body.join(''), {
+    class: 'tack-overlay',
+    'data-boat': o.boat,
+  });
 }
 
 /** A rounding among the tacks must not flatten the rest: two knots astern is as far as the sheet goes. */

@@ -53,10 +53,20 @@ export function timeSpan(series: RaceSeries): [number, number] {
   return series.boats.length ? [from, Math.max(to, from + 1)] : [0, 1];
 }
 
+/** The racing with a minute on both sides; the whole recording when there are no legs. */
+export function racingSpan(series: RaceSeries): [number, number] {
+  const [from, to] = timeSpan(series);
+  const legs = series.boats.flatMap((b) => b.legs.map((l) => [b.t0 + l.from, b.t0 + l.to] as const));
+  if (legs.length === 0) return [from, to];
+  const first = Math.min(...legs.map((l) => l[0])) - 60;
+  const last = Math.max(...legs.map((l) => l[1])) + 60;
+  return [Math.max(from, first), Math.min(to, last)];
+}
+
 /** One panel: a line a boat, upwind legs shaded, tacks as ticks on the head. */
 export function timePanel(panel: PanelKind, series: RaceSeries, options: Partial<SeriesOptions> = {}): string {
   const o = { ...SERIES_DEFAULTS, ...options };
-  const [t0, t1] = timeSpan(series);
+  const [t0, t1] = racingSpan(series);
   const columns = series.boats.map((b) => panel.values(b));
   const x = scaleLinear([t0, t1], [MARGIN.left, o.width - MARGIN.right]);
   const y = scaleLinear(panelRange(panel, series, columns), [o.height - MARGIN.bottom, MARGIN.top]).nice(4);
@@ -152,10 +162,13 @@ function timeAxis(x: Scale, y: number): string {
 
 function boatLine(boat: BoatSeries, values: Float64Array, index: number, x: Scale, y: Scale, points: number): string {
   const { colour, dash } = boatPaint(index);
-  const step = Math.max(1, Math.ceil(boat.n / points));
+  const [from, to] = x.domain() as [number, number];
+  const first = Math.max(0, from - boat.t0);
+  const last = Math.min(boat.n, to - boat.t0 + 1);
+  const step = Math.max(1, Math.ceil((last - first) / points));
   const at: [number, number][] = [];
   const [low, high] = y.domain() as [number, number];
-  for (let i = 0; i < boat.n; i += step) {
+  for (let i = first; i < last; i += step) {
     const v = values[i];
     at.push([x(boat.t0 + i), v >= low && v <= high ? y(v) : NaN]);
   }
@@ -170,9 +183,11 @@ function boatLine(boat: BoatSeries, values: Float64Array, index: number, x: Scal
 }
 
 function turnTicks(boat: BoatSeries, index: number, x: Scale): string[] {
+  const [from, to] = x.domain() as [number, number];
   const { colour, dash } = boatPaint(index);
   return boat.manoeuvres
     .filter((m) => m.kind === 'tack' || m.kind === 'gybe')
+    .filter((m) => boat.t0 + m.at >= from && boat.t0 + m.at <= to)
     .map((m) => {
       const at = x(boat.t0 + m.at);
       return line(at, MARGIN.top, at, MARGIN.top - 5, colour, {

@@ -47,11 +47,13 @@ export function trackMap(result: Result, series: RaceSeries, options: Partial<Ma
   return picture(o.width, o.height, mapLabel(result, series, wind), body.join(''), { class: 'track-map', id: 'map' });
 }
 
-/** The view of the whole race. */
+/** The view of the racing: marks and legs; all there is when there are no legs. */
 export function mapFit(series: RaceSeries, up: number, size: { width: number; height: number }): MapView {
   const places: Place[] = series.marks.flatMap((m) => m.places);
+  const legs = series.boats.some((b) => b.legs.length > 0);
   for (const b of series.boats) {
-    for (let i = 0; i < b.n; i += 5) if (Number.isFinite(b.x[i])) places.push({ x: b.x[i], y: b.y[i] });
+    const spans = legs ? b.legs : [{ from: 0, to: b.n }];
+    for (const { from, to } of spans) for (let i = from; i < to; i += 5) places.push({ x: b.x[i]!, y: b.y[i]! });
   }
   return fitView(places, up, size.width, size.height);
 }

@@ -10,6 +10,8 @@ import { el, line, numberText, pathOf, picture, text } from './svg.js';
 export interface WindStripOptions {
   readonly width: number;
   readonly height: number;
+  /** UTC seconds shown; the whole recording when left out. */
+  readonly span?: readonly [number, number];
 }
 
 export const WIND_STRIP_DEFAULTS: WindStripOptions = { width: 460, height: 220 };
@@ -17,14 +19,18 @@ export const WIND_STRIP_DEFAULTS: WindStripOptions = { width: 460, height: 220 }
 /** Wind direction about its mean over the legs sailed, shifts marked. Veered (right) is up. */
 export function windStrip(boat: BoatSeries, shifts: readonly Shift[], options: Partial<WindStripOptions> = {}): string {
   const o = { ...WIND_STRIP_DEFAULTS, ...options };
-  const mean = circularMean(boat.twd).mean;
+  const [from, to] = o.span ?? [boat.t0, boat.t0 + boat.n - 1];
+  const first = Math.max(0, from - boat.t0);
+  const last = Math.min(boat.n, to - boat.t0 + 1);
+  const mean = circularMean(boat.twd.subarray(first, last)).mean;
   const smooth = smoothedWind(boat.twd);
   const swings = Array.from(boat.twd, (d) => turn(mean, d));
-  const reach = Math.max(6, ...swings.filter(Number.isFinite).map(Math.abs));
-  const x = scaleLinear([boat.t0, boat.t0 + Math.max(1, boat.n - 1)], [44, o.width - 10]);
-  const y = scaleLinear([-reach, reach], [o.height - 26, 22]).nice(4);
-  const step = Math.max(1, Math.ceil(boat.n / 500));
-  const rows = Array.from({ length: Math.ceil(boat.n / step) }, (_, k) => k * step);
+  const reach = Math.max(6, ...swings.slice(first, last).filter(Number.isFinite).map(Math.abs));
+  const x = scaleLinear([from, Math.max(to, from + 1)], [44, o.width - 10]);
+  const y = scaleLinear([-reach, reach], [o.height - 26, 22]);
+  const step = Math.max(1, Math.ceil((last - first) / 500));
+  const rows = Array.from({ length: Math.max(0, Math.ceil((last - first) / step)) }, (_, k) => first + k * step);
+  const shown = shifts.filter((s) => s.row >= first && s.row < last);
   const body = [
     ...y.ticks(5).map((v) => line(44, y(v), o.width - 10, y(v), v === 0 ? SOFT : RULE, { 'stroke-width': 0.7 })),
     ...y.ticks(5).map((v) => numberText(38, y(v) + 4, wrap360(mean + v), 0, { anchor: 'end', size: 11, fill: SOFT })),
@@ -41,8 +47,8 @@ export function windStrip(boat: BoatSeries, shifts: readonly Shift[], options: P
       stroke: INK,
       'stroke-width': 1.7,
     }),
-    ...shifts.map((s) => shiftMark(s, boat, x, y, mean)),
-    ...clockTicks(boat.t0, boat.t0 + boat.n - 1, 6).map((t) =>
+    ...shown.map((s) => shiftMark(s, boat, x, y, mean)),
+    ...clockTicks(from, to, 6).map((t) =>
       text(x(t), o.height - 8, timeText(isoOf(t), 'hm'), {
         anchor: 'middle',
         size: 11,
@@ -52,7 +58,7 @@ export function windStrip(boat: BoatSeries, shifts: readonly Shift[], options: P
     ),
     text(44, 12, 'Wind from, °; up is veered', { size: 12, italic: true }),
   ];
-  const label = `Wind direction at ${boat.name}, mean ${Math.round(mean)} degrees, ${shifts.length} shifts marked.`;
+  const label = `Wind direction at ${boat.name}, mean ${Math.round(mean)} degrees, ${shown.length} shifts marked.`;
   return picture(o.width, o.height, label, body.join(''), { class: 'wind-strip' });
 }
 

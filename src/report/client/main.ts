@@ -23,7 +23,7 @@ function start(): void {
   localise(document, clock);
   mountTips();
   if (race.boats.length === 0) return;
-  const store = createStore(race.from, race.to);
+  const store = createStore(race.from, race.to, race.racing);
   mountMap(race, store, meanWind(race));
   mountInstruments(race, store);
   mountPicks(race, store, clock);

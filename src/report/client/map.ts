@@ -24,7 +24,7 @@ export function mountMap(race: Race, store: Store, wind: number): void {
   if (!svg || !tools) return;
   const [, , width, height] = svg.getAttribute('viewBox')!.split(' ').map(Number) as [number, number, number, number];
   const map: Living = { race, store, svg, view: { cx: 0, cy: 0, scale: 1, up: wind, width, height }, home: { wind } };
-  map.view = fitView(placesIn(race, null, race.from, race.to), wind, width, height);
+  map.view = fitView(placesIn(race, null, ...race.racing), wind, width, height);
   mountTools(map, tools);
   mountGestures(svg, {
     view: () => map.view,
@@ -59,12 +59,7 @@ function mountTools(map: Living, tools: HTMLElement): void {
     redrawSheet(map);
   };
   const fit = (): void => {
-    map.view = fitView(
-      placesIn(map.race, null, map.race.from, map.race.to),
-      map.view.up,
-      map.view.width,
-      map.view.height,
-    );
+    map.view = fitView(placesIn(map.race, null, ...map.race.racing), map.view.up, map.view.width, map.view.height);
     redrawSheet(map);
   };
   const turn = button('North up', 'Turn the chart: north or wind at the top', () => {
@@ -78,7 +73,7 @@ function mountTools(map: Living, tools: HTMLElement): void {
     button('+', 'Zoom in', () => zoom(1.4)),
     button('−', 'Zoom out', () => zoom(1 / 1.4)),
     button('Whole course', 'Show the whole course', () => {
-      map.store.set({ pick: null, window: [map.race.from, map.race.to] });
+      map.store.set({ pick: null, window: map.race.racing });
       fit();
     }),
     turn,

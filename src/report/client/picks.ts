@@ -34,7 +34,7 @@ function same(a: Pick | null, b: Pick): boolean {
 }
 
 function choose(race: Race, store: Store, pick: Pick): void {
-  if (same(store.now().pick, pick)) return store.set({ pick: null, window: [race.from, race.to] });
+  if (same(store.now().pick, pick)) return store.set({ pick: null, window: race.racing });
   const boat = race.boats[pick.boat];
   const turn = pick.turn === undefined ? undefined : boat?.header.turns[pick.turn];
   const leg = boat?.header.legs.find((l) => l.index === pick.leg);

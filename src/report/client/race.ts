@@ -25,6 +25,8 @@ export interface Boat {
 }
 
 export interface Race {
+  /** The racing with a minute on both sides: what is in view at first. */
+  readonly racing: readonly [number, number];
   readonly zone: string;
   readonly step: number;
   readonly from: number;
@@ -51,7 +53,24 @@ export function readRace(): Race {
   }));
   const from = Math.min(...boats.map((b) => b.header.t0));
   const to = Math.max(...boats.map((b) => b.header.t0 + (b.header.rows - 1) * payload.step));
-  return { zone: payload.zone ?? 'UTC', step: payload.step, from, to, boats, marks: facts.marks };
+  return {
+    racing: racingOf(boats, from, to),
+    zone: payload.zone ?? 'UTC',
+    step: payload.step,
+    from,
+    to,
+    boats,
+    marks: facts.marks,
+  };
+}
+
+function racingOf(boats: readonly Boat[], from: number, to: number): [number, number] {
+  const legs = boats.flatMap((b) => b.header.legs);
+  if (legs.length === 0) return [from, to];
+  return [
+    Math.max(from, Math.min(...legs.map((l) => l.from)) - 60),
+    Math.min(to, Math.max(...legs.map((l) => l.to)) + 60),
+  ];
 }
 
 /** The row nearest to a time, or -1 when the boat has none there. */

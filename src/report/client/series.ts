@@ -51,7 +51,8 @@ export function mountSeries(race: Race, store: Store, clock: Clock): void {
   const tools = make(
     'div',
     { class: 'map-tools' },
-    button('All times', 'Show the whole race', () => store.set({ window: [race.from, race.to] })),
+    button('The racing', 'Show the racing', () => store.set({ window: race.racing })),
+    button('All times', 'Show the whole recording', () => store.set({ window: [race.from, race.to] })),
     make('span', { class: 'soft' }, 'Drag across the curves to look closer.'),
   );
   home.append(tools);
@@ -67,11 +68,13 @@ export function mountSeries(race: Race, store: Store, clock: Clock): void {
   matchMedia('(prefers-color-scheme: dark)').addEventListener('change', () =>
     living.forEach(({ plot }) => plot.redraw()),
   );
-  store.listen((now, before) => {
+  let inView: readonly [number, number] | null = null;
+  store.listen((now) => {
     for (const l of living) {
-      if (now.window !== before.window) l.plot.setScale('x', { min: now.window[0], max: now.window[1] });
+      if (now.window !== inView) l.plot.setScale('x', { min: now.window[0], max: now.window[1] });
       follow(l, race, now.time);
     }
+    inView = now.window;
   });
 }
 
@@ -143,7 +146,7 @@ function optionsFor(panel: Panel, race: Race, store: Store, clock: Clock, width:
       y: false,
       points: { show: false },
       drag: { x: true, y: false, setScale: false },
-      bind: { dblclick: () => () => (store.set({ window: [race.from, race.to] }), null) },
+      bind: { dblclick: () => () => (store.set({ window: race.racing }), null) },
     },
     series: [{}, ...race.boats.map((b) => lineOf(b))],
     axes: [

@@ -20,8 +20,8 @@ export interface Store {
 }
 
 /** Listeners are called once a frame at most, so that a fast finger costs no more than a slow one. */
-export function createStore(from: number, to: number): Store {
-  let now: Moment = { time: from, window: [from, to], pick: null };
+export function createStore(from: number, to: number, window: readonly [number, number]): Store {
+  let now: Moment = { time: Math.min(window[1], window[0] + 60), window, pick: null };
   let told: Moment = now;
   let waiting = false;
   const listeners: Listener[] = [];

@@ -4,6 +4,7 @@ import { angleDistribution, histogram } from '../charts/angle-distribution.js';
 import { dragAngles, type DragAngleRow } from '../charts/drag-angles.js';
 import { polar } from '../charts/polar.js';
 import { portStarboard, type TwoTacks } from '../charts/port-starboard.js';
+import { racingSpan } from '../charts/time-series.js';
 import { windStrip } from '../charts/wind-strip.js';
 import { dayBest, settledMean, timeMean, upwindLegs } from '../figures.js';
 import { plain, quantity, time, withUnit } from '../format.js';
@@ -122,9 +123,10 @@ function tackPlates(result: Result): Part {
 function windPlate(series: RaceSeries): Part {
   const boat = series.boats.find((b) => b.twd.some(Number.isFinite));
   if (!boat) return null;
-  const shifts = shiftsOf(boat.twd);
+  const [from, to] = racingSpan(series);
+  const shifts = shiftsOf(boat.twd).filter((s) => boat.t0 + s.row >= from && boat.t0 + s.row <= to);
   return figure({
-    svg: windStrip(boat, shifts),
+    svg: windStrip(boat, shifts, { span: [from, to] }),
     title: 'The wind over the race',
     summary: html`The thin line is the wind at ${nameOf(boat.name)} each second, the heavy one its mean over a minute.
     Marks: the minute’s mean has moved five degrees since the last mark.`,

@@ -1,7 +1,7 @@
 import type { Result, WindSource } from '../../result/result.js';
 import type { RaceSeries } from '../../result/series.js';
 import { el } from '../charts/svg.js';
-import { timeSpan } from '../charts/time-series.js';
+import { racingSpan } from '../charts/time-series.js';
 import { dot } from '../charts/polar.js';
 import { inline, secondsOf, time } from '../format.js';
 import { html, nameOf, trusted, type Safe } from '../html.js';
@@ -44,7 +44,7 @@ function windLine(result: Result): Safe {
 
 /** Race, day, wind, boats. */
 export function masthead(result: Result, series: RaceSeries, kind: string): Safe {
-  const [from, to] = timeSpan(series);
+  const [from, to] = racingSpan(series);
   const start = result.race.start;
   const gun = start ? html` Gun at ${time(secondsOf(start), 'hms')}.` : '';
   return html`<header class="masthead">

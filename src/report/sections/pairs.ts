@@ -1,4 +1,4 @@
-import type { PairResult, Result } from '../../result/result.js';
+import type { PairLeg, PairResult, Result } from '../../result/result.js';
 import { pairBars } from '../charts/pair-bars.js';
 import { duration, inline, plural, quantity } from '../format.js';
 import { html, nameOf, type Part, type Safe } from '../html.js';
@@ -21,31 +21,21 @@ function verdictOf(pair: PairResult): Safe {
 function pairPlate(pair: PairResult): Safe {
   const [first, second] = pair.boats;
   const d = pair.vmg_difference_kn;
-  const rows: Part[][] = [
-    ...pair.legs.map((l) => [
-      `Lap ${l.lap}`,
-      quantity(l.vmg_difference_kn, 'kn', { sign: true }),
-      quantity(l.height_part_kn, 'kn', { sign: true }),
-      quantity(l.speed_part_kn, 'kn', { sign: true }),
-      quantity(l.gamma_difference_deg, 'deg', { sign: true }),
-      quantity(l.gain_m, 'm', { sign: true }),
-      l.blocks,
-    ]),
-    [
-      'Together',
-      quantity(d, 'kn', { sign: true }),
-      quantity(pair.height_part_kn, 'kn', { sign: true }),
-      quantity(pair.speed_part_kn, 'kn', { sign: true }),
-      quantity(pair.gamma_difference_deg, 'deg', { sign: true }),
-      quantity(pair.gain_m, 'm', { sign: true }),
-      pair.blocks,
-    ],
+  const columns = [...pair.legs, pair];
+  const row = (words: Part, get: (p: PairLeg | PairResult) => Part): Part[] => [words, ...columns.map(get)];
+  const rows = [
+    row('VMG', (p) => quantity(p.vmg_difference_kn, 'kn', { sign: true })),
+    row('by height', (p) => quantity(p.height_part_kn, 'kn', { sign: true })),
+    row('by speed', (p) => quantity(p.speed_part_kn, 'kn', { sign: true })),
+    row('Course angle', (p) => quantity(p.gamma_difference_deg, 'deg', { sign: true })),
+    row('Gained', (p) => quantity(p.gain_m, 'm', { sign: true })),
+    row('Stretches', (p) => p.blocks),
   ];
   const amount =
     d &&
     html`${nameOf(first)} less ${nameOf(second)}: ${inline(d, 'kn', { sign: true })} of ${term('vmg')}, over
     ${plural(pair.blocks, 'pair')} of stretches sailed side by side on one tack (${duration(pair.settled_s)} minutes).`;
-  const heads = ['Leg', 'VMG', 'by height', 'by speed', 'Course angle', 'Gained', 'Stretches'];
+  const heads = ['', ...pair.legs.map((l) => `Lap ${l.lap}`), 'Together'];
   const bars = [
     { name: 'VMG', value: d },
     { name: 'by height', value: pair.height_part_kn },
