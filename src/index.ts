@@ -57,7 +57,7 @@ export const resultFiles = async () => ({
 });
 
 /** Tables, GeoJSON, Parquet. */
-export const exports = async () => ({
+export const exporters = async () => ({
   ...(await import('./export/csv.js')),
   ...(await import('./export/geojson.js')),
   ...(await import('./export/parquet.js')),

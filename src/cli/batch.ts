@@ -27,7 +27,6 @@ type Flags = RaceFlags & OutputFlags;
 /** Runs a task over every race of the inputs; returns the worst exit code. */
 export async function runBatch(inputs: readonly string[], flags: Flags, task: Task): Promise<number> {
   const progress = new Progress(flags.progress && !flags.quiet);
-  const sources = await expandInputs(inputs);
   const slugs = new Set<string>();
   let worst = 0;
   let first = true;
@@ -41,6 +40,10 @@ export async function runBatch(inputs: readonly string[], flags: Flags, task: Ta
       worst = Math.max(worst, exitCodeOf(error));
     }
   };
+  const sources: Source[] = [];
+  for (const part of flags.keepGoing ? partsOf(inputs) : [inputs]) {
+    await attempt(async () => void sources.push(...(await expandInputs(part))));
+  }
   const one = async (job: Job, several: boolean): Promise<void> => {
     const lines = await runJob(job, flags, task, several, slugs, progress);
     if (lines.length > 0) await print(`${first ? '' : '\n'}${lines.join('\n')}\n`);
@@ -49,11 +52,17 @@ export async function runBatch(inputs: readonly string[], flags: Flags, task: Ta
   const each = async (source: Source): Promise<void> => {
     const jobs = await loadRaces(source, raceOptions(flags), progress);
     const several = sources.length > 1 || jobs.length > 1;
-    for (const job of jobs) await attempt(() => one(job, several));
+    for (const job of jobs) await attempt(async () => one(await job(), several));
   };
   for (const source of sources) await attempt(() => each(source));
   progress.clear();
   return worst;
+}
+
+/** Race files and folders each for themselves, so that one that is not there does not stop the others. */
+function partsOf(inputs: readonly string[]): (readonly string[])[] {
+  const isRace = (word: string): boolean => /\.(ya?ml|json)$/i.test(word);
+  return inputs.length > 1 && inputs.every(isRace) ? inputs.map((word) => [word]) : [inputs];
 }
 
 async function runJob(

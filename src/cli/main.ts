@@ -9,6 +9,7 @@ export async function main(args: readonly string[]): Promise<void> {
   guardOutput();
   stopOn('SIGINT', 130);
   stopOn('SIGTERM', 143);
+  stopOn('SIGHUP', 129);
   process.on('uncaughtException', (error) => {
     dropTemporaries();
     tellFailure(error);

@@ -1,5 +1,5 @@
 import { join, resolve } from 'node:path';
-import { exports, resultFiles } from '../index.js';
+import { exporters, resultFiles } from '../index.js';
 import type { RaceSeries, Result } from '../index.js';
 import { forMessages, kindOf, unusable, writeWhole } from './files.js';
 import type { OutputFlags } from './options.js';
@@ -62,11 +62,11 @@ export async function writeOutputs(places: Places, result: Result, series: RaceS
   const { jsonText } = await resultFiles();
   const files: [string, string | Uint8Array][] = [];
   if (places.csv !== null) {
-    const { legsCsv, secondsCsv } = await exports();
+    const { legsCsv, secondsCsv } = await exporters();
     files.push([join(places.csv, 'legs.csv'), legsCsv(result)], [join(places.csv, 'seconds.csv'), secondsCsv(series)]);
   }
-  if (places.geojson !== null) files.push([places.geojson, await (await exports()).geoJsonText(result, series)]);
-  if (places.parquet !== null) files.push([places.parquet, await (await exports()).parquetBytes(result, series)]);
+  if (places.geojson !== null) files.push([places.geojson, await (await exporters()).geoJsonText(result, series)]);
+  if (places.parquet !== null) files.push([places.parquet, await (await exporters()).parquetBytes(result, series)]);
   if (places.json !== null && places.json !== '-') files.push([places.json, jsonText(result)]);
   if (places.html !== null) files.push([places.html, await page()]);
   for (const [path, content] of files) await writeWhole(path, content);

@@ -27,15 +27,17 @@ export interface RaceOptions extends Omit<Overrides, 'wind'> {
 /** How much of a log is looked at for its name, kind and first time. */
 const GLANCE = 1 << 18;
 
-/** The races of one source. */
-export async function loadRaces(source: Source, options: RaceOptions, progress: Progress): Promise<Job[]> {
+/** The races of one source, each to be made ready when its turn comes. */
+export async function loadRaces(
+  source: Source,
+  options: RaceOptions,
+  progress: Progress,
+): Promise<(() => Promise<Job>)[]> {
   const folder = source.kind === 'race-file' && source.path !== '-' ? dirname(resolve(source.path)) : process.cwd();
   const names = new FileNames(folder);
   const drafts =
     source.kind === 'race-file' ? await draftsOf(source, names) : [await draftOfLogs(source.paths, names, options)];
-  const jobs: Job[] = [];
-  for (const draft of drafts) jobs.push(await prepare(draft, names, options, progress));
-  return jobs;
+  return drafts.map((draft) => () => prepare(draft, names, options, progress));
 }
 
 async function draftsOf(source: Extract<Source, { kind: 'race-file' }>, names: FileNames): Promise<RaceDraft[]> {

@@ -36,8 +36,9 @@ export function tuneCommand(program: Command): Command {
 async function runTune(inputs: string[], flags: TuneFlags): Promise<void> {
   const progress = new Progress(flags.progress && !flags.quiet);
   const jobs: Job[] = [];
-  for (const source of await expandInputs(inputs))
-    jobs.push(...(await loadRaces(source, raceOptions(flags), progress)));
+  for (const source of await expandInputs(inputs)) {
+    for (const job of await loadRaces(source, raceOptions(flags), progress)) jobs.push(await job());
+  }
   const tuned = await tune(
     jobs.map(({ race, open }) => ({ race, open })),
     { version: programVersion() },

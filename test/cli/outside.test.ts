@@ -288,6 +288,9 @@ describe('a batch', () => {
     expect(all.code).toBe(1);
     expect(filesBelow(join(cwd, 'reports'))).toEqual(['2026-04-18-one.html', '2026-04-18-three.html']);
     expect(filesBelow(join(cwd, 'results'))).toEqual(['2026-04-18-one.json', '2026-04-18-three.json']);
+    const lost = ['debrief', 'spring/0.yaml', 'spring/3.yaml', '--keep-going', '--json', 'lost/'];
+    expect((await run(lost, { cwd })).code).toBe(2);
+    expect(filesBelow(join(cwd, 'lost'))).toEqual(['2026-04-18-three.json']);
     const one = await run(['debrief', 'spring', '--json', 'one.json', '--keep-going'], { cwd });
     expect(one.code).toBe(2);
     expect(one.err).toContain('--json one.json: one file, but more than one race.');
