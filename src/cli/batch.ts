@@ -5,7 +5,7 @@ import { expandInputs } from './inputs.js';
 import type { Source } from './inputs.js';
 import { fileInLogbook } from './logbook.js';
 import type { OutputFlags, RaceFlags } from './options.js';
-import { raceOptions } from './options.js';
+import { checkFlags, raceOptions } from './options.js';
 import { checkPlaces, placeLines, placesFor, writeOutputs } from './outputs.js';
 import { loadRaces } from './races.js';
 import type { Job } from './races.js';
@@ -26,6 +26,7 @@ type Flags = RaceFlags & OutputFlags;
 
 /** Runs a task over every race of the inputs; returns the worst exit code. */
 export async function runBatch(inputs: readonly string[], flags: Flags, task: Task): Promise<number> {
+  await checkFlags(flags);
   const progress = new Progress(flags.progress && !flags.quiet);
   const slugs = new Set<string>();
   let worst = 0;

@@ -5,7 +5,7 @@ import type { ImportOptions, InspectFile } from '../index.js';
 import { exitCodeOf, tellFailure } from './failures.js';
 import { forMessages, logSource, STDIN_NAME, writeWhole } from './files.js';
 import { pathsOf } from './inputs.js';
-import { addColumns, addManners } from './options.js';
+import { addColumns, addManners, checkFlags } from './options.js';
 import { outColour, print, Progress } from './terminal.js';
 
 const EXAMPLE = `
@@ -46,6 +46,7 @@ export function inspectCommand(program: Command): Command {
 }
 
 async function runInspect(words: readonly string[], flags: InspectFlags): Promise<number> {
+  await checkFlags(flags);
   const progress = new Progress(flags.progress);
   const options: ImportOptions = {
     ...(flags.zone === undefined ? {} : { zone: flags.zone }),

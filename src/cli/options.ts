@@ -1,5 +1,7 @@
 import { InvalidArgumentError } from 'commander';
 import type { Command } from 'commander';
+import { raceParts } from '../index.js';
+import { unusable } from './files.js';
 import type { RaceOptions } from './races.js';
 
 /** What `debrief`, `compare` and `tune` are told besides their INPUT. */
@@ -102,6 +104,20 @@ export function readWinds(text: string): number[] {
     throw new InvalidArgumentError('Winds are FROM:TO:STEP in knots above 0 and up to 60, such as 4:24:2.');
   }
   return Array.from({ length: count }, (_, i) => Number((from + i * step).toFixed(9)));
+}
+
+/** Times, days and zones on the command line are held to the same rules as in a race file. */
+export async function checkFlags(flags: Pick<RaceFlags, 'start' | 'finish' | 'zone' | 'date'>): Promise<void> {
+  const { parseTime, isDay, isZone } = await raceParts();
+  const check = (option: string, text: string | undefined, good: (text: string) => boolean, how: string): void => {
+    if (text === undefined || good(text)) return;
+    throw unusable(`--${option} ${text}: ${how}`);
+  };
+  const isTime = (text: string): boolean => parseTime(text) !== null;
+  check('start', flags.start, isTime, 'not a time. Write 14:05 or 2026-04-18T14:05:00+02:00.');
+  check('finish', flags.finish, isTime, 'not a time. Write 14:05 or 2026-04-18T14:05:00+02:00.');
+  check('zone', flags.zone, isZone, 'not a time zone of the IANA data base. Write one such as Europe/Zurich.');
+  check('date', flags.date, isDay, 'not a day. Write YYYY-MM-DD.');
 }
 
 /** What a job needs of the flags. */

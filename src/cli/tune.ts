@@ -2,7 +2,7 @@ import type { Command } from 'commander';
 import { tune, tunePage } from '../index.js';
 import { expandInputs } from './inputs.js';
 import { forMessages, kindOf, unusable, writeWhole } from './files.js';
-import { addManners, addRaceOptions, raceOptions } from './options.js';
+import { addManners, addRaceOptions, checkFlags, raceOptions } from './options.js';
 import type { RaceFlags } from './options.js';
 import { loadRaces } from './races.js';
 import type { Job } from './races.js';
@@ -34,6 +34,7 @@ export function tuneCommand(program: Command): Command {
 }
 
 async function runTune(inputs: string[], flags: TuneFlags): Promise<void> {
+  await checkFlags(flags);
   const progress = new Progress(flags.progress && !flags.quiet);
   const jobs: Job[] = [];
   for (const source of await expandInputs(inputs)) {

@@ -68,6 +68,13 @@ describe('what is unusable is 2, with a few lines that say what to do', () => {
     ['an unknown option', () => ['debrief', '--jsn', 'x'], /--jsn[\s\S]*--json/],
     ['a wind that is none', () => ['debrief', 'ann.gpx', '--wind', '999@12'], /215@12/],
     ['a current that is none', () => ['debrief', 'ann.gpx', '--current', 'north'], /SET,DRIFT/],
+    [
+      'a zone that is none',
+      () => ['debrief', 'ann.gpx', '--zone', 'Europe/Zurch'],
+      /--zone Europe\/Zurch[\s\S]*Europe\/Zurich/,
+    ],
+    ['a time that is none', () => ['debrief', 'ann.gpx', '--start', 'noon'], /--start noon: not a time/],
+    ['a day that is none', () => ['inspect', 'ann.gpx', '--date', '2026-02-30'], /--date 2026-02-30: not a day/],
     ['a range of winds that is none', () => ['optimum', '--tws', '9:4:1'], /FROM:TO:STEP/],
     ['a file that is not there', () => ['debrief', 'anne.gpx'], /anne\.gpx: is not there\.\n\s+Is it ann\.gpx\?/],
     ['a pattern without a match', () => ['debrief', '*.fit'], /\*\.fit: no file matches/],
