@@ -6,6 +6,7 @@
 import { SaxesParser, type SaxesTagPlain } from 'saxes';
 import { wrap360 } from '../math/angles.js';
 import { readDecimal } from './decimals.js';
+import { PlainPoints, type TakePoint } from './plain-points.js';
 import type { LogRows } from './rows.js';
 import type { Tally } from './tally.js';
 import { carriesZone, readIso } from './times.js';
@@ -35,31 +36,44 @@ export interface RawPoint {
   readonly line: number;
 }
 
+/** Adds points to the rows: those the parser found, as written, and those that are already numbers. */
+export interface PointTaker {
+  readonly raw: (point: RawPoint) => void;
+  readonly plain: TakePoint;
+}
+
 /** Judges points and adds them to the rows. */
-export function createPointTaker(rows: LogRows, tally: Tally, zone: ZoneClock | null): (point: RawPoint) => void {
-  const lat = rows.column('lat');
-  const lon = rows.column('lon');
+function createPointTaker(rows: LogRows, tally: Tally, zone: ZoneClock | null): PointTaker {
+  const latColumn = rows.column('lat');
+  const lonColumn = rows.column('lon');
   let before = -Infinity;
-  return (point) => {
-    tally.read++;
-    const φ = readDecimal(point.lat);
-    const λ = readDecimal(point.lon);
-    const fault = faultOfPosition(point.lat, point.lon, φ, λ) ?? (point.time === '' ? 'no time' : undefined);
-    if (fault !== undefined) return tally.reject(fault, point.line);
-    let time = readIso(point.time);
-    if (Number.isNaN(time)) return tally.reject('time not understood', point.line);
-    if (!carriesZone(point.time)) {
-      if (zone) time = zone.toUtc(time, before);
-      else tally.notice('zone-assumed', point.line);
-    }
+  const add: TakePoint = (lat, lon, time, speed, course, line) => {
     before = time;
-    const row = rows.add(time, point.line);
-    lat.set(row, φ);
-    lon.set(row, λ === 180 ? -180 : λ);
-    const speed = readDecimal(point.speed);
+    const row = rows.add(time, line);
+    latColumn.set(row, lat);
+    lonColumn.set(row, lon === 180 ? -180 : lon);
     if (speed >= 0) rows.set('sog', row, speed);
-    const course = readDecimal(point.course);
     if (course >= 0 && course <= 360) rows.set('cog', row, wrap360(course));
+  };
+  return {
+    plain: (lat, lon, time, speed, course, line) => {
+      tally.read++;
+      add(lat, lon, time, speed, course, line);
+    },
+    raw: ({ lat, lon, time, speed, course, line }) => {
+      tally.read++;
+      const φ = readDecimal(lat);
+      const λ = readDecimal(lon);
+      const fault = faultOfPosition(lat, lon, φ, λ) ?? (time === '' ? 'no time' : undefined);
+      if (fault !== undefined) return tally.reject(fault, line);
+      let utc = readIso(time);
+      if (Number.isNaN(utc)) return tally.reject('time not understood', line);
+      if (!carriesZone(time)) {
+        if (zone) utc = zone.toUtc(utc, before);
+        else tally.notice('zone-assumed', line);
+      }
+      add(φ, λ, utc, readDecimal(speed), readDecimal(course), line);
+    },
   };
 }
 
@@ -83,7 +97,10 @@ class GpxWalk {
   #point: RawPoint | null = null;
   #pointDepth = 0;
   #text: string | null = null;
-  tracks = 0;
+  /** The last tag began a segment or ended a point in one: what follows are points. */
+  atPoints = false;
+  /** The root is closed: to the parser all that follows is a fault, and it shall count them. */
+  #ended = false;
 
   constructor(take: (point: RawPoint) => void, rows: LogRows, tally: Tally) {
     this.#take = take;
@@ -99,6 +116,7 @@ class GpxWalk {
     const name = localName(tag.name);
     this.#path.push(name);
     this.#text = null;
+    this.atPoints = name === 'trkseg' && !this.#point && !this.#ended;
     if (name === 'trkpt') {
       // A point within a point: the end of the one before is damaged.
       if (this.#point) this.#take(this.#point);
@@ -113,7 +131,6 @@ class GpxWalk {
       this.#tally.ignore(name);
     } else if (name === 'trkseg' || name === 'trk') {
       this.#rows.startPiece();
-      if (name === 'trk') this.tracks++;
     } else if (name === 'name' && this.#path.at(-2) === 'trk') this.#text = '';
   }
 
@@ -125,11 +142,14 @@ class GpxWalk {
     const name = this.#path.at(-1)!;
     if (this.#text !== null) this.#use(name, this.#text.trim());
     this.#text = null;
+    this.atPoints = false;
     if (this.#point && this.#path.length === this.#pointDepth) {
       this.#take(this.#point);
       this.#point = null;
+      this.atPoints = name === 'trkpt' && this.#path.at(-2) === 'trkseg' && !this.#ended;
     }
     this.#path.pop();
+    if (this.#path.length === 0) this.#ended = true;
   }
 
   /** The log ended: a point still open is a record that was cut. */
@@ -158,46 +178,102 @@ function localName(name: string): string {
   return name.slice(name.indexOf(':') + 1);
 }
 
-/** Reads a GPX document, however damaged: what is complete is kept, what is odd is told. */
+/**
+ * Reads a GPX document, however damaged: what is complete is kept, what is odd is told.
+ *
+ * @param quick Points that are plain go past the parser; without it all goes through the parser, which is the reference.
+ */
 export async function readGpx(
   texts: AsyncIterable<string>,
   rows: LogRows,
   tally: Tally,
   zone: ZoneClock | null,
+  quick = true,
 ): Promise<GpxRead> {
-  const walk = new GpxWalk(createPointTaker(rows, tally, zone), rows, tally);
-  const { parser, fault } = openParser(walk, tally);
+  const taker = createPointTaker(rows, tally, zone);
+  const walk = new GpxWalk(taker.raw, rows, tally);
+  const points = new PlainPoints(taker.plain, walk.seen);
+  const line = (): number => parser.line + points.lines;
+  const { parser, fault } = openParser(walk, tally, line);
   const feed = createFilter(tally);
-  for await (const text of texts) parser.write(feed(text));
+  let held = '';
+  for await (const text of texts) {
+    if (quick) held = feedAround(held + text, walk, points, parser, feed);
+    else parser.write(feed(text));
+  }
+  parser.write(feed(held));
   parser.write(feed(null));
   const open = walk.depth > 0;
-  const line = parser.line;
-  walk.end(line);
-  try {
-    parser.close();
-  } catch {
-    // Everything that can be said of the end has been said by the error handler.
-  }
-  if (open) tally.issue('file-truncated', `The file is cut at line ${line}; what is complete before it is read.`, line);
+  const last = line();
+  walk.end(last);
+  parser.close();
+  if (open) tally.issue('file-truncated', `The file is cut at line ${last}; what is complete before it is read.`, last);
   tellOdd(tally, fault());
   return { name: walk.names.find((name) => name !== '') ?? '', columns: gpxColumns(rows, walk.seen) };
 }
 
-function openParser(walk: GpxWalk, tally: Tally): { parser: SaxesParser; fault: () => string } {
+/** What is held back for a point that is not yet whole. */
+const MOST_HELD = 1 << 16;
+/** Points in a row that were not plain: what follows will hardly be. */
+const MOST_MISSES = 16;
+
+/** Hands plain points to the quick reader and all else to the parser; returns what may be a point begun. */
+function feedAround(
+  text: string,
+  walk: GpxWalk,
+  points: PlainPoints,
+  parser: SaxesParser,
+  feed: (text: string) => string,
+): string {
+  let at = 0;
+  let misses = 0;
+  while (at < text.length && misses < MOST_MISSES) {
+    if (walk.atPoints) {
+      const to = points.take(text, at, parser.line);
+      misses = to > at ? 0 : misses + 1;
+      at = to;
+      if (text.length - at < MOST_HELD && text.indexOf('</trkpt>', at) < 0 && isPointBegun(text, at))
+        return text.slice(at);
+    }
+    const fence = fenceAfter(text, at);
+    walk.atPoints = false;
+    parser.write(feed(text.slice(at, fence)));
+    at = fence;
+  }
+  walk.atPoints = false;
+  if (at < text.length) parser.write(feed(text.slice(at)));
+  return '';
+}
+
+/** Whether nothing but (the beginning of) a point stands from `at` to the end. */
+function isPointBegun(text: string, at: number): boolean {
+  const rest = text.slice(at, at + 4096).trimStart();
+  return rest.startsWith('<trkpt ') || '<trkpt '.startsWith(rest);
+}
+
+/** Behind the next tag after which points may come; the end of the text when there is none. */
+function fenceAfter(text: string, at: number): number {
+  const close = text.indexOf('</trkpt>', at);
+  const open = text.indexOf('<trkseg>', at);
+  if (close < 0 && open < 0) return text.length;
+  return (close < 0 ? open : open < 0 ? close : Math.min(close, open)) + '<trkseg>'.length;
+}
+
+function openParser(walk: GpxWalk, tally: Tally, line: () => number): { parser: SaxesParser; fault: () => string } {
   const parser = new SaxesParser({ xmlns: false, position: true });
   let fault = '';
   parser.on('error', (error) => {
     fault ||= error.message.replace(/^[\d:]+\s*|\.$/g, '');
-    tally.notice('xml', parser.line);
+    tally.notice('xml', line());
   });
   parser.on('doctype', () =>
-    tally.issue('doctype', 'The file declares a document type, which GPX has not; it is not used.', parser.line),
+    tally.issue('doctype', 'The file declares a document type, which GPX has not; it is not used.', line()),
   );
   let tooDeep = 0;
   parser.on('opentag', (tag) => {
     if (tooDeep > 0 || walk.depth >= DEEPEST) tooDeep++;
-    else walk.open(tag, parser.line);
-    if (tooDeep === 1) tally.notice('too deep', parser.line);
+    else walk.open(tag, line());
+    if (tooDeep === 1) tally.notice('too deep', line());
   });
   parser.on('closetag', () => {
     if (tooDeep > 0) tooDeep--;

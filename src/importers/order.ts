@@ -9,7 +9,7 @@
  */
 export function longestOrdered(time: Float64Array): Uint32Array {
   const n = time.length;
-  if (isOrdered(time)) return Uint32Array.from({ length: n }, (_, i) => i);
+  if (isOrdered(time)) return new Uint32Array(n).map((_, i) => i);
   const before = new Int32Array(n);
   const ends = new Int32Array(n);
   let longest = 0;

@@ -18,6 +18,17 @@ export class GrowingColumn {
     this.#blocks[block][row & (BLOCK - 1)] = value;
   }
 
+  /** The values of some rows, in their order. */
+  pick(rows: Uint32Array): Float64Array {
+    const values = new Float64Array(rows.length);
+    for (let i = 0; i < rows.length; i++) {
+      const row = rows[i];
+      const block = this.#blocks[row >>> 15];
+      values[i] = block ? block[row & (BLOCK - 1)] : this.#fill;
+    }
+    return values;
+  }
+
   get(row: number): number {
     const block = this.#blocks[row >>> 15];
     return block ? block[row & (BLOCK - 1)] : this.#fill;
@@ -35,6 +46,8 @@ export class LogRows {
   readonly #columns = new Map<Channel, GrowingColumn>();
   readonly #pieces: number[] = [];
   #length = 0;
+  /** Rows were added without a time. */
+  untimed = 0;
 
   get length(): number {
     return this.#length;
@@ -43,6 +56,7 @@ export class LogRows {
   /** Adds a row that stands for one record. */
   add(time: number, line: number): number {
     const row = this.#length++;
+    if (Number.isNaN(time)) this.untimed++;
     this.#time.set(row, time);
     this.#line.set(row, line);
     return row;
@@ -90,6 +104,11 @@ export class LogRows {
 
   time(row: number): number {
     return this.#time.get(row);
+  }
+
+  /** Times of some rows, in their order. */
+  times(rows: Uint32Array): Float64Array {
+    return this.#time.pick(rows);
   }
 
   setTime(row: number, time: number): void {

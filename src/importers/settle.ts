@@ -26,7 +26,7 @@ export function settle(rows: LogRows, tally: Tally, name: string, lead?: Growing
   const stamped = keepOrder(rows, stampedRows(rows, tally), tally);
   const anchors = resolveStamps(rows, stamped, tally);
   tellSteps(tally);
-  const placed = placeBetween(rows, anchors, tally, lead);
+  const placed = rows.untimed > 0 ? placeBetween(rows, anchors, tally, lead) : anchors;
   return gather(rows, placed, name);
 }
 
@@ -53,7 +53,7 @@ function stampedRows(rows: LogRows, tally: Tally): Uint32Array {
     const start = n;
     for (let row = piece.from; row < piece.to; row++) if (!Number.isNaN(rows.time(row))) stamped[n++] = row;
     const part = stamped.subarray(start, n);
-    if (piece.last < piece.first && isReversed(Float64Array.from(part, (row) => rows.time(row)))) {
+    if (piece.last < piece.first && isReversed(rows.times(part))) {
       part.reverse();
       tally.issue('order-reversed', 'The log is written newest first; it is read from its end.', rows.line(piece.from));
     }
@@ -63,7 +63,7 @@ function stampedRows(rows: LogRows, tally: Tally): Uint32Array {
 
 /** Leaves out the rows whose time goes back. */
 function keepOrder(rows: LogRows, stamped: Uint32Array, tally: Tally): Uint32Array {
-  const kept = longestOrdered(Float64Array.from(stamped, (row) => rows.time(row)));
+  const kept = longestOrdered(rows.times(stamped));
   if (kept.length === stamped.length) return stamped;
   let k = 0;
   for (let i = 0; i < stamped.length; i++) {
@@ -86,32 +86,41 @@ function tellSteps(tally: Tally): void {
 
 /** The columns, and the breaks where a row is of another piece than the row before it. */
 function gather(rows: LogRows, placed: Uint32Array, name: string): Settled {
-  const channels = rows.channels;
   let kept = 0;
-  const order = placed.filter((row) => {
-    kept += rows.records(row);
-    return channels.some((channel) => !Number.isNaN(rows.get(channel, row)));
-  });
-  const time = Float64Array.from(order, (row) => rows.time(row));
-  const breaks = findBreaks(order, rows.pieces);
+  for (let i = 0; i < placed.length; i++) kept += rows.records(placed[i]);
+  const order = withValues(rows, placed);
+  const time = rows.times(order);
   const columns: Partial<Record<Channel, Float64Array>> = {};
   const windy = new Uint8Array(order.length);
-  for (const channel of channels) {
-    const column = rows.column(channel);
-    const values = new Float64Array(order.length);
-    let present = 0;
-    for (let i = 0; i < order.length; i++) {
-      values[i] = column.get(order[i]);
-      if (Number.isNaN(values[i])) continue;
-      present++;
-      if (WIND.includes(channel)) windy[i] = 1;
-    }
-    if (present > 0) columns[channel] = values;
+  for (const channel of rows.channels) {
+    const values = rows.column(channel).pick(order);
     rows.release(channel);
+    const present = markPresent(values, WIND.includes(channel) ? windy : undefined);
+    if (present > 0) columns[channel] = values;
   }
-  const recording = createRecording({ name, time, channels: columns, breaks });
-  const fixes = columns.lat ? columns.lat.reduce((n, φ) => (Number.isNaN(φ) ? n : n + 1), 0) : 0;
+  const recording = createRecording({ name, time, channels: columns, breaks: findBreaks(order, rows.pieces) });
+  const fixes = columns.lat ? markPresent(columns.lat) : 0;
   return { recording, kept, fixes, samples: windy.reduce((n, one) => n + one, 0) };
+}
+
+/** Counts the values that are there, and marks their rows. */
+function markPresent(values: Float64Array, marks?: Uint8Array): number {
+  let present = 0;
+  for (let i = 0; i < values.length; i++) {
+    if (Number.isNaN(values[i])) continue;
+    present++;
+    if (marks) marks[i] = 1;
+  }
+  return present;
+}
+
+/** The rows that hold a value at all: a row of a clock sentence holds none. */
+function withValues(rows: LogRows, placed: Uint32Array): Uint32Array {
+  const some = new Uint8Array(placed.length);
+  for (const channel of rows.channels) {
+    if (markPresent(rows.column(channel).pick(placed), some) === placed.length) return placed;
+  }
+  return placed.filter((_, i) => some[i] === 1);
 }
 
 function findBreaks(order: Uint32Array, pieces: readonly number[]): number[] {

@@ -59,16 +59,20 @@ export function carriesZone(text: string): boolean {
  * @returns UTC epoch seconds; a time without a zone counts as if it were UTC (see carriesZone); NaN when not
  *   understood.
  */
-export function readIso(text: string): number {
-  const days = daysFromCivil(digits(text, 0, 4), digits(text, 5, 7), digits(text, 8, 10));
-  const separator = text.charCodeAt(10);
-  const dashes = text.charCodeAt(4) === 45 && text.charCodeAt(7) === 45;
+export function readIso(text: string, start = 0, stop = text.length): number {
+  const days = daysFromCivil(
+    digits(text, start, start + 4),
+    digits(text, start + 5, start + 7),
+    digits(text, start + 8, start + 10),
+  );
+  const separator = text.charCodeAt(start + 10);
+  const dashes = text.charCodeAt(start + 4) === 45 && text.charCodeAt(start + 7) === 45;
   if (Number.isNaN(days) || !dashes || (separator !== 84 && separator !== 32 && separator !== 116)) return NaN;
-  const clock = readClock(text, 11);
-  if (Number.isNaN(clock)) return NaN;
-  const zone = endOfClock(text, 11);
+  const clock = readClock(text, start + 11);
+  const zone = endOfClock(text, start + 11);
+  if (Number.isNaN(clock) || zone > stop) return NaN;
   const seconds = days * DAY + clock;
-  return zone === text.length ? seconds : seconds - readOffset(text, zone);
+  return zone === stop ? seconds : seconds - readOffset(text, zone, stop);
 }
 
 /**
@@ -99,15 +103,15 @@ function endOfClock(text: string, from: number): number {
 }
 
 /** Seconds east of UTC written at the end of a time: `Z`, `+hh:mm`, `+hhmm`, `+hh`. NaN when it is none of these. */
-function readOffset(text: string, at: number): number {
+function readOffset(text: string, at: number, stop: number): number {
   const first = text.charCodeAt(at);
-  if ((first === 90 || first === 122) && text.length === at + 1) return 0;
-  if (first === 32) return readOffset(text, at + 1);
+  if ((first === 90 || first === 122) && stop === at + 1) return 0;
+  if (first === 32) return readOffset(text, at + 1, stop);
   if (first !== 43 && first !== 45) return NaN;
   const colon = text.charCodeAt(at + 3) === 58 ? 1 : 0;
   const hours = digits(text, at + 1, at + 3);
-  const minutes = text.length === at + 3 ? 0 : digits(text, at + 3 + colon, at + 5 + colon);
-  const whole = text.length === at + 3 || text.length === at + 5 + colon;
+  const minutes = stop === at + 3 ? 0 : digits(text, at + 3 + colon, at + 5 + colon);
+  const whole = stop === at + 3 || stop === at + 5 + colon;
   if (!whole || !(hours <= 18 && minutes <= 59)) return NaN;
   const offset = hours * 3600 + minutes * 60;
   return first === 45 ? -offset : offset;
