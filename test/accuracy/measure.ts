@@ -107,7 +107,7 @@ export function measure(result: Result, series: RaceSeries, truth: Truth, into: 
       into,
       'lag s',
       lag === null ? null : { value: lag, se: null, basis: 'derived' },
-      truth.station.late,
+      trueLag(truth),
       truth,
       '',
     );
@@ -126,6 +126,27 @@ function correction(into: Measured, key: Correction, q: Q, true_: number, truth:
 }
 
 const raceOf = (truth: Truth): string => `${truth.condition}/${truth.seed}`;
+
+/**
+ * By how much the station's log is behind the wind at the boats, as a debrief that knows no more must find it: its late
+ * stamps, and where its place is not told the way of the wind between the two, meant over settled sailing. [s]
+ */
+export function trueLag(truth: Truth): number {
+  const station = truth.station!;
+  if (!station.carried || station.placed) return station.late;
+  const up = [Math.sin((truth.twd * Math.PI) / 180), Math.cos((truth.twd * Math.PI) / 180)] as const;
+  const ahead = (x: number, y: number): number => x * up[0] + y * up[1];
+  let sum = 0;
+  let n = 0;
+  for (const boat of truth.boats) {
+    for (let i = 0; i < boat.n; i++) {
+      if (!boat.settled[i]) continue;
+      sum += ahead(boat.x[i], boat.y[i]) - ahead(station.x, station.y);
+      n += 1;
+    }
+  }
+  return station.late + sum / n / truth.tws;
+}
 
 /** Seconds by which the debrief says the station's log is late; null when it says nothing. */
 export function statedLag(result: Result): number | null {
@@ -166,8 +187,10 @@ function measureTacks(found: BoatResult, boat: TrueBoat, truth: Truth, into: Mea
     into.tacks.hits += 1;
     into.tacks.timeErrors.push(seconds(claimed[best].time) - tack.time);
     const loss = claimed[best].loss_m;
-    if (loss) {
-      const error = loss.value - trueTackLoss(boat, tack);
+    const lost = trueTackLoss(boat, tack);
+    // A tack between two others has no settled sailing beside it to say what it cost.
+    if (loss && !Number.isNaN(lost)) {
+      const error = loss.value - lost;
       const se = loss.se;
       into.tacks.losses.push({
         race: raceOf(truth),

@@ -1,14 +1,14 @@
 /**
- * Prints how accurate the program is, as Markdown tables: `npm run accuracy -- [--long] [--only NAME] [--own]`.
- * `--only` takes a part of a condition's name and may be repeated; `--own` measures over the seconds the debrief
- * itself called settled.
+ * Prints how accurate the program is, as Markdown tables: `npm run accuracy -- [--long] [--only NAME]`; `--only`
+ * takes a part of a condition's name and may be repeated. bias to max: over the truth's own settled seconds; own: mean
+ * size over the seconds the debrief called settled; err/se: root mean square of that error over the stated one.
  */
 import { TRIALS } from './conditions.js';
 import { CORRECTIONS, QUANTITIES, type Measured } from './measure.js';
 import { meanExcess, runTrial, type Run } from './run.js';
 import { f1, summarise, summariseSamples, type Summary } from './summary.js';
 
-const HEAD = ['quantity', 'n', 'null', 'bias', 'mean', 'p50', 'p90', 'max', 'rms err/se', 'with sys'];
+const HEAD = ['quantity', 'n', 'null', 'bias', 'mean', 'p50', 'p90', 'max', 'own', 'err/se', 'with sys'];
 
 function table(rows: readonly (readonly string[])[]): string {
   const width = HEAD.map((head, k) => Math.max(head.length, ...rows.map((row) => row[k].length)));
@@ -20,20 +20,20 @@ function table(rows: readonly (readonly string[])[]): string {
 
 const figure = (x: number): string => (Number.isFinite(x) ? x.toFixed(2) : '-');
 
-function row(name: string, s: Summary, nulls: number): string[] {
-  const figures = [s.bias, s.mean, s.p50, s.p90, s.max, s.ratio, s.ratioSys].map(figure);
+function row(name: string, s: Summary & { own?: number }, nulls: number): string[] {
+  const figures = [s.bias, s.mean, s.p50, s.p90, s.max, s.own ?? NaN, s.ratio, s.ratioSys].map(figure);
   return [name, String(s.n), String(nulls), ...figures];
 }
 
-function rowsOf(m: Measured, own: boolean): string[][] {
-  const rows = QUANTITIES.map((q) => row(q, summariseSamples(m.quantities[q], own), m.nulls[q]));
-  rows.push(row('wind direction', summariseSamples(m.direction, own), 0));
+function rowsOf(m: Measured): string[][] {
+  const rows = QUANTITIES.map((q) => row(q, summariseSamples(m.quantities[q]), m.nulls[q]));
+  rows.push(row('wind direction', summariseSamples(m.direction), 0));
   for (const c of CORRECTIONS) {
     const { samples, nulls } = m.corrections[c];
-    if (samples.length + nulls > 0) rows.push(row(c, summariseSamples(samples, own), nulls));
+    if (samples.length + nulls > 0) rows.push(row(c, summariseSamples(samples), nulls));
   }
   rows.push(row('tack time s', summarise(m.tacks.timeErrors), m.tacks.missed));
-  rows.push(row('tack loss m', summariseSamples(m.tacks.losses, own), m.tacks.hits - m.tacks.losses.length));
+  rows.push(row('tack loss m', summariseSamples(m.tacks.losses), m.tacks.hits - m.tacks.losses.length));
   rows.push(row('leg start s', summarise(m.legs.startErrors), m.legs.missed));
   rows.push(row('leg end s', summarise(m.legs.endErrors), m.legs.missed));
   return rows;
@@ -50,7 +50,6 @@ function excessLines(run: Run): string {
 
 async function main(args: readonly string[]): Promise<void> {
   const long = args.includes('--long');
-  const own = args.includes('--own');
   const only = args.filter((_, i) => args[i - 1] === '--only');
   for (const trial of TRIALS) {
     const { name } = trial.condition;
@@ -65,7 +64,7 @@ async function main(args: readonly string[]): Promise<void> {
         `legs ${legs.found} found, ${legs.missed} missed, ${legs.extra} extra\n`,
     );
     for (const line of run.failed) console.log(`FAILED ${line}\n`);
-    console.log(table(rowsOf(measured, own)));
+    console.log(table(rowsOf(measured)));
     if (Object.keys(trial.condition.faults).length > 0) console.log(`\n${excessLines(run)}`);
   }
 }

@@ -15,6 +15,9 @@ export interface Summary {
   readonly ratioSys: number;
 }
 
+/** Errors that exist: where the truth has no settled sailing (one tack hardly sailed) there is nothing to err from. */
+const known = (values: readonly number[]): number[] => values.filter((v) => !Number.isNaN(v));
+
 const average = (values: readonly number[]): number =>
   values.length > 0 ? values.reduce((sum, v) => sum + v, 0) / values.length : NaN;
 
@@ -23,7 +26,8 @@ function quantile(sorted: readonly number[], p: number): number {
   return sorted.length > 0 ? sorted[Math.max(0, Math.ceil(p * sorted.length) - 1)] : NaN;
 }
 
-export function summarise(errors: readonly number[]): Summary {
+export function summarise(all: readonly number[]): Summary {
+  const errors = known(all);
   const sizes = errors.map(Math.abs).sort((a, b) => a - b);
   return {
     n: errors.length,
@@ -37,15 +41,18 @@ export function summarise(errors: readonly number[]): Summary {
   };
 }
 
-/** `own`: over the seconds the debrief called settled, instead of the truth's. */
-export function summariseSamples(samples: readonly Sample[], own: boolean): Summary {
-  const pick = (s: Sample): number => (own ? s.errorOwn : s.error);
-  const stated = samples.filter((s) => s.se !== null && s.se > 0 && !Number.isNaN(pick(s)));
+/**
+ * Sizes over the truth's own settled seconds; `own` the mean size over the seconds the debrief called settled. The
+ * ratios take those too: a stated error is of the value as sailed in that stretch.
+ */
+export function summariseSamples(samples: readonly Sample[]): Summary & { readonly own: number } {
+  const stated = samples.filter((s) => s.se !== null && s.se > 0 && Number.isFinite(s.errorOwn));
   const rms = (ratio: (s: Sample) => number): number => Math.sqrt(average(stated.map((s) => ratio(s) ** 2)));
   return {
-    ...summarise(samples.map(pick)),
-    ratio: rms((s) => pick(s) / s.se!),
-    ratioSys: rms((s) => pick(s) / Math.hypot(s.se!, s.sys)),
+    ...summarise(samples.map((s) => s.error)),
+    own: average(known(samples.map((s) => Math.abs(s.errorOwn)))),
+    ratio: rms((s) => s.errorOwn / s.se!),
+    ratioSys: rms((s) => s.errorOwn / Math.hypot(s.se!, s.sys)),
   };
 }
 

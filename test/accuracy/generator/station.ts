@@ -26,6 +26,8 @@ export function drawStation(condition: Condition, wind: Wind, chance: Chance): T
     direction: mounting + condition.stationOff,
     speed: 1 + calibration,
     late: condition.stationLate,
+    carried: condition.station === 'away',
+    placed: condition.stationPlaced,
     x: middle * Math.sin(up) + away * Math.cos(angle),
     y: middle * Math.cos(up) + away * Math.sin(angle),
   };

@@ -113,6 +113,9 @@ export interface Truth {
     readonly late: number;
     readonly x: number;
     readonly y: number;
+    /** The wind reaches station and boats at different times; its place is told in the race file. */
+    readonly carried: boolean;
+    readonly placed: boolean;
   } | null;
   /** Where the water flows to. East, north. [m/s] */
   readonly current: { readonly east: number; readonly north: number };
