@@ -188,6 +188,7 @@ function tackPins(boat: BoatSeries, index: number, view: MapView): string[] {
   const { colour } = boatPaint(index);
   return boat.manoeuvres.flatMap((m, k) => {
     if (m.kind !== 'tack' && m.kind !== 'gybe') return [];
+    if (boat.legs.length > 0 && !boat.legs.some((l) => m.at >= l.from && m.at <= l.to)) return [];
     const place = { x: boat.x[m.at], y: boat.y[m.at] };
     if (!Number.isFinite(place.x)) return [];
     const shape =

@@ -28,6 +28,9 @@ const NOTHING: Reading = {
   twd: NaN, tws: NaN, beta: NaN, aws: NaN, leg: '–', doing: 'not sailing',
 }; // prettier-ignore
 
+/** Below this no leeway is shown: the course is mostly the receiver's error. Common practice, no source. [kn] */
+const LEAST_LEEWAY_SPEED = 1;
+
 export function readingAt(race: Race, boat: Boat, time: number): Reading {
   const i = rowAt(race, boat, time);
   if (i < 0) return NOTHING;
@@ -38,7 +41,9 @@ export function readingAt(race: Race, boat: Boat, time: number): Reading {
   const side = gamma > 0 ? 1 : -1;
   const logged = Number.isFinite(c.heading[i]!);
   const mean = leg?.facts.leeway ?? NaN;
-  const leeway = logged ? side * turn(course, c.heading[i]!) : mean;
+  // A boat that hardly moves has a bow and a drift, but no leeway.
+  const slow = !(toKnots(c.speed[i]) >= LEAST_LEEWAY_SPEED);
+  const leeway = slow ? NaN : logged ? side * turn(course, c.heading[i]) : mean;
   const bow = logged ? c.heading[i]! : Number.isFinite(mean) ? wrap360(course + side * mean) : course;
   return {
     x: c.x[i]!, y: c.y[i]!, course, bow, bowLogged: logged, leeway,

@@ -135,7 +135,8 @@ function optionsFor(panel: Panel, race: Race, store: Store, clock: Clock, width:
     ticks: { stroke: () => paint(RULE), width: 1 },
     font,
   };
-  const write = (v: number): string => localNumber(panel.key === 'direction' ? wrap360(v) : v, 0);
+  const write = (v: number, step: number): string =>
+    localNumber(panel.key === 'direction' ? wrap360(v) : v, step % 1 === 0 ? 0 : 1);
   return {
     width,
     height: window.innerWidth < 640 ? 118 : 138,
@@ -158,7 +159,7 @@ function optionsFor(panel: Panel, race: Race, store: Store, clock: Clock, width:
           ticks.map((t) => clock.write(t, u.scales.x!.max! - u.scales.x!.min! < 300 ? 'hms' : 'hm')),
         incrs: [1, 5, 10, 30, 60, 120, 300, 600, 900, 1800, 3600, 7200, 14400],
       },
-      { ...axis, size: 42, gap: 4, values: (_u, ticks) => ticks.map(write) },
+      { ...axis, size: 42, gap: 4, values: (_u, ticks, _axis, _space, step) => ticks.map((v) => write(v, step)) },
     ],
     hooks: {
       setCursor: [(u) => hovered(u, store)],
