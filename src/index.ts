@@ -101,3 +101,7 @@ export const demoFiles = async (): Promise<ReadonlyMap<string, string>> =>
 /** Names of the built-in boats. */
 export const builtInBoats = async (): Promise<string[]> =>
   (await import('./physics/built-in.js')).BUILT_IN_BOATS.map((boat) => boat.name);
+
+export const seasonPage = async (
+  ...args: Parameters<typeof import('./report/season-page.js').seasonPage>
+): Promise<string> => (await import('./report/season-page.js')).seasonPage(...args);

@@ -12,6 +12,8 @@ export type Source =
 
 const RACE_FILES = ['.yaml', '.yml', '.json'];
 const LOG_FILES = ['.gpx', '.nmea', '.csv', '.tsv', '.txt', '.log', '.gz', '.zip', '.dat'];
+/** The same in a folder, where texts of other kinds lie about. */
+const CLEARLY_LOGS = LOG_FILES.filter((extension) => extension !== '.txt' && extension !== '.dat');
 /** Looked for where no INPUT is given. */
 const DEFAULT_FILES = ['race.yaml', 'race.yml', 'race.json'];
 
@@ -133,7 +135,7 @@ async function folderSources(folder: string): Promise<Source[]> {
     if (name !== 'node_modules' && (await kindOf(path)) === 'folder') below.push(...(await raceFilesIn(path)));
   }
   if (below.length > 0) return below;
-  const logs = (await namesIn(folder)).filter((name) => LOG_FILES.includes(extname(name).toLowerCase()));
+  const logs = (await namesIn(folder)).filter((name) => CLEARLY_LOGS.includes(extname(name).toLowerCase()));
   if (logs.length > 0) return [{ kind: 'logs', paths: logs.map((name) => join(folder, name)) }];
   throw unusable(`${forMessages(folder)}: a folder without a race file and without logs.`, 'Name the files.');
 }

@@ -4,6 +4,7 @@ import { debriefCommand } from './debrief.js';
 import { demoCommand } from './demo.js';
 import { inspectCommand } from './inspect.js';
 import { optimumCommand } from './optimum.js';
+import { seasonCommand } from './season.js';
 import { programVersion } from './version.js';
 
 const EXAMPLE = `
@@ -24,7 +25,7 @@ export function makeProgram(): Command {
     .helpCommand('help [COMMAND]', 'print help for a command')
     .addHelpText('after', EXAMPLE)
     .configureHelp({ helpWidth: 100 });
-  for (const add of [debriefCommand, compareCommand, inspectCommand, optimumCommand, demoCommand]) {
+  for (const add of [debriefCommand, compareCommand, seasonCommand, inspectCommand, optimumCommand, demoCommand]) {
     const command = add(program);
     const name = command.name();
     command.helpOption('-h, --help', 'print help').showHelpAfterError(`legwork ${name} --help shows the options.`);
