@@ -59,7 +59,8 @@ export async function compare(
   return { result: { ...result, pairs, warnings }, series, comparisons, ladders };
 }
 
-function betweenBoat(series: BoatSeries, result: BoatResult, marks: readonly MarkPlace[]): BetweenBoat {
+/** A boat of a debrief as comparisons see it. */
+export function betweenBoat(series: BoatSeries, result: BoatResult, marks: readonly MarkPlace[]): BetweenBoat {
   const { name, t0, n, x, y, ux, uy, twd, tws, settled, gamma } = series;
   const windward = marks.find(({ role }) => role === 'windward')?.places ?? [];
   const distance = (i: number): number => Math.min(...windward.map((mark) => Math.hypot(x[i] - mark.x, y[i] - mark.y)));

@@ -71,19 +71,3 @@ function correct(sums: PooledSums, last: number): number[] {
   const v = Math.max(0, total / n / Math.max(0.2, 1 - weight / n));
   return raw.slice(1, last + 1).map((covariance) => (covariance + v) / (raw[0] + v));
 }
-
-/**
- * How many blocks one independent block is worth: n Var(mean)/variance of a block.
- *   J = 1 + 2 sum over k of (1 - k/n) r_k
- *
- * @param n            Blocks.
- * @param correlations At lags 1, 2, ...
- * @returns J [>= 1]
- */
-export function redundancy(n: number, correlations: readonly number[]): number {
-  let sum = 1;
-  correlations.forEach((r, index) => {
-    if (index + 1 < n) sum += 2 * (1 - (index + 1) / n) * r;
-  });
-  return sum;
-}

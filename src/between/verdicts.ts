@@ -1,7 +1,7 @@
 import { holm } from '../math/holm.js';
-import { autocovariance } from '../math/stats.js';
 import { studentTwoSided } from '../math/student.js';
-import { pooledCorrelations, redundancy } from './fleet-noise.js';
+import { pooledCorrelations } from './fleet-noise.js';
+import { redundancy, varianceOfMean } from './redundancy.js';
 import type { PairComparison } from './pairs.js';
 import type { SamplingMean } from './sampling.js';
 
@@ -48,8 +48,9 @@ function fleetChances(comparisons: readonly PairComparison[], kind: (typeof KIND
 /** n blocks are worth n/J: that many degrees of freedom, and a variance of the mean of J/n of a block's. */
 function withFleetNoise(own: SamplingMean, values: readonly number[], correlations: readonly number[]): number {
   if (Number.isNaN(own.p)) return NaN;
-  const share = redundancy(values.length, correlations) / values.length;
-  const variance = (autocovariance(values, 0) * share) / Math.max(0.2, 1 - share);
-  const se = Math.max(own.se, Math.sqrt(variance));
-  return studentTwoSided(own.value / se, Math.max(1, Math.min(own.freedom, 1 / share - 1)));
+  const se = Math.max(own.se, Math.sqrt(varianceOfMean(values, correlations)));
+  return studentTwoSided(
+    own.value / se,
+    Math.max(1, Math.min(own.freedom, values.length / redundancy(values.length, correlations) - 1)),
+  );
 }

@@ -77,6 +77,12 @@ describe('intervals', () => {
       expect(covered(equal, kind, 0)).toBeLessThanOrEqual(99);
     }
   });
+  it('hold for helms that wander faster and slower', () => {
+    for (const memory of [45, 120]) {
+      const pairs = compareSeeds(60, single({}, { memory }));
+      for (const kind of ['vmg', 'height', 'speed'] as const) expect(verdicts(pairs, kind)).toBeLessThanOrEqual(6);
+    }
+  });
   it('hold for three beats on end and for half a beat', () => {
     for (const minutes of [6, 36]) {
       const pairs = compareSeeds(60, single({}, { minutes }));

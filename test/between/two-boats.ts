@@ -23,7 +23,7 @@ export interface Beat {
   readonly clock?: readonly number[];
   /** Whether each boat tacks when it likes (default) or all together. */
   readonly together?: boolean;
-  /** Memory of the slow wander of each helm's target, 60 s when left out: it is elsewhere in about 3 minutes. [s] */
+  /** Memory of the slow wander of each helm's target, 90 s when left out: it is elsewhere in 4 minutes. [s] */
   readonly memory?: number;
 }
 
@@ -85,7 +85,7 @@ export function sailBeat(beat: Beat): BetweenBoat[] {
     const lag = beat.together ? 0 : Math.round(20 * random());
     const like = beat.decorrelation ? Math.exp(-(beat.apart ?? 0) / beat.decorrelation) : 1;
     const local = localWind(random, n, common, like);
-    const sailed = sail(random, n, truth, local, plan, lag, beat.memory ?? 60);
+    const sailed = sail(random, n, truth, local, plan, lag, beat.memory ?? 90);
     const clock = beat.clock?.[index] ?? 0;
     return record(random, n, sailed, common, station, index * (beat.apart ?? 20), `Boat ${index + 1}`, clock);
   });
