@@ -74,6 +74,8 @@ export interface Problem {
   /** Cluster of each residual: residuals of one cluster may hang together. Default: each its own. */
   readonly clusters?: ArrayLike<number>;
   readonly maxRounds?: number;
+  /** Ends when a step is below this share of a standard error, all parameters together. Default: a millionth. */
+  readonly tolerance?: number;
 }
 
 export interface Fit {
@@ -108,7 +110,7 @@ export interface Fit {
  * [3] K.-Y. Liang, S. L. Zeger, Biometrika 73, 1986, 13-22.
  */
 export function fitLeastSquares(problem: Problem): Fit {
-  const { mean, maxRounds = 60 } = problem;
+  const { mean, maxRounds = 60, tolerance = 1e-6 } = problem;
   let parameters = Float64Array.from(problem.start ?? mean);
   let state = costAt(problem, parameters);
   let damping = 1e-3;
@@ -127,8 +129,7 @@ export function fitLeastSquares(problem: Problem): Fit {
       if (!step) break;
       const trial = parameters.map((value, i) => value + step[i]);
       const next = costAt(problem, trial);
-      // Far below what the data can tell: a millionth of a standard error, all parameters together.
-      const small = quadratic(normal, step) < 1e-12;
+      const small = quadratic(normal, step) < tolerance * tolerance;
       if (next.total <= state.total) {
         [parameters, state, improved] = [trial, next, true];
         damping = Math.max(damping / 10, 1e-12);

@@ -1,0 +1,112 @@
+/**
+ * Leeway, by every way the log allows: from the heading, from the masthead angle, from the balance of forces.
+ */
+import { achieved } from '../physics/achieved.js';
+import type { ForceModel } from '../physics/balance.js';
+import { apparentWind } from '../physics/triangle.js';
+
+/** Means of a stretch of steady sailing; NaN = not known. Angles are magnitudes. */
+export interface LeewayInput {
+  /** Speed through the water, true wind at the rig. [m/s] */
+  readonly speed: number;
+  readonly tws: number;
+  /** Course to true wind. [deg] */
+  readonly gamma: number;
+  /** Bow to true wind, from the corrected heading. [deg] */
+  readonly bowAngle: number;
+  /** Bow to apparent wind, from the corrected masthead. [deg] */
+  readonly mastheadAngle: number;
+}
+
+export type LeewayWay = 'heading' | 'masthead' | 'forces';
+
+export interface LeewayEstimate {
+  /** Positive to leeward. [deg] */
+  readonly value: number;
+  readonly se: number;
+  /** Best evidence it rests on. */
+  readonly basis: 'measured' | 'derived' | 'inferred';
+  readonly ways: readonly {
+    readonly way: LeewayWay;
+    readonly value: number;
+    readonly se: number;
+    readonly weight: number;
+  }[];
+  /** True where the boat was faster than the model can be, so that the forces say nothing. */
+  readonly beatsModel: boolean;
+}
+
+/** What the boat model's leeway is good to as a share of itself: foil slope and rig, common practice, no source. */
+const MODEL_SHARE = 0.12;
+
+const INPUTS = ['speed', 'tws', 'gamma', 'bowAngle', 'mastheadAngle'] as const;
+const BASIS = { heading: 'measured', masthead: 'derived', forces: 'inferred' } as const;
+
+/**
+ * Leeway of a stretch of steady sailing.
+ *
+ *     by heading    lambda = gamma - (true wind off the bow)
+ *     by masthead   lambda = beta - (apparent wind off the bow)
+ *     by forces     lambda = Y / (q A a), Y from the two force equations
+ *
+ * Each is carried with its errors, by finite differences through the same inputs; they are combined by inverse
+ * variance, and the error of the mean counts what they share (an error of gamma is in all three).
+ *
+ * @param model  Boat; null: no forces.
+ * @param input  Means, offsets already added. [m/s, deg]
+ * @param errors Standard error of each input. [m/s, deg]
+ * @returns Leeway [deg], or null where no way is open.
+ */
+export function leewayOfSailing(
+  model: ForceModel | null,
+  input: LeewayInput,
+  errors: LeewayInput,
+): LeewayEstimate | null {
+  const solved = model ? achieved(model, input) : null;
+  const all: readonly { way: LeewayWay; at: (input: LeewayInput) => number; own: number }[] = [
+    { way: 'heading', at: byHeading, own: 0 },
+    { way: 'masthead', at: byMasthead, own: 0 },
+    { way: 'forces', at: (x) => byForces(model, x), own: MODEL_SHARE * Math.abs(byForces(model, input)) },
+  ];
+  const ways = all
+    .map((one) => ({ ...one, value: one.at(input), slopes: INPUTS.map((key) => reach(one.at, input, errors, key)) }))
+    .map((one) => ({ ...one, se: Math.hypot(one.own, ...one.slopes) }))
+    .filter((one) => Number.isFinite(one.value + one.se) && one.se > 0);
+  const beatsModel = solved !== null && solved.margin < 0;
+  if (ways.length === 0) return null;
+  const total = ways.reduce((sum, one) => sum + 1 / one.se ** 2, 0);
+  const weights = ways.map((one) => 1 / one.se ** 2 / total);
+  const value = ways.reduce((sum, one, k) => sum + weights[k] * one.value, 0);
+  const shared = INPUTS.map((_, j) => ways.reduce((sum, one, k) => sum + weights[k] * one.slopes[j], 0));
+  const own = ways.map((one, k) => weights[k] * one.own);
+  return {
+    value,
+    se: Math.hypot(...shared, ...own),
+    basis: BASIS[ways[0].way],
+    ways: ways.map(({ way, value: one, se }, k) => ({ way, value: one, se, weight: weights[k] })),
+    beatsModel,
+  };
+}
+
+const byHeading = (x: LeewayInput): number => x.gamma - x.bowAngle;
+
+const byMasthead = (x: LeewayInput): number => apparentWind(x.speed, x.tws, x.gamma).beta - x.mastheadAngle;
+
+const byForces = (model: ForceModel | null, x: LeewayInput): number =>
+  model ? (achieved(model, x).eased?.leeway ?? NaN) : NaN;
+
+/** By how much one standard error of an input moves a result; one-sided where only one side has a result. */
+function reach(
+  at: (x: LeewayInput) => number,
+  input: LeewayInput,
+  errors: LeewayInput,
+  key: (typeof INPUTS)[number],
+): number {
+  const step = errors[key];
+  if (!(step > 0) || Number.isNaN(input[key])) return 0;
+  const up = at({ ...input, [key]: input[key] + step });
+  const down = at({ ...input, [key]: input[key] - step });
+  if (Number.isFinite(up) && Number.isFinite(down)) return (up - down) / 2;
+  const here = at(input);
+  return Number.isFinite(up) ? up - here : here - down;
+}
