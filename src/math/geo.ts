@@ -126,30 +126,32 @@ export function shortLine(
   return { distance: Math.hypot(east, north), direction: direction < 0 ? direction + 360 : direction };
 }
 
+/** Positions beyond these quantiles do not count for the middle: fixes far away, at 0, 0 for instance. */
+const TAIL = 0.05;
+/** So many positions, evenly spread, say where a course lies. */
+const LOOKED_AT = 4000;
+
 /**
- * The middle of the box that holds all positions: a good origin for one course.
+ * The middle of the box that holds nearly all positions: a good origin for one course.
  *
  * @param lat Latitudes; NaN skipped. [deg]
  * @param lon Longitudes; NaN skipped. [deg]
- * @returns The middle, or null without a position. [deg]
+ * @returns The middle between the 5th and the 95th percentile, or null without a position. [deg]
  */
 export function middleOf(lat: ArrayLike<number>, lon: ArrayLike<number>): { lat: number; lon: number } | null {
-  let south = Infinity;
-  let north = -Infinity;
-  let west = Infinity;
-  let east = -Infinity;
-  let first = NaN;
-  for (let i = 0; i < lat.length; i++) {
-    const φ = lat[i];
-    const λ = lon[i];
-    if (Number.isNaN(φ) || Number.isNaN(λ)) continue;
-    if (Number.isNaN(first)) first = λ;
-    const from = wrap180(λ - first);
-    if (φ < south) south = φ;
-    if (φ > north) north = φ;
-    if (from < west) west = from;
-    if (from > east) east = from;
-  }
-  if (Number.isNaN(first)) return null;
-  return { lat: (south + north) / 2, lon: wrap180(first + (west + east) / 2) };
+  const rows: number[] = [];
+  for (let i = 0; i < lat.length; i++) if (!Number.isNaN(lat[i]) && !Number.isNaN(lon[i])) rows.push(i);
+  if (rows.length === 0) return null;
+  const stride = Math.max(1, Math.floor(rows.length / LOOKED_AT));
+  const some = rows.filter((_, k) => k % stride === 0);
+  const first = lon[some[some.length >> 1]];
+  const north = middleQuantile(some.map((i) => lat[i]));
+  const east = middleQuantile(some.map((i) => wrap180(lon[i] - first)));
+  return { lat: north, lon: wrap180(first + east) };
+}
+
+function middleQuantile(values: number[]): number {
+  values.sort((a, b) => a - b);
+  const tail = Math.round(TAIL * (values.length - 1));
+  return (values[tail] + values[values.length - 1 - tail]) / 2;
 }

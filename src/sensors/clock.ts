@@ -81,8 +81,10 @@ function findAnchor(logs: readonly ClockedLog[]): ClockedLog | undefined {
   return best;
 }
 
+/** From when to when a log goes; a few rows with a wrong date at its ends do not count. */
 function span({ recording: { time } }: ClockedLog): readonly [number, number] {
-  return [time[0], time[time.length - 1]];
+  const tail = Math.round(0.005 * (time.length - 1));
+  return [time[tail], time[time.length - 1 - tail]];
 }
 
 /** Share of the shorter of two logs that lies within the other when `b` is moved by `shift`. */
@@ -105,7 +107,9 @@ function quarterHours(anchor: ClockedLog, log: ClockedLog): number {
   let bestScore = 0;
   for (const shift of candidates()) {
     const share = overlap(anchor, log, shift);
+    // Fleets start a quarter of an hour apart, zones hardly ever differ by one: where the logs overlap, half hours only.
     if (share < TOGETHER) continue;
+    if (asIs >= APART && shift % (2 * QUARTER_HOUR) !== 0) continue;
     // Boats: the nearer the better. Otherwise the first, that is the plainest shift, with the whole of it inside.
     const distance = near(shift);
     if (tracks && asIs >= APART && !(distance * NEARER < now && distance < NEAR)) continue;

@@ -3,7 +3,7 @@
  * does not follow the wind, or, with nothing but a track, at one speed on one course for longer than wind holds still.
  */
 
-import { directionOf, eastOf, northOf, turn } from '../math/angles.js';
+import { circularMean, directionOf, eastOf, northOf, turn } from '../math/angles.js';
 import type { Issue } from '../recording/issues.js';
 import type { Track } from '../recording/track.js';
 
@@ -13,6 +13,10 @@ const MOVING = 1;
 export const PINCHED_APPARENT = 15;
 /** The same for the course to the true wind: best boats sail at 30 to 35, less the leeway and a tide across. [deg] */
 export const PINCHED_TRUE = 20;
+/** From one tack to the other a boat turns through this, more or less; so much time on the other shows it tacks. [deg] */
+const TACKED = 90;
+const TACKED_WITHIN = 22;
+const OTHER_TACK = 0.3;
 /** Angles are averaged over this: helm and waves. [s] */
 const SMOOTHED = 30;
 /** Shooting a mark or a line head to wind does not last so long. [s] */
@@ -62,7 +66,12 @@ export function findEngine(track: Track, wind?: WindRows, file?: string): Engine
   const speed = Float64Array.from(track.vx, (v, i) => Math.hypot(v, track.vy[i]));
   const hasWind = wind !== undefined || track.awa !== undefined;
   if (track.awa) markPinched(mask, speed, track.awa, PINCHED_APPARENT);
-  if (wind) markPinched(mask, speed, angleToWind(track, wind), PINCHED_TRUE);
+  if (wind) {
+    const angle = angleToWind(track, wind);
+    const pinched = new Uint8Array(track.n);
+    markPinched(pinched, speed, angle, PINCHED_TRUE);
+    if (!isOneTack(pinched, speed, angle)) pinched.forEach((one, i) => (mask[i] |= one));
+  }
   if (track.stw) markSteady(mask, speed, track.stw, track.aws);
   if (!hasWind) markAlone(mask, track, speed);
   bridge(mask, speed);
@@ -71,6 +80,23 @@ export function findEngine(track: Track, wind?: WindRows, file?: string): Engine
 
 function angleToWind(track: Track, wind: WindRows): Float64Array {
   return Float64Array.from(track.vx, (v, i) => turn(directionOf(v, track.vy[i]), wind.twd[i]));
+}
+
+/**
+ * Whether what looks pinched is one tack of a boat that sails the other at a right angle to it: then the station's
+ * direction is wrong by half the difference, and nobody motors.
+ */
+function isOneTack(pinched: Uint8Array, speed: Float64Array, angle: Float64Array): boolean {
+  const near = circularMean(angle.filter((_, i) => pinched[i] === 1)).mean;
+  if (Number.isNaN(near)) return false;
+  const other = near - (turn(0, near) < 0 ? -TACKED : TACKED);
+  let here = 0;
+  let there = 0;
+  for (let i = 0; i < angle.length; i++) {
+    if (pinched[i]) here++;
+    else if (speed[i] > MOVING && Math.abs(turn(other, angle[i])) < TACKED_WITHIN) there++;
+  }
+  return there > OTHER_TACK * here;
 }
 
 /** Marks stretches sailed nearer to the wind than sails can. */

@@ -60,7 +60,7 @@ export function activityOf(o: Observations, stretches: readonly Stretch[], step:
 function chords(o: Observations, { from, to }: Stretch, t0: number, x: Float32Array, y: Float32Array): void {
   let last = -1;
   for (let row = from; row < to; row++) {
-    if (o.x[row] !== o.x[row] || isSpike(o, last, row, to)) continue;
+    if (o.x[row] !== o.x[row]) continue;
     if (last >= 0) {
       const start = o.time[last];
       const share = 1 / (o.time[row] - start);
@@ -74,24 +74,6 @@ function chords(o: Observations, { from, to }: Stretch, t0: number, x: Float32Ar
   }
 }
 
-/** A fix this far off the chord of its neighbours is an outlier: a receiver's own step ... [m] */
-const SPIKE_FLOOR = 4;
-/** ... and what a boat does that turns 6 m/s into the opposite within a step. [m/s] */
-const SPIKE_SPEED = 12;
-
-/** Whether a fix stands out from the chord between the last good fix and the next one. */
-function isSpike(o: Observations, last: number, row: number, to: number): boolean {
-  let next = row + 1;
-  while (next < to && o.x[next] !== o.x[next]) next++;
-  if (last < 0 || next >= to) return false;
-  const [before, after] = [o.time[row] - o.time[last], o.time[next] - o.time[row]];
-  const share = before / (before + after);
-  const east = o.x[row] - o.x[last] - share * (o.x[next] - o.x[last]);
-  const north = o.y[row] - o.y[last] - share * (o.y[next] - o.y[last]);
-  const limit = SPIKE_FLOOR + SPIKE_SPEED * share * after;
-  return east * east + north * north > limit * limit;
-}
-
 /** Squared change of velocity over `half` seconds before and after each second. */
 function squaredChanges(x: Float32Array, y: Float32Array, half: number): Float32Array {
   const change = new Float32Array(x.length).fill(NaN);
@@ -103,11 +85,14 @@ function squaredChanges(x: Float32Array, y: Float32Array, half: number): Float32
   return change;
 }
 
-/** Median of the numbers among at most some thousand evenly spread values. */
+/** A boat at her berth: changes below (0.05 m/s)² say nothing about what is usual under way. */
+const AT_REST = 0.0025;
+
+/** Median of the values above rest, among at most some thousand evenly spread values. */
 function medianOf(values: Float32Array): number {
   const stride = Math.max(1, Math.floor(values.length / 10000));
   const some: number[] = [];
-  for (let i = 0; i < values.length; i += stride) if (values[i] === values[i]) some.push(values[i]);
+  for (let i = 0; i < values.length; i += stride) if (values[i] > AT_REST) some.push(values[i]);
   if (some.length === 0) return NaN;
   some.sort((a, b) => a - b);
   return some[some.length >> 1];

@@ -114,8 +114,12 @@ function toNoise(p: Parameters): NoiseModel {
 }
 
 /** Rows the search looks at, in this many pieces spread over the log. */
-const SAMPLE_PIECES = 8;
-const SAMPLE_ROWS = 700;
+const SAMPLE_PIECES = 16;
+const SAMPLE_ROWS = 350;
+/** Shorter pieces say too little. */
+const FEWEST_ROWS = 10;
+/** At a berth receivers often hold their position: nothing there says how they err under way. [m/s] */
+const UNDER_WAY = 0.7;
 
 /**
  * Finds the noise of a track by maximum likelihood of its innovations, over a grid of factors of two and then of
@@ -130,7 +134,7 @@ export function estimateNoise(
   stretches: readonly Stretch[],
   { step, activity, lag }: { step: number; activity: Activity; lag: number },
 ): TrackNoise {
-  const pieces = samplePieces(stretches);
+  const pieces = samplePieces(observations, stretches);
   const hasDoppler = observations.vx.some((v) => v === v);
   const names: Parameter[] = hasDoppler ? ['accel', 'white', 'drift', 'doppler'] : ['accel', 'white', 'drift'];
   const score = (p: Parameters) =>
@@ -149,23 +153,26 @@ export function estimateNoise(
   return { ...noise, dopplerUsed: hasDoppler, dopplerLag: lag, step };
 }
 
-/** Up to eight pieces, evenly spread over the rows of the stretches. */
-function samplePieces(stretches: readonly Stretch[]): Stretch[] {
-  const long = stretches.filter(({ from, to }) => to - from >= 10);
-  const total = long.reduce((sum, { from, to }) => sum + to - from, 0);
-  if (total <= SAMPLE_PIECES * SAMPLE_ROWS) return [...long];
+/** Up to so many pieces evenly spread over the log, of those in which the boat moves if there are any. */
+function samplePieces(o: Observations, stretches: readonly Stretch[]): Stretch[] {
   const pieces: Stretch[] = [];
-  for (let i = 0; i < SAMPLE_PIECES; i++) {
-    let at = Math.floor(((i + 0.5) / SAMPLE_PIECES) * total);
-    for (const { from, to } of long) {
-      if (at < to - from) {
-        pieces.push({ from: from + at, to: Math.min(to, from + at + SAMPLE_ROWS) });
-        break;
-      }
-      at -= to - from;
+  for (const { from, to } of stretches) {
+    for (let at = from; at + FEWEST_ROWS <= to; at += SAMPLE_ROWS) {
+      pieces.push({ from: at, to: Math.min(to, at + SAMPLE_ROWS) });
     }
   }
-  return pieces;
+  const moving = pieces.filter((piece) => meanSpeed(o, piece) > UNDER_WAY);
+  const all = moving.length > 0 ? moving : pieces;
+  const share = Math.min(1, SAMPLE_PIECES / all.length);
+  return all.filter((_, k) => Math.floor((k + 1) * share) > Math.floor(k * share));
+}
+
+/** Speed from the first to the last fix of a piece. [m/s] */
+function meanSpeed(o: Observations, { from, to }: Stretch): number {
+  let [first, last] = [from, to - 1];
+  while (first < last && o.x[first] !== o.x[first]) first++;
+  while (last > first && o.x[last] !== o.x[last]) last--;
+  return Math.hypot(o.x[last] - o.x[first], o.y[last] - o.y[first]) / (o.time[last] - o.time[first]);
 }
 
 function climb(

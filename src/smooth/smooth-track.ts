@@ -9,17 +9,9 @@ import { findStretches, fixRows, stepping, type Gap, type Stretch } from './gaps
 import { attachInstruments } from './instruments.js';
 import { smoothStretch, type Observations } from './kalman.js';
 import { estimateNoise, type TrackNoise } from './noise.js';
-import { excursions, gate } from './outliers.js';
+import { excursions, gate, spikeRows } from './outliers.js';
+import { FAR, JUMP, LONELY, Rejections, STALE, type FixRejection, type Jump } from './rejections.js';
 import { staleRows } from './stale.js';
-
-/** Fixes that were not used, of one kind. */
-export interface FixRejection {
-  readonly reason: string;
-  readonly count: number;
-  /** When the first of them was taken, UTC epoch seconds, and its row in the recording. */
-  readonly firstTime: number;
-  readonly firstRow: number;
-}
 
 export interface SmoothOptions {
   /** File the recording came from, for issues. */
@@ -53,18 +45,19 @@ const FEWEST_FIXES = 3;
  * @param options   File name for issues; noise where it is known.
  */
 export function smoothTrack(recording: Recording, frame: Frame, options: SmoothOptions = {}): SmoothedTrack {
-  const rejections = new Rejections(recording);
   const observations = observe(recording, frame);
-  rejections.add('stale: repeats a position the boat had left', observations, staleRows(observations));
+  const rejections = new Rejections(observations);
+  rejections.add(STALE, staleRows(observations));
   const breaks = [...recording.breaks];
   const near = dropFar(observations, findStretches(observations, breaks).stretches, rejections);
+  for (const stretch of near) rejections.add(JUMP, spikeRows(observations, stretch));
   const step = stepping(observations.time, fixRows(observations)).median;
   const activity = activityOf(observations, near, step);
   const lag = options.noise?.dopplerLag ?? dopplerLag(observations, near, activity);
   if (lag > 0) undoLag(observations, lag, activity);
   const noise = options.noise ?? estimateNoise(observations, near, { step, activity, lag });
   const jumps = gateAll(observations, near, noise, activity, rejections);
-  breaks.push(...jumps.rows);
+  breaks.push(...jumps.map(({ row }) => row));
   breaks.sort((p, q) => p - q);
   dropLonely(observations, findStretches(observations, breaks).stretches, rejections);
   const { stretches, gaps } = findStretches(observations, breaks);
@@ -102,16 +95,6 @@ function observe(recording: Recording, frame: Frame): Observations {
   return { time: recording.time, x, y, vx, vy };
 }
 
-/** What jumped where. */
-interface Jumps {
-  /** Rows at which the track goes on elsewhere. */
-  readonly rows: readonly number[];
-  /** Fixes taken out as impossible, the first of them, and the longest jump. [m] */
-  readonly count: number;
-  readonly firstRow: number;
-  readonly largest: number;
-}
-
 /** Gates every stretch; impossible fixes and velocities are taken out of the observations. */
 function gateAll(
   o: Observations,
@@ -119,24 +102,21 @@ function gateAll(
   noise: TrackNoise,
   activity: Activity,
   rejections: Rejections,
-): Jumps {
-  const rows: number[] = [];
-  const bad: number[] = [];
-  let largest = 0;
+): Jump[] {
+  const kept: Jump[] = [];
   for (const stretch of stretches) {
     const gated = gate(o, stretch, noise, activity);
-    for (const row of gated.rejectedVelocity) o.vx[row] = o.vy[row] = NaN;
-    largest = Math.max(largest, gated.largest);
     const { rejected, jumps } = excursions(o, stretch, gated.jumps);
-    rows.push(...jumps);
-    const outside = (row: number) => rejected.every(({ from, to }) => row < from || row >= to);
-    for (const row of gated.rejected) if (outside(row)) bad.push(row);
-    for (const { from, to } of rejected) for (let i = from; i < to; i++) bad.push(i);
+    for (const row of gated.rejectedVelocity) o.vx[row] = o.vy[row] = NaN;
+    rejections.add(JUMP, gated.rejected);
+    for (const { from, to } of rejected) rejections.add(JUMP, rowsOf(from, to));
+    kept.push(...jumps);
   }
-  const distinct = bad.filter((row) => !Number.isNaN(o.x[row])).sort((a, b) => a - b);
-  const firstRow = Math.min(distinct[0] ?? Infinity, rows[0] ?? Infinity);
-  rejections.add('position jump: the boat cannot have been there', o, distinct);
-  return { rows, count: distinct.length, firstRow, largest };
+  return kept;
+}
+
+function rowsOf(from: number, to: number): number[] {
+  return Array.from({ length: to - from }, (_, k) => from + k);
 }
 
 function countFixes(o: Observations, { from, to }: Stretch): number {
@@ -146,12 +126,9 @@ function countFixes(o: Observations, { from, to }: Stretch): number {
 }
 
 function dropLonely(o: Observations, stretches: readonly Stretch[], rejections: Rejections): void {
-  const lonely: number[] = [];
   for (const stretch of stretches) {
-    if (countFixes(o, stretch) >= FEWEST_FIXES) continue;
-    for (let i = stretch.from; i < stretch.to; i++) if (o.x[i] === o.x[i]) lonely.push(i);
+    if (countFixes(o, stretch) < FEWEST_FIXES) rejections.add(LONELY, rowsOf(stretch.from, stretch.to));
   }
-  rejections.add('alone between gaps: fewer than three fixes', o, lonely);
 }
 
 /** Keeps the part of the log that holds most fixes where it spans more than a week. */
@@ -166,12 +143,9 @@ function dropFar(o: Observations, stretches: readonly Stretch[], rejections: Rej
   if (groups.length <= 1) return [...stretches];
   const size = (group: Stretch[]) => group.reduce((sum, s) => sum + countFixes(o, s), 0);
   const best = groups.reduce((a, b) => (size(b) > size(a) ? b : a));
-  const far: number[] = [];
   for (const group of groups) {
-    if (group === best) continue;
-    for (const { from, to } of group) for (let i = from; i < to; i++) if (o.x[i] === o.x[i]) far.push(i);
+    if (group !== best) for (const { from, to } of group) rejections.add(FAR, rowsOf(from, to));
   }
-  rejections.add('more than a week from the rest of the log', o, far);
   return best;
 }
 
@@ -190,50 +164,4 @@ function smoothAll(
   const rows = { x: column(), y: column(), vx: column(), vy: column(), sePosition: column(), seVelocity: column() };
   for (const { from, to } of stretches) smoothStretch({ observations: o, from, to, noise, activity }, { t0, ...rows });
   return { name, t0, n, ...rows };
-}
-
-/** Collects what was taken out, and takes it out. */
-class Rejections {
-  readonly #recording: Recording;
-  readonly #list: FixRejection[] = [];
-
-  constructor(recording: Recording) {
-    this.#recording = recording;
-  }
-
-  /** Counts the fixes in `rows` (ascending) under a reason and makes them absent. */
-  add(reason: string, o: Observations, rows: readonly number[]): void {
-    if (rows.length === 0) return;
-    for (const row of rows) o.x[row] = o.y[row] = NaN;
-    const firstRow = rows[0];
-    this.#list.push({ reason, count: rows.length, firstRow, firstTime: this.#recording.time[firstRow] });
-  }
-
-  list(): FixRejection[] {
-    return this.#list;
-  }
-
-  issues(jumps: Jumps, file: string | undefined): Issue[] {
-    const issues: Issue[] = [];
-    const at = file === undefined ? {} : { file };
-    if (Number.isFinite(jumps.firstRow) && jumps.count + jumps.rows.length > 0) {
-      const time = utc(this.#recording.time[jumps.firstRow]);
-      const what = jumps.count === 1 ? 'One fix is' : `${jumps.count} fixes are`;
-      const message =
-        jumps.rows.length > 0
-          ? `The position jumps by up to ${jumps.largest.toFixed(0)} m, first at ${time}, and goes on from there: a gap.`
-          : `${what} up to ${jumps.largest.toFixed(0)} m from where the boat can have been, first at ${time}: left out.`;
-      issues.push({ code: 'position-jump', message, ...at });
-    }
-    const stale = this.#list.find(({ reason }) => reason.startsWith('stale'));
-    if (stale) {
-      const message = `${stale.count} fixes repeat the last position while the boat moved on, first at ${utc(stale.firstTime)}: left out.`;
-      issues.push({ code: 'position-stale', message, ...at });
-    }
-    return issues;
-  }
-}
-
-function utc(time: number): string {
-  return new Date(Math.round(time) * 1000).toISOString().slice(0, 19) + 'Z';
 }

@@ -8,7 +8,7 @@ import type { Observations } from './kalman.js';
 /** The leap is faster than the boat before and after by this factor ... */
 const LEAP_FACTOR = 1.6;
 /** ... and by this much; the noise of a fix over a second. [m/s] */
-const LEAP_FLOOR = 1;
+const LEAP_FLOOR = 0.5;
 /** ... and longer than so many steps of the position's resolution. */
 const LEAP_RESOLUTIONS = 3;
 

@@ -138,4 +138,11 @@ describe('middleOf', () => {
     expect(Math.abs(middle.lon)).toBeCloseTo(180, 9);
     expect(middleOf([NaN], [NaN])).toBeNull();
   });
+
+  it('is not moved by a fix at 0, 0', () => {
+    const lat = Array.from({ length: 40 }, (_, i) => (i === 7 ? 0 : 46.9 + i / 10000));
+    const lon = Array.from({ length: 40 }, (_, i) => (i === 7 ? 0 : 9.06));
+    expect(middleOf(lat, lon)!.lat).toBeCloseTo(46.902, 3);
+    expect(middleOf(lat, lon)!.lon).toBeCloseTo(9.06, 9);
+  });
 });

@@ -67,6 +67,14 @@ describe('findEngine', () => {
     expect(share(findEngine(sailed, { twd }).mask)).toBe(0);
   });
 
+  it('is not misled by a station that points 30 degrees off', () => {
+    for (const off of [-30, 30]) {
+      const { issues, mask } = findEngine(sailed, { twd: new Float64Array(sailed.n).fill(off) });
+      expect(issues).toEqual([]);
+      expect(share(mask)).toBe(0);
+    }
+  });
+
   it('says nothing of leaving the harbour', () => {
     const short = smoothTrack(record(motoring(400, 0, 2.5, 6), { step: 1, seed: 7 }), FRAME).track;
     const { issues, mask } = findEngine(short, { twd: new Float64Array(short.n) });
