@@ -133,7 +133,7 @@ export function inline(q: Quantity, unit: Unit, options: QuantityOptions = {}): 
   return html`<span class="nb">${number(shown.value, digits, sign)}${pm}${SUFFIX[unit]}</span>`;
 }
 
-export type TimeStyle = 'day' | 'hm' | 'hms';
+export type TimeStyle = 'day' | 'date' | 'hm' | 'hms';
 
 /** A time, in UTC until the reader's browser puts it in the race's zone. */
 export function time(seconds: number, style: TimeStyle): Safe {
@@ -143,7 +143,7 @@ export function time(seconds: number, style: TimeStyle): Safe {
 
 /** The same as text for pictures. */
 export function timeText(iso: string, style: TimeStyle): string {
-  if (style === 'day') return iso.slice(0, 10);
+  if (style === 'day' || style === 'date') return iso.slice(0, 10);
   return style === 'hm' ? iso.slice(11, 16) : iso.slice(11, 19);
 }
 

@@ -15,10 +15,11 @@ export function localNumber(value: number, digits: number): string {
   return value < 0 && !zero ? `−${text}` : text;
 }
 
-export type TimeStyle = 'day' | 'hm' | 'hms';
+export type TimeStyle = 'day' | 'date' | 'hm' | 'hms';
 
 const OPTIONS: Readonly<Record<TimeStyle, Intl.DateTimeFormatOptions>> = {
   day: { weekday: 'long', day: 'numeric', month: 'long', year: 'numeric' },
+  date: { day: 'numeric', month: 'short' },
   hm: { hour: '2-digit', minute: '2-digit', hourCycle: 'h23' },
   hms: { hour: '2-digit', minute: '2-digit', second: '2-digit', hourCycle: 'h23' },
 };

@@ -18,11 +18,11 @@ function meanWind(race: Race): number {
 
 function start(): void {
   document.documentElement.classList.add('live');
-  const race = readRace();
-  const clock = createClock(race.zone);
+  const race = document.getElementById('series') ? readRace() : null;
+  const clock = createClock(race?.zone ?? 'UTC');
   localise(document, clock);
   mountTips();
-  if (race.boats.length === 0) return;
+  if (!race || race.boats.length === 0) return;
   const store = createStore(race.from, race.to, race.racing);
   mountMap(race, store, meanWind(race));
   mountInstruments(race, store);

@@ -1,0 +1,73 @@
+import { scaleLinear } from 'd3-scale';
+import { isoOf, timeText } from '../format.js';
+import { boatPaint, INK, SOFT } from '../palette.js';
+import { el, leftAxis, line, picture, text } from './svg.js';
+
+/** One race of a trend. */
+export interface TrendPoint {
+  /** UTC seconds. */
+  readonly time: number;
+  readonly value: number;
+  /** One standard error; NaN where none is stated. */
+  readonly se: number;
+}
+
+export interface TrendOptions {
+  readonly width: number;
+  readonly height: number;
+  readonly title: string;
+  /** Value of the fitted line at a time; null where there is none. */
+  readonly fit: ((time: number) => number) | null;
+  /** Whether the line is evidence: drawn whole, else broken. */
+  readonly shown: boolean;
+}
+
+export const TREND_DEFAULTS: TrendOptions = { width: 460, height: 200, title: '', fit: null, shown: false };
+
+/** A quantity from race to race, one standard error each, and the line through them. */
+export function trendChart(points: readonly TrendPoint[], options: Partial<TrendOptions> = {}): string {
+  const o = { ...TREND_DEFAULTS, ...options };
+  const [from, to] = [Math.min(...points.map((p) => p.time)), Math.max(...points.map((p) => p.time))];
+  const room = Math.max(86400, (to - from) * 0.04);
+  const errors = points.map((p) => (Number.isFinite(p.se) ? p.se : 0));
+  const low = Math.min(...points.map((p, i) => p.value - errors[i]));
+  const high = Math.max(...points.map((p, i) => p.value + errors[i]));
+  const slack = Math.max(1e-6, 0.06 * (high - low));
+  const x = scaleLinear([from - room, to + room], [46, o.width - 12]);
+  const y = scaleLinear([low - slack, high + slack], [o.height - 28, 24]);
+  const body = [
+    leftAxis(y, 46, o.width - 12, { count: 4 }),
+    ...dayTicks(from, to).map((t) => dayTick(x(t), o.height - 28, t)),
+    fitted(o, from, to, x, y),
+    ...points.map((p, i) => dotWithError(x(p.time), y(p.value), y(p.value - errors[i]), y(p.value + errors[i]))),
+    text(46, 12, o.title, { size: 12, italic: true }),
+  ];
+  const label = `${o.title}: ${points.length} races, from ${points[0].value.toFixed(1)} to ${points[points.length - 1].value.toFixed(1)}.`;
+  return picture(o.width, o.height, label, body.join(''), { class: 'trend' });
+}
+
+/** At most five days, evenly spread. */
+function dayTicks(from: number, to: number): number[] {
+  if (to - from < 86400) return [from];
+  const count = Math.min(4, Math.floor((to - from) / 86400));
+  return Array.from({ length: count + 1 }, (_, k) => from + ((to - from) * k) / count);
+}
+
+function dayTick(x: number, y: number, seconds: number): string {
+  const words = timeText(isoOf(seconds), 'day').slice(5);
+  const extra = { 'data-ms': String(seconds * 1000), 'data-t': 'date' };
+  return line(x, y, x, y + 4, SOFT) + text(x, y + 17, words, { anchor: 'middle', size: 11, fill: SOFT, extra });
+}
+
+type Scale = (value: number) => number;
+
+function fitted(o: TrendOptions, from: number, to: number, x: Scale, y: Scale): string {
+  if (!o.fit || !Number.isFinite(o.fit(from))) return '';
+  const dash = o.shown ? undefined : '5 4';
+  return line(x(from), y(o.fit(from)), x(to), y(o.fit(to)), INK, { 'stroke-width': 1.8, 'stroke-dasharray': dash });
+}
+
+function dotWithError(x: number, y: number, low: number, high: number): string {
+  const { colour } = boatPaint(0);
+  return line(x, low, x, high, SOFT, { 'stroke-width': 1.1 }) + el('circle', { cx: x, cy: y, r: 4, fill: colour });
+}
