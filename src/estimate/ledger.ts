@@ -1,7 +1,8 @@
 import { circularMean, eastOf, northOf } from '../math/angles.js';
 import { LABEL, type LegRows } from '../segment/spells.js';
 import { tackSign, type RowRange, type Sailing, type Tack } from '../segment/sailing.js';
-import { estimateBlock } from './blocks.js';
+import { estimateBlock, type BlockEstimate } from './blocks.js';
+import { BOUNDS_ERROR } from './losses.js';
 import type { Reference } from './reference.js';
 import { correlatedError, type ErrorModel, type Figure } from './steady.js';
 
@@ -219,6 +220,27 @@ function addWindow(entries: Record<Cause, number>, piece: Piece, sum: Sums, rate
   entries[WINDOW_CAUSE[piece.label] ?? 'manoeuvres'] += total - high - low - speed;
 }
 
+/** Least error of shifts: the wandering part of the wind error taken across the course for the whole leg. [m] */
+function straying(blocks: readonly BlockEstimate[], { mismatch }: ErrorModel, leg: RowRange): number {
+  const across = mean(blocks.map((b) => b.speed * Math.sin(b.gamma * RAD)));
+  const { wander, tau } = mismatch.direction;
+  return blocks.length > 0 ? 0.7 * wander * RAD * across * Math.sqrt(2 * tau * (leg.to - leg.from)) : 0;
+}
+
+function mean(values: readonly number[]): number {
+  return values.reduce((sum, value) => sum + value, 0) / values.length;
+}
+
+/** Runs of rows in which the boat was busy. */
+function countWindows({ labels }: LegRows): number {
+  let n = 0;
+  labels.forEach((label, i) => {
+    const busy = label === LABEL.manoeuvre || label === LABEL.unsettled;
+    if (busy && label !== labels[i - 1]) n++;
+  });
+  return n;
+}
+
 /** How a share of error in wind speed shows in the reference's best VMG: d ln V* / d ln W, about 0.6; from the curve. */
 function elasticity(reference: Reference, tws: number): number {
   return Math.log(reference.bestVmg(tws * 1.02) / reference.bestVmg(tws * 0.98)) / Math.log(1.02 / 0.98);
@@ -252,7 +274,8 @@ function withErrors(
   const sysWind = sum(offered) * scale * errors.sysSpeed;
   const windows = leg.to - leg.from - total;
   const speedRate = total > 0 ? (Math.hypot(direction, windSpeed) / total) * windows : 0;
-  const busy = Math.hypot(receiver, 0.5 * speedRate);
+  const bounds = BOUNDS_ERROR * Math.sqrt(countWindows(rows)) * (available / (leg.to - leg.from));
+  const busy = Math.hypot(receiver, 0.5 * speedRate, bounds);
   const figure = (value: number, se: number, sys = 0): Figure => ({ value, se: value === 0 ? 0 : se, sys });
   const angleRate = Math.abs(entries.high) + Math.abs(entries.low);
   const angle = Math.min(angleRate, Math.hypot(direction, 0.2 * angleRate));
@@ -273,7 +296,7 @@ function withErrors(
       ),
       overstood: figure(entries.overstood, Math.hypot(receiver, 0.2 * entries.overstood)),
       stopped: figure(entries.stopped, receiver),
-      shifts: figure(entries.shifts, swing * scale),
+      shifts: figure(entries.shifts, Math.max(swing * scale, straying(blocks, errors, leg), receiver)),
     },
   };
 }

@@ -7,6 +7,8 @@ import { eastOf, northOf } from '../math/angles.js';
 /** Settled sailing this close to a manoeuvre says what would have been made without it. [s] */
 const NEAR = 90;
 const RAD = Math.PI / 180;
+/** Where a manoeuvre begins and ends is known to a few seconds of half-lost speed: so much full speed. [s] */
+export const BOUNDS_ERROR = 0.8;
 
 /** Sum of velocity made good to windward over rows [from, to), gaps left out: metres, and seconds counted. */
 export function madeGood(sailing: Sailing, from: number, to: number): { metres: number; seconds: number } {
@@ -64,5 +66,6 @@ export function manoeuvreLoss(
   const wind = correlatedError(near, signed, errors.mismatch.direction) * RAD * cross * seconds;
   const within = errors.mismatch.direction.wander * RAD * cross * 0.3 * seconds;
   const receiver = errors.displacementSe(seconds);
-  return { value: rate * seconds - metres, se: Math.hypot(wind, within, receiver), sys: 0 };
+  const bounds = BOUNDS_ERROR * rate;
+  return { value: rate * seconds - metres, se: Math.hypot(wind, within, receiver, bounds), sys: 0 };
 }

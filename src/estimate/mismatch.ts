@@ -18,6 +18,8 @@ export interface MismatchPart {
   readonly tau: number;
   /** Standard deviation of the part that stays through a leg. */
   readonly slow: number;
+  /** Standard deviation of its change across the course, per kilometre and axis. */
+  readonly gradient: number;
   /** How it was had, for the method page. */
   readonly from: 'boats' | 'one-boat' | 'sensor';
 }
@@ -96,16 +98,22 @@ function partFrom(
   boats: readonly { times: readonly number[]; residuals: readonly number[] }[],
   least: number,
   slow: number,
+  gradient: number,
 ): MismatchPart {
   const own = median(boats.map((boat) => variance(boat.residuals)));
   const pooled = boats.length > 1 ? commonMode(boats) : null;
   if (pooled && pooled.pairs >= 20) {
     const wander = Math.sqrt(Math.max(least ** 2, Math.min(pooled.near, own)));
-    return { wander, tau: correlationTime(pooled), slow, from: 'boats' };
+    return { wander, tau: correlationTime(pooled), slow, gradient, from: 'boats' };
   }
   const wander = Math.sqrt(Math.max(least ** 2, SHARE_ALONE * (Number.isNaN(own) ? 4 : own)));
-  return { wander, tau: 60, slow, from: 'one-boat' };
+  return { wander, tau: 60, slow, gradient, from: 'one-boat' };
 }
+
+/** Wind differs by about 5 degrees and 10 % across a course of some 1200 m: common practice, no source. [per km] */
+const GRADIENT = { direction: 4, speed: 0.08 };
+/** Where shifts were found to reach the whole course at once the wind is of one piece: so much of that is left. */
+const UNIFORM_SHARE = 0.25;
 
 /**
  * Station-to-boat mismatch from what two or more boats' settled blocks share at the same time; with one boat, 0.4 of its
@@ -113,21 +121,27 @@ function partFrom(
  *
  * @param boats    Blocks of each boat that uses the source.
  * @param distance Typical distance of boats from the sensor, NaN when not known. [m]
+ * @param uniform  Whether shifts were found to reach the whole course at once.
  */
-export function estimateMismatch(boats: readonly (readonly BlockEstimate[])[], distance: number): Mismatch {
+export function estimateMismatch(
+  boats: readonly (readonly BlockEstimate[])[],
+  distance: number,
+  uniform: boolean,
+): Mismatch {
   const used = boats.filter((blocks) => blocks.length >= 4);
   const far = Number.isNaN(distance) ? 500 : distance;
+  const part = uniform ? UNIFORM_SHARE : 1;
   const times = used.map((blocks) => blocks.map((b) => b.time));
   const direction = used.map((blocks, k) => ({ times: times[k]!, residuals: directionResiduals(blocks) }));
   const speed = used.map((blocks, k) => ({ times: times[k]!, residuals: speedResiduals(blocks) }));
   return {
-    direction: partFrom(direction, LEAST_DIRECTION, Math.min(3, (1.5 * far) / 1000)),
-    speed: partFrom(speed, LEAST_SPEED, Math.min(0.08, (0.05 * far) / 1000)),
+    direction: partFrom(direction, LEAST_DIRECTION, part * Math.min(3, (2 * far) / 1000), part * GRADIENT.direction),
+    speed: partFrom(speed, LEAST_SPEED, part * Math.min(0.08, (0.05 * far) / 1000), part * GRADIENT.speed),
   };
 }
 
 /** On-board wind is at the boat: what is left is the vane's and cups' noise, averaged over a block. */
 export const ON_BOARD_MISMATCH: Mismatch = {
-  direction: { wander: 0.5, tau: 15, slow: 0.3, from: 'sensor' },
-  speed: { wander: 0.01, tau: 15, slow: 0.005, from: 'sensor' },
+  direction: { wander: 0.5, tau: 15, slow: 0.3, gradient: 0, from: 'sensor' },
+  speed: { wander: 0.01, tau: 15, slow: 0.005, gradient: 0, from: 'sensor' },
 };

@@ -42,8 +42,9 @@ function weighted(blocks: readonly BlockEstimate[], weights: readonly number[], 
 }
 
 /**
- * Standard error of a weighted sum of block errors with an exponential correlation in time and a part that stays.
- * Variance = sum_kl u_k u_l wander^2 exp(-|t_k - t_l| / tau) + slow^2 (sum_k u_k)^2.
+ * Standard error of a weighted sum of block errors with an exponential correlation in time, a part that stays and a part
+ * that changes across the course (r: place from the blocks' middle, km).
+ * Variance = sum_kl u_k u_l wander^2 exp(-|t_k - t_l| / tau) + slow^2 (sum_k u_k)^2 + gradient^2 |sum_k u_k r_k|^2.
  *
  * @param u Weight of each block's error, with the sign in which it enters.
  */
@@ -58,7 +59,18 @@ export function correlatedError(blocks: readonly BlockEstimate[], u: readonly nu
       if (apart < 8 * part.tau) variance += 2 * u[k]! * u[l]! * Math.exp(-apart / part.tau);
     }
   }
-  return Math.sqrt(Math.max(0, variance) * part.wander ** 2 + (part.slow * sum) ** 2);
+  const tilt = part.gradient > 0 ? part.gradient * leverage(blocks, u) : 0;
+  return Math.sqrt(Math.max(0, variance) * part.wander ** 2 + (part.slow * sum) ** 2 + tilt ** 2);
+}
+
+/** Length of the weighted sum of the blocks' places about their middle. [km x unit of u] */
+function leverage(blocks: readonly BlockEstimate[], u: readonly number[]): number {
+  const n = blocks.length;
+  const x0 = blocks.reduce((sum, b) => sum + b.x, 0) / n;
+  const y0 = blocks.reduce((sum, b) => sum + b.y, 0) / n;
+  const x = blocks.reduce((sum, b, k) => sum + u[k] * (b.x - x0), 0);
+  const y = blocks.reduce((sum, b, k) => sum + u[k] * (b.y - y0), 0);
+  return Math.hypot(x, y) / 1000;
 }
 
 /** Per-axis velocity error of the receiver over the settled sailing: displacements of the spells, independent. [m/s] */

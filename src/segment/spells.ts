@@ -111,12 +111,15 @@ function startedAt(sailing: Sailing, leg: Leg, usual: number, thresholds: Thresh
   return last;
 }
 
+/** Slower than this share of usual is trouble, not a lull: a lull of a third of the wind leaves 0.7. */
+const SLOW = 0.55;
+
 /** Stops, luffing and slow stretches, each with the time it takes to get going again. */
 function markTroubles(sailing: Sailing, leg: Leg, usual: number, thresholds: Thresholds, mark: Mark): void {
   let slowFrom = -1;
   for (let i = leg.from; i <= leg.to; i++) {
     const size = i < leg.to ? Math.abs(sailing.gamma[i]) : NaN;
-    const trouble = i < leg.to && (sailing.speed[i] < 0.7 * usual || size < thresholds.luffing);
+    const trouble = i < leg.to && (sailing.speed[i] < SLOW * usual || size < thresholds.luffing);
     if (trouble && slowFrom < 0) slowFrom = i;
     if (trouble || slowFrom < 0) continue;
     if (i - slowFrom > thresholds.flicker) {
@@ -138,13 +141,15 @@ function hasStop(sailing: Sailing, from: number, to: number, usual: number, thre
 }
 
 /** Steering within this of the bearing to the leg's end is steering for the mark. [deg] */
-const STEERING_FOR_MARK = 6;
-/** Half the stretch over which the course angle is judged. [s] */
+const STEERING_FOR_MARK = 7;
+/** A stretch that ends within this of the leg's end may have been steered for the mark though a tack follows. [s] */
+const AT_THE_MARK = 120;
+/** Half the stretch over which course and course angle are judged. [s] */
 const FETCH_HALF = 12;
 
 /**
- * From the moment after the last tack from which the boat sails below its own angle to the end of the beat: either by
- * `fetching`, or by half of that while it steers for the place where the leg ends.
+ * Fetching: from the moment after the last tack from which the boat either sails below its own angle by `fetching`, or
+ * steers for the place where the leg ends and on the whole sails below its own angle by a quarter of that.
  */
 function markFetching(
   sailing: Sailing,
@@ -155,25 +160,50 @@ function markFetching(
   labels: Uint8Array,
 ): void {
   if (Number.isNaN(own)) return;
+  const end = leg.to - Math.round(thresholds.rounding);
   const tacks = manoeuvres.filter((m) => m.kind === 'tack' && m.at > leg.from && m.at < leg.to);
-  const first = tacks.at(-1)?.exit ?? leg.from;
-  const end = Math.min(leg.to, sailing.n - 1);
-  let from = leg.to;
-  for (let i = leg.to - Math.round(thresholds.rounding) - 1; i >= first; i--) {
-    const a = Math.max(first, i - FETCH_HALF);
-    const b = Math.min(leg.to, i + FETCH_HALF + 1);
-    const below = Math.abs(median(sailing.gamma.subarray(a, b))) - own;
-    const forMark = angleBetween(
-      directionOf(sailing.x[end]! - sailing.x[i]!, sailing.y[end]! - sailing.y[i]!),
-      directionOf(sailing.x[b - 1]! - sailing.x[a]!, sailing.y[b - 1]! - sailing.y[a]!),
-    );
-    const steersForMark = forMark < STEERING_FOR_MARK && below > thresholds.fetching / 2;
-    if (!(below > thresholds.fetching) && !steersForMark) break;
+  const fill = (from: number, to: number): void => {
+    for (let i = from; i < to; i++) if (labels[i - leg.from] !== LABEL.rounding) labels[i - leg.from] = LABEL.fetching;
+  };
+  const low = backTo(tacks.at(-1)?.exit ?? leg.from, end, (from, to) => {
+    return below(sailing, from, to) > own + thresholds.fetching;
+  });
+  fill(low, leg.to);
+  for (let k = tacks.length; k >= 0; k--) {
+    const last = tacks[k]?.entry ?? end;
+    if (end - last > AT_THE_MARK) break;
+    const straight = backTo(tacks[k - 1]?.exit ?? leg.from, last, (from, to) => {
+      return offMark(sailing, leg, from, to) < STEERING_FOR_MARK;
+    });
+    const reaches = below(sailing, straight, last) > own + thresholds.fetching / 4;
+    if (reaches && last - straight >= thresholds.minSettled) fill(straight, last === end ? leg.to : last);
+  }
+}
+
+/** First row of the stretch up to `last` of which every row's neighbourhood passes. */
+function backTo(first: number, last: number, passes: (from: number, to: number) => boolean): number {
+  let from = last;
+  for (let i = last - 1; i >= first; i--) {
+    if (!passes(Math.max(first, i - FETCH_HALF), Math.min(last, i + FETCH_HALF + 1))) break;
     from = i;
   }
-  for (let i = from; i < leg.to; i++) {
-    if (labels[i - leg.from] !== LABEL.rounding) labels[i - leg.from] = LABEL.fetching;
-  }
+  return from;
+}
+
+/** Median course angle of rows. [deg] */
+function below(sailing: Sailing, from: number, to: number): number {
+  return Math.abs(median(sailing.gamma.subarray(from, to)));
+}
+
+/** Angle between the course made over rows and the bearing from their middle to the end of the leg. [deg] */
+function offMark(sailing: Sailing, leg: Leg, from: number, to: number): number {
+  const { x, y } = sailing;
+  const end = Math.min(leg.to, sailing.n - 1);
+  const middle = Math.round((from + to - 1) / 2);
+  return angleBetween(
+    directionOf(x[end] - x[middle], y[end] - y[middle]),
+    directionOf(x[to - 1] - x[from], y[to - 1] - y[from]),
+  );
 }
 
 /** Runs of settled rows on one tack that are long enough; shorter ones are relabelled unsettled. */

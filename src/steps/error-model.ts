@@ -15,7 +15,8 @@ export function errorModels(
   const hasOwn = clean.boats.map((_, k) => wind.sources.some(({ source }) => source.boat === k));
   const ashore = wind.sailed.filter((_, k) => !hasOwn[k]).map((one) => one.blocks);
   const distance = typicalDistance(wind.atBoats.filter((_, k) => !hasOwn[k]));
-  const shared = estimateMismatch(ashore, distance);
+  const uniform = wind.sources.every(({ source, carry }) => source.kind !== 'station' || carry === 0);
+  const shared = estimateMismatch(ashore, distance, uniform && wind.sources.some(({ source }) => source.place));
   return clean.boats.map((boat, k) => {
     const index = wind.sources.findIndex(({ source }) => source.boat === k);
     const used = index >= 0 ? index : 0;

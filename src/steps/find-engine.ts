@@ -1,7 +1,7 @@
 import { UserError, type Issue } from '../recording/issues.js';
 import type { Track } from '../recording/track.js';
 import { findEngine } from '../sensors/engine.js';
-import { windAtBoat } from '../wind/field.js';
+import { uncorrected, windAtBoat } from '../wind/field.js';
 import type { WindSource } from '../wind/source.js';
 import type { CleanBoat } from './clean-tracks.js';
 
@@ -18,7 +18,7 @@ export function engineRows(
   sources: readonly WindSource[],
 ): { masks: readonly Uint8Array[]; issues: readonly Issue[] } {
   const stations = sources.filter((source) => source.kind === 'station');
-  const corrected = stations.map((source) => ({ source, offset: 0, lag: 0, carry: 0 }));
+  const corrected = stations.map((source) => uncorrected(source, 0));
   const found = boats.map(({ track, logs }) => {
     const wind = stations.length > 0 ? windAtBoat(-1, track, corrected) : undefined;
     return findEngine(track, wind, logs.trackFiles[0]);

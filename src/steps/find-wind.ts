@@ -12,7 +12,7 @@ import {
   type LagEstimate,
   type OffsetEstimate,
 } from '../wind/align.js';
-import { windAtBoat, type CorrectedSource, type WindAtBoat } from '../wind/field.js';
+import { uncorrected, windAtBoat, type CorrectedSource, type WindAtBoat } from '../wind/field.js';
 import { bisectorOf, guessWindDirection, windFromLooks, type DirectionLook } from '../wind/from-tracks.js';
 import { windSums, type WindSource } from '../wind/source.js';
 import type { Sailed } from './sail.js';
@@ -46,19 +46,14 @@ export function findWind(tracks: readonly Track[], sources: readonly WindSource[
   const measured = sources.filter((source) => source.kind !== 'by-hand');
   if (measured.length === 0) return windFromTracks(tracks, sources, sailBoat);
   checkOverlap(tracks, measured);
-  let corrected: CorrectedSource[] = measured.map((source) => ({ source, offset: 0, lag: 0, carry: 1 }));
+  let corrected: CorrectedSource[] = measured.map((source) => uncorrected(source));
   let offsets: (OffsetEstimate | null)[] = measured.map(() => null);
   let lags: (LagEstimate | null)[] = measured.map(() => null);
   let atBoats = tracks.map((track, boat) => windAtBoat(boat, track, corrected));
   let sailed = atBoats.map((wind, boat) => sailBoat(boat, wind));
   for (let round = 0; round < ROUNDS; round++) {
     lags = corrected.map(({ source }) => (source.kind === 'station' && !source.place ? lagOf(source, sailed) : null));
-    const lagged = measured.map((source, k) => ({
-      source,
-      offset: 0,
-      lag: usedLag(lags[k]),
-      carry: source.kind === 'station' && source.place ? estimateCarry(source, courseBlocks(sailed)) : 1,
-    }));
+    const lagged = measured.map((source, k) => delayed(source, lags[k], sailed));
     offsets = lagged.map((one, k) => offsetOf(one, k, tracks, measured, sailBoat));
     corrected = lagged.map((one, k) => ({ ...one, offset: offsets[k]?.offset ?? 0 }));
     atBoats = tracks.map((track, boat) => windAtBoat(boat, track, corrected));
@@ -75,8 +70,12 @@ export function findWind(tracks: readonly Track[], sources: readonly WindSource[
   };
 }
 
-function usedLag(estimate: LagEstimate | null | undefined): number {
-  return estimate?.used ? estimate.lag : 0;
+/** A source with its delay: by its place, or by the lag that was found where that is clear. */
+function delayed(source: WindSource, lag: LagEstimate | null, sailed: readonly Sailed[]): CorrectedSource {
+  const plain = uncorrected(source);
+  if (source.kind !== 'station') return plain;
+  if (source.place) return { ...plain, carry: estimateCarry(source, courseBlocks(sailed)) };
+  return lag?.used ? { ...plain, lag: lag.lag, carry: lag.carry, middle: lag.middle } : plain;
 }
 
 function lagIssues(sources: readonly WindSource[], lags: readonly (LagEstimate | null)[]): Issue[] {
@@ -182,7 +181,7 @@ function windFromTracks(tracks: readonly Track[], hand: readonly WindSource[], s
     });
   }
   const first = byHand ?? constantSource(guess, span);
-  let corrected: CorrectedSource[] = [{ source: first, offset: 0, lag: 0, carry: 1 }];
+  let corrected: CorrectedSource[] = [uncorrected(first)];
   let atBoats = tracks.map((track, boat) => windAtBoat(boat, track, corrected));
   let sailed = atBoats.map((wind, boat) => sailBoat(boat, wind));
   for (let round = 0; round < ROUNDS + 1; round++) {
@@ -191,7 +190,7 @@ function windFromTracks(tracks: readonly Track[], hand: readonly WindSource[], s
     const found = windFromLooks(looks, span);
     if (!found) break;
     const source = byHand ? { ...found.source, ...speedOf(byHand, found.source) } : found.source;
-    corrected = [{ source, offset: 0, lag: 0, carry: 1 }];
+    corrected = [uncorrected(source)];
     atBoats = tracks.map((track, boat) => windAtBoat(boat, track, corrected));
     sailed = atBoats.map((wind, boat) => sailBoat(boat, wind));
   }

@@ -1,6 +1,6 @@
 import { turn } from '../math/angles.js';
 import { readAt } from './field.js';
-import { readWind, type WindSource } from './source.js';
+import type { WindSource } from './source.js';
 
 /** A settled block as alignment sees it. */
 export interface CourseBlock {
@@ -27,39 +27,69 @@ const LAG_STEP = 5;
 const INDEPENDENT = 0.5;
 /** Fall of -2 log likelihood needed before a lag is used: 0.1 % by chance for one unknown (chi-square, 10.8). */
 const LAG_EVIDENCE = 10.8;
+/** The same for taking the wind to be carried over the course as well. */
+const CARRY_EVIDENCE = 5.4;
 const FEWEST_BLOCKS = 12;
 
 export interface LagEstimate {
-  /** The wind reaches the boats this much after the sensor. [s] */
+  /** The wind reaches the middle of the sailing this much after the sensor. [s] */
   readonly lag: number;
   readonly se: number;
   /** Whether it lowers the spread of course angles enough to be used. */
   readonly used: boolean;
+  /** 1: it reaches boats further downwind later still, at wind speed; 0: all at once. */
+  readonly carry: number;
+  readonly middle: { readonly x: number; readonly y: number };
 }
 
 /**
  * Lag of a sensor whose place is not known: the one that gives the least spread of the course angle to the wind within
- * each boat's tacks.
+ * each boat's tacks, with the wind carried over the course or reaching all of it at once.
  *
  * @returns null when there is too little settled sailing, or the least spread is at an end of the range.
  */
 export function estimateLag(source: WindSource, blocks: readonly CourseBlock[]): LagEstimate | null {
   if (blocks.length < FEWEST_BLOCKS) return null;
+  const mean = (pick: (b: CourseBlock) => number): number =>
+    blocks.reduce((sum, b) => sum + pick(b), 0) / blocks.length;
+  const middle = { x: mean((b) => b.x), y: mean((b) => b.y) };
+  const still = lagAt(source, blocks, middle, 0);
+  const carried = lagAt(source, blocks, middle, 1);
+  const atRest = still.misfit[still.lags.indexOf(0)];
+  const best = carried.least < still.least - CARRY_EVIDENCE ? carried : still;
+  if (best.at <= 0 || best.at >= best.lags.length - 1) return null;
+  const [a, b, c] = [best.misfit[best.at - 1], best.misfit[best.at], best.misfit[best.at + 1]];
+  const bend = a - 2 * b + c;
+  const lag = best.lags[best.at] + (bend > 0 ? (LAG_STEP * (a - c)) / (2 * bend) : 0);
+  const se = Math.max(2, lagError(best.misfit, best.at));
+  return { lag, se, used: atRest - best.least > LAG_EVIDENCE, carry: best.carry, middle };
+}
+
+interface LagSearch {
+  readonly carry: number;
+  readonly lags: readonly number[];
+  readonly misfit: readonly number[];
+  readonly at: number;
+  readonly least: number;
+}
+
+function lagAt(
+  source: WindSource,
+  blocks: readonly CourseBlock[],
+  middle: { readonly x: number; readonly y: number },
+  carry: number,
+): LagSearch {
   const lags: number[] = [];
   for (let lag = LAG_MIN; lag <= LAG_MAX; lag += LAG_STEP) lags.push(lag);
   const n = INDEPENDENT * blocks.length;
-  const misfit = lags.map((lag) => n * Math.log(spreadAt(source, blocks, lag)));
-  let best = -1;
+  const misfit = lags.map(
+    (lag) => n * Math.log(spreadOf(blocks, (b) => readAt({ source, offset: 0, lag, carry, middle }, b).direction)),
+  );
+  let at = -1;
   misfit.forEach((value, k) => {
-    if (Number.isFinite(value) && (best < 0 || value < misfit[best])) best = k;
+    if (Number.isFinite(value) && (at < 0 || value < misfit[at])) at = k;
   });
-  if (best <= 0 || best >= lags.length - 1) return null;
-  const [a, b, c] = [misfit[best - 1], misfit[best], misfit[best + 1]];
-  const bend = a - 2 * b + c;
-  const lag = lags[best] + (bend > 0 ? (LAG_STEP * (a - c)) / (2 * bend) : 0);
-  const se = Math.max(2, lagError(misfit, best));
-  const atZero = misfit[lags.indexOf(0)];
-  return { lag, se, used: atZero - b > LAG_EVIDENCE };
+  return { carry, lags, misfit, at, least: at < 0 ? Infinity : misfit[at] };
 }
 
 /** Half-width of the range of lags within 1 of the least -2 log likelihood. [s] */
@@ -81,14 +111,7 @@ function crossing(misfit: readonly number[], best: number, edge: number): number
   return Math.abs(inner - best) + Math.min(1, part);
 }
 
-/** Mean square of the course angle about its mean within each boat's tacks, for a lag. [deg^2] */
-function spreadAt(source: WindSource, blocks: readonly CourseBlock[], lag: number): number {
-  return spreadOf(
-    blocks,
-    (block) => readWind(source, block.time - lag, Math.max(source.window, block.seconds)).direction,
-  );
-}
-
+/** Mean square of the course angle to a wind about its mean within each boat's tacks. [deg^2] */
 function spreadOf(blocks: readonly CourseBlock[], windAt: (block: CourseBlock) => number): number {
   const groups = new Map<string, number[]>();
   for (const block of blocks) {
@@ -109,6 +132,8 @@ function spreadOf(blocks: readonly CourseBlock[], windAt: (block: CourseBlock) =
   return n > 0 && n >= 0.5 * blocks.length ? sum / n : NaN;
 }
 
+const NOWHERE = { x: 0, y: 0 };
+
 /** Shares of the travel time that are tried. */
 const CARRIES = [0, 0.25, 0.5, 0.75, 1];
 
@@ -121,7 +146,11 @@ export function estimateCarry(source: WindSource, blocks: readonly CourseBlock[]
   if (blocks.length < FEWEST_BLOCKS) return 1;
   const n = INDEPENDENT * blocks.length;
   const misfit = CARRIES.map(
-    (carry) => n * Math.log(spreadOf(blocks, (block) => readAt({ source, offset: 0, lag: 0, carry }, block).direction)),
+    (carry) =>
+      n *
+      Math.log(
+        spreadOf(blocks, (block) => readAt({ source, offset: 0, lag: 0, carry, middle: NOWHERE }, block).direction),
+      ),
   );
   let best = CARRIES.length - 1;
   misfit.forEach((value, k) => {
@@ -129,9 +158,6 @@ export function estimateCarry(source: WindSource, blocks: readonly CourseBlock[]
   });
   return misfit.at(-1)! - misfit[best]! > CARRY_EVIDENCE ? CARRIES[best]! : 1;
 }
-
-/** Fall of -2 log likelihood needed before shifts are taken not to be carried by the wind (chi-square, 2 %). */
-const CARRY_EVIDENCE = 5.4;
 
 /** Sailors differ this much between their tacks (half the difference of the two angles); common practice, no source. [deg] */
 const ASYMMETRY = 1;

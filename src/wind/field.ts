@@ -8,8 +8,15 @@ export interface CorrectedSource {
   readonly offset: number;
   /** For sources whose place is not known: seconds by which the wind reaches the boats after the sensor. [s] */
   readonly lag: number;
-  /** For sources with a place: share of the travel time at wind speed by which the boats have the wind later. */
+  /** Share of the travel time at wind speed by which a boat further downwind has the wind later. */
   readonly carry: number;
+  /** For sources whose place is not known: where `lag` holds, the middle of the sailing. [m] */
+  readonly middle: { readonly x: number; readonly y: number };
+}
+
+/** A source taken as it is: no offset, no lag, carried along by the wind where its place is known. */
+export function uncorrected(source: WindSource, carry = 1): CorrectedSource {
+  return { source, offset: 0, lag: 0, carry: source.place ? carry : 0, middle: { x: 0, y: 0 } };
 }
 
 /** Wind differs by about this over a kilometre of course (the demo's and the harness's too); common practice, no source. */
@@ -94,22 +101,23 @@ function combine(
 
 /** One source's wind as it is at a place and time, and how far away the sensor is. */
 export function readAt(
-  { source, offset, lag, carry }: CorrectedSource,
+  { source, offset, lag, carry, middle }: CorrectedSource,
   here: Here,
 ): { direction: number; speed: number; distance: number } {
   const place = placeOf(source, here.time);
-  if (!place) {
-    const { direction, speed } = readWind(source, here.time - lag, Math.max(source.window, Math.abs(lag) / 3));
-    return { direction: direction + offset, speed, distance: NaN };
-  }
-  const slow = readWind(source, here.time, 240);
-  const dx = here.x - place.x;
-  const dy = here.y - place.y;
-  const distance = Math.hypot(dx, dy);
-  const downwind = -(dx * eastOf(slow.direction + offset) + dy * northOf(slow.direction + offset));
-  const travel = slow.speed > 0.5 ? (carry * downwind) / slow.speed : 0;
-  const delay = Number.isNaN(travel) ? 0 : Math.max(-600, Math.min(600, travel));
+  const from = place ?? middle;
+  const dx = here.x - from.x;
+  const dy = here.y - from.y;
+  const delay = (place ? 0 : lag) + (carry > 0 ? carry * travelTime(source, offset, here.time, dx, dy) : 0);
   const window = Math.min(LONGEST_WINDOW, Math.max(source.window, Math.abs(delay) / 3));
   const { direction, speed } = readWind(source, here.time - delay, window);
-  return { direction: direction + offset, speed, distance };
+  return { direction: direction + offset, speed, distance: place ? Math.hypot(dx, dy) : NaN };
+}
+
+/** Seconds the wind takes to be carried over a displacement, negative upwind; 0 in a calm. */
+function travelTime(source: WindSource, offset: number, time: number, dx: number, dy: number): number {
+  const slow = readWind(source, time, 240);
+  const downwind = -(dx * eastOf(slow.direction + offset) + dy * northOf(slow.direction + offset));
+  const travel = slow.speed > 0.5 ? downwind / slow.speed : 0;
+  return Number.isNaN(travel) ? 0 : Math.max(-600, Math.min(600, travel));
 }
