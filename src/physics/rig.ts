@@ -30,7 +30,7 @@ export interface LiftDrag {
 }
 
 /** Drag coefficient of a sail across the wind: a plate of aspect ratio 3 to 5 has 1.2 [3], a soft sail less [1]. */
-const ACROSS = 1;
+const ACROSS = 0.93;
 /** Over what share of the way from stall to 90 degrees the stall sets in. Assumed. */
 const ONSET = 0.08;
 /** Incidence over which a luffing sail takes up its camber. [deg] Assumed. */

@@ -107,6 +107,16 @@ describe('balance', () => {
     }
   });
 
+  it('takes well under 100 ms of processor time for the best courses in 20 winds', () => {
+    const spent = models.map(([, model]) => {
+      const before = process.cpuUsage();
+      for (let kn = 4; kn < 24; kn++) bestUpwind(model, kn * KNOT);
+      const { user, system } = process.cpuUsage(before);
+      return (user + system) / 1000;
+    });
+    expect(Math.min(...spent)).toBeLessThan(100);
+  });
+
   it('does not sail into the wind, and says so with NaN', () => {
     expect(sail(dinghy, 5, 10).speed).toBeNaN();
     expect(sail(dinghy, 5, 10).leeway).toBeNaN();
