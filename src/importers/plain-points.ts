@@ -160,7 +160,7 @@ export class PlainPoints {
       const close = endOfValue(text, inner, LESS, true);
       if (close < 0) return false;
       if (text.startsWith(`</${name}>`, close)) {
-        values.push({ role: used ? (local) : null, from: inner, to: close });
+        values.push({ role: used ? local : null, from: inner, to: close });
         at = close + name.length + 3;
       } else {
         if (used || text.charCodeAt(close + 1) === 47) return false;

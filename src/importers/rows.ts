@@ -6,15 +6,9 @@ const BLOCK = 1 << 15;
 /** A column of numbers that grows at its end. What was never set is `fill`. */
 export class GrowingColumn {
   readonly #blocks: Float64Array[] = [];
-  readonly #fill: number;
-
-  constructor(fill = NaN) {
-    this.#fill = fill;
-  }
-
   set(row: number, value: number): void {
     const block = row >>> 15;
-    while (this.#blocks.length <= block) this.#blocks.push(new Float64Array(BLOCK).fill(this.#fill));
+    while (this.#blocks.length <= block) this.#blocks.push(new Float64Array(BLOCK).fill(NaN));
     this.#blocks[block][row & (BLOCK - 1)] = value;
   }
 
@@ -24,9 +18,47 @@ export class GrowingColumn {
     for (let i = 0; i < rows.length; i++) {
       const row = rows[i];
       const block = this.#blocks[row >>> 15];
-      values[i] = block ? block[row & (BLOCK - 1)] : this.#fill;
+      values[i] = block ? block[row & (BLOCK - 1)] : NaN;
     }
     return values;
+  }
+
+  /** The first `length` values. */
+  all(length: number): Float64Array {
+    const values = new Float64Array(length).fill(NaN, Math.min(length, this.#blocks.length * BLOCK));
+    this.#blocks.forEach((block, k) => {
+      if (k * BLOCK < length) values.set(block.subarray(0, length - k * BLOCK), k * BLOCK);
+    });
+    return values;
+  }
+
+  clear(): void {
+    this.#blocks.length = 0;
+  }
+
+  get(row: number): number {
+    const block = this.#blocks[row >>> 15];
+    return block ? block[row & (BLOCK - 1)] : NaN;
+  }
+}
+
+/** A column of whole numbers from 0 on that grows at its end; what was never set is `fill`. */
+export class GrowingCounts {
+  readonly #blocks: Uint32Array[] = [];
+  readonly #fill: number;
+
+  constructor(fill: number) {
+    this.#fill = fill;
+  }
+
+  set(row: number, value: number): void {
+    const block = row >>> 15;
+    while (this.#blocks.length <= block) this.#blocks.push(new Uint32Array(BLOCK).fill(this.#fill));
+    this.#blocks[block][row & (BLOCK - 1)] = value;
+  }
+
+  clear(): void {
+    this.#blocks.length = 0;
   }
 
   get(row: number): number {
@@ -41,8 +73,8 @@ export class GrowingColumn {
  */
 export class LogRows {
   readonly #time = new GrowingColumn();
-  readonly #line = new GrowingColumn(0);
-  readonly #records = new GrowingColumn(1);
+  readonly #line = new GrowingCounts(0);
+  readonly #records = new GrowingCounts(1);
   readonly #columns = new Map<Channel, GrowingColumn>();
   readonly #pieces: number[] = [];
   #length = 0;
@@ -106,9 +138,27 @@ export class LogRows {
     return this.#time.get(row);
   }
 
-  /** Times of some rows, in their order. */
-  times(rows: Uint32Array): Float64Array {
-    return this.#time.pick(rows);
+  /** Times of some rows in their order, or of all. */
+  times(rows?: Uint32Array): Float64Array {
+    return rows ? this.#time.pick(rows) : this.#time.all(this.#length);
+  }
+
+  /** Values of a channel of some rows in their order, or of all. */
+  values(channel: Channel, rows?: Uint32Array): Float64Array {
+    return rows ? this.column(channel).pick(rows) : this.column(channel).all(this.#length);
+  }
+
+  /** Lets go of the times, once copied, and of the line numbers. */
+  releaseTimes(): void {
+    this.#time.clear();
+    this.#line.clear();
+  }
+
+  /** Whether every row has a time and each is later than the one before. */
+  get isOrdered(): boolean {
+    if (this.untimed > 0) return false;
+    for (let row = 1; row < this.#length; row++) if (!(this.#time.get(row) > this.#time.get(row - 1))) return false;
+    return true;
   }
 
   setTime(row: number, time: number): void {

@@ -23,6 +23,8 @@ export interface Settled {
  * @param lead The logger's own stamps, where the log has them beside its times.
  */
 export function settle(rows: LogRows, tally: Tally, name: string, lead?: GrowingColumn): Settled {
+  // Most logs are in order as they are: nothing need be moved.
+  if (rows.isOrdered) return gather(rows, undefined, name);
   const stamped = keepOrder(rows, stampedRows(rows, tally), tally);
   const anchors = resolveStamps(rows, stamped, tally);
   tellSteps(tally);
@@ -84,21 +86,32 @@ function tellSteps(tally: Tally): void {
   );
 }
 
-/** The columns, and the breaks where a row is of another piece than the row before it. */
-function gather(rows: LogRows, placed: Uint32Array, name: string): Settled {
+/**
+ * The columns, and the breaks where a row is of another piece than the row before it.
+ *
+ * @param placed Rows in order of time; undefined for all as they stand.
+ */
+function gather(rows: LogRows, placed: Uint32Array | undefined, name: string): Settled {
   let kept = 0;
-  for (let i = 0; i < placed.length; i++) kept += rows.records(placed[i]);
+  if (placed) for (let i = 0; i < placed.length; i++) kept += rows.records(placed[i]);
+  else for (let row = 0; row < rows.length; row++) kept += rows.records(row);
   const order = withValues(rows, placed);
   const time = rows.times(order);
+  rows.releaseTimes();
   const columns: Partial<Record<Channel, Float64Array>> = {};
-  const windy = new Uint8Array(order.length);
+  const windy = new Uint8Array(time.length);
   for (const channel of rows.channels) {
-    const values = rows.column(channel).pick(order);
+    const values = rows.values(channel, order);
     rows.release(channel);
     const present = markPresent(values, WIND.includes(channel) ? windy : undefined);
     if (present > 0) columns[channel] = values;
   }
-  const recording = createRecording({ name, time, channels: columns, breaks: findBreaks(order, rows.pieces) });
+  const recording = createRecording({
+    name,
+    time,
+    channels: columns,
+    breaks: order ? findBreaks(order, rows.pieces) : rows.pieces,
+  });
   const fixes = columns.lat ? markPresent(columns.lat) : 0;
   return { recording, kept, fixes, samples: windy.reduce((n, one) => n + one, 0) };
 }
@@ -115,12 +128,20 @@ function markPresent(values: Float64Array, marks?: Uint8Array): number {
 }
 
 /** The rows that hold a value at all: a row of a clock sentence holds none. */
-function withValues(rows: LogRows, placed: Uint32Array): Uint32Array {
-  const some = new Uint8Array(placed.length);
+function withValues(rows: LogRows, placed: Uint32Array | undefined): Uint32Array | undefined {
+  const length = placed?.length ?? rows.length;
+  const some = new Uint8Array(length);
   for (const channel of rows.channels) {
-    if (markPresent(rows.column(channel).pick(placed), some) === placed.length) return placed;
+    const column = rows.column(channel);
+    let present = 0;
+    for (let i = 0; i < length; i++) {
+      if (Number.isNaN(column.get(placed ? placed[i] : i))) continue;
+      present++;
+      some[i] = 1;
+    }
+    if (present === length) return placed;
   }
-  return placed.filter((_, i) => some[i] === 1);
+  return (placed ?? new Uint32Array(length).map((_, row) => row)).filter((_, i) => some[i] === 1);
 }
 
 function findBreaks(order: Uint32Array, pieces: readonly number[]): number[] {
