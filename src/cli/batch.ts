@@ -1,6 +1,7 @@
 import { UserError } from '../index.js';
 import type { RaceSeries, Result } from '../index.js';
 import { exitCodeOf, tellFailure } from './failures.js';
+import { forMessages } from './files.js';
 import { expandInputs } from './inputs.js';
 import type { Source } from './inputs.js';
 import { fileInLogbook } from './logbook.js';
@@ -10,6 +11,7 @@ import { checkPlaces, placeLines, placesFor, writeOutputs } from './outputs.js';
 import { loadRaces } from './races.js';
 import type { Job } from './races.js';
 import { raceSlug } from './slug.js';
+import { oneLine } from './summary.js';
 import { print, Progress } from './terminal.js';
 
 /** What is done with each race of a batch. */
@@ -22,6 +24,9 @@ export interface Task {
   readonly summary: (result: Result, job: Job) => string[];
 }
 
+/** Races of a batch that are told, a line each. */
+const MOST_RACES = 29;
+
 type Flags = RaceFlags & OutputFlags;
 
 /** Runs a task over every race of the inputs; returns the worst exit code. */
@@ -30,7 +35,7 @@ export async function runBatch(inputs: readonly string[], flags: Flags, task: Ta
   const progress = new Progress(flags.progress && !flags.quiet);
   const slugs = new Set<string>();
   let worst = 0;
-  let first = true;
+  let told = 0;
   const attempt = async (what: () => Promise<void>): Promise<void> => {
     try {
       await what();
@@ -47,8 +52,8 @@ export async function runBatch(inputs: readonly string[], flags: Flags, task: Ta
   }
   const one = async (job: Job, several: boolean): Promise<void> => {
     const lines = await runJob(job, flags, task, several, slugs, progress);
-    if (lines.length > 0) await print(`${first ? '' : '\n'}${lines.join('\n')}\n`);
-    first = false;
+    if (lines.length === 0 || told++ >= MOST_RACES) return;
+    await print(`${lines.join('\n')}\n`);
   };
   const each = async (source: Source): Promise<void> => {
     const jobs = await loadRaces(source, raceOptions(flags), progress);
@@ -57,6 +62,7 @@ export async function runBatch(inputs: readonly string[], flags: Flags, task: Ta
   };
   for (const source of sources) await attempt(() => each(source));
   progress.clear();
+  if (told > MOST_RACES) await print(`… and ${told - MOST_RACES} more\n`);
   return worst;
 }
 
@@ -84,6 +90,7 @@ async function runJob(
   const filed = flags.logbook === undefined ? [] : [await fileInLogbook(flags.logbook, result, job.day)];
   progress.clear();
   if (flags.quiet || places.json === '-') return [];
+  if (several) return [`${oneLine(result, job)}  ${forMessages(places.html ?? places.json ?? '')}`];
   return [...task.summary(result, job), ...placeLines(places), ...filed];
 }
 

@@ -18,6 +18,17 @@ export function debriefSummary(result: Result, job: Job): string[] {
   return [...head, ...shortened(legs, Math.max(4, room)), ...tail].slice(0, MOST_LINES).concat('');
 }
 
+/** A race of a batch: its name and, of each boat, how near its best it sailed its beats. */
+export function oneLine(result: Result, job: Job): string {
+  const boats = result.boats.map((boat) => {
+    const shares = boat.legs.flatMap((leg) => (leg.kind === 'upwind' && leg.efficiency ? [leg.efficiency.value] : []));
+    const mean = shares.reduce((sum, share) => sum + share, 0) / shares.length;
+    return shares.length === 0 ? boat.name : `${boat.name} ${Math.round(100 * mean)} %`;
+  });
+  const shown = boats.length > 4 ? `${boats.length} boats` : boats.join(', ');
+  return `${titleOf(result, job)}: ${shown}`;
+}
+
 /** Pairs of boats in at most 26 lines. */
 export function compareSummary(result: Result, job: Job): string[] {
   const pairs = (result.pairs ?? []).flatMap(pairLines);
@@ -27,13 +38,16 @@ export function compareSummary(result: Result, job: Job): string[] {
   return [...head, ...shortened(pairs, MOST_LINES - head.length - tail.length), ...tail, ''];
 }
 
-function titleLines(result: Result, job: Job): string[] {
+function titleOf(result: Result, job: Job): string {
   const { name } = result.race;
-  const title = job.day === null || name.startsWith(job.day) ? name : `${name}, ${job.day}`;
+  return job.day === null || name.startsWith(job.day) ? name : `${name}, ${job.day}`;
+}
+
+function titleLines(result: Result, job: Job): string[] {
   const { twd_deg, tws_kn, sources } = result.wind;
   const speed = tws_kn ? ` ${text(tws_kn, 1)} kn` : ', speed unknown';
   const wind = twd_deg ? `Wind ${text(twd_deg, 0)}°${speed} (${sources.join(', ')})` : 'Wind unknown';
-  return [outColour.bold(title), wind];
+  return [outColour.bold(titleOf(result, job)), wind];
 }
 
 const HEAD = ['boat', 'beat', 'start', 'min', 'tacks', 'angle °', 'speed kn', 'VMG kn', 'of best', 'lost m'];

@@ -5,7 +5,7 @@ import type { InspectResult } from '../../src/inspect.js';
 import type { OptimumTable } from '../../src/physics/optimum.js';
 import type { Result } from '../../src/result/result.js';
 import { inspectSchema, optimumSchema, resultSchema } from '../../src/result/schema.js';
-import { buildProgram, drop, dropProgram, folder, run } from './run.js';
+import { buildProgram, drop, dropProgram, filesBelow, fill, folder, run } from './run.js';
 
 /** The demo race once, with everything it can write; then what came of it is looked at. */
 let home: string;
@@ -80,6 +80,36 @@ describe('a result', () => {
       { name: 'Corrie', races: 1 },
       { name: 'Linnet', races: 1 },
     ]);
+  });
+});
+
+describe('a season', () => {
+  it('is a page and a summary; a file of a newer program is left out, and said so', async () => {
+    const file = filesBelow(join(demo, 'book'))[0];
+    const newer = { ...(json(`book/${file}`) as Result), version: 2 };
+    fill(demo, {
+      [`book2/${file}`]: readFileSync(join(demo, 'book', file)),
+      'book2/newer.json': JSON.stringify(newer),
+    });
+    const { code, out, err } = await run(['season', 'book2'], { cwd: demo });
+    expect(code).toBe(0);
+    expect(out).toContain('Report: reports/season.html');
+    expect(out.trim().split('\n').length).toBeLessThanOrEqual(30);
+    expect(err).toMatch(/newer\.json: is of version 2, and this program reads up to version 1/);
+    expect(readFileSync(join(demo, 'reports/season.html'), 'utf8')).toMatch(/^<!doctype html>/);
+  });
+  it('joins spellings by sailors.yaml, and says where that is wrong', async () => {
+    const file = filesBelow(join(demo, 'book'))[0];
+    fill(demo, {
+      [`book3/${file}`]: readFileSync(join(demo, 'book', file)),
+      'book3/sailors.yaml': 'hidden: [Linnet]\n',
+    });
+    const { out } = await run(['season', 'book3', '--json', '-'], { cwd: demo });
+    expect((JSON.parse(out) as { sailors: { name: string }[] }).sailors.map(({ name }) => name)).toEqual(['Corrie']);
+    fill(demo, { 'book3/sailors.yaml': 'hide: [Linnet]\n' });
+    const wrong = await run(['season', 'book3'], { cwd: demo });
+    expect(wrong.code).toBe(2);
+    expect(wrong.err).toMatch(/sailors\.yaml: unknown key `hide`/);
   });
 });
 

@@ -1,3 +1,4 @@
+import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { readRaces, overridden, needsDay, unnamedTracks, logFiles } from '../../src/files/race.js';
 import { resolveRace } from '../../src/files/race-resolve.js';
@@ -340,5 +341,50 @@ describe('the command line over the file', () => {
     // What a log says for itself comes first.
     expect(r.boats[1].track[1].columns).toEqual({ Speed: 'sog_kn:m/s' });
     expect(r.current![0].set).toBe(180);
+  });
+});
+
+describe('whatever is written', () => {
+  it('is either a race or a mistake told with its file, never a fault', async () => {
+    const piece = fc.oneof(
+      fc.constantFrom(
+        '- ',
+        ': ',
+        '[',
+        ']',
+        '{',
+        '}',
+        '\n',
+        '  ',
+        '&a ',
+        '*a ',
+        '!!x ',
+        '"',
+        "'",
+        '|',
+        '~',
+        '\t',
+        '\u0000',
+        '\u2028',
+      ),
+      fc.constantFrom('races:', 'start: 14:05', 'wind:', 'null', '1e999', '.nan', '-0', '24:00', 'x-y: 1', '<<: *a'),
+      fc.string({ maxLength: 8 }),
+    );
+    const change = fc.tuple(fc.nat(FULL.length), fc.nat(30), piece);
+    await fc.assert(
+      fc.asyncProperty(fc.array(change, { minLength: 1, maxLength: 4 }), async (changes) => {
+        let text = FULL;
+        for (const [at, length, put] of changes) text = text.slice(0, at) + put + text.slice(at + length);
+        try {
+          const { race: r } = await race(text, { firstTime: 1_776_500_000 });
+          expect(JSON.stringify(r)).not.toContain('NaN');
+          for (const time of [r.start, r.finish]) if (time !== null) expect(Number.isFinite(time)).toBe(true);
+        } catch (error) {
+          if (!(error instanceof UserError)) throw error;
+          expect(error.message).toContain('race.yaml');
+        }
+      }),
+      { numRuns: 300 },
+    );
   });
 });
