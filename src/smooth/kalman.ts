@@ -245,11 +245,6 @@ const STRIDE = 9;
 /** Time points between two checkpoints: the tape stays below 3 MB whatever the length of the log. */
 const STRETCH = 8192;
 
-/** Variance of the fix in a row, and of its Doppler velocity. */
-export interface RowVariance {
-  (row: number): number;
-}
-
 /** Observations [from, to), what is known of their noise, and the rows to be written. */
 export interface SmoothingJob {
   readonly observations: Observations;

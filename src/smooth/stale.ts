@@ -34,8 +34,8 @@ export function staleRows(o: Observations): number[] {
     move(after, next);
     row = nextRun(o, row, after);
     if (run.first < 0 && after.first < 0 && next.first < 0) break;
-    if (run.first < 0 || run.last === run.first || next.first < 0) continue;
-    if (!isLeap(o, before, run, next, after, resolution)) continue;
+    if (run.first < 0 || run.last === run.first) continue;
+    if (!isLeap(o, before, run, next, after, resolution) && !saysItMoves(o, run, resolution)) continue;
     for (let i = run.first + 1; i <= run.last; i++) if (o.x[i] === o.x[i]) stale.push(i);
   }
   return stale;
@@ -62,11 +62,28 @@ function nextRun(o: Observations, row: number, run: Run): number {
 
 /** Whether the boat must have left the place of a run long before the next fix says so. */
 function isLeap(o: Observations, before: Run, run: Run, next: Run, after: Run, resolution: number): boolean {
+  if (next.first < 0) return false;
   const leap = distance(o, run.last, next.first);
   if (leap <= LEAP_RESOLUTIONS * resolution) return false;
   const leapSpeed = leap / (o.time[next.first] - o.time[run.last]);
   const usual = Math.max(speedBetween(o, before, run), speedBetween(o, next, after));
   return leapSpeed > LEAP_FACTOR * usual + LEAP_FLOOR;
+}
+
+/** By its logged velocity the boat has gone so far while its position stood still. [m] */
+const GONE = 10;
+
+/** Whether the velocity logged during a run contradicts its standing still: a phone that repeats all it last knew. */
+function saysItMoves(o: Observations, run: Run, resolution: number): boolean {
+  let gone = 0;
+  let last = run.first;
+  for (let i = run.first + 1; i <= run.last; i++) {
+    if (o.x[i] !== o.x[i]) continue;
+    // A row without a velocity (too slow for a course) counts as standing.
+    if (o.vx[i] === o.vx[i]) gone += Math.hypot(o.vx[i], o.vy[i]) * (o.time[i] - o.time[last]);
+    last = i;
+  }
+  return gone > GONE + LEAP_RESOLUTIONS * resolution;
 }
 
 function distance(o: Observations, a: number, b: number): number {

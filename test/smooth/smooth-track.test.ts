@@ -224,6 +224,30 @@ describe('smoothTrack on spoilt tracks', () => {
     expect(Math.hypot(lying.track.vx[230], lying.track.vy[230])).toBeLessThan(0.1);
   });
 
+  it('a phone that repeats position and speed to the end of the log is stale, too', () => {
+    const clean = record(path, { step: 1, white: 0.1, doppler: 0.1, seed: 27 });
+    const held = (column: Float64Array) => column.map((v, i) => (i > 800 ? column[800] : v));
+    const { lat, lon, sog, cog } = clean.channels;
+    const channels = { lat: held(lat!), lon: held(lon!), sog: held(sog!), cog: held(cog!) };
+    const { rejected, track } = smoothTrack(createRecording({ time: clean.time, channels }), FRAME);
+    expect(rejected).toMatchObject([{ count: 100, firstRow: 801 }]);
+    expect(track.n).toBe(801);
+    // The same with speeds that have gone to zero is a boat that lies still.
+    const still = { ...channels, sog: channels.sog.map((v, i) => (i > 800 ? 0 : v)) };
+    expect(smoothTrack(createRecording({ time: clean.time, channels: still }), FRAME).rejected).toEqual([]);
+  });
+
+  it('every second fix repeated: the new ones stay', () => {
+    const clean = record(path, { step: 1, white: 0.1, seed: 26 });
+    const held = (column: Float64Array) => column.map((_, i) => column[i - (i % 2)]);
+    const channels = { lat: held(clean.channels.lat!), lon: held(clean.channels.lon!) };
+    const { rejected, track, gaps } = smoothTrack(createRecording({ time: clean.time, channels }), FRAME);
+    // Of 450 repeats; in tacks the boat is too slow for a leap to show.
+    expect(rejected[0].count).toBeGreaterThan(250);
+    expect(gaps).toEqual([]);
+    expect(velocityErrors(track, path).rms).toBeLessThan(0.2);
+  });
+
   it('leaves holes and breaks open', () => {
     const clean = record(path, { step: 1, seed: 24 });
     const keep = Array.from(clean.time.keys()).filter((i) => i < 300 || i >= 320);
