@@ -31,8 +31,8 @@ function render(part: Part): string {
 
 /** Tagged template: the literal pieces are markup, everything in `${}` is text unless it came from `html`. */
 export function html(pieces: TemplateStringsArray, ...parts: readonly Part[]): Safe {
-  let out = folded(pieces[0]!);
-  for (let i = 0; i < parts.length; i++) out += render(parts[i]) + folded(pieces[i + 1]!);
+  let out = folded(pieces[0]);
+  for (let i = 0; i < parts.length; i++) out += render(parts[i]) + folded(pieces[i + 1]);
   return { safe: out };
 }
 

@@ -87,7 +87,7 @@ export function stretches(flags: Uint8Array): [number, number][] {
 function pushColumn(bytes: number[], column: Float64Array, unit: number, step: number): void {
   let last = 0;
   for (let i = 0; i < column.length; i += step) {
-    const value = Math.round(column[i]! / unit);
+    const value = Math.round(column[i] / unit);
     if (!Number.isFinite(value)) {
       bytes.push(0);
       continue;
@@ -117,7 +117,7 @@ export function decodePayload(payload: Payload): Columns[] {
     let value = 0;
     let weight = 1;
     for (;;) {
-      const byte = bytes[at++]!;
+      const byte = bytes[at++];
       value += (byte % 128) * weight;
       if (byte < 128) return value;
       weight *= 128;

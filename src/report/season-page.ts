@@ -134,7 +134,7 @@ function sailorSection(sailor: SailorTrends, detail: SailorDetail, index: number
 /** What has changed, in a sentence. */
 function shortOf(sailor: SailorTrends): string {
   const told = (verdict: string): string[] =>
-    sailor.trends.filter((t) => t.verdict === verdict).map((t) => wordsOf(t.quantity).words.toLowerCase());
+    sailor.trends.filter((t) => t.verdict === verdict).map((t) => lowerFirst(wordsOf(t.quantity).words));
   const better = told('better');
   const worse = told('worse');
   if (better.length + worse.length === 0) return 'Nothing shown yet: what changed is within what chance deals.';
@@ -143,6 +143,10 @@ function shortOf(sailor: SailorTrends): string {
     worse.length > 0 && `Worse: ${worse.join(', ')}.`,
   ];
   return parts.filter(Boolean).join(' ');
+}
+
+function lowerFirst(words: string): string {
+  return words.charAt(0).toLowerCase() + words.slice(1);
 }
 
 function trendTable(sailor: SailorTrends, name: Part): Safe {

@@ -18,7 +18,7 @@ export const SHIFT_DEGREES = 5;
 export function smoothedWind(twd: Float64Array, half = HALF_WINDOW): Float64Array {
   const out = new Float64Array(twd.length);
   for (let i = 0; i < twd.length; i++) {
-    out[i] = Number.isFinite(twd[i]!)
+    out[i] = Number.isFinite(twd[i])
       ? circularMean(twd.subarray(Math.max(0, i - half), Math.min(twd.length, i + half + 1))).mean
       : NaN;
   }
@@ -31,7 +31,7 @@ export function shiftsOf(twd: Float64Array, threshold = SHIFT_DEGREES): Shift[] 
   const out: Shift[] = [];
   let last = NaN;
   for (let i = 0; i < smooth.length; i++) {
-    const now = smooth[i]!;
+    const now = smooth[i];
     if (!Number.isFinite(now)) continue;
     if (Number.isNaN(last)) {
       last = now;

@@ -65,7 +65,7 @@ async function launch({ path, libraries }: Candidate): Promise<Browser> {
     if (!libraries) throw error;
     return chromium.launch({
       ...options,
-      env: { ...process.env, LD_LIBRARY_PATH: libraries } as Record<string, string>,
+      env: { ...process.env, LD_LIBRARY_PATH: libraries },
     });
   }
 }

@@ -7,7 +7,10 @@ import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { eastOf, northOf, turn } from '../../src/math/angles.js';
 import { toKnots } from '../../src/math/units.js';
 import { comparePage, debriefPage } from '../../src/report/page.js';
+import { seasonPage } from '../../src/report/season-page.js';
+import { season } from '../../src/season.js';
 import { bareSample, noWindSpeedSample, renamed, sample, type Sample } from '../report/sample.js';
+import { inventedSeason } from '../season/invented-season.js';
 import { openBrowser } from './browser.js';
 
 /** The page in a real browser, opened from a file with the network off. One browser for all. */
@@ -22,6 +25,7 @@ const FILES: Readonly<Record<string, string>> = {
   bare: pageOf(bareSample()),
   nowind: pageOf(noWindSpeedSample()),
   hostile: pageOf(renamed(full, HOSTILE)),
+  season: seasonPage(season(inventedSeason({ seed: 5, races: 8, every: 7, sailors: [{ name: 'Corrie' }] }))),
 };
 
 function pageOf({ result, series }: Sample): string {
@@ -104,14 +108,14 @@ describe.skipIf(!browser)('the page in a browser', () => {
   test('the numbers at the cursor are those of the series, at five times', async () => {
     const { page, close } = await open('full');
     for (const row of [40, 333, 700, 1234, 1900]) {
-      await scrubTo(page, full.series.boats[0]!.t0 + row);
+      await scrubTo(page, full.series.boats[0].t0 + row);
       for (const [i, boat] of full.series.boats.entries()) {
-        expect(await readout(page, 'speed', i)).toBeCloseTo(toKnots(boat.speed[row]!), 1);
-        expect(await readout(page, 'vmg', i)).toBeCloseTo(toKnots(boat.vmg[row]!), 1);
-        expect(Math.abs((await readout(page, 'angle', i)) - Math.abs(boat.gamma[row]!))).toBeLessThan(0.11);
-        expect(Math.abs(turn(await readout(page, 'twd', i), boat.twd[row]!))).toBeLessThan(0.56);
+        expect(await readout(page, 'speed', i)).toBeCloseTo(toKnots(boat.speed[row]), 1);
+        expect(await readout(page, 'vmg', i)).toBeCloseTo(toKnots(boat.vmg[row]), 1);
+        expect(Math.abs((await readout(page, 'angle', i)) - Math.abs(boat.gamma[row]))).toBeLessThan(0.11);
+        expect(Math.abs(turn(await readout(page, 'twd', i), boat.twd[row]))).toBeLessThan(0.56);
         const live = page.locator(`output[data-panel="speed"][data-boat="${i}"]`);
-        expect(read(await live.innerText())).toBeCloseTo(toKnots(boat.speed[row]!), 1);
+        expect(read(await live.innerText())).toBeCloseTo(toKnots(boat.speed[row]), 1);
       }
     }
     await close();
@@ -128,7 +132,7 @@ describe.skipIf(!browser)('the page in a browser', () => {
         document.querySelector('.strip line:last-child')!.getAttribute('x1')!,
         document.querySelector('.triangle [data-side=boat]')!.getAttribute('x2')!,
       ]);
-    const t0 = full.series.boats[0]!.t0;
+    const t0 = full.series.boats[0].t0;
     await scrubTo(page, t0 + 100);
     const before = await state();
     await scrubTo(page, t0 + 260);
@@ -141,7 +145,7 @@ describe.skipIf(!browser)('the page in a browser', () => {
   test('the boat lies on its own track: where the paths of the chart put that second', async () => {
     const { page, close } = await open('full');
     for (const row of [90, 512, 1500]) {
-      await scrubTo(page, full.series.boats[0]!.t0 + row);
+      await scrubTo(page, full.series.boats[0].t0 + row);
       for (const [i, boat] of full.series.boats.entries()) {
         const [matrix, shift] = await page.evaluate(
           (k) => [
@@ -150,7 +154,7 @@ describe.skipIf(!browser)('the page in a browser', () => {
           ],
           i,
         );
-        const [a, b, c, d, e, f] = matrix!.match(/-?[\d.]+/g)!.map(Number) as [
+        const [a, b, c, d, e, f] = matrix.match(/-?[\d.]+/g)!.map(Number) as [
           number,
           number,
           number,
@@ -158,8 +162,8 @@ describe.skipIf(!browser)('the page in a browser', () => {
           number,
           number,
         ];
-        const [x, y] = [boat.x[row]!, -boat.y[row]!];
-        const [sx, sy] = shift!.match(/-?[\d.]+/g)!.map(Number) as [number, number];
+        const [x, y] = [boat.x[row], -boat.y[row]];
+        const [sx, sy] = shift.match(/-?[\d.]+/g)!.map(Number) as [number, number];
         expect(Math.hypot(a * x + c * y + e - sx, b * x + d * y + f - sy)).toBeLessThan(0.3);
       }
     }
@@ -169,7 +173,7 @@ describe.skipIf(!browser)('the page in a browser', () => {
   test('the triangle of speeds closes: apparent wind is the wind less the boat, as in the series', async () => {
     const { page, close } = await open('full');
     for (const row of [60, 450, 800, 1234, 1700]) {
-      await scrubTo(page, full.series.boats[0]!.t0 + row);
+      await scrubTo(page, full.series.boats[0].t0 + row);
       for (const [i, boat] of full.series.boats.entries()) {
         const sides = await page.evaluate((k) => {
           const svg = document.querySelector(`.triangle[data-boat="${k}"]`)!;
@@ -182,16 +186,16 @@ describe.skipIf(!browser)('the page in a browser', () => {
           return { boat: of('boat'), wind: of('true'), apparent: of('apparent') };
         }, i);
         // The air past the boat from the velocities of the series alone: wind vector less water velocity.
-        const from = boat.twd[row]!;
-        const airE = -boat.tws[row]! * eastOf(from) - boat.ux[row]!;
-        const airN = -boat.tws[row]! * northOf(from) - boat.uy[row]!;
+        const from = boat.twd[row];
+        const airE = -boat.tws[row] * eastOf(from) - boat.ux[row];
+        const airN = -boat.tws[row] * northOf(from) - boat.uy[row];
         expect(Math.hypot(...(sides.apparent as [number, number]))).toBeCloseTo(toKnots(Math.hypot(airE, airN)), 1);
-        expect(Math.hypot(...(sides.boat as [number, number]))).toBeCloseTo(toKnots(boat.speed[row]!), 1);
-        expect(Math.hypot(...(sides.wind as [number, number]))).toBeCloseTo(toKnots(boat.tws[row]!), 1);
-        expect(sides.boat[0]! + sides.apparent[0]!).toBeCloseTo(sides.wind[0]!, 2);
-        expect(sides.boat[1]! + sides.apparent[1]!).toBeCloseTo(sides.wind[1]!, 2);
+        expect(Math.hypot(...(sides.boat as [number, number]))).toBeCloseTo(toKnots(boat.speed[row]), 1);
+        expect(Math.hypot(...(sides.wind as [number, number]))).toBeCloseTo(toKnots(boat.tws[row]), 1);
+        expect(sides.boat[0] + sides.apparent[0]).toBeCloseTo(sides.wind[0], 2);
+        expect(sides.boat[1] + sides.apparent[1]).toBeCloseTo(sides.wind[1], 2);
         // On starboard tack the wind comes over the right side, so with the wind from the top she goes to the left.
-        expect(Math.sign(sides.boat[0]!)).toBe(-Math.sign(boat.gamma[row]!));
+        expect(Math.sign(sides.boat[0])).toBe(-Math.sign(boat.gamma[row]));
       }
     }
     await close();
@@ -253,7 +257,7 @@ describe.skipIf(!browser)('the page in a browser', () => {
 
   test.each(['light', 'dark'] as const)('axe finds nothing serious (%s)', async (colorScheme) => {
     const axe = readFileSync(createRequire(import.meta.url).resolve('axe-core/axe.min.js'), 'utf8');
-    for (const name of ['full', 'bare', 'compare']) {
+    for (const name of ['full', 'bare', 'compare', 'season']) {
       const { page, close } = await open(name, { colorScheme });
       await page.waitForSelector('html.live');
       await page.locator('#trust').scrollIntoViewIfNeeded();
@@ -265,7 +269,7 @@ describe.skipIf(!browser)('the page in a browser', () => {
         };
         return (await axe.run()).violations
           .filter((v) => v.impact === 'serious' || v.impact === 'critical')
-          .map((v) => `${v.id}: ${v.nodes[0]!.html.slice(0, 160)}`);
+          .map((v) => `${v.id}: ${v.nodes[0].html.slice(0, 160)}`);
       });
       expect(found).toEqual([]);
       await close();
@@ -273,7 +277,7 @@ describe.skipIf(!browser)('the page in a browser', () => {
   });
 
   test.each([360, 640, 768, 1280])('nothing is wider than a window of %i', async (width) => {
-    for (const name of ['full', 'compare', 'bare']) {
+    for (const name of ['full', 'compare', 'bare', 'season']) {
       const { page, close } = await open(name, { viewport: { width, height: 800 } });
       await page.waitForSelector('html.live');
       expect(await page.evaluate(() => document.documentElement.scrollWidth)).toBe(width);
@@ -306,7 +310,7 @@ describe.skipIf(!browser)('the page in a browser', () => {
   test('numbers follow the reader, times follow the race', async () => {
     const { page, close } = await open('full', { locale: 'de-DE', timezoneId: 'Pacific/Auckland' });
     await page.waitForSelector('html.live');
-    const vmg = full.result.boats[0]!.legs[0]!.steady!.vmg_kn!.value;
+    const vmg = full.result.boats[0].legs[0].steady!.vmg_kn!.value;
     expect(await page.locator('table.legs .q .n').first().innerText()).toBe(vmg.toFixed(2).replace('.', ','));
     expect(await page.locator('.day time').nth(1).innerText()).toBe('14:05'); // Zurich keeps summer time on 18 April
     await close();
@@ -319,7 +323,7 @@ describe.skipIf(!browser)('the page in a browser', () => {
       isMobile: true,
     });
     await page.waitForSelector('html.live');
-    const boat = full.series.boats[0]!;
+    const boat = full.series.boats[0];
     await scrubTo(page, boat.t0 + 200);
     await page.locator('#map').scrollIntoViewIfNeeded();
     const target = await page.evaluate(() => {
@@ -327,7 +331,7 @@ describe.skipIf(!browser)('the page in a browser', () => {
       return { x: pin.x + pin.width / 2, y: pin.y + pin.height / 2 };
     });
     await page.touchscreen.tap(target.x, target.y);
-    await expect.poll(async () => Math.abs(Number(await page.locator('#cursor').inputValue()) - boat.t0 - boat.manoeuvres[1]!.at)).toBeLessThan(8); // prettier-ignore
+    await expect.poll(async () => Math.abs(Number(await page.locator('#cursor').inputValue()) - boat.t0 - boat.manoeuvres[1].at)).toBeLessThan(8); // prettier-ignore
     await close();
   });
 

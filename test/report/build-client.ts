@@ -26,7 +26,7 @@ async function script(): Promise<string> {
     tsconfig: `${ROOT}src/report/client/tsconfig.json`,
   });
   const [made] = Object.values(out.metafile.outputs);
-  return notices(made!.inputs) + out.outputFiles[0]!.text.trim();
+  return notices(made.inputs) + out.outputFiles[0].text.trim();
 }
 
 /** Parts of other hands in the bundle: their licences ask that the notice goes with every copy. */

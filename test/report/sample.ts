@@ -458,8 +458,8 @@ export function bareSample(): Sample {
 }
 
 function withoutPairs(result: Result): Result {
-  const { pairs: _pairs, ...rest } = result;
-  return rest;
+  const { pairs, ...rest } = result;
+  return pairs ? rest : result;
 }
 
 /** Wind speed unknown, everything else there: the common case without an anemometer. */

@@ -35,11 +35,11 @@ export function histogram(boat: BoatSeries, from: number, to: number, bin: numbe
   const counts = new Array<number>(Math.ceil((to - from) / bin)).fill(0);
   let n = 0;
   for (let i = 0; i < boat.n; i++) {
-    const gamma = Math.abs(boat.gamma[i]!);
+    const gamma = Math.abs(boat.gamma[i]);
     if (!boat.settled[i] || !Number.isFinite(gamma)) continue;
     n++;
     const k = Math.floor((gamma - from) / bin);
-    if (k >= 0 && k < counts.length) counts[k]!++;
+    if (k >= 0 && k < counts.length) counts[k]++;
   }
   return { from, bin, share: counts.map((c) => (n ? c / n : 0)) };
 }
@@ -63,7 +63,7 @@ export function angleDistribution(boats: readonly BoatSeries[], options: Partial
 
 function labelOf(boats: readonly BoatSeries[], all: readonly Histogram[], o: DistributionOptions): string {
   const parts = boats.map((b, i) => {
-    const h = all[i]!;
+    const h = all[i];
     const most = h.share.indexOf(Math.max(...h.share));
     return `${b.name} most often at ${h.from + most * h.bin} to ${h.from + (most + 1) * h.bin} degrees`;
   });

@@ -133,7 +133,7 @@ export function dot(index: number, x: number, y: number, r: number, colour: stri
 }
 
 function meanMark(result: Result, index: number, fan: Fan): string[] {
-  const boat = result.boats[index]!;
+  const boat = result.boats[index];
   const { colour } = boatPaint(index);
   return ([-1, 1] as const).flatMap((side) => {
     const legs = upwindLegs(boat).map(({ leg }) => (side < 0 ? leg.steady?.port : leg.steady?.starboard));

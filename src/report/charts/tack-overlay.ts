@@ -31,7 +31,7 @@ export function tacksOf(boat: BoatSeries, legs?: ReadonlySet<number>): number[] 
 export function tackOverlay(boat: BoatSeries, options: Partial<TackOverlayOptions> = {}): string {
   const o = { ...OVERLAY_DEFAULTS, ...options };
   const tacks = tacksOf(boat, o.legs);
-  const curves = tacks.map((k) => curveOf(boat, boat.manoeuvres[k]!.at, o));
+  const curves = tacks.map((k) => curveOf(boat, boat.manoeuvres[k].at, o));
   const values = curves.flatMap((c) => c.map((p) => p[1])).filter(Number.isFinite);
   const x = scaleLinear([-o.before, o.after], [44, o.width - 12]);
   const y = scaleLinear(reachOf(values), [o.height - 28, 22]).nice(4);
@@ -39,7 +39,7 @@ export function tackOverlay(boat: BoatSeries, options: Partial<TackOverlayOption
     leftAxis(y, 44, o.width - 12, { count: 4 }),
     footAxis(x, o.height - 28, { count: 6 }),
     line(x(0), 20, x(0), o.height - 28, SOFT, { 'stroke-width': 1 }),
-    ...curves.map((c, i) => curve(boat, tacks[i]!, c, x, y)),
+    ...curves.map((c, i) => curve(boat, tacks[i], c, x, y)),
     el('path', {
       class: 'middle',
       d: pathOf(middle(curves).map(([t, v]) => [x(t), y(v)])),
@@ -67,7 +67,7 @@ function curveOf(boat: BoatSeries, at: number, o: TackOverlayOptions): Point[] {
   const out: Point[] = [];
   for (let s = -o.before; s <= o.after; s++) {
     const row = at + s;
-    out.push([s, row >= 0 && row < boat.n ? toKnots(boat.vmg[row]!) : NaN]);
+    out.push([s, row >= 0 && row < boat.n ? toKnots(boat.vmg[row]) : NaN]);
   }
   return out;
 }
@@ -79,7 +79,7 @@ function curve(
   x: (v: number) => number,
   y: (v: number) => number,
 ): string {
-  const onto = boat.manoeuvres[k]!.to;
+  const onto = boat.manoeuvres[k].to;
   return el('path', {
     class: 'tack-curve',
     'data-turn': k,
@@ -95,9 +95,9 @@ function curve(
 /** Median of all tacks second by second. */
 export function middle(curves: readonly (readonly Point[])[]): Point[] {
   return (curves[0] ?? []).map(([t], i) => {
-    const at = curves.map((c) => c[i]![1]).filter(Number.isFinite).sort((a, b) => a - b); // prettier-ignore
+    const at = curves.map((c) => c[i][1]).filter(Number.isFinite).sort((a, b) => a - b); // prettier-ignore
     const half = at.length / 2;
-    const value = at.length === 0 ? NaN : at.length % 2 ? at[Math.floor(half)]! : (at[half - 1]! + at[half]!) / 2;
+    const value = at.length === 0 ? NaN : at.length % 2 ? at[Math.floor(half)] : (at[half - 1] + at[half]) / 2;
     return [t, value];
   });
 }

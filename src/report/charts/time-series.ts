@@ -94,7 +94,7 @@ function panelLabel(panel: PanelKind, series: RaceSeries, columns: readonly Floa
 
 /** Range of a panel: of settled sailing with room for tacks where it is scaled to the beats, else of all rows. */
 function panelRange(panel: PanelKind, series: RaceSeries, columns: readonly Float64Array[]): [number, number] {
-  const settled = columns.map((c, i) => c.filter((_, row) => series.boats[i]!.settled[row]));
+  const settled = columns.map((c, i) => c.filter((_, row) => series.boats[i].settled[row]));
   return panel.beats && settled.some((c) => c.some(Number.isFinite)) ? beatRange(settled) : rangeOf(columns);
 }
 

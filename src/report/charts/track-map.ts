@@ -53,7 +53,7 @@ export function mapFit(series: RaceSeries, up: number, size: { width: number; he
   const legs = series.boats.some((b) => b.legs.length > 0);
   for (const b of series.boats) {
     const spans = legs ? b.legs : [{ from: 0, to: b.n }];
-    for (const { from, to } of spans) for (let i = from; i < to; i += 5) places.push({ x: b.x[i]!, y: b.y[i]! });
+    for (const { from, to } of spans) for (let i = from; i < to; i += 5) places.push({ x: b.x[i], y: b.y[i] });
   }
   return fitView(places, up, size.width, size.height);
 }

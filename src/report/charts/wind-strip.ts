@@ -35,14 +35,14 @@ export function windStrip(boat: BoatSeries, shifts: readonly Shift[], options: P
     ...y.ticks(5).map((v) => line(44, y(v), o.width - 10, y(v), v === 0 ? SOFT : RULE, { 'stroke-width': 0.7 })),
     ...y.ticks(5).map((v) => numberText(38, y(v) + 4, wrap360(mean + v), 0, { anchor: 'end', size: 11, fill: SOFT })),
     el('path', {
-      d: pathOf(rows.map((i) => [x(boat.t0 + i), y(swings[i]!)])),
+      d: pathOf(rows.map((i) => [x(boat.t0 + i), y(swings[i])])),
       fill: 'none',
       stroke: SOFT,
       'stroke-width': 0.7,
       opacity: 0.7,
     }),
     el('path', {
-      d: pathOf(rows.map((i) => [x(boat.t0 + i), y(turn(mean, smooth[i]!))])),
+      d: pathOf(rows.map((i) => [x(boat.t0 + i), y(turn(mean, smooth[i]))])),
       fill: 'none',
       stroke: INK,
       'stroke-width': 1.7,

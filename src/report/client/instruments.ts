@@ -63,14 +63,14 @@ export function mountInstruments(race: Race, store: Store): void {
   home.append(table, gap, make('div', { class: 'triangles' }, ...triangles.map((t) => t.element)));
   store.listen(({ time }) => {
     const readings = race.boats.map((b) => readingAt(race, b, time));
-    for (const { key, boat, cell } of cells) cell.textContent = wordsFor(race, key, boat, readings[boat]!, time);
-    triangles.forEach((t, i) => t.show(readings[i]!));
+    for (const { key, boat, cell } of cells) cell.textContent = wordsFor(race, key, boat, readings[boat], time);
+    triangles.forEach((t, i) => t.show(readings[i]));
     gap.textContent = gapWords(race, readings);
   });
 }
 
 function known(race: Race, index: number, line: Line): boolean {
-  const boat = race.boats[index]!;
+  const boat = race.boats[index];
   const { from, to } = race;
   for (let k = 0; k <= 20; k++) {
     const time = Math.round(from + ((to - from) * k) / 20);
@@ -82,7 +82,7 @@ function known(race: Race, index: number, line: Line): boolean {
 function wordsFor(race: Race, key: string, boat: number, reading: Reading, time: number): string {
   if (key === 'doing') return reading.doing;
   if (key === 'leg') return reading.leg;
-  if (key === 'behind') return localNumber(behindAt(race, race.boats[boat]!, time), 0);
+  if (key === 'behind') return localNumber(behindAt(race, race.boats[boat], time), 0);
   const line = LINES.find((l) => l.key === key)!;
   return localNumber(line.get(reading), line.digits);
 }
@@ -92,6 +92,6 @@ function gapWords(race: Race, readings: readonly Reading[]): string {
   if (!a || !b) return '';
   const gap = windwardGap(a, b);
   if (!Number.isFinite(gap)) return '';
-  const [front, back] = gap >= 0 ? [race.boats[0]!, race.boats[1]!] : [race.boats[1]!, race.boats[0]!];
+  const [front, back] = gap >= 0 ? [race.boats[0], race.boats[1]] : [race.boats[1], race.boats[0]];
   return `${front.name} is ${localNumber(Math.abs(gap), 0)} m to windward of ${back.name}.`;
 }

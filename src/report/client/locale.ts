@@ -38,7 +38,7 @@ export function createClock(wanted: string): Clock {
       new Intl.DateTimeFormat(undefined, { ...options, timeZone: zone }),
     ]),
   );
-  return { zone, write: (seconds, style) => formats[style]!.format(seconds * 1000) };
+  return { zone, write: (seconds, style) => formats[style].format(seconds * 1000) };
 }
 
 function zoneKnown(zone: string): boolean {

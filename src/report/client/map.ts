@@ -47,7 +47,7 @@ function placesIn(race: Race, boat: Boat | null, from: number, to: number): Plac
   for (const b of boat ? [boat] : race.boats) {
     for (let t = from; t <= to; t += 5 * race.step) {
       const i = rowAt(race, b, t);
-      if (i >= 0 && Number.isFinite(b.columns.x[i]!)) out.push({ x: b.columns.x[i]!, y: b.columns.y[i]! });
+      if (i >= 0 && Number.isFinite(b.columns.x[i])) out.push({ x: b.columns.x[i], y: b.columns.y[i] });
     }
   }
   return out;
@@ -117,9 +117,9 @@ function redrawBar(svg: SVGSVGElement, view: MapView): void {
   const metres = barLength(view);
   const w = metres * view.scale;
   const [first, second] = svg.querySelectorAll('.scale-bar rect');
-  first!.setAttribute('width', String(w / 2));
-  second!.setAttribute('x', String(26 + w / 2));
-  second!.setAttribute('width', String(w / 2));
+  first.setAttribute('width', String(w / 2));
+  second.setAttribute('x', String(26 + w / 2));
+  second.setAttribute('width', String(w / 2));
   const words = svg.querySelector('.scale-bar text')!;
   words.setAttribute('x', String(33 + w));
   words.textContent = `${metres}\u00a0m`;
@@ -204,9 +204,9 @@ function wake({ race, view }: Living, boat: Boat, time: number): string {
   const last = rowAt(race, boat, time);
   let d = '';
   for (let i = Math.max(0, last - Math.ceil(60 / race.step)); i <= last; i++) {
-    const x = boat.columns.x[i]!;
+    const x = boat.columns.x[i];
     if (!Number.isFinite(x)) continue;
-    const p = toSheet(view, x, boat.columns.y[i]!);
+    const p = toSheet(view, x, boat.columns.y[i]);
     d += `${d ? 'L' : 'M'}${p.x.toFixed(1)} ${p.y.toFixed(1)}`;
   }
   return d;
@@ -221,7 +221,7 @@ function putCursor(map: Living, place: Place, tolerance: number): boolean {
       const time = b.header.t0 + i * map.race.step;
       if (time < window[0] || time > window[1]) continue;
       // Laps lie over one another: of two places alike, the one nearer in time is meant.
-      const away = Math.hypot(b.columns.x[i]! - place.x, b.columns.y[i]! - place.y) + Math.abs(time - now) * 0.004;
+      const away = Math.hypot(b.columns.x[i] - place.x, b.columns.y[i] - place.y) + Math.abs(time - now) * 0.004;
       if (away < best.distance) best = { distance: away, time };
     }
   }
@@ -244,7 +244,7 @@ function showPick(map: Living, { pick, window }: Moment): void {
   }
   if (!pick) return;
   map.view = fitView(
-    placesIn(map.race, map.race.boats[pick.boat]!, window[0], window[1]),
+    placesIn(map.race, map.race.boats[pick.boat], window[0], window[1]),
     map.view.up,
     map.view.width,
     map.view.height,

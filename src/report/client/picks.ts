@@ -2,7 +2,7 @@ import { toKnots } from '../../math/units.js';
 import { byId, make } from './dom.js';
 import { localNumber, type Clock } from './locale.js';
 import { rowAt, type Boat, type Race } from './race.js';
-import type { Moment, Pick, Store } from './store.js';
+import type { Pick, Store } from './store.js';
 
 /** A leg or a turn picked in a table: the page looks at it alone and shows its own figures. */
 export function mountPicks(race: Race, store: Store, clock: Clock): void {
@@ -38,7 +38,7 @@ function choose(race: Race, store: Store, pick: Pick): void {
   const boat = race.boats[pick.boat];
   const turn = pick.turn === undefined ? undefined : boat?.header.turns[pick.turn];
   const leg = boat?.header.legs.find((l) => l.index === pick.leg);
-  if (turn) return store.set({ pick, time: turn.at, window: [turn.at - 45, turn.at + 75] } as Partial<Moment>);
+  if (turn) return store.set({ pick, time: turn.at, window: [turn.at - 45, turn.at + 75] });
   if (leg) store.set({ pick, time: leg.from, window: [leg.from, leg.to] });
 }
 
@@ -51,16 +51,16 @@ function mark(pick: Pick | null): void {
 }
 
 function figuresOf(race: Race, pick: Pick, clock: Clock): Node[] {
-  const boat = race.boats[pick.boat]!;
+  const boat = race.boats[pick.boat];
   const rows = pick.turn !== undefined ? turnFigures(race, boat, pick.turn) : legFigures(boat, pick.leg ?? 0);
   const span =
     pick.turn !== undefined
-      ? boat.header.turns[pick.turn]!.at
+      ? boat.header.turns[pick.turn].at
       : boat.header.legs.find((l) => l.index === pick.leg)!.from;
   const what =
     pick.turn !== undefined
-      ? boat.header.turns[pick.turn]!.kind
-      : `lap ${boat.legs[pick.leg ?? 0]!.lap}, ${boat.legs[pick.leg ?? 0]!.kind}`;
+      ? boat.header.turns[pick.turn].kind
+      : `lap ${boat.legs[pick.leg ?? 0].lap}, ${boat.legs[pick.leg ?? 0].kind}`;
   const body = rows.map(([words, value]) => make('tr', {}, make('th', { scope: 'row' }, words), make('td', {}, value)));
   return [
     make(
@@ -73,7 +73,7 @@ function figuresOf(race: Race, pick: Pick, clock: Clock): Node[] {
 }
 
 function legFigures(boat: Boat, index: number): [string, string][] {
-  const f = boat.legs[index]!;
+  const f = boat.legs[index];
   const span = boat.header.legs.find((l) => l.index === index)!;
   const known = (v: number | null, digits: number, unit: string): string =>
     v === null ? '–' : `${localNumber(v, digits)}${unit}`;
@@ -89,12 +89,12 @@ function legFigures(boat: Boat, index: number): [string, string][] {
 
 /** What a turn did to speed and VMG, read off the curves. */
 export function turnFigures(race: Race, boat: Boat, index: number): [string, string][] {
-  const t = boat.header.turns[index]!;
+  const t = boat.header.turns[index];
   const speed = (from: number, to: number): number[] => {
     const out: number[] = [];
     for (let s = from; s <= to; s += race.step) {
       const row = rowAt(race, boat, s);
-      if (row >= 0 && Number.isFinite(boat.columns.speed[row]!)) out.push(toKnots(boat.columns.speed[row]!));
+      if (row >= 0 && Number.isFinite(boat.columns.speed[row])) out.push(toKnots(boat.columns.speed[row]));
     }
     return out;
   };

@@ -48,7 +48,7 @@ export function readRace(): Race {
     index,
     name: header.name,
     header,
-    columns: columns[index]!,
+    columns: columns[index],
     legs: facts.boats[index]?.legs ?? [],
   }));
   const from = Math.min(...boats.map((b) => b.header.t0));
@@ -92,7 +92,7 @@ export function doingAt(race: Race, boat: Boat, time: number): string {
   if (turn)
     return turn.kind === 'tack' || turn.kind === 'gybe' ? `${turn.kind} onto ${turn.to}` : turn.kind.replace('-', ' ');
   const row = rowAt(race, boat, time);
-  const gamma = row < 0 ? NaN : boat.columns.gamma[row]!;
+  const gamma = row < 0 ? NaN : boat.columns.gamma[row];
   const tack = Number.isFinite(gamma) ? (gamma > 0 ? 'starboard tack' : 'port tack') : '';
   const settled = boat.header.settled.some(([a, b]) => time >= a && time < b);
   return settled ? `settled on ${tack}` : tack || 'not known';

@@ -36,19 +36,19 @@ export function readingAt(race: Race, boat: Boat, time: number): Reading {
   if (i < 0) return NOTHING;
   const c = boat.columns;
   const leg = legAt(boat, time);
-  const course = directionOf(c.ux[i]!, c.uy[i]!);
-  const gamma = c.gamma[i]!;
+  const course = directionOf(c.ux[i], c.uy[i]);
+  const gamma = c.gamma[i];
   const side = gamma > 0 ? 1 : -1;
-  const logged = Number.isFinite(c.heading[i]!);
+  const logged = Number.isFinite(c.heading[i]);
   const mean = leg?.facts.leeway ?? NaN;
   // A boat that hardly moves has a bow and a drift, but no leeway.
   const slow = !(toKnots(c.speed[i]) >= LEAST_LEEWAY_SPEED);
   const leeway = slow ? NaN : logged ? side * turn(course, c.heading[i]) : mean;
-  const bow = logged ? c.heading[i]! : Number.isFinite(mean) ? wrap360(course + side * mean) : course;
+  const bow = logged ? c.heading[i] : Number.isFinite(mean) ? wrap360(course + side * mean) : course;
   return {
-    x: c.x[i]!, y: c.y[i]!, course, bow, bowLogged: logged, leeway,
-    speed: toKnots(c.speed[i]!), vmg: toKnots(c.vmg[i]!), angle: Math.abs(gamma), gamma,
-    twd: wrap360(c.twd[i]!), tws: toKnots(c.tws[i]!), beta: c.beta[i]!, aws: toKnots(c.aws[i]!),
+    x: c.x[i], y: c.y[i], course, bow, bowLogged: logged, leeway,
+    speed: toKnots(c.speed[i]), vmg: toKnots(c.vmg[i]), angle: Math.abs(gamma), gamma,
+    twd: wrap360(c.twd[i]), tws: toKnots(c.tws[i]), beta: c.beta[i], aws: toKnots(c.aws[i]),
     leg: leg ? `lap ${leg.facts.lap}, ${leg.facts.kind}` : '–',
     doing: doingAt(race, boat, time),
   }; // prettier-ignore

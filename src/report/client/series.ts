@@ -87,7 +87,7 @@ function commonTimes(race: Race): number[] {
 function onTimes(race: Race, boat: Boat, values: Float64Array, times: readonly number[]): (number | null)[] {
   return times.map((t) => {
     const i = rowAt(race, boat, t);
-    return i >= 0 && Number.isFinite(values[i]!) ? values[i]! : null;
+    return i >= 0 && Number.isFinite(values[i]) ? values[i] : null;
   });
 }
 
@@ -96,7 +96,7 @@ function follow({ plot, readouts, data, panel }: Living, race: Race, time: numbe
   plot.setCursor({ left: plot.valToPos(time, 'x'), top: 10 }, false);
   const i = Math.round((time - race.from) / race.step);
   readouts.forEach((readout, k) => {
-    const v = data[k + 1]![i];
+    const v = data[k + 1][i];
     const shown = v === null || v === undefined ? NaN : panel.key === 'direction' ? wrap360(v) : v;
     readout.textContent = localNumber(shown, panel.digits);
   });
@@ -113,9 +113,7 @@ function mountPanel(
   const readouts = race.boats.map((b) =>
     make('output', { 'data-panel': panel.key, 'data-boat': b.index, 'aria-live': 'off' }),
   );
-  const heads = race.boats.map((b, k) =>
-    make('span', { class: 'reading' }, make('bdi', {}, b.name), ' ', readouts[k]!),
-  );
+  const heads = race.boats.map((b, k) => make('span', { class: 'reading' }, make('bdi', {}, b.name), ' ', readouts[k]));
   const frame = make('div', {
     class: 'live-panel',
     role: 'img',
@@ -155,8 +153,7 @@ function optionsFor(panel: Panel, race: Race, store: Store, clock: Clock, width:
         ...axis,
         size: 26,
         gap: 3,
-        values: (u, ticks) =>
-          ticks.map((t) => clock.write(t, u.scales.x!.max! - u.scales.x!.min! < 300 ? 'hms' : 'hm')),
+        values: (u, ticks) => ticks.map((t) => clock.write(t, u.scales.x.max! - u.scales.x.min! < 300 ? 'hms' : 'hm')),
         incrs: [1, 5, 10, 30, 60, 120, 300, 600, 900, 1800, 3600, 7200, 14400],
       },
       { ...axis, size: 42, gap: 4, values: (_u, ticks, _axis, _space, step) => ticks.map((v) => write(v, step)) },

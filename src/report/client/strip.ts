@@ -95,7 +95,7 @@ function bands(race: Race, boat: Boat, x: (t: number) => number): SVGElement[] {
   ];
   for (const [from, to] of boat.header.settled) {
     const row = rowAt(race, boat, Math.floor((from + to) / 2));
-    const starboard = row >= 0 && boat.columns.gamma[row]! > 0;
+    const starboard = row >= 0 && boat.columns.gamma[row] > 0;
     out.push(
       draw('rect', {
         x: x(from),

@@ -17,8 +17,7 @@ export function mountTips(): void {
     if (!tip.matches(':popover-open')) tip.showPopover();
     place(tip, target);
   };
-  const noted = (event: Event): HTMLElement | null =>
-    (event.target as Element).closest?.('.q, .term') as HTMLElement | null;
+  const noted = (event: Event): HTMLElement | null => (event.target as Element).closest<HTMLElement>('.q, .term');
   document.addEventListener('pointerover', (event) => {
     if (event.pointerType !== 'mouse') return;
     const target = noted(event);

@@ -59,9 +59,9 @@ function distributionPlate(result: Result, series: RaceSeries): Part {
   const boats = series.boats;
   if (boats.every((b) => !b.settled.some(Boolean))) return null;
   const all = boats.map((b) => histogram(b, 25, 65, 5));
-  const rows = all[0]!.share.map((_, k) => [
+  const rows = all[0].share.map((_, k) => [
     `${25 + 5 * k}–${30 + 5 * k}°`,
-    ...all.map((h) => withUnit(100 * h.share[k]!, 'percent')),
+    ...all.map((h) => withUnit(100 * h.share[k], 'percent')),
   ]);
   return figure({
     svg: angleDistribution(boats, bestAngle(result)),

@@ -47,7 +47,7 @@ export function ledger(result: Result): Safe {
   const floor = waterfallFloor(data);
   const plates = withLedger.map((boat, i) =>
     figure({
-      svg: waterfall(data[i]!, { reach, floor }),
+      svg: waterfall(data[i], { reach, floor }),
       title: html`${swatch(result.boats.indexOf(boat))} ${nameOf(boat.name)}`,
       summary: summaryOf(boat),
       table: ledgerTable(boat),

@@ -68,11 +68,11 @@ function minuteTables(series: RaceSeries): Part {
     for (let i = 0; i < b.n; i += step) {
       rows.push([
         time(b.t0 + i, 'hms'),
-        plain(Math.abs(b.gamma[i]!), 0),
-        plain(toKnots(b.speed[i]!), 1),
-        plain(toKnots(b.vmg[i]!), 1),
-        plain(wrap360(b.twd[i]!), 0),
-        plain(toKnots(b.tws[i]!), 1),
+        plain(Math.abs(b.gamma[i]), 0),
+        plain(toKnots(b.speed[i]), 1),
+        plain(toKnots(b.vmg[i]), 1),
+        plain(wrap360(b.twd[i]), 0),
+        plain(toKnots(b.tws[i]), 1),
       ]);
     }
     return table(nameOf(b.name), ['Time', 'Course angle °', 'Speed kn', 'VMG kn', 'Wind from °', 'Wind kn'], rows);

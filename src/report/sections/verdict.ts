@@ -63,7 +63,7 @@ function findings(result: Result, boat: BoatResult): Safe {
   const losses = largestLosses(boat, 3);
   const ledger = upwindLegs(boat).find(({ leg }) => leg.ledger)?.leg.ledger;
   if (losses.length === 0 || !ledger) return html`<p class="second">No ledger of metres: ${whyNoLedger(boat)}.</p>`;
-  const most = losses[0]!.metres.value;
+  const most = losses[0].metres.value;
   const rows = losses.map(({ cause, metres }) => {
     const other = leastOfOthers(result, boat, cause);
     const excess = other && difference(metres, other.metres);
