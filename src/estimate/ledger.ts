@@ -50,6 +50,8 @@ export interface LedgerInput {
   readonly errors: ErrorModel;
   /** Share (0..1) of the low sailing after the last tack that overstanding explains. */
   readonly overstoodShare: number;
+  /** Speed that the trim cost, where it could be told; null: its metres stay in speed. [m/s] */
+  readonly trim: { readonly loss: number; readonly sd: number } | null;
   /** Direction of the leg's mean wind where it is shared with other boats; else the leg's own. [deg] */
   readonly meanWind?: number;
 }
@@ -76,9 +78,22 @@ export function legLedger(input: LedgerInput): LedgerFigures {
     if (part) addBlock(entries, part, piece, input.overstoodShare);
     else addWindow(entries, piece, sum, nearRates(pieces, parts, k));
   });
+  const trim = trimMetres(input);
+  entries.trim += trim.value;
+  entries.speed -= trim.value;
   const available = sums.reduce((total, sum) => total + sum.best, 0);
   const made = sums.reduce((total, sum) => total + sum.madeMean, 0);
   return withErrors(input, entries, available, made);
+}
+
+/** Metres to windward that the trim cost over the settled sailing. */
+function trimMetres({ sailing, rows, trim }: LedgerInput): Figure {
+  if (!trim) return { value: 0, se: 0, sys: 0 };
+  let along = 0;
+  for (const block of rows.blocks) {
+    for (let i = block.from; i < block.to; i++) along += Math.cos(sailing.gamma[i] * RAD) || 0;
+  }
+  return { value: trim.loss * along, se: trim.sd * along, sys: 0 };
 }
 
 function isBlock(piece: Piece): boolean {
@@ -288,7 +303,7 @@ function withErrors(
       start: figure(entries.start, busy),
       high: figure(entries.high, angle, sysDirection),
       low: figure(entries.low, angle, sysDirection),
-      trim: figure(0, 0),
+      trim: trimMetres(input),
       speed: figure(
         entries.speed,
         Math.hypot(direction, windSpeed * scale, receiver),

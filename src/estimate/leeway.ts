@@ -12,8 +12,8 @@ export interface LeewayInput {
   readonly tws: number;
   /** Course to true wind. [deg] */
   readonly gamma: number;
-  /** Bow to true wind, from the corrected heading. [deg] */
-  readonly bowAngle: number;
+  /** From the corrected heading to the course through the water, positive to leeward. [deg] */
+  readonly drift: number;
   /** Bow to apparent wind, from the corrected masthead. [deg] */
   readonly mastheadAngle: number;
 }
@@ -39,18 +39,18 @@ export interface LeewayEstimate {
 /** What the boat model's leeway is good to as a share of itself: foil slope and rig, common practice, no source. */
 const MODEL_SHARE = 0.12;
 
-const INPUTS = ['speed', 'tws', 'gamma', 'bowAngle', 'mastheadAngle'] as const;
+const INPUTS = ['speed', 'tws', 'gamma', 'drift', 'mastheadAngle'] as const;
 const BASIS = { heading: 'measured', masthead: 'derived', forces: 'inferred' } as const;
 
 /**
  * Leeway of a stretch of steady sailing.
  *
- *     by heading    lambda = gamma - (true wind off the bow)
+ *     by heading    lambda = course to leeward of the bow, whatever the wind
  *     by masthead   lambda = beta - (apparent wind off the bow)
  *     by forces     lambda = Y / (q A a), Y from the two force equations
  *
  * Each is carried with its errors, by finite differences through the same inputs; they are combined by inverse
- * variance, and the error of the mean counts what they share (an error of gamma is in all three).
+ * variance, and the error of the mean counts what they share (an error of gamma is in two of them).
  *
  * @param model  Boat; null: no forces.
  * @param input  Means, offsets already added. [m/s, deg]
@@ -88,7 +88,7 @@ export function leewayOfSailing(
   };
 }
 
-const byHeading = (x: LeewayInput): number => x.gamma - x.bowAngle;
+const byHeading = (x: LeewayInput): number => x.drift;
 
 const byMasthead = (x: LeewayInput): number => apparentWind(x.speed, x.tws, x.gamma).beta - x.mastheadAngle;
 

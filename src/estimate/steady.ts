@@ -19,6 +19,8 @@ export interface ErrorModel {
   readonly sysSpeed: number;
   /** Standard error per axis of a displacement over so many seconds. [m] */
   readonly displacementSe: (seconds: number) => number;
+  /** Standard error per axis of the water's velocity, where it was estimated. [m/s] */
+  readonly drift: number;
   /** Least standard error of gamma: 2 degrees where the wind direction came from the tracks, else 0. [deg] */
   readonly leastGamma: number;
 }
@@ -86,7 +88,7 @@ function receiverError(blocks: readonly BlockEstimate[], errors: ErrorModel): nu
     variance += errors.displacementSe(seconds) ** 2;
     total += seconds;
   }
-  return Math.sqrt(variance) / total;
+  return Math.hypot(Math.sqrt(variance) / total, errors.drift);
 }
 
 /**

@@ -1,5 +1,5 @@
 import type { Race } from '../files/race-types.js';
-import { circularMean } from '../math/angles.js';
+import { circularMean, directionOf } from '../math/angles.js';
 import type { Issue } from '../recording/issues.js';
 import { isoTime, knotsQuantity, quantity } from '../result/quantity.js';
 import type {
@@ -24,6 +24,8 @@ import type { FoundWind } from './find-wind.js';
 import type { ReadFile } from './read-logs.js';
 import { CAUSES, type LedgerFigures } from '../estimate/ledger.js';
 import type { RaceModel } from './boat-models.js';
+import type { Corrections } from './reconcile-boats.js';
+import type { BoatTrim, LegTrim, Trim } from './trim.js';
 import type { Judgement, LegJudgement, Optimum } from './judge.js';
 
 export interface Assembly {
@@ -36,6 +38,8 @@ export interface Assembly {
   readonly estimates: readonly BoatEstimate[];
   readonly issues: readonly Issue[];
   readonly models: readonly RaceModel[];
+  readonly corrections: Corrections;
+  readonly trims: readonly BoatTrim[];
   readonly judgements: readonly Judgement[];
 }
 
@@ -52,7 +56,7 @@ export function assemble(a: Assembly): Result {
     },
     inputs: a.files.map((file) => inputEntry(file, a.boats)),
     wind: windOf(a),
-    corrections: { twd_offset_deg: twdOffset(a.wind), current: null },
+    corrections: { twd_offset_deg: twdOffset(a.wind), current: currentResult(a.corrections) },
     boats: a.boats.map((boat, k) => boatResult(boat, k, a)),
     warnings: a.issues.map(({ code, message, file }): Warning => ({ code, message, ...(file ? { file } : {}) })),
   };
@@ -124,7 +128,10 @@ function boatResult(boat: CleanBoat, k: number, a: Assembly): BoatResult {
     name: reference.name,
     sailor: reference.sailor,
     model: { boat: reference.boat, tuned: model.tuned, sha256: model.sha256 },
-    corrections: { compass_offset_deg: null, awa_offset_deg: null },
+    corrections: {
+      compass_offset_deg: quantity(a.corrections.boats[k].compass, 'inferred'),
+      awa_offset_deg: quantity(a.corrections.boats[k].masthead, 'inferred'),
+    },
     manoeuvres: estimate.manoeuvres.map(({ manoeuvre, loss }): ManoeuvreResult => ({
       kind: manoeuvre.kind,
       time: isoTime(Math.round(manoeuvre.time * 10) / 10),
@@ -152,22 +159,26 @@ function legResult(estimate: LegEstimate, boat: number, index: number, a: Assemb
     tacks: estimate.tacks,
     gybes: estimate.gybes,
     vmg_kn: knotsQuantity(estimate.vmg, inferred ? 'inferred' : 'derived'),
-    steady: all ? steadyOf(estimate, inferred) : null,
+    steady: all ? steadyOf(estimate, a.trims[boat].legs[index], inferred) : null,
     optimum: judged.optimum && optimumResult(judged.optimum),
     ceiling_vmg_kn: all ? knotsQuantity(all.ceiling, 'derived') : null,
     efficiency: quantity(judged.efficiency, 'inferred'),
     share: quantity(judged.share, 'inferred'),
     ledger: judged.ledger && ledgerResult(judged.ledger, reference.kind),
-    notes: legNotes(estimate, judged),
+    notes: legNotes(estimate, judged, a.trims[boat].legs[index]),
   };
 }
 
-function legNotes({ leg, all }: LegEstimate, judged: LegJudgement): string[] {
+function legNotes({ leg, all }: LegEstimate, judged: LegJudgement, trim: LegTrim | null): string[] {
   if (leg.kind !== 'upwind') return ['settled figures are for beats only'];
   if (!all) return ['no settled close-hauled sailing on this leg'];
   const notes: string[] = [];
   if (Number.isNaN(all.tws.value)) notes.push('wind speed unknown');
-  if (judged.ledger) notes.push('trim: leeway was not measured, so its metres stay in speed');
+  if (judged.ledger && !trim?.loss) {
+    notes.push('trim: leeway was not measured closely enough to tell it from speed, so its metres stay in speed');
+  }
+  if (trim && !trim.all.sheeting) notes.push('sheeting: the log says too little of it');
+  if (trim?.all.leeway?.beatsModel) notes.push('leeway and drag angles: faster than the boat file allows');
   return notes;
 }
 
@@ -192,17 +203,32 @@ function ledgerResult(ledger: LedgerFigures, reference: Ledger['reference']): Le
   };
 }
 
-function steadyOf(estimate: LegEstimate, inferred: boolean): Steady {
+function currentResult({ current }: Corrections): Result['corrections']['current'] {
+  if (!current) return null;
+  const { east, north } = current;
+  const drift = Math.hypot(east.value, north.value);
+  const se = Math.hypot(east.se, north.se) / Math.SQRT2;
   return {
-    ...sideOf(estimate.all!, estimate.vane, inferred),
-    tacking_angle_deg: quantity(estimate.tackingAngle, inferred ? 'inferred' : 'derived'),
-    port: estimate.port ? sideOf(estimate.port, null, inferred) : null,
-    starboard: estimate.starboard ? sideOf(estimate.starboard, null, inferred) : null,
+    set_deg: quantity({ value: directionOf(east.value, north.value), se: (180 / Math.PI) * (se / drift) }, 'inferred'),
+    drift_kn: knotsQuantity({ value: drift, se }, 'inferred'),
   };
 }
 
-function sideOf(figures: SteadyFigures, vane: Figure | null, inferred: boolean): TackSide {
+function steadyOf(estimate: LegEstimate, trim: LegTrim | null, inferred: boolean): Steady {
+  const side = (figures: SteadyFigures | null, own: Trim | null | undefined): TackSide | null =>
+    figures && sideOf(figures, null, own ?? null, inferred);
+  return {
+    ...sideOf(estimate.all!, estimate.vane, trim?.all ?? null, inferred),
+    tacking_angle_deg: quantity(estimate.tackingAngle, inferred ? 'inferred' : 'derived'),
+    port: side(estimate.port, trim?.port),
+    starboard: side(estimate.starboard, trim?.starboard),
+  };
+}
+
+function sideOf(figures: SteadyFigures, vane: Figure | null, trim: Trim | null, inferred: boolean): TackSide {
   const basis: Basis = inferred ? 'inferred' : 'derived';
+  const leeway = trim?.leeway ?? null;
+  const sheeting = trim?.sheeting ?? null;
   return {
     seconds: figures.seconds,
     gamma_deg: quantity(figures.gamma, basis),
@@ -211,11 +237,11 @@ function sideOf(figures: SteadyFigures, vane: Figure | null, inferred: boolean):
     tws_kn: knotsQuantity(figures.tws, 'measured'),
     aws_kn: knotsQuantity(figures.aws, basis),
     beta_deg: quantity(figures.beta, basis),
-    awa_deg: quantity(vane, 'measured'),
-    leeway_deg: null,
-    sheeting_deg: null,
-    incidence_deg: null,
-    aero_drag_angle_deg: null,
-    hydro_drag_angle_deg: null,
+    awa_deg: vane ? quantity(vane, 'measured') : quantity(trim?.awa ?? null, 'inferred'),
+    leeway_deg: leeway && quantity(leeway, leeway.basis),
+    sheeting_deg: sheeting && quantity({ value: sheeting.mean, se: sheeting.sd }, 'inferred'),
+    incidence_deg: quantity(trim?.incidence ?? null, 'inferred'),
+    aero_drag_angle_deg: quantity(trim?.aero ?? null, 'inferred'),
+    hydro_drag_angle_deg: quantity(trim?.hydro ?? null, 'inferred'),
   };
 }

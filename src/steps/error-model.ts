@@ -2,6 +2,7 @@ import { estimateMismatch, ON_BOARD_MISMATCH } from '../estimate/mismatch.js';
 import type { ErrorModel } from '../estimate/steady.js';
 import type { CleanBoat, CleanTracks } from './clean-tracks.js';
 import { typicalDistance, type FoundWind } from './find-wind.js';
+import type { Corrections } from './reconcile-boats.js';
 
 /** Gamma whose wind direction came from the tracks is not better known than this: boats tack on shifts. [deg] */
 const INFERRED_GAMMA = 2;
@@ -10,8 +11,10 @@ const INFERRED_GAMMA = 2;
 export function errorModels(
   clean: CleanTracks,
   wind: FoundWind,
+  corrections: Corrections,
   displacement: (boat: CleanBoat) => (seconds: number) => number,
 ): ErrorModel[] {
+  const { current } = corrections;
   const hasOwn = clean.boats.map((_, k) => wind.sources.some(({ source }) => source.boat === k));
   const ashore = wind.sailed.filter((_, k) => !hasOwn[k]).map((one) => one.blocks);
   const distance = typicalDistance(wind.atBoats.filter((_, k) => !hasOwn[k]));
@@ -26,6 +29,7 @@ export function errorModels(
       sysDirection: wind.directionInferred ? 0 : (wind.offsets[used]?.se ?? source.accuracyDir),
       sysSpeed: source.hasSpeed ? source.accuracySpeed : 0,
       displacementSe: displacement(boat),
+      drift: current ? Math.hypot(current.east.se, current.north.se) / Math.SQRT2 : 0,
       leastGamma: wind.directionInferred ? INFERRED_GAMMA : 0,
     };
   });

@@ -41,8 +41,15 @@ const ROUNDS = 2;
  *
  * First the sources as they are; then each round finds lags and offsets from the settled sailing they gave. Without a
  * direction from any instrument the tracks give it: a first guess from the turns, then the bisectors of the tacks.
+ *
+ * @param stationOffset The stations' direction offset where the boats' instruments told it; else it is found from tacks.
  */
-export function findWind(tracks: readonly Track[], sources: readonly WindSource[], sailBoat: SailBoat): FoundWind {
+export function findWind(
+  tracks: readonly Track[],
+  sources: readonly WindSource[],
+  sailBoat: SailBoat,
+  stationOffset: { readonly value: number; readonly se: number } | null = null,
+): FoundWind {
   const measured = sources.filter((source) => source.kind !== 'by-hand');
   if (measured.length === 0) return windFromTracks(tracks, sources, sailBoat);
   checkOverlap(tracks, measured);
@@ -54,7 +61,11 @@ export function findWind(tracks: readonly Track[], sources: readonly WindSource[
   for (let round = 0; round < ROUNDS; round++) {
     lags = corrected.map(({ source }) => (source.kind === 'station' && !source.place ? lagOf(source, sailed) : null));
     const lagged = measured.map((source, k) => delayed(source, lags[k], sailed));
-    offsets = lagged.map((one, k) => offsetOf(one, k, tracks, measured, sailBoat));
+    offsets = lagged.map((one, k) =>
+      stationOffset && one.source.kind === 'station'
+        ? { offset: stationOffset.value, se: stationOffset.se }
+        : offsetOf(one, k, tracks, measured, sailBoat),
+    );
     corrected = lagged.map((one, k) => ({ ...one, offset: offsets[k]?.offset ?? 0 }));
     atBoats = tracks.map((track, boat) => windAtBoat(boat, track, corrected));
     sailed = atBoats.map((wind, boat) => sailBoat(boat, wind));

@@ -9,6 +9,7 @@ import type { Place } from '../segment/legs.js';
 import type { RaceModel } from './boat-models.js';
 import type { BoatEstimate, LegEstimate } from './estimate-boat.js';
 import type { Sailed } from './sail.js';
+import type { BoatTrim } from './trim.js';
 
 export interface Optimum {
   readonly gamma: Figure;
@@ -35,6 +36,7 @@ export interface Judgement {
 export interface JudgeInput {
   readonly sailed: readonly Sailed[];
   readonly estimates: readonly BoatEstimate[];
+  readonly trims: readonly BoatTrim[];
   readonly models: readonly RaceModel[];
   /** `best` needs settled sailing in known wind; without it the model stands alone. */
   readonly reference: 'model' | 'best' | RaceModel;
@@ -118,6 +120,7 @@ function judgeLeg(
         reference,
         errors,
         overstoodShare: share,
+        trim: input.trims[boat].legs[index]?.loss ?? null,
         ...(input.sharedWind ? { meanWind: input.sharedWind(leg.leg.lap) } : {}),
       })
     : null;

@@ -10,16 +10,19 @@ import { handSource, stationSource } from '../wind/station.js';
 import { checkRecording } from './check-sensors.js';
 import type { CleanTracks } from './clean-tracks.js';
 import type { ReadLogs, WindLog } from './read-logs.js';
+import type { Corrections } from './reconcile-boats.js';
 
 /**
  * Every source of wind of a race: the boats' own, stations and coach boats, hand readings.
  *
+ * @param corrections  What the reconciliation found; a corrected vane is better known than an uncorrected one.
  * @param heightFactor From a height [m] to the rig's, as a factor on the speed.
  */
 export function windSources(
   race: Race,
   logs: ReadLogs,
   clean: CleanTracks,
+  corrections: Corrections | null,
   heightFactor: (height: number) => number,
 ): { sources: readonly WindSource[]; issues: readonly Issue[] } {
   const sources: WindSource[] = [];
@@ -27,7 +30,8 @@ export function windSources(
   clean.boats.forEach((boat, k) => {
     const file = boat.logs.instruments[0]?.file ?? boat.logs.trackFiles[0] ?? '';
     const own = onBoardSource(boat.track, file, k);
-    if (own) sources.push(own);
+    const masthead = corrections?.boats[k].masthead;
+    if (own) sources.push(masthead ? { ...own, accuracyDir: TURNED * Math.max(LEAST_VANE, masthead.se) } : own);
   });
   for (const log of logs.winds) {
     const checked = checkRecording(log.recording, log.reference.file, log.reference.at ?? clean.frame);
@@ -44,6 +48,11 @@ export function windSources(
   }
   return { sources, issues };
 }
+
+/** An error of the vane turns the true wind by about this much more than itself upwind: from the wind triangle. */
+const TURNED = 1.4;
+/** A vane is not better known than this: its offset changes with heel and sheeting. [deg] Common practice, no source. */
+const LEAST_VANE = 0.7;
 
 /** A wind log: a moving boat's apparent wind is made true by its own motion, anything else is a station. */
 function logSource(log: WindLog, frame: Frame, heightFactor: (height: number) => number): WindSource | null {

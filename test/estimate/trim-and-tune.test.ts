@@ -24,10 +24,10 @@ describe('leeway', () => {
     speed: truth.speed,
     tws: truth.tws,
     gamma: truth.gamma,
-    bowAngle: truth.gamma - truth.leeway,
+    drift: truth.leeway,
     mastheadAngle: truth.beta - truth.leeway,
   };
-  const errors: LeewayInput = { speed: 0.02, tws: 0.1, gamma: 0.5, bowAngle: 0.3, mastheadAngle: 1 };
+  const errors: LeewayInput = { speed: 0.02, tws: 0.1, gamma: 0.5, drift: 0.3, mastheadAngle: 1 };
 
   it('comes out alike by heading, masthead and forces', () => {
     const found = leewayOfSailing(model, input, errors)!;
@@ -42,10 +42,10 @@ describe('leeway', () => {
     const found = leewayOfSailing(null, { ...input, mastheadAngle: NaN }, errors)!;
     expect(found.ways).toHaveLength(1);
     expect(found.se).toBeCloseTo(Math.hypot(0.5, 0.3), 9);
-    const masthead = leewayOfSailing(null, { ...input, bowAngle: NaN }, errors)!;
+    const masthead = leewayOfSailing(null, { ...input, drift: NaN }, errors)!;
     expect(masthead.basis).toBe('derived');
     expect(masthead.se).toBeGreaterThan(1);
-    expect(leewayOfSailing(null, { ...input, bowAngle: NaN, mastheadAngle: NaN }, errors)).toBeNull();
+    expect(leewayOfSailing(null, { ...input, drift: NaN, mastheadAngle: NaN }, errors)).toBeNull();
   });
 
   it('states the scatter it really has', () => {
@@ -64,7 +64,7 @@ describe('leeway', () => {
   });
 
   it('does without forces for a boat that beats its model, and says so', () => {
-    const fast = { ...input, speed: bestSpeed() * 1.03, bowAngle: NaN };
+    const fast = { ...input, speed: bestSpeed() * 1.03, drift: NaN };
     const found = leewayOfSailing(model, fast, errors)!;
     expect(found.beatsModel).toBe(true);
     expect(found.ways.map((one) => one.way)).toEqual(['masthead']);
@@ -73,7 +73,7 @@ describe('leeway', () => {
   const bestSpeed = (): number => sail(model, truth.tws, truth.gamma).speed;
 
   it('by forces alone is moved by a few tenths of a degree by 2 % of speed, 1 degree of course or 5 % of wind', () => {
-    const only = { ...input, bowAngle: NaN, mastheadAngle: NaN };
+    const only = { ...input, drift: NaN, mastheadAngle: NaN };
     const at = (change: Partial<LeewayInput>): number => leewayOfSailing(model, { ...only, ...change }, errors)!.value;
     const here = at({});
     expect(Math.abs(at({ speed: only.speed * 0.98 }) - here)).toBeLessThan(0.4);

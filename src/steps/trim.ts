@@ -1,0 +1,191 @@
+import type { Race } from '../files/race-types.js';
+import { leewayOfSailing, type LeewayEstimate } from '../estimate/leeway.js';
+import { sheetingPosterior, trimLoss, type SheetingPosterior } from '../estimate/sheeting.js';
+import type { BlockEstimate } from '../estimate/blocks.js';
+import type { Figure, SteadyFigures } from '../estimate/steady.js';
+import { directionOf, turn } from '../math/angles.js';
+import { achieved } from '../physics/achieved.js';
+import type { Issue } from '../recording/issues.js';
+import type { Track } from '../recording/track.js';
+import { tackSign } from '../segment/sailing.js';
+import type { RaceModel } from './boat-models.js';
+import type { BoatEstimate, LegEstimate } from './estimate-boat.js';
+import type { BoatCorrections } from './reconcile-boats.js';
+import type { Sailed } from './sail.js';
+
+/** What the model and the sensors say of a stretch's trim. null: not to be had. */
+export interface Trim {
+  readonly leeway: LeewayEstimate | null;
+  /** Displayed posterior (speed included); null where it did not narrow. */
+  readonly sheeting: SheetingPosterior | null;
+  readonly incidence: Figure | null;
+  readonly aero: Figure | null;
+  readonly hydro: Figure | null;
+  readonly awa: Figure | null;
+}
+
+export interface LegTrim {
+  readonly all: Trim;
+  readonly port: Trim | null;
+  readonly starboard: Trim | null;
+  /** Speed that the trim cost, where leeway was measured and the posterior without speed is narrow. [m/s] */
+  readonly loss: { readonly loss: number; readonly sd: number } | null;
+}
+
+export interface BoatTrim {
+  /** One a leg; null where there is no settled sailing in known wind. */
+  readonly legs: readonly (LegTrim | null)[];
+  /** Share of the legs on which the boat was faster than the model can be. */
+  readonly beatsModel: number;
+}
+
+/** A posterior wider than this says nothing of what trim cost. [deg] */
+const NARROW = 2;
+/** What is left of a compass's and a vane's error in a leg's mean, their offsets apart: common practice, no source. [deg] */
+const COMPASS_NOISE = 0.2;
+const VANE_NOISE = 0.4;
+
+/** Leeway, sheeting and drag angles of every beat of a boat. */
+export function trimBoat(
+  one: Sailed,
+  estimate: BoatEstimate,
+  track: Track,
+  model: RaceModel,
+  corrections: BoatCorrections,
+): BoatTrim {
+  const legs = estimate.legs.map((leg) => (leg.all && !Number.isNaN(leg.all.tws.value) ? legTrim(leg) : null));
+  const judged = legs.filter((leg) => leg !== null);
+  const beaten = judged.filter((leg) => leg.all.leeway?.beatsModel ?? false).length;
+  return { legs, beatsModel: judged.length > 0 ? beaten / judged.length : 0 };
+
+  function legTrim(leg: LegEstimate): LegTrim {
+    const of = (figures: SteadyFigures, blocks: readonly BlockEstimate[]): Trim =>
+      trimOf(figures, blocks, track, one, model, corrections);
+    const on = (tack: string): readonly BlockEstimate[] => leg.blocks.filter((block) => block.tack === tack);
+    const all = of(leg.all!, leg.blocks);
+    return {
+      all,
+      port: leg.port ? of(leg.port, on('port')) : null,
+      starboard: leg.starboard ? of(leg.starboard, on('starboard')) : null,
+      loss: lossOf(leg.all!, all.leeway, model),
+    };
+  }
+}
+
+function trimOf(
+  figures: SteadyFigures,
+  blocks: readonly BlockEstimate[],
+  track: Track,
+  one: Sailed,
+  { model }: RaceModel,
+  corrections: BoatCorrections,
+): Trim {
+  const speed = figures.speed.value;
+  const tws = figures.tws.value;
+  const gamma = figures.gamma.value;
+  const total = (figure: Figure): number => Math.hypot(figure.se, figure.sys);
+  const drift = corrections.leeway && corrections.compass ? driftOf(track, one, blocks) : NaN;
+  const mast = corrections.masthead && track.awa ? meanSize(track.awa, blocks) : NaN;
+  const errors = {
+    speed: total(figures.speed),
+    tws: total(figures.tws),
+    gamma: total(figures.gamma),
+    drift: Math.hypot(corrections.compass?.se ?? 0, COMPASS_NOISE),
+    mastheadAngle: Math.hypot(corrections.masthead?.se ?? 0, VANE_NOISE),
+  };
+  const input = { speed, tws, gamma, drift, mastheadAngle: mast };
+  const leeway = leewayOfSailing(model, input, errors);
+  const posterior = sheetingPosterior(model, {
+    speed,
+    tws,
+    gamma,
+    speedSe: errors.speed,
+    ...(measured(leeway) ? { leeway: measured(leeway)! } : {}),
+    ...(track.heel ? { heel: { value: meanSize(track.heel, blocks), se: 1 } } : {}),
+  });
+  const sheeting = posterior?.narrowed ? posterior : null;
+  const state = achieved(model, { speed, tws, gamma }).eased;
+  const beta = figures.beta;
+  const aero = state ? { value: state.aeroDragAngle, se: MODEL_ANGLE, sys: 0 } : null;
+  return {
+    leeway,
+    sheeting,
+    incidence:
+      sheeting && leeway
+        ? {
+            value: beta.value - sheeting.mean - leeway.value,
+            se: Math.hypot(beta.se, sheeting.sd, leeway.se),
+            sys: beta.sys,
+          }
+        : null,
+    aero,
+    hydro: aero ? { value: beta.value - aero.value, se: Math.hypot(beta.se, MODEL_ANGLE), sys: beta.sys } : null,
+    awa: leeway ? { value: beta.value - leeway.value, se: Math.hypot(beta.se, leeway.se), sys: beta.sys } : null,
+  };
+}
+
+/** What the model's drag angles are good to: common practice, no source. [deg] */
+const MODEL_ANGLE = 1.5;
+
+/** Leeway as the sensors have it, the model's own left out; null where only the forces told it. */
+function measured(leeway: LeewayEstimate | null): { value: number; se: number } | null {
+  const ways = (leeway?.ways ?? []).filter(({ way }) => way !== 'forces');
+  if (ways.length === 0) return null;
+  const total = ways.reduce((sum, way) => sum + 1 / way.se ** 2, 0);
+  return { value: ways.reduce((sum, way) => sum + way.value / way.se ** 2, 0) / total, se: Math.sqrt(1 / total) };
+}
+
+function lossOf(figures: SteadyFigures, leeway: LeewayEstimate | null, { model }: RaceModel): LegTrim['loss'] {
+  const known = measured(leeway);
+  if (!known) return null;
+  const { speed, tws, gamma } = figures;
+  const posterior = sheetingPosterior(model, { speed: speed.value, tws: tws.value, gamma: gamma.value, leeway: known });
+  if (!posterior || posterior.sd >= NARROW) return null;
+  return trimLoss(model, tws.value, gamma.value, posterior);
+}
+
+/** Mean angle from the bow to the course through the water over the blocks, positive to leeward. [deg] */
+function driftOf(track: Track, one: Sailed, blocks: readonly BlockEstimate[]): number {
+  if (!track.heading) return NaN;
+  let sum = 0;
+  let n = 0;
+  for (const block of blocks) {
+    for (let i = block.from; i < block.to; i++) {
+      const course = directionOf(one.sailing.ux[i], one.sailing.uy[i]);
+      const drift = tackSign(block.tack) * turn(course, track.heading[i]);
+      if (Number.isNaN(drift)) continue;
+      sum += drift;
+      n++;
+    }
+  }
+  return n > 0 ? sum / n : NaN;
+}
+
+function meanSize(values: Float64Array, blocks: readonly BlockEstimate[]): number {
+  let sum = 0;
+  let n = 0;
+  for (const block of blocks) {
+    for (let i = block.from; i < block.to; i++) {
+      if (Number.isNaN(values[i])) continue;
+      sum += Math.abs(values[i]);
+      n++;
+    }
+  }
+  return n > 0 ? sum / n : NaN;
+}
+
+/** Half the beats: then it is the boat file that is slow, not a puff. */
+const MODEL_SLOW = 0.5;
+
+/** Says which boats beat their model. */
+export function trimIssues(race: Race, trims: readonly BoatTrim[]): Issue[] {
+  return trims.flatMap((trim, k) => {
+    if (trim.beatsModel < MODEL_SLOW) return [];
+    return [
+      {
+        code: 'model-slow',
+        message: `${race.boats[k].name} was faster than its boat file allows, so the forces cannot tell its leeway or trim. Fit the file to your own races with \`legwork tune\`.`,
+      },
+    ];
+  });
+}
