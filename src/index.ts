@@ -105,3 +105,11 @@ export const builtInBoats = async (): Promise<string[]> =>
 export const seasonPage = async (
   ...args: Parameters<typeof import('./report/season-page.js').seasonPage>
 ): Promise<string> => (await import('./report/season-page.js')).seasonPage(...args);
+
+export type { Tuned } from './tune.js';
+
+/** The boat model fitted to the logs of one or several races. */
+export const tune: typeof import('./tune.js').tune = async (...args) => (await import('./tune.js')).tune(...args);
+
+export const tunePage = async (...args: Parameters<typeof import('./report/tune-page.js').tunePage>): Promise<string> =>
+  (await import('./report/tune-page.js')).tunePage(...args);

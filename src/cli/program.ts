@@ -5,6 +5,7 @@ import { demoCommand } from './demo.js';
 import { inspectCommand } from './inspect.js';
 import { optimumCommand } from './optimum.js';
 import { seasonCommand } from './season.js';
+import { tuneCommand } from './tune.js';
 import { programVersion } from './version.js';
 
 const EXAMPLE = `
@@ -25,7 +26,15 @@ export function makeProgram(): Command {
     .helpCommand('help [COMMAND]', 'print help for a command')
     .addHelpText('after', EXAMPLE)
     .configureHelp({ helpWidth: 100 });
-  for (const add of [debriefCommand, compareCommand, seasonCommand, inspectCommand, optimumCommand, demoCommand]) {
+  for (const add of [
+    debriefCommand,
+    compareCommand,
+    seasonCommand,
+    inspectCommand,
+    optimumCommand,
+    tuneCommand,
+    demoCommand,
+  ]) {
     const command = add(program);
     const name = command.name();
     command.helpOption('-h, --help', 'print help').showHelpAfterError(`legwork ${name} --help shows the options.`);

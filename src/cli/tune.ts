@@ -1,5 +1,6 @@
 import type { Command } from 'commander';
 import { tune, tunePage } from '../index.js';
+import type { Tuned } from '../index.js';
 import { expandInputs } from './inputs.js';
 import { forMessages, kindOf, unusable, writeWhole } from './files.js';
 import { addManners, addRaceOptions, checkFlags, raceOptions } from './options.js';
@@ -7,7 +8,7 @@ import type { RaceFlags } from './options.js';
 import { loadRaces } from './races.js';
 import type { Job } from './races.js';
 import { slugOf } from './slug.js';
-import { print, Progress } from './terminal.js';
+import { outColour, print, Progress } from './terminal.js';
 import { programVersion } from './version.js';
 
 const EXAMPLE = `
@@ -35,6 +36,7 @@ export function tuneCommand(program: Command): Command {
 
 async function runTune(inputs: string[], flags: TuneFlags): Promise<void> {
   await checkFlags(flags);
+  if (flags.boatOut !== undefined) await mustBeNew(flags.boatOut, flags.force);
   const progress = new Progress(flags.progress && !flags.quiet);
   const jobs: Job[] = [];
   for (const source of await expandInputs(inputs)) {
@@ -47,16 +49,38 @@ async function runTune(inputs: string[], flags: TuneFlags): Promise<void> {
   progress.clear();
   const boatFile = flags.boatOut ?? `${slugOf(tuned.boat)}-tuned.yaml`;
   const html = flags.out ?? `reports/${slugOf(tuned.boat)}-tune.html`;
-  if (!flags.force && (await kindOf(boatFile)) !== null) {
-    throw unusable(
-      `${forMessages(boatFile)}: is there already.`,
-      'Choose another name with --boat-out, or give --force.',
-    );
-  }
+  await mustBeNew(boatFile, flags.force);
   await writeWhole(boatFile, tuned.boatFile);
   await writeWhole(html, await tunePage(tuned));
   if (flags.quiet) return;
   await print(
-    `${[...tuned.summary, `Boat file: ${forMessages(boatFile)}`, `Report: ${forMessages(html)}`].join('\n')}\n`,
+    `${[...summary(tuned), `Boat file: ${forMessages(boatFile)}`, `Report: ${forMessages(html)}`].join('\n')}\n`,
   );
 }
+
+async function mustBeNew(boatFile: string, force = false): Promise<void> {
+  if (force || (await kindOf(boatFile)) === null) return;
+  throw unusable(
+    `${forMessages(boatFile)}: is there already.`,
+    'Choose another name with --boat-out, or give --force.',
+  );
+}
+
+/** What was moved, and how much nearer the model came. */
+function summary({ boat, races, fit }: Tuned): string[] {
+  const rms = ({ rms }: { rms: number }): string => ((rms * 3600) / 1852).toFixed(3);
+  return [
+    outColour.bold(
+      `${boat}, tuned on ${fit.blocks} settled blocks of ${races.length} ${races.length === 1 ? 'race' : 'races'}`,
+    ),
+    ...fit.factors.map(({ name, value, se, moved, reason }) =>
+      moved
+        ? `  ${inWords(name)} ${value.toFixed(3)} ± ${se.toFixed(3)}`
+        : `  ${inWords(name)} left at ${value.toFixed(3)}: ${reason}`,
+    ),
+    `Speed, measured less modelled: ${rms(fit.before)} kn before, ${rms(fit.after)} kn after (root mean square)`,
+  ];
+}
+
+/** `hullResistance` as "hull resistance". */
+const inWords = (name: string): string => name.replace(/[A-Z]/g, (letter) => ` ${letter.toLowerCase()}`);

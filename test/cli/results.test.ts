@@ -172,6 +172,24 @@ describe('inspect', () => {
   });
 });
 
+describe('tune', () => {
+  it('writes a boat file that can be sailed with, once', async () => {
+    const { code, out, err } = await run(['tune'], { cwd: demo });
+    expect({ code, err }).toEqual({ code: 0, err: '' });
+    expect(out).toContain('Boat file: single-hander-tuned.yaml');
+    expect(filesBelow(join(demo, 'reports'))).toContain('single-hander-tune.html');
+    const again = await run(['tune'], { cwd: demo });
+    expect(again.code).toBe(2);
+    expect(again.err).toMatch(/single-hander-tuned\.yaml: is there already[\s\S]*--force/);
+    const forced = await run(['tune', '--force', '--boat-out', 'single-hander-tuned.yaml', '--quiet'], { cwd: demo });
+    expect(forced).toEqual({ code: 0, out: '', err: '' });
+    const tuned = await run(['debrief', '--boat', 'single-hander-tuned.yaml', '--json', '-'], { cwd: demo });
+    const { boats } = JSON.parse(tuned.out) as Result;
+    expect(boats.map(({ model }) => model.tuned)).toEqual([true, true]);
+    expect(boats[0].model.boat).toBe('single-hander-tuned');
+  });
+});
+
 describe('optimum', () => {
   it('is a table of plain numbers, upwind; the polar runs to dead downwind', async () => {
     const { out } = await run(['optimum', '--tws', '8:16:4', '--polar', '--json', '-'], { cwd: home });
