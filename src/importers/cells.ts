@@ -10,6 +10,12 @@ export type CellState = 'number' | 'absent' | 'fill' | 'out-of-range' | 'unreada
 const ABSENT = /^(nan|na|n\/a|null|none|nil|-+|\?+|\*+|m|missing|undefined|inf|-inf|#n\/a|no data|invalid)$/i;
 /** Numbers that stand for an absent value: nines to the full width of a field. Common practice, no source. */
 const FILLS = new Set([999, 999.9, 999.99, 9999, 9999.9, 9999.99, 99999, 99999.9, 999999, 9999999]);
+/** Whether a number stands for an absent value. */
+export function isFill(number: number): boolean {
+  const size = Math.abs(number);
+  return size >= 999 && FILLS.has(size);
+}
+
 /** No wind and no boat is faster. [m/s] */
 const FASTEST = 150;
 
@@ -38,7 +44,7 @@ export function readCell(text: string | undefined, channel: Channel, factor: num
     [number, scale] = readOddCell(trimmed, channel, factor);
   }
   if (Number.isNaN(number)) into.state = 'unreadable';
-  else if (FILLS.has(Math.abs(number))) into.state = 'fill';
+  else if (isFill(number)) into.state = 'fill';
   else {
     into.value = place ? number * scale : inRange(channel, number * scale);
     into.state = Number.isNaN(into.value) ? 'out-of-range' : 'number';
@@ -55,7 +61,7 @@ function readOddCell(text: string, channel: Channel, factor: number): [number, n
 }
 
 /** The value in the channel's range; NaN when it cannot be one. */
-function inRange(channel: Channel, value: number): number {
+export function inRange(channel: Channel, value: number): number {
   switch (channel) {
     case 'sog':
     case 'stw':

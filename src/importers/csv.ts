@@ -6,6 +6,7 @@ import { UserError } from '../recording/issues.js';
 import { readCell, type Cell } from './cells.js';
 import { faultOfPosition } from './gpx.js';
 import { findLayout, parseRows, type TableLayout } from './layout.js';
+import { PlainRows } from './plain-rows.js';
 import type { LogRows } from './rows.js';
 import { settle, type Settled } from './settle.js';
 import { createTableClock, type TableClock } from './table-clock.js';
@@ -15,29 +16,45 @@ import { createZoneClock } from './zone.js';
 
 /** Letters a block has at least, so that parsing pays. */
 const BLOCK = 1 << 16;
+/** Letters a row has at most. */
+const LONGEST = 1 << 22;
 /** Lines a quoted cell may run over. */
 const CELL_LINES = 20;
 
 type TakeRow = (cells: readonly string[], line: number, whole: boolean) => void;
 
-/** Reads a table. */
+/**
+ * Reads a table.
+ *
+ * @param quick Rows that are plain go past the parser; without it all goes through it, which is the reference.
+ */
 export async function readCsv(
   texts: AsyncIterable<string>,
   rows: LogRows,
   tally: Tally,
   options: ImportOptions,
+  quick = true,
 ): Promise<{ settled: Settled; columns: readonly ColumnReading[] }> {
   let layout: TableLayout | undefined;
   let take: TakeRow = () => undefined;
+  let plain: PlainRows | undefined;
   let line = 1;
   for await (const { text, last } of wholeLines(texts)) {
     let body = text;
     if (!layout) {
       layout = findLayout(text, options, tally);
       const zone = options.zone === undefined ? null : createZoneClock(options.zone);
-      take = createRowTaker(layout, createTableClock(layout.time, zone, tally), rows, tally);
+      const clock = createTableClock(layout.time, zone, tally);
+      take = createRowTaker(layout, clock, rows, tally);
+      if (quick && PlainRows.fits(layout)) plain = new PlainRows(layout, clock, rows, tally);
       for (let k = 0; k < layout.skip; k++) body = body.slice(body.indexOf('\n') + 1 || body.length);
       line += layout.skip;
+    }
+    if (plain && !body.includes('"')) {
+      // What stands behind the last line end may be half a row.
+      const whole = body.lastIndexOf('\n') + 1;
+      line = takePlain(body.slice(0, whole), line, layout.delimiter, plain, take);
+      body = body.slice(whole);
     }
     line = takeBlock(body, line, layout, last, take, tally);
   }
@@ -61,7 +78,8 @@ async function* wholeLines(texts: AsyncIterable<string>): AsyncIterable<{ text: 
     held += text;
     if (held.length < BLOCK) continue;
     const ready = alike(held, false);
-    const end = cutAt(ready);
+    // A line longer than any row is none: it is not waited for.
+    const end = cutAt(ready) || (ready.length > LONGEST ? ready.length : 0);
     if (end > 0) yield { text: ready.slice(0, end), last: false };
     held = ready.slice(end);
   }
@@ -92,6 +110,29 @@ function isOdd(line: string): boolean {
   let quotes = 0;
   for (let at = line.indexOf('"'); at >= 0; at = line.indexOf('"', at + 1)) quotes++;
   return quotes % 2 === 1;
+}
+
+/** Takes a block of whole lines without quotes: plain rows at once, runs of others through the parser. */
+function takePlain(text: string, first: number, delimiter: string, plain: PlainRows, take: TakeRow): number {
+  let line = first;
+  let runStart = 0;
+  let runLine = first;
+  const flush = (to: number): void => {
+    if (to > runStart)
+      parseRows(text.slice(runStart, to - 1), delimiter, false).forEach((cells, k) => take(cells, runLine + k, true));
+  };
+  for (let from = 0; from < text.length; line++) {
+    const to = text.indexOf('\n', from);
+    if (plain.parse(text, from, to)) {
+      flush(from);
+      plain.commit(line);
+      runStart = to + 1;
+      runLine = line + 1;
+    }
+    from = to + 1;
+  }
+  flush(text.length);
+  return line;
 }
 
 /** Takes the rows of a block and returns the number of the line after it. */

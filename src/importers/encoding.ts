@@ -22,7 +22,9 @@ export function detectEncoding(head: Uint8Array): string {
 /** Bytes as the letters of the same number: enough to look for ASCII in them. */
 export function latin1(bytes: Uint8Array): string {
   let text = '';
-  for (let at = 0; at < bytes.length; at += 8192) text += String.fromCharCode(...bytes.subarray(at, at + 8192));
+  for (let at = 0; at < bytes.length; at += 8192) {
+    text += String.fromCharCode.apply(null, bytes.subarray(at, at + 8192) as unknown as number[]);
+  }
   return text;
 }
 

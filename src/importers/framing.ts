@@ -15,6 +15,7 @@ const CR = 13;
 const DOLLAR = 36;
 const BANG = 33;
 const STAR = 42;
+const COMMA = 44;
 
 /** Calls `take` with each line (without its end) and its number, counted from 1. */
 export async function eachLine(
@@ -63,7 +64,8 @@ export interface Sentence {
   readonly prefix: string;
   /** Talker and formatter, upper case. */
   readonly address: string;
-  readonly fields: string[];
+  /** The fields, taken apart when asked for: most sentences of a log are none of ours. */
+  readonly fields: () => string[];
   readonly check: Check;
 }
 
@@ -95,11 +97,16 @@ function sentenceAt(line: Uint8Array, from: number, start: number, end: number):
     }
   }
   const star = line.subarray(at, end).lastIndexOf(STAR);
-  const body = latin1(line.subarray(at + 1, star < 0 ? end : at + star));
-  const fields = body.split(',');
-  const address = fields.shift()!.toUpperCase();
+  const stop = star < 0 ? end : at + star;
+  const comma = line.indexOf(COMMA, at);
+  const address = latin1(line.subarray(at + 1, comma < 0 || comma > stop ? stop : comma)).toUpperCase();
   if (!/^[A-Z][A-Z0-9]{2,14}$/.test(address)) return undefined;
-  return { prefix: at === start ? latin1(line.subarray(from, start)) : '', address, fields, check };
+  const prefix = at === start && start > from ? latin1(line.subarray(from, start)) : '';
+  const fields = (): string[] =>
+    latin1(line.subarray(at + 1, stop))
+      .split(',')
+      .slice(1);
+  return { prefix, address, fields, check };
 }
 
 /** Compares the checksum of the sentence that begins at `start` with the one written behind it. */

@@ -190,7 +190,7 @@ class NmeaLog {
 
 /** MWV is two sentences under one name. */
 function labelOf(formatter: string, sentence: Sentence): string {
-  return formatter === 'MWV' ? `MWV ${(sentence.fields[1] ?? '').trim().toUpperCase()}` : formatter;
+  return formatter === 'MWV' ? `MWV ${(sentence.fields()[1] ?? '').trim().toUpperCase()}` : formatter;
 }
 
 /** Reads an NMEA 0183 log. */

@@ -157,7 +157,12 @@ export class LogRows {
   /** Whether every row has a time and each is later than the one before. */
   get isOrdered(): boolean {
     if (this.untimed > 0) return false;
-    for (let row = 1; row < this.#length; row++) if (!(this.#time.get(row) > this.#time.get(row - 1))) return false;
+    let before = -Infinity;
+    for (let row = 0; row < this.#length; row++) {
+      const time = this.#time.get(row);
+      if (!(time > before)) return false;
+      before = time;
+    }
     return true;
   }
 

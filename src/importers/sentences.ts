@@ -226,6 +226,6 @@ const DECODERS: Readonly<Record<string, (fields: readonly string[]) => Reading>>
 };
 
 /** What the sentence of a formatter says; nothing when we do not read that one. */
-export function decode(formatter: string, fields: readonly string[]): Reading {
-  return (Object.hasOwn(DECODERS, formatter) ? DECODERS[formatter] : () => NOTHING)(fields);
+export function decode(formatter: string, fields: () => readonly string[]): Reading {
+  return Object.hasOwn(DECODERS, formatter) ? DECODERS[formatter](fields()) : NOTHING;
 }

@@ -27,47 +27,58 @@ export type TimeState = 'time' | 'no time' | 'time not understood' | 'time witho
 export interface TableClock {
   /** UTC epoch seconds of the row read last. */
   readonly seconds: number;
+  /** Takes a time that is UTC and returns it. */
+  utc(seconds: number): number;
+  /** Takes a time without a zone, as seconds that count as if UTC, and returns it in UTC. */
+  local(seconds: number, line: number): number;
   read(cells: readonly string[], line: number): TimeState;
 }
 
 /** A clock for a table. Times without a zone are of `zone`, or UTC with a notice. */
 export function createTableClock(layout: TimeLayout, zone: ZoneClock | null, tally: Tally): TableClock {
   const days = new DayCount();
-  const clock = { seconds: NaN, read };
+  const clock = { seconds: NaN, read, utc, local };
   let before = -Infinity;
-  const local = (seconds: number, line: number): TimeState => {
-    if (Number.isNaN(seconds)) return 'time not understood';
+  function utc(seconds: number): number {
+    return (clock.seconds = before = seconds);
+  }
+  function local(seconds: number, line: number): number {
     if (!zone && !layout.utc) tally.notice('zone-assumed', line);
-    clock.seconds = before = layout.utc || !zone ? seconds : zone.toUtc(seconds, before);
+    return utc(layout.utc || !zone ? seconds : zone.toUtc(seconds, before));
+  }
+  const settle = (seconds: number, zoned: boolean, line: number): TimeState => {
+    if (Number.isNaN(seconds)) return 'time not understood';
+    if (zoned) utc(seconds);
+    else local(seconds, line);
     return 'time';
   };
   function read(cells: readonly string[], line: number): TimeState {
     const text = (cells[layout.time] ?? '').trim();
     if (text === '') return 'no time';
     const iso = readIso(text);
-    if (!Number.isNaN(iso)) return carriesZone(text) ? ((clock.seconds = before = iso), 'time') : local(iso, line);
-    const unix = layout.date < 0 ? readUnix(text, layout.factor) : NaN;
-    if (!Number.isNaN(unix)) return ((clock.seconds = before = unix), 'time');
+    if (!Number.isNaN(iso)) return settle(iso, carriesZone(text), line);
+    const unix = layout.date < 0 ? readUnix(readDecimal(text), layout.factor) : NaN;
+    if (!Number.isNaN(unix)) return settle(unix, true, line);
     const stamp = readOddTime(text, layout.order);
     if (!Number.isNaN(stamp)) {
       const offset = offsetOf(text);
-      return Number.isNaN(offset) ? local(stamp, line) : ((clock.seconds = before = stamp - offset), 'time');
+      return Number.isNaN(offset) ? settle(stamp, false, line) : settle(stamp - offset, true, line);
     }
     const ofDay = readTimeOfDay(text);
     if (Number.isNaN(ofDay)) return 'time not understood';
     if (layout.date >= 0) {
       const dayText = (cells[layout.date] ?? '').trim();
       if (dayText === '') return 'no time';
-      return local(readDate(dayText, layout.order) * DAY + ofDay, line);
+      return settle(readDate(dayText, layout.order) * DAY + ofDay, false, line);
     }
     if (Number.isNaN(layout.day)) return 'time without a date';
-    return local(layout.day * DAY + days.unwrap(ofDay), line);
+    return settle(layout.day * DAY + days.unwrap(ofDay), false, line);
   }
   return clock;
 }
 
-function readUnix(text: string, factor: number): number {
-  const number = readDecimal(text);
+/** Unix time in units of `factor` seconds (NaN: told by size); NaN when the number is too small for one. */
+export function readUnix(number: number, factor: number): number {
   return Number.isNaN(factor) || number * factor < 1e8 ? fromUnix(number) : number * factor;
 }
 

@@ -2,6 +2,7 @@ import { readdirSync, readFileSync } from 'node:fs';
 import { join } from 'node:path';
 import fc from 'fast-check';
 import { expect, test } from 'vitest';
+import { readCsv } from '../../src/importers/csv.js';
 import { readGpx } from '../../src/importers/gpx.js';
 import { LogRows } from '../../src/importers/rows.js';
 import { settle } from '../../src/importers/settle.js';
@@ -11,14 +12,15 @@ import { describeRecordings, recording } from './recordings.js';
 const LOGS = join(import.meta.dirname, '../../fixtures/logs');
 const GPX = readdirSync(LOGS).filter((file) => file.endsWith('.gpx'));
 
+async function* pieces(text: string, size: number): AsyncIterable<string> {
+  for (let at = 0; at < text.length; at += size) yield await Promise.resolve(text.slice(at, at + size));
+}
+
 /** Everything that a reading of a document comes to. */
 async function read(text: string, quick: boolean, size: number): Promise<unknown> {
-  async function* texts(): AsyncIterable<string> {
-    for (let at = 0; at < text.length; at += size) yield await Promise.resolve(text.slice(at, at + size));
-  }
   const rows = new LogRows();
   const tally = new Tally('log');
-  const { name, columns } = await readGpx(texts(), rows, tally, null, quick);
+  const { name, columns } = await readGpx(pieces(text, size), rows, tally, null, quick);
   const { recording: found, ...counts } = settle(rows, tally, name);
   return {
     ...counts,
@@ -127,4 +129,79 @@ describeRecordings('real GPX, the quick way and the parser', () => {
   test('agree on every file', async () => {
     for (const file of files) await expectAlike(readFileSync(recording(file), 'utf8'), 4096);
   });
+});
+
+async function readTable(text: string, quick: boolean, zone?: string): Promise<unknown> {
+  const tally = new Tally('log');
+  const { settled, columns } = await readCsv(pieces(text, 5000), new LogRows(), tally, zone ? { zone } : {}, quick);
+  return {
+    ...settled,
+    columns,
+    read: tally.read,
+    ignored: tally.ignoredTypes(),
+    rejected: tally.rejections.list(),
+    issues: tally.issues,
+  };
+}
+
+/** Rows as they come, and as they should not. */
+const rowOf: Record<string, (k: number) => string> = {
+  plain: (k) => `2026-10-25T${stamp(k)}Z,46.9${k},9.061,5.2,,310`,
+  local: (k) => `2026-10-25T${stamp(k)},46.9${k},9.061,5.2,40,310`,
+  offset: (k) => `2026-10-25T${stamp(k)}+01:00,46.9${k},9.061,5.2,40,310`,
+  unix: (k) => `${1793000000 + k}.5,46.9${k},9.061,5.2,-40,`,
+  noPosition: (k) => `2026-10-25T${stamp(k)}Z,,,5.2,320,310`,
+  halfPosition: (k) => `2026-10-25T${stamp(k)}Z,46.9,,5.2,40,310`,
+  zeros: (k) => `2026-10-25T${stamp(k)}Z,0,0,5.2,40,310`,
+  farOut: (k) => `2026-10-25T${stamp(k)}Z,146.9,180,5.2,40,310`,
+  antimeridian: (k) => `2026-10-25T${stamp(k)}Z,46.9,180,5.2,40,310`,
+  fill: (k) => `2026-10-25T${stamp(k)}Z,46.9,9.061,-9999,999.9,310`,
+  words: (k) => `2026-10-25T${stamp(k)}Z,46.9,9.061,NaN,n/a,fast`,
+  units: (k) => `2026-10-25T${stamp(k)}Z,46.9,9.061,5 m/s, 40 ,310`,
+  odd: (k) => `2026-10-25T${stamp(k)}Z,46.9,9.061,-5,400,-181`,
+  short: (k) => `2026-10-25T${stamp(k)}Z,46.9,9.061`,
+  long: (k) => `2026-10-25T${stamp(k)}Z,46.9,9.061,5.2,40,310,7`,
+  trailing: (k) => `2026-10-25T${stamp(k)}Z,46.9,9.061,5.2,40,310,`,
+  empty: (k) => `2026-10-25T${stamp(k)}Z,,,,,`,
+  quoted: (k) => `"2026-10-25T${stamp(k)}Z","46.9",9.061,5.2,40,310`,
+  unclosed: (k) => `2026-10-25T${stamp(k)}Z,46.9,9.061,5.2,40,"310`,
+  comment: () => '# 2026,1,2,3,4,5',
+  header: () => 'time,lat,lon,sog_kn,awa,cog',
+  blank: () => '',
+  commas: () => ',,,,,',
+  noTime: () => ',46.9,9.061,5.2,40,310',
+  badTime: () => '2026-13-25T12:00:00Z,46.9,9.061,5.2,40,310',
+};
+
+const stamp = (k: number): string => new Date(k * 1000).toISOString().slice(11, 19);
+
+test('tables with every kind of row: the quick way and the parser agree', async () => {
+  const kinds = Object.keys(rowOf);
+  await fc.assert(
+    fc.asyncProperty(
+      fc.array(fc.tuple(fc.oneof(fc.constant('plain'), fc.constantFrom(...kinds)), fc.nat(60)), {
+        minLength: 5,
+        maxLength: 60,
+      }),
+      fc.constantFrom(undefined, 'Europe/Zurich'),
+      fc.constantFrom('\n', '\r\n'),
+      async (runs, zone, newline) => {
+        const lines = ['time,lat,lon,sog_kn,awa,cog'];
+        for (const [kind, length] of runs) for (let n = 0; n <= length; n++) lines.push(rowOf[kind](lines.length));
+        const text = lines.join(newline) + newline;
+        expect(await readTable(text, true, zone)).toEqual(await readTable(text, false, zone));
+      },
+    ),
+    { seed: 9, numRuns: Number(process.env['FUZZ_RUNS'] ?? 60) },
+  );
+});
+
+describeRecordings('real tables, the quick way and the parser', () => {
+  test.each(['port-tack-10hz/instruments.csv', 'station-1min/midc-wind-1min.csv', 'station-sonic/wind-1hz.csv'])(
+    'agree on %s',
+    async (file) => {
+      const text = readFileSync(recording(file), 'utf8');
+      expect(await readTable(text, true)).toEqual(await readTable(text, false));
+    },
+  );
 });
