@@ -1,9 +1,9 @@
-import { onOneClock, type ClockCorrection } from './between/common-clock.js';
+import { clockCorrections, type ClockCorrection } from './between/common-clock.js';
 import type { BetweenBoat } from './between/boat.js';
 import { ladder, type LadderLeg } from './between/ladder.js';
 import { comparePairs, pairsOf, type PairComparison } from './between/pairs.js';
 import { debrief, type Debrief, type DebriefOptions } from './debrief.js';
-import type { Race } from './files/race-types.js';
+import type { BoatReference, LogReference, Race } from './files/race-types.js';
 import type { LogSource } from './importers/types.js';
 import { UserError } from './recording/issues.js';
 import type { BoatResult, Warning } from './result/result.js';
@@ -29,7 +29,7 @@ export interface Comparison extends Debrief {
 /**
  * Boats of one race against each other.
  *
- *     debrief -> boats on one clock -> pairs of settled blocks, ladders -> result with pairs
+ *     debrief, clocks set right -> pairs of settled blocks, ladders -> result with pairs
  *
  * @param race What is to be compared.
  * @param open Opens a log by the name it has in `race`.
@@ -47,16 +47,43 @@ export async function compare(
       suggestion: 'Give the tracks of two boats or more.',
     });
   }
-  const { result, series } = await debrief(race, open, rest);
-  const marks = race.runs.length > 0 ? [] : series.marks;
-  const { boats, corrected } = onOneClock(series.boats.map((boat, k) => betweenBoat(boat, result.boats[k], marks)));
+  const { result, series, boats, warnings } = await onTime(race, open, rest);
   const { results: pairs, comparisons } = comparePairs(boats, only ? { only } : {});
   const ladders = pairsOf(boats, only).map(([first, second]) => ({
     boats: [first.name, second.name] as const,
     legs: ladder(first, second),
   }));
-  const warnings = [...result.warnings, ...corrected.map(clockWarning)];
-  return { result: { ...result, pairs, warnings }, series, comparisons, ladders };
+  return { result: { ...result, pairs, warnings: [...result.warnings, ...warnings] }, series, comparisons, ladders };
+}
+
+/** Corrections of clocks build on each other: hours hide seconds. */
+const MOST_ROUNDS = 2;
+
+/** The debrief, done again with clocks set right where it is certain that one is off. */
+async function onTime(
+  race: Race,
+  open: (file: string) => LogSource,
+  options: DebriefOptions,
+): Promise<Debrief & { boats: BetweenBoat[]; warnings: Warning[] }> {
+  const warnings: Warning[] = [];
+  for (let round = 0, right = race; ; round++) {
+    const { result, series } = await debrief(right, open, options);
+    const marks = race.runs.length > 0 ? [] : series.marks;
+    const boats = series.boats.map((boat, k) => betweenBoat(boat, result.boats[k], marks));
+    const corrections = round < MOST_ROUNDS ? clockCorrections(boats) : [];
+    if (corrections.length === 0) return { result, series, boats, warnings };
+    warnings.push(...corrections.map(clockWarning));
+    right = { ...right, boats: right.boats.map((boat) => withClock(boat, corrections)) };
+  }
+}
+
+function withClock(boat: BoatReference, corrections: readonly ClockCorrection[]): BoatReference {
+  const seconds = corrections.find(({ name }) => name === boat.name)?.correction;
+  if (seconds === undefined) return boat;
+  const own = new Set(boat.track.map(({ file }) => file));
+  const moved = (log: LogReference): LogReference =>
+    own.has(log.file) ? { ...log, clockS: log.clockS + seconds } : log;
+  return { ...boat, track: boat.track.map(moved), instruments: boat.instruments.map(moved) };
 }
 
 /** A boat of a debrief as comparisons see it. */
@@ -91,6 +118,6 @@ function clockWarning({ name, correction, skew }: ClockCorrection): Warning {
     code: 'clock-skew',
     message:
       `The clock of ${name} is ${Math.abs(correction)} s ${ahead} the others' (${skew.note}, give or take ` +
-      `${Math.round(skew.se)} s). For the comparison it was set right; its own figures stand as logged.`,
+      `${Math.round(skew.se)} s). It was set right here.`,
   };
 }

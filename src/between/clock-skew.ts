@@ -2,6 +2,7 @@ import { median } from '../math/median.js';
 import type { BetweenBoat } from './boat.js';
 import { impliedSwings } from './implied-wind.js';
 import { meanWindByLap } from './mean-wind.js';
+import { CLOSE, together, TOGETHER_AT_ALL } from './together.js';
 
 /** Whether two boats' clocks agree, told from what both must have met at the same time: the swings of the wind. */
 
@@ -79,40 +80,21 @@ function wholeSeconds(skew: number, se: number): number {
   return Math.abs(skew - leap) <= 2 * se ? leap : Math.round(skew);
 }
 
-/** Racing boats are within this of each other. [m] */
-const TOGETHER = 400;
 const QUARTER = 900;
 
 /**
  * Whole quarter hours the clocks differ by: 0 unless the boats are hardly ever together as the clocks stand, together
- * most of the time at one other setting, and at no third.
+ * most of the time at one other setting, and clearly less at any third: a lap more or less leaves at most two thirds.
  */
 function quarterHours(first: BetweenBoat, second: BetweenBoat): number {
-  if (together(first, second, 0) > 0.2) return 0;
+  if (together(first, second, 0) > TOGETHER_AT_ALL) return 0;
   const all = Array.from({ length: 113 }, (_, k) => QUARTER * (k - 56)).map((skew) => ({
     skew,
-    share: together(first, second, skew),
+    share: together(first, second, skew, CLOSE),
   }));
-  const good = all.filter(({ share }) => share > 0.4);
-  return good.length === 1 && good[0].share > 0.7 ? good[0].skew : 0;
-}
-
-/** Share of the shorter boat's upwind sailing in which the other is near, if its clock is ahead by `skew`. */
-function together(first: BetweenBoat, second: BetweenBoat, skew: number): number {
-  let near = 0;
-  const [mine, theirs] = [upwindRows(first, 10), upwindRows(second, 10)];
-  for (const i of mine) {
-    const j = first.t0 + i + skew - second.t0;
-    if (j < 0 || j >= second.n) continue;
-    if (Math.hypot(first.x[i] - second.x[j], first.y[i] - second.y[j]) < TOGETHER) near++;
-  }
-  return near / Math.max(1, Math.min(mine.length, theirs.length));
-}
-
-function upwindRows(boat: BetweenBoat, step: number): number[] {
-  return boat.legs.flatMap(({ from, to }) =>
-    Array.from({ length: Math.max(0, Math.floor((to - from) / step)) }, (_, k) => from + k * step),
-  );
+  all.sort((a, b) => b.share - a.share);
+  const [best, next] = all;
+  return best.share > 0.5 && next.share < 0.75 * best.share ? best.skew : 0;
 }
 
 interface Match {

@@ -1,38 +1,43 @@
 import type { BetweenBoat } from './boat.js';
 import { clockSkew, type ClockSkew } from './clock-skew.js';
+import { together, TOGETHER_AT_ALL } from './together.js';
 
-/** A boat whose clock was set right for the comparison. */
+/** A boat whose clock is to be set right. */
 export interface ClockCorrection {
   readonly name: string;
+  /** To be added to its clock. [s] */
   readonly correction: number;
   readonly skew: ClockSkew;
 }
 
+/** Two clocks that are found off by the same amount are off by it within this. [s] */
+const ALIKE = 6;
+
 /**
- * Puts all boats on one clock where it is certain that one is off: each is held against the first, and the setting most
- * boats share is taken as right.
+ * What to add to which clock so that all agree, where it is certain that one is off. Each boat is held against the one
+ * that most others were with; where all others are found off against it by the same, it is the odd one out itself.
  *
  * @param boats Two boats or more.
- * @returns The boats, those corrected with another `t0`, and what was corrected.
+ * @returns One entry a boat to be corrected; none when all may be right.
  */
-export function onOneClock(boats: readonly BetweenBoat[]): { boats: BetweenBoat[]; corrected: ClockCorrection[] } {
-  const [first, ...others] = boats;
-  const skews = others.map((boat) => clockSkew(first, boat));
-  const corrections = [0, ...skews.map(({ correction }) => correction)];
-  const right = commonest(corrections);
-  const corrected = boats.flatMap(({ name }, k): ClockCorrection[] => {
-    const correction = corrections[k] - right;
-    // Where the first boat is the odd one out its own skew is that of any other against it.
-    const skew = k > 0 ? skews[k - 1] : skews.find(({ sure }) => sure);
-    return correction !== 0 && skew ? [{ name, correction, skew }] : [];
-  });
-  return { boats: boats.map((boat, k) => ({ ...boat, t0: boat.t0 + corrections[k] - right })), corrected };
+export function clockCorrections(boats: readonly BetweenBoat[]): ClockCorrection[] {
+  const anchor = mostMet(boats);
+  const found = boats
+    .filter((boat) => boat !== anchor)
+    .map((boat): ClockCorrection => {
+      const skew = clockSkew(anchor, boat);
+      return { name: boat.name, correction: skew.correction, skew };
+    });
+  const off = found.filter(({ correction }) => correction !== 0);
+  const alike = off.every(({ correction }) => Math.abs(correction - off[0].correction) <= ALIKE);
+  if (off.length < 2 || off.length < found.length || !alike) return off;
+  return [{ name: anchor.name, correction: -off[0].correction, skew: off[0].skew }];
 }
 
-/** The value most often met; of equals the smallest in size. */
-function commonest(values: readonly number[]): number {
-  const counts = new Map<number, number>();
-  for (const value of values) counts.set(value, (counts.get(value) ?? 0) + 1);
-  const [[best]] = [...counts].sort((a, b) => b[1] - a[1] || Math.abs(a[0]) - Math.abs(b[0]));
-  return best;
+/** The boat with the most others near it as the clocks stand; of equals the first. */
+function mostMet(boats: readonly BetweenBoat[]): BetweenBoat {
+  const met = boats.map(
+    (boat) => boats.filter((other) => other !== boat && together(boat, other, 0) > TOGETHER_AT_ALL).length,
+  );
+  return boats[met.indexOf(Math.max(...met))];
 }

@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { clockSkew, type ClockSkew } from '../../src/between/clock-skew.js';
+import { clockCorrections } from '../../src/between/common-clock.js';
 import { impliedSwings } from '../../src/between/implied-wind.js';
 import { sailBeat, type Beat } from './two-boats.js';
 
@@ -71,5 +72,22 @@ describe('swings read from a course', () => {
     });
     expect(n).toBeGreaterThan(300);
     expect(ab / Math.sqrt(aa * bb)).toBeGreaterThan(0.6);
+  });
+});
+
+describe('a fleet on several clocks', () => {
+  const fleet = (clock: number[]): [string, number][] =>
+    clockCorrections(sailBeat({ seed: 9, minutes: 25, boats: [{}, {}, {}, {}], clock })).map(({ name, correction }) => [
+      name,
+      Math.round(correction / 60),
+    ]);
+  it('is put on that of most: the odd one out is corrected, were it the first', () => {
+    expect(fleet([0, 0, 0, 0])).toEqual([]);
+    expect(fleet([0, 0, 3600, 0])).toEqual([['Boat 3', -60]]);
+    expect(fleet([-7200, 0, 0, 0])).toEqual([['Boat 1', 120]]);
+    expect(fleet([0, 3600, 0, -3600])).toEqual([
+      ['Boat 2', -60],
+      ['Boat 4', 60],
+    ]);
   });
 });
