@@ -17,6 +17,8 @@ export interface Gap {
 export const SHORTEST_GAP = 5;
 /** ... or from five of the recording's own steps on: slow loggers skip one or two now and then. */
 export const GAP_STEPS = 5;
+/** ... and always beyond this: whatever the logger's step, nobody knows what the boat did meanwhile. [s] */
+const LONGEST_HOLE = 600;
 /** A logger that leaves out points on straight lines writes one at least this often. [s] */
 export const LONGEST_BRIDGE = 30;
 /** A step is irregular when it differs from the median by more than this share of it. */
@@ -78,7 +80,7 @@ export function findStretches(
 ): { stretches: Stretch[]; gaps: Gap[]; step: Stepping } {
   const rows = fixRows(observations);
   const step = stepping(observations.time, rows);
-  const limit = Math.max(SHORTEST_GAP, GAP_STEPS * step.median);
+  const limit = Math.min(LONGEST_HOLE, Math.max(SHORTEST_GAP, GAP_STEPS * step.median));
   const stretches: Stretch[] = [];
   const gaps: Gap[] = [];
   let from = 0;
