@@ -43,6 +43,11 @@ export interface ReconcileBlock {
 export interface ReconcileOptions {
   /** Current where it was given, as a velocity. [m/s] Absent: an unknown. */
   readonly current?: { readonly east: number; readonly north: number };
+  /**
+   * What is known of the station's direction offset otherwise, such as from the boats' courses being alike on both
+   * tacks, in place of the wide prior. [deg] It tells the masthead's offset from the station's.
+   */
+  readonly windDirection?: { readonly value: number; readonly se: number };
 }
 
 export type ReconcileName =
@@ -80,7 +85,10 @@ export interface Reconciliation {
   readonly warnings: readonly { readonly code: 'not-separable' | 'current-unknown'; readonly message: string }[];
 }
 
-const NAMES: readonly ReconcileName[] = [
+/** Unknowns of the fit: besides those that are reported, how differently the station sees the wind of beats and runs. */
+type Unknown = ReconcileName | 'windSplit';
+
+const REPORTED: readonly ReconcileName[] = [
   'compass',
   'masthead',
   'windDirection',
@@ -90,13 +98,18 @@ const NAMES: readonly ReconcileName[] = [
   'leewayUpwind',
   'leewayDownwind',
 ];
+const NAMES: readonly Unknown[] = [...REPORTED, 'windSplit'];
 
-/** Prior means and standard deviations: offsets 10 deg, scale 5 %, current 1 kn each way, leeway 4 +- 4 and 0.7 +- 0.7. */
-const MEAN = [0, 0, 0, 0, 0, 0, 4, 0.7] as const;
-const SD = [10, 10, 10, 0.05, KNOT, KNOT, 4, 0.7] as const;
+/**
+ * Prior means and standard deviations: offsets 10 deg, scale 5 %, current 1 kn each way, leeway 4 +- 4 and 0.7 +- 0.7.
+ * The boats beat and run over different water, so even a true station is off by another amount on each, half a
+ * difference of 2 degrees either way: masthead and station are told apart only by beats against runs, and no better.
+ */
+const MEAN = [0, 0, 0, 0, 0, 0, 4, 0.7, 0] as const;
+const SD = [10, 10, 10, 0.05, KNOT, KNOT, 4, 0.7, 1] as const;
 
 /** Names for people. */
-const SAID: Readonly<Record<ReconcileName, string>> = {
+const SAID: Readonly<Record<Unknown, string>> = {
   compass: 'the compass offset',
   masthead: 'the masthead offset',
   windDirection: "the wind station's direction offset",
@@ -105,6 +118,7 @@ const SAID: Readonly<Record<ReconcileName, string>> = {
   currentNorth: 'the current to the north',
   leewayUpwind: 'leeway upwind',
   leewayDownwind: 'leeway downwind',
+  windSplit: 'a wind that differs between beats and runs',
 };
 
 /** Observations, and what each is good to before the log tells better. [deg], [m/s] Common practice, no source. */
@@ -117,9 +131,11 @@ const LEAST_SIGMA = [0.15, 0.3, 0.03, 0.02] as const;
 const HUBER = 2.5;
 /** Fewer blocks than this tell nothing. */
 const LEAST_BLOCKS = 8;
-/** An estimate is applied where its error is below this share of the prior's, and no correlation is above that. */
+/** An estimate is applied where its error is below this share of the prior's, */
 const MOST_OF_PRIOR = 0.7;
+/** and no correlation is above this, unless its error is small all the same (then a correlation does no harm). */
 const MOST_CORRELATION = 0.95;
+const SMALL_OF_PRIOR = 0.35;
 /** The current is believed to be there when leaving it out makes the residual so much larger. */
 const CURRENT_RATIO = 1.5;
 
@@ -142,8 +158,9 @@ export function reconcile(blocks: readonly ReconcileBlock[], options: ReconcileO
   if (used.length < LEAST_BLOCKS) return null;
   const free = NAMES.filter((name) => !options.current || !name.startsWith('current'));
   const fixed = fixedValues(options);
-  const { fit, sigma } = settledFit(used, free, fixed);
-  const withoutCurrent = options.current ? 1 : currentNeed(used, fixed, fit, sigma);
+  const priors = priorsOf(options);
+  const { fit, sigma } = settledFit(used, free, fixed, priors);
+  const withoutCurrent = options.current ? 1 : currentNeed(used, fixed, fit, sigma, priors);
   const claims = claimsOf(used, free, fit, options, withoutCurrent);
   const spread = rms(used, fullValues(free, fixed, fit.parameters));
   return {
@@ -164,14 +181,28 @@ function usable(block: ReconcileBlock): boolean {
   return instrument && Number.isFinite(block.east + block.north);
 }
 
-type Values = Record<ReconcileName, number>;
+type Values = Record<Unknown, number>;
 
 function fixedValues({ current }: ReconcileOptions): Values {
   const values = Object.fromEntries(NAMES.map((name, i) => [name, MEAN[i]])) as Values;
   return { ...values, currentEast: current?.east ?? 0, currentNorth: current?.north ?? 0 };
 }
 
-function fullValues(free: readonly ReconcileName[], fixed: Values, parameters: ArrayLike<number>): Values {
+interface Priors {
+  readonly mean: readonly number[];
+  readonly sd: readonly number[];
+}
+
+function priorsOf({ windDirection }: ReconcileOptions): Priors {
+  const at = NAMES.indexOf('windDirection');
+  if (!windDirection || !(windDirection.se > 0)) return { mean: MEAN, sd: SD };
+  return {
+    mean: MEAN.map((value, i) => (i === at ? windDirection.value : value)),
+    sd: SD.map((value, i) => (i === at ? windDirection.se : value)),
+  };
+}
+
+function fullValues(free: readonly Unknown[], fixed: Values, parameters: ArrayLike<number>): Values {
   const values = { ...fixed };
   free.forEach((name, i) => (values[name] = parameters[i]));
   return values;
@@ -186,7 +217,7 @@ function misfit(block: ReconcileBlock, v: Values): [number, number, number, numb
   const north = block.north - v.currentNorth;
   const leeway = block.upwind ? v.leewayUpwind : v.leewayDownwind;
   const bow = directionOf(east, north) + block.tack * leeway;
-  const from = block.windFrom + v.windDirection;
+  const from = block.windFrom + v.windDirection + (block.upwind ? v.windSplit : -v.windSplit);
   const speed = block.windSpeed * Math.exp(v.windScale);
   // Towards where it comes from: the wind there, and the boat's own motion against it.
   const [ax, ay] = [speed * eastOf(from) + block.east, speed * northOf(from) + block.north];
@@ -202,23 +233,25 @@ function misfit(block: ReconcileBlock, v: Values): [number, number, number, numb
 /** Fits, then takes each observation's sigma from its residuals and fits again, until these settle. */
 function settledFit(
   blocks: readonly ReconcileBlock[],
-  free: readonly ReconcileName[],
+  free: readonly Unknown[],
   fixed: Values,
+  priors: Priors,
 ): { fit: Fit; sigma: readonly number[] } {
   let sigma: readonly number[] = FIRST_SIGMA;
-  let fit = fitWith(blocks, free, fixed, sigma);
+  let fit = fitWith(blocks, free, fixed, priors, sigma);
   for (let round = 0; round < 4; round++) {
     const spread = robustSpread(blocks, fullValues(free, fixed, fit.parameters));
     sigma = spread.map((value, k) => (value > 0 ? Math.max(value, LEAST_SIGMA[k]) : FIRST_SIGMA[k]));
-    fit = fitWith(blocks, free, fixed, sigma, fit.parameters);
+    fit = fitWith(blocks, free, fixed, priors, sigma, fit.parameters);
   }
   return { fit, sigma };
 }
 
 function fitWith(
   blocks: readonly ReconcileBlock[],
-  free: readonly ReconcileName[],
+  free: readonly Unknown[],
   fixed: Values,
+  priors: Priors,
   sigma: readonly number[],
   start?: ArrayLike<number>,
 ): Fit {
@@ -228,8 +261,8 @@ function fitWith(
       const values = fullValues(free, fixed, parameters);
       return blocks.flatMap((block) => misfit(block, values).map((off, k) => off / sigma[k]));
     },
-    mean: at.map((i) => MEAN[i]),
-    sd: at.map((i) => SD[i]),
+    mean: at.map((i) => priors.mean[i]),
+    sd: at.map((i) => priors.sd[i]),
     ...(start && { start: Array.from(start) }),
     huber: HUBER,
     clusters: blocks.flatMap((block) => KINDS.map(() => block.spell)),
@@ -256,9 +289,15 @@ function rms(blocks: readonly ReconcileBlock[], values: Values): number[] {
 }
 
 /** Residual with the current forced to zero over the residual with it free: root of the ratio of the robust costs. */
-function currentNeed(blocks: readonly ReconcileBlock[], fixed: Values, fit: Fit, sigma: readonly number[]): number {
+function currentNeed(
+  blocks: readonly ReconcileBlock[],
+  fixed: Values,
+  fit: Fit,
+  sigma: readonly number[],
+  priors: Priors,
+): number {
   const still = NAMES.filter((name) => !name.startsWith('current'));
-  const forced = fitWith(blocks, still, { ...fixed, currentEast: 0, currentNorth: 0 }, sigma);
+  const forced = fitWith(blocks, still, { ...fixed, currentEast: 0, currentNorth: 0 }, priors, sigma);
   return Math.sqrt(forced.cost / fit.cost);
 }
 
@@ -267,7 +306,7 @@ type Claims = Readonly<Record<ReconcileName, string>>;
 
 function claimsOf(
   blocks: readonly ReconcileBlock[],
-  free: readonly ReconcileName[],
+  free: readonly Unknown[],
   fit: Fit,
   { current }: ReconcileOptions,
   withoutCurrent: number,
@@ -275,8 +314,11 @@ function claimsOf(
   const has = (key: 'heading' | 'apparentSpeed' | 'waterSpeed'): boolean =>
     blocks.filter((block) => Number.isFinite(block[key])).length >= LEAST_BLOCKS;
   const oneTack = new Set(blocks.map((block) => block.tack)).size < 2;
-  const reasons = Object.fromEntries(NAMES.map((name) => [name, ''])) as Record<ReconcileName, string>;
-  free.forEach((name, i) => (reasons[name] = statisticalReason(name, i, free, fit)));
+  const reasons = Object.fromEntries(REPORTED.map((name) => [name, ''])) as Record<ReconcileName, string>;
+  for (const name of REPORTED) {
+    const i = free.indexOf(name);
+    if (i >= 0) reasons[name] = statisticalReason(name, i, free, fit);
+  }
   const refuse = (reason: string, ...names: ReconcileName[]): void => {
     for (const name of names) reasons[name] = reason;
   };
@@ -292,14 +334,16 @@ function claimsOf(
   return reasons;
 }
 
-function statisticalReason(name: ReconcileName, i: number, free: readonly ReconcileName[], fit: Fit): string {
-  if (fit.se[i] > MOST_OF_PRIOR * SD[NAMES.indexOf(name)]) return 'the log does not tell it';
+function statisticalReason(name: Unknown, i: number, free: readonly Unknown[], fit: Fit): string {
+  const share = fit.se[i] / SD[NAMES.indexOf(name)];
+  if (share > MOST_OF_PRIOR) return 'the log does not tell it';
+  if (share < SMALL_OF_PRIOR) return '';
   const rival = free.findIndex((_, j) => j !== i && Math.abs(fit.correlation[i][j]) > MOST_CORRELATION);
   return rival < 0 ? '' : `not told from ${SAID[free[rival]]}`;
 }
 
 function estimatesOf(
-  free: readonly ReconcileName[],
+  free: readonly Unknown[],
   fixed: Values,
   fit: Fit,
   claims: Claims,
@@ -309,11 +353,11 @@ function estimatesOf(
     if (i < 0) return { value: fixed[name], se: 0, applied: true, reason: '' };
     return { value: fit.parameters[i], se: fit.se[i], applied: claims[name] === '', reason: claims[name] };
   };
-  return Object.fromEntries(NAMES.map((name) => [name, of(name)])) as Record<ReconcileName, Reconciled>;
+  return Object.fromEntries(REPORTED.map((name) => [name, of(name)])) as Record<ReconcileName, Reconciled>;
 }
 
 function warningsOf(claims: Claims, withoutCurrent: number): Reconciliation['warnings'] {
-  const lost = NAMES.filter((name) => claims[name] !== '');
+  const lost = REPORTED.filter((name) => claims[name] !== '');
   const list = lost.map((name) => `${SAID[name]} (${claims[name]})`).join(', ');
   const separable =
     lost.length > 0

@@ -48,11 +48,13 @@ function race(plan: Plan, seed: number): ReconcileBlock[] {
   const next = normals(seed);
   const blocks: ReconcileBlock[] = [];
   let spell = 0;
+  // Beats and runs go over different water, and the wind there is another.
+  const split = next();
   for (let lap = 0; lap < 2; lap++) {
     for (const upwind of plan.legs) {
       for (let s = 0; s < 6; s++, spell++) {
         const tack = plan.tacks[s % plan.tacks.length];
-        const mismatch = 1.2 * next();
+        const mismatch = 1.2 * next() + (upwind ? split : -split);
         for (let b = 0; b < (upwind ? 6 : 4); b++) {
           const minute = spell * 2.2 + b / 3;
           const twd = 205 + 7 * Math.sin(minute / 1.3) + 1.5 * next();
@@ -139,9 +141,10 @@ describe('reconcile', () => {
     const errors = accuracy(PLAN, { east: 0, north: 0 });
     if (process.env.SHOW) console.log('given', errors);
     expect(errors.compass.rms).toBeLessThan(0.15);
-    // Held up by the station seeing another wind, 1.2 degrees a spell here, of which 24 spells leave a quarter.
-    expect(errors.masthead.rms).toBeLessThan(0.8);
-    expect(errors.windDirection.rms).toBeLessThan(0.9);
+    // Held up by the wind that differs between beats and runs, 2 degrees here: 2 / (1.4 - 0.7) for the station, as much
+    // less for the masthead as beta follows gamma. With one wind for both: 0.6 and 0.7.
+    expect(errors.masthead.rms).toBeLessThan(3);
+    expect(errors.windDirection.rms).toBeLessThan(3.5);
     expect(errors.leewayUpwind.rms).toBeLessThan(0.15);
     for (const name of [
       'compass',
@@ -166,6 +169,16 @@ describe('reconcile', () => {
     for (const name of ['compass', 'masthead', 'windDirection', 'leewayUpwind', 'currentEast'] as const) {
       expect(errors[name].z, name).toBeLessThan(1.6);
     }
+  });
+
+  it('knows the masthead better where the station is known better', () => {
+    const blocks = race(PLAN, 8);
+    const current = { east: 0, north: 0 };
+    const alone = reconcile(blocks, { current })!.estimates.masthead;
+    const told = reconcile(blocks, { current, windDirection: { value: PLAN.windDirection, se: 0.3 } })!.estimates;
+    expect(told.masthead.se).toBeLessThan(0.8 * alone.se);
+    expect(Math.abs(told.masthead.value - PLAN.masthead)).toBeLessThan(3 * told.masthead.se);
+    expect(told.windDirection.se).toBeLessThan(0.31);
   });
 
   it('takes each sign the right way round: an offset is what must be added', () => {
