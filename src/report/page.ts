@@ -8,7 +8,7 @@ import { ledger } from './sections/ledger.js';
 import { legs, otherLegs } from './sections/legs.js';
 import { masthead } from './sections/masthead.js';
 import { pairs } from './sections/pairs.js';
-import { replay, scrubBar, seriesSection } from './sections/replay.js';
+import { replay, seriesSection } from './sections/replay.js';
 import { tacks } from './sections/tacks.js';
 import { glossary, trust } from './sections/trust.js';
 import { verdicts } from './sections/verdict.js';
@@ -69,7 +69,7 @@ function page(result: Result, series: RaceSeries, kind: string, className: strin
   const body = html`<a class="skip" href="#verdict">To the verdict</a
     >${masthead(result, series, kind)}${contents((result.pairs?.length ?? 0) > 0)}
     <main class="${className}">${front}${appendix}</main>
-    ${scrubBar(series)}
+
     <div id="tip" class="card" popover="manual" role="status"></div>
     ${termCards()}`;
   return document({

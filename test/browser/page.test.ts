@@ -216,7 +216,7 @@ describe.skipIf(!browser)('the page in a browser', () => {
     const { page, close } = await open('full');
     const met = new Set<string>();
     let unseen = 0;
-    for (let i = 0; i < 260; i++) {
+    for (let i = 0; i < 400; i++) {
       await page.keyboard.press('Tab');
       const at = await page.evaluate(() => {
         const e = document.activeElement as HTMLElement;

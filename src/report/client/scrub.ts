@@ -80,6 +80,7 @@ function showFrom(bar: HTMLElement, chart: HTMLElement | null): void {
     const top = chart ? chart.getBoundingClientRect().top : 0;
     bar.hidden = top > window.innerHeight * 0.85 && !bar.contains(document.activeElement);
   };
+  chart?.addEventListener('focusin', () => (bar.hidden = false));
   window.addEventListener('scroll', look, { passive: true });
   window.addEventListener('resize', look);
   look();

@@ -32,6 +32,7 @@ export function replay(result: Result, series: RaceSeries): Safe {
         </div>
         <div class="instruments" id="instruments" hidden></div>
       </div>
+      ${scrubBar(series)}
       <div id="strips" class="strips" hidden></div>`,
     'wide',
   );
@@ -80,7 +81,7 @@ function minuteTables(series: RaceSeries): Part {
 }
 
 /** The one time cursor of the page; it shows itself when the client is alive. */
-export function scrubBar(series: RaceSeries): Safe {
+function scrubBar(series: RaceSeries): Safe {
   const [from, to] = timeSpan(series);
   return html`<div class="scrub" id="scrub" role="group" aria-label="Time cursor" hidden>
     <output id="clock" for="cursor">${time(from, 'hms')}</output
