@@ -209,7 +209,17 @@ export async function readGpx(
   parser.close();
   if (open) tally.issue('file-truncated', `The file is cut at line ${last}; what is complete before it is read.`, last);
   tellOdd(tally, fault());
+  tellTracks(walk.names, tally);
   return { name: walk.names.find((name) => name !== '') ?? '', columns: gpxColumns(rows, walk.seen) };
+}
+
+/** Several names are several tracks, perhaps of several boats. */
+function tellTracks(names: readonly string[], tally: Tally): void {
+  const different = [...new Set(names.filter((name) => name !== ''))];
+  if (different.length < 2) return;
+  const some = different.slice(0, 5).map((name) => `'${name.slice(0, 40)}'`);
+  const rest = different.length > some.length ? ` and ${different.length - some.length} more` : '';
+  tally.issue('several-tracks', `The log holds tracks of several names, read as one: ${some.join(', ')}${rest}.`);
 }
 
 /** What is held back for a point that is not yet whole. */

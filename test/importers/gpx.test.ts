@@ -1,4 +1,7 @@
+import { createHash } from 'node:crypto';
+import { gzipSync, zipSync } from 'fflate';
 import { describe, expect, test } from 'vitest';
+import { importLog } from '../../src/importers/index.js';
 import { UserError } from '../../src/recording/issues.js';
 import { checkBooks, codesOf, importBytes, importText, rejectedOf } from './check-import.js';
 
@@ -151,4 +154,42 @@ test('records are counted even when nearly all are rejected', async () => {
   const log = await importText(gpx(points(2) + '<trkpt lat="x" lon="9"><time>now</time></trkpt>'.repeat(50)));
   checkBooks(log);
   expect([log.rows, log.kept, rejectedOf(log)]).toEqual([52, 2, 50]);
+});
+
+describe('wrapping', () => {
+  const bytes = new TextEncoder().encode(gpx(points(2000)));
+
+  test('the digest is that of the bytes as they came, by whichever hash', async () => {
+    const packed = gzipSync(bytes);
+    const expected = createHash('sha256').update(packed).digest('hex');
+    expect((await importBytes(packed)).sha256).toBe(expected);
+    const host = createHash('sha256');
+    const log = await importLog(
+      { name: 'log.gpx.gz', chunks: [packed] },
+      { createHash: () => ({ update: (piece) => void host.update(piece), digest: () => host.digest('hex') }) },
+    );
+    expect(log.sha256).toBe(expected);
+  });
+
+  test.each([
+    ['gzip', gzipSync(bytes)],
+    ['zip', zipSync({ 'corrie.gpx': bytes })],
+  ])('a cut %s is read as far as it goes, and told', async (_, packed) => {
+    const log = await importBytes(packed.subarray(0, Math.floor(packed.length / 2)));
+    checkBooks(log);
+    expect(log.kept).toBeGreaterThan(100);
+    expect(codesOf(log)).toContain('file-truncated');
+  });
+
+  test('of an archive with more than one file the first is read, the rest told', async () => {
+    const log = await importBytes(
+      zipSync({ '__MACOSX/._a': bytes.subarray(0, 9), 'a/': new Uint8Array(0), 'a/b.gpx': bytes, 'a/c.gpx': bytes }),
+    );
+    expect(log.kept).toBe(2000);
+    expect(codesOf(log)).toEqual(['archive-rest']);
+  });
+
+  test('bytes in one piece are read like bytes in many', async () => {
+    expect((await importLog({ name: 'log', chunks: [bytes] })).kept).toBe(2000);
+  });
 });
