@@ -7,8 +7,20 @@ import { recording } from '../importers/recordings.js';
 
 export const knotsOf = (speed: number): number => (speed * 3600) / 1852;
 
-/** The two beats of one yacht as two boats that sail leg 1, and the seconds between them. */
-export async function lapAgainstLap(): Promise<{ first: BetweenBoat; second: BetweenBoat; shift: number }> {
+interface Laps {
+  readonly first: BetweenBoat;
+  readonly second: BetweenBoat;
+  readonly shift: number;
+}
+
+let laps: Promise<Laps> | undefined;
+
+/** The two beats of one yacht as two boats that sail leg 1, and the seconds between them; five hours, read once. */
+export function lapAgainstLap(): Promise<Laps> {
+  return (laps ??= readLaps());
+}
+
+async function readLaps(): Promise<Laps> {
   const log = 'two-laps/two-laps.nmea';
   const reference = { file: log, clockS: 0 };
   const race: Race = {
