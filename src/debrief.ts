@@ -12,6 +12,7 @@ import { cleanTracks, type CleanTracks } from './steps/clean-tracks.js';
 import { currentOf } from './steps/course.js';
 import { errorModels } from './steps/error-model.js';
 import { estimateBoat, type BoatEstimate } from './steps/estimate-boat.js';
+import { hints } from './steps/hints.js';
 import { judge } from './steps/judge.js';
 import { readLogs, type OpenLog, type ReadLogs } from './steps/read-logs.js';
 import { correctTracks, reconcileBoats, type Corrections } from './steps/reconcile-boats.js';
@@ -51,7 +52,7 @@ export async function debrief(race: Race, open: OpenLog, options: DebriefOptions
   const rigHeight = models[0].spec.rig.centre;
   const reconciled = sailReconciled(race, logs, raw, { thresholds: options.thresholds ?? THRESHOLDS, rigHeight });
   const { clean, corrections, wind, course } = reconciled;
-  mustHaveBeat(reconciled);
+  mustHaveBeat(reconciled, clean);
   const errors = errorModels(
     clean,
     wind,
@@ -93,6 +94,14 @@ export async function debrief(race: Race, open: OpenLog, options: DebriefOptions
     estimates,
     trims,
     judgements,
+    hints: hints({
+      names: race.boats.map((boat) => boat.name),
+      sailed: wind.sailed,
+      estimates,
+      judgements,
+      models,
+      trims,
+    }),
     issues,
   });
   const series: RaceSeries = {
@@ -111,7 +120,12 @@ function sailReconciled(
   raw: CleanTracks,
   options: SailOptions,
 ): SailedRace & { readonly clean: CleanTracks; readonly corrections: Corrections } {
-  const first = sailAll(race, logs, raw, null, options);
+  let first: SailedRace;
+  try {
+    first = sailAll(race, logs, raw, null, options);
+  } catch (error) {
+    throw error instanceof UserError ? withReasons(error, raw.issues) : error;
+  }
   const corrections = reconcileBoats(raw, first.wind, race.start, currentOf(race));
   const found = corrections.station ?? corrections.current;
   if (!found && corrections.boats.every((boat) => !boat.compass && !boat.masthead)) {
@@ -133,11 +147,28 @@ function meanWindOfLap(estimates: readonly BoatEstimate[], lap: number): number 
   return circularMean(beats.map((leg) => leg.twd)).mean;
 }
 
-function mustHaveBeat({ wind }: SailedRace): void {
+/** Trouble with the input that can be why there is nothing to analyse. */
+const TELLING = new Set(['under-engine', 'wind-dead', 'wind-stuck', 'clock-steps', 'zone-suspect', 'file-truncated']);
+
+function mustHaveBeat({ wind, issues }: SailedRace, clean: CleanTracks): void {
   if (wind.sailed.some((one) => one.legs.some((leg) => leg.kind === 'upwind'))) return;
-  throw new UserError('no upwind leg found in any track', {
-    exitCode: 1,
-    suggestion: 'Check the wind direction, `start` and `finish`; for practice without a course give `runs`.',
+  throw withReasons(
+    new UserError('no upwind leg found in any track', {
+      exitCode: 1,
+      suggestion: 'Check the wind direction, `start` and `finish`; for practice without a course give `runs`.',
+    }),
+    [...issues, ...clean.issues],
+  );
+}
+
+/** The same error with what was seen of the input that can be its reason. */
+function withReasons(error: UserError, issues: readonly Issue[]): UserError {
+  const reasons = issues.filter(({ code }) => TELLING.has(code)).map(({ message }) => message);
+  if (reasons.length === 0 || error.exitCode !== 1) return error;
+  const { exitCode, suggestion } = error;
+  return new UserError([error.message, ...new Set(reasons)].join('. '), {
+    exitCode,
+    ...(suggestion === undefined ? {} : { suggestion }),
   });
 }
 

@@ -6,6 +6,8 @@ import { median } from './math/median.js';
 import { UserError, type Issue } from './recording/issues.js';
 import { channelValues, type Channel, type Recording } from './recording/recording.js';
 import type { InputEntry, Warning } from './result/result.js';
+import { findEngine } from './sensors/engine.js';
+import { findStuckWind } from './sensors/stuck.js';
 import { smoothTrack } from './smooth/index.js';
 
 /** What one log holds. */
@@ -110,7 +112,12 @@ export function inspectLog(file: string, log: ImportedLog): InspectFile {
   const track = log.fixes >= 3 ? smoothed(recording, file) : null;
   const step = medianStep(recording, log.fixes > 0 ? 'lat' : log.samples > 0 ? windChannel(recording) : null);
   const gaps = track ? track.gaps : holes(time, step);
-  const issues: readonly Issue[] = [...log.issues, ...(track?.issues ?? [])];
+  const issues: readonly Issue[] = [
+    ...log.issues,
+    ...(track?.issues ?? []),
+    ...findStuckWind(recording, file).issues,
+    ...(track ? findEngine(track.track, undefined, file).issues : []),
+  ];
   return {
     file,
     sha256: log.sha256,

@@ -26,6 +26,10 @@ export interface LedgerFigures {
   readonly made: Figure;
   readonly lost: Figure;
   readonly entries: Readonly<Record<Cause, Figure>>;
+  /** What each settled block lost, in metres a second. */
+  readonly rates: readonly Rates[];
+  /** What each manoeuvre cost. [m] */
+  readonly manoeuvres: readonly number[];
 }
 
 /** A piece of a leg: a block of steady sailing (settled or fetching), or a window in which the boat was busy. */
@@ -71,19 +75,25 @@ export function legLedger(input: LedgerInput): LedgerFigures {
   const sums = pieces.map((piece) => sumOver(input, piece, meanWind));
   const parts = pieces.map((piece, k) => (isBlock(piece) ? blockParts(input, piece, sums[k]!) : null));
   const entries: Record<Cause, number> = Object.fromEntries(CAUSES.map((cause) => [cause, 0])) as never;
+  const manoeuvres: number[] = [];
   pieces.forEach((piece, k) => {
     const sum = sums[k]!;
     entries.shifts += sum.made - sum.madeMean;
     const part = parts[k];
     if (part) addBlock(entries, part, piece, input.overstoodShare);
-    else addWindow(entries, piece, sum, nearRates(pieces, parts, k));
+    else {
+      const before = entries.manoeuvres;
+      addWindow(entries, piece, sum, nearRates(pieces, parts, k));
+      if (entries.manoeuvres !== before) manoeuvres.push(entries.manoeuvres - before);
+    }
   });
   const trim = trimMetres(input);
   entries.trim += trim.value;
   entries.speed -= trim.value;
   const available = sums.reduce((total, sum) => total + sum.best, 0);
   const made = sums.reduce((total, sum) => total + sum.madeMean, 0);
-  return withErrors(input, entries, available, made);
+  const rates = parts.flatMap((part, k) => (part && pieces[k].label === LABEL.settled ? [rateOf(part)] : []));
+  return { ...withErrors(input, entries, available, made), rates, manoeuvres };
 }
 
 /** Metres to windward that the trim cost over the settled sailing. */
@@ -178,7 +188,11 @@ function addBlock(entries: Record<Cause, number>, part: BlockParts, piece: Piece
   entries.speed += part.speed;
 }
 
-interface Rates {
+function rateOf({ seconds, high, low, speed }: BlockParts): Rates {
+  return { high: high / seconds, low: low / seconds, speed: speed / seconds };
+}
+
+export interface Rates {
   readonly high: number;
   readonly low: number;
   readonly speed: number;
@@ -270,7 +284,7 @@ function withErrors(
   entries: Record<Cause, number>,
   available: number,
   made: number,
-): LedgerFigures {
+): Omit<LedgerFigures, 'rates' | 'manoeuvres'> {
   const { sailing, tws, leg, rows, errors, reference } = input;
   const blocks = rows.blocks.map((block) => estimateBlock(sailing, tws, block, 0));
   const cross = blocks.map((b) => tackSign(b.tack) * b.seconds * b.speed * Math.sin(b.gamma * RAD) * RAD);

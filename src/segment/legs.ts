@@ -52,7 +52,16 @@ export function findLegs(sailing: Sailing, course: Course, usual: number, thresh
   for (const piece of racingPieces(pieces, sailing, course, thresholds)) {
     legs.push(...legsOf(piece, sailing, angle, course, thresholds));
   }
-  return numbered(legs);
+  return numbered(legs.filter((leg) => share(sailing, leg) >= SEEN));
+}
+
+/** A leg of which less than this was seen (a gap, an excluded span, the engine) says nothing. */
+const SEEN = 0.6;
+
+function share(sailing: Sailing, leg: RowRange): number {
+  let seen = 0;
+  for (let i = leg.from; i < leg.to; i++) if (!Number.isNaN(sailing.ux[i])) seen++;
+  return seen / (leg.to - leg.from);
 }
 
 /** Distance made along the mean wind since row 0, gaps bridged at no progress. [m] */

@@ -5,6 +5,7 @@ import { isoTime, knotsQuantity, quantity } from '../result/quantity.js';
 import type {
   Basis,
   BoatResult,
+  Hint,
   InputEntry,
   Ledger,
   LegResult,
@@ -40,6 +41,7 @@ export interface Assembly {
   readonly models: readonly RaceModel[];
   readonly corrections: Corrections;
   readonly trims: readonly BoatTrim[];
+  readonly hints: readonly (readonly Hint[])[];
   readonly judgements: readonly Judgement[];
 }
 
@@ -141,7 +143,7 @@ function boatResult(boat: CleanBoat, k: number, a: Assembly): BoatResult {
       loss_m: quantity(loss, 'derived'),
     })),
     legs: estimate.legs.map((leg, index) => legResult(leg, k, index, a)),
-    hints: [],
+    hints: a.hints[k],
   };
 }
 

@@ -47,15 +47,17 @@ export function reconcileBoats(
 ): Corrections {
   const stations = wind.sources.filter(({ source }) => source.kind === 'station');
   const all = clean.boats.map((boat, k) => reconcileBoat(boat, wind.sailed[k], stations, gun, told));
-  const applied = (pick: (r: Reconciliation) => Reconciled): Reconciled[] =>
-    all.flatMap((one) => (one && pick(one).applied ? [pick(one)] : []));
-  const east = combined(applied((one) => one.estimates.currentEast));
-  const north = combined(applied((one) => one.estimates.currentNorth));
+  const applied = (from: readonly (Reconciliation | null)[], pick: (r: Reconciliation) => Reconciled): Reconciled[] =>
+    from.flatMap((one) => (one && pick(one).applied ? [pick(one)] : []));
+  // Along the wind, current and leeway look alike unless the water speed is logged.
+  const withLog = all.map((one, k) => (clean.boats[k].track.stw ? one : null));
+  const east = combined(applied(withLog, (one) => one.estimates.currentEast));
+  const north = combined(applied(withLog, (one) => one.estimates.currentNorth));
   return {
     boats: all.map(correctionsOf),
-    station: stations.length > 0 ? combined(applied((one) => one.estimates.windDirection)) : null,
+    station: stations.length > 0 ? combined(applied(all, (one) => one.estimates.windDirection)) : null,
     current: told || !east || !north ? null : { east, north },
-    issues: all.flatMap((one, k) => (one ? issuesOf(one, clean.boats[k]) : [])),
+    issues: all.flatMap((one, k) => (one ? issuesOf(one, clean.boats[k], stations.length > 0) : [])),
   };
 }
 
@@ -109,9 +111,29 @@ function correctionsOf(one: Reconciliation | null): BoatCorrections {
   };
 }
 
-function issuesOf(one: Reconciliation, boat: CleanBoat): Issue[] {
-  const file = boat.logs.instruments[0]?.file ?? boat.logs.trackFiles[0] ?? '';
-  return one.warnings.map(({ code, message }) => ({ code, message: `${boat.logs.reference.name}: ${message}`, file }));
+const NAMES = {
+  compass: 'the compass offset',
+  masthead: 'the masthead offset',
+  windDirection: 'the direction offset of the wind station',
+  leewayUpwind: 'leeway by the sensors',
+} as const;
+
+/** What the log cannot tell apart, of what it has sensors for; and a current that must be there. */
+function issuesOf(one: Reconciliation, { track, logs }: CleanBoat, hasStation: boolean): Issue[] {
+  const file = logs.instruments[0]?.file ?? logs.trackFiles[0] ?? '';
+  const has = {
+    compass: !!track.heading,
+    masthead: !!track.awa,
+    windDirection: hasStation,
+    leewayUpwind: !!track.heading,
+  };
+  const keys = (Object.keys(NAMES) as (keyof typeof NAMES)[]).filter((key) => has[key] && !one.estimates[key].applied);
+  const list = keys.map((key) => `${NAMES[key]} (${one.estimates[key].reason})`).join(', ');
+  const others = one.warnings.filter(({ code }) => code !== 'not-separable');
+  return [
+    ...(list ? [{ code: 'not-separable', message: `The log cannot tell, so nothing is done about: ${list}.` }] : []),
+    ...others,
+  ].map(({ code, message }) => ({ code, message: `${logs.reference.name}: ${message}`, file }));
 }
 
 /** The boats with their instruments corrected. */

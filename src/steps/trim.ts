@@ -103,7 +103,8 @@ function trimOf(
     ...(measured(leeway) ? { leeway: measured(leeway)! } : {}),
     ...(track.heel ? { heel: { value: meanSize(track.heel, blocks), se: 1 } } : {}),
   });
-  const sheeting = posterior?.narrowed ? posterior : null;
+  const fits = posterior && Math.abs(posterior.mean - posterior.priorMean) < MOST_ASTRAY * posterior.priorSd;
+  const sheeting = posterior?.narrowed && fits ? posterior : null;
   const state = achieved(model, { speed, tws, gamma }).eased;
   const beta = figures.beta;
   const aero = state ? { value: state.aeroDragAngle, se: MODEL_ANGLE, sys: 0 } : null;
@@ -123,6 +124,9 @@ function trimOf(
     awa: leeway ? { value: beta.value - leeway.value, se: Math.hypot(beta.se, leeway.se), sys: beta.sys } : null,
   };
 }
+
+/** A posterior further from its prior than so many of its standard deviations tells of the boat file, not of the boom. */
+const MOST_ASTRAY = 2;
 
 /** What the model's drag angles are good to: common practice, no source. [deg] */
 const MODEL_ANGLE = 1.5;

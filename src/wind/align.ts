@@ -194,7 +194,8 @@ export function estimateOffset(
   let weighted = 0;
   for (const halves of byBoat.values()) {
     const mean = halves.reduce((sum, half) => sum + half, 0) / halves.length;
-    const variance = ASYMMETRY ** 2 + LEG_ERROR ** 2 / halves.length;
+    const spread = halves.reduce((sum, half) => sum + (half - mean) ** 2, 0) / Math.max(1, halves.length - 1);
+    const variance = ASYMMETRY ** 2 + Math.max(LEG_ERROR ** 2, spread) / halves.length;
     information += 1 / variance;
     weighted += mean / variance;
   }

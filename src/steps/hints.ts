@@ -1,0 +1,140 @@
+import { excesses, type BeatCosts, type Excess } from '../estimate/excess.js';
+import type { Hint } from '../result/result.js';
+import { bestBoat, type Judgement } from './judge.js';
+import type { BoatEstimate } from './estimate-boat.js';
+import type { RaceModel } from './boat-models.js';
+import type { Sailed } from './sail.js';
+import type { BoatTrim } from './trim.js';
+
+export interface HintInput {
+  readonly names: readonly string[];
+  readonly sailed: readonly Sailed[];
+  readonly estimates: readonly BoatEstimate[];
+  readonly judgements: readonly Judgement[];
+  readonly models: readonly RaceModel[];
+  readonly trims: readonly BoatTrim[];
+}
+
+/** At most so many hints a boat: more are not read before the next race. */
+const MOST = 3;
+
+/**
+ * Hints: what each boat lost more than the day's best boat, and that boat more than the next best, where it stands
+ * beyond chance; and a leeway measured well away from the best. None with one boat and nothing measured.
+ */
+export function hints(input: HintInput): (readonly Hint[])[] {
+  const { sailed, models, names } = input;
+  const best = bestBoat(sailed, models);
+  return names.map((_, k) => {
+    const found: Hint[] = [];
+    const other = best < 0 ? -1 : k === best ? nextBest(input, best) : best;
+    if (other >= 0) {
+      const stands = excesses(costsOf(input, k), costsOf(input, other)).filter((excess) => excess.stands);
+      found.push(...stands.map((excess) => excessHint(excess, input, k, other)));
+    }
+    found.push(...leewayHint(input, k));
+    return found.slice(0, MOST);
+  });
+}
+
+function nextBest(input: HintInput, best: number): number {
+  const others = input.sailed.map((one, k) => (k === best ? { ...one, blocks: [] } : one));
+  return bestBoat(others, input.models);
+}
+
+function costsOf({ judgements, estimates }: HintInput, boat: number): BeatCosts[] {
+  return judgements[boat].legs.flatMap(({ ledger }, index) => {
+    const { leg } = estimates[boat].legs[index];
+    return ledger ? [{ lap: leg.lap, ledger, seconds: leg.to - leg.from }] : [];
+  });
+}
+
+function excessHint({ cause, metres, se }: Excess, input: HintInput, boat: number, other: number): Hint {
+  const name = input.names[other];
+  const more = `about ${metres.toFixed(0)} m more lost than ${name}, ±${Math.max(1, se).toFixed(0)}`;
+  const text = ((): string => {
+    switch (cause) {
+      case 'high':
+        return `Sailed${angleWords(input, boat, 'above')} the best course angle: ${more}. Try a little lower and faster.`;
+      case 'low':
+        return `Sailed${angleWords(input, boat, 'below')} the best course angle: ${more}. Try a little higher.`;
+      case 'speed':
+        return `Slower at the same angle: ${more}. Speed or trim, the log cannot tell.`;
+      case 'trim':
+        return `Trim: ${more}.`;
+      case 'manoeuvres':
+        return `Tacks: ${more}${tackWords(input, boat, other)}.`;
+      case 'start':
+        return `Starts and roundings: ${more}.`;
+      case 'overstood':
+        return `Overstood the windward mark: ${more}.`;
+      case 'stopped':
+        return `Stops and full turns: ${more}.`;
+      case 'shifts':
+        return `Shifts: ${more}.`;
+    }
+  })();
+  return { text, metres: { value: metres, se, basis: 'inferred' } };
+}
+
+/** " on average 3 degrees above", where the settled blocks say so. */
+function angleWords({ sailed, judgements }: HintInput, boat: number, side: 'above' | 'below'): string {
+  const { reference } = judgements[boat];
+  const { blocks } = sailed[boat];
+  const off = blocks.map((block) => reference.bestGamma(block.tws) - block.gamma).filter((x) => !Number.isNaN(x));
+  const mean = off.reduce((sum, x) => sum + x, 0) / off.length;
+  const size = side === 'above' ? mean : -mean;
+  return size >= 0.75 ? `, on average, ${size.toFixed(0)}° ${side}` : ` ${side}`;
+}
+
+function tackWords(input: HintInput, boat: number, other: number): string {
+  const mean = (k: number): number => {
+    const costs = input.estimates[k].manoeuvres.flatMap(({ manoeuvre, loss }) =>
+      manoeuvre.kind === 'tack' && loss ? [loss.value] : [],
+    );
+    return costs.reduce((sum, cost) => sum + cost, 0) / costs.length;
+  };
+  const [mine, theirs] = [mean(boat), mean(other)];
+  if (!Number.isFinite(mine + theirs)) return '';
+  return ` (${mine.toFixed(0)} m a tack against ${theirs.toFixed(0)})`;
+}
+
+/** Leeway this far from the best is worth a word, where sensors measured it beyond two standard errors. [deg] */
+const LEEWAY_WORTH = 1;
+/** What the model's best leeway is good to. [deg] Common practice, no source. */
+const LEEWAY_MODEL = 0.5;
+/** The boom moves the leeway by about half of what it moves; from the model near full power. */
+const BOOM_PER_LEEWAY = 1.5;
+
+function leewayHint({ trims, judgements }: HintInput, boat: number): Hint[] {
+  const rows = trims[boat].legs.flatMap((trim, index) => {
+    const leeway = trim?.all.leeway;
+    const best = judgements[boat].legs[index].optimum?.leeway;
+    return leeway && best && leeway.basis !== 'inferred'
+      ? [
+          {
+            off: leeway.value - best.value,
+            se: Math.hypot(leeway.se, LEEWAY_MODEL),
+            trim: judgements[boat].legs[index].ledger?.entries.trim,
+          },
+        ]
+      : [];
+  });
+  if (rows.length === 0) return [];
+  const off = rows.reduce((sum, row) => sum + row.off, 0) / rows.length;
+  const se = Math.max(...rows.map((row) => row.se));
+  if (Math.abs(off) < LEEWAY_WORTH || Math.abs(off) < 2 * se) return [];
+  const boom = Math.max(1, Math.round(BOOM_PER_LEEWAY * Math.abs(off)));
+  const where = off > 0 ? 'above' : 'below';
+  const way = off > 0 ? 'further out' : 'further in';
+  const metres = rows.reduce((sum, row) => sum + (row.trim?.value ?? 0), 0);
+  const error = Math.hypot(...rows.map((row) => row.trim?.se ?? 0));
+  return [
+    {
+      text:
+        `Leeway ${Math.abs(off).toFixed(1)}° ${where} the boat model's best (±${se.toFixed(1)}): ` +
+        `try the boom about ${boom}° ${way}, then look again.`,
+      metres: metres > 0 ? { value: metres, se: error, basis: 'inferred' } : null,
+    },
+  ];
+}
