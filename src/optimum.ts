@@ -1,4 +1,4 @@
-import { readBoat, type KnownBoats } from './files/boat.js';
+import { readBoat } from './files/boat.js';
 import { BUILT_IN_BOATS, builtInBoat } from './physics/built-in.js';
 import type { BoatSpec } from './physics/boat-spec.js';
 import { makeModel } from './physics/model.js';
@@ -24,10 +24,7 @@ export async function optimum(
   winds: readonly number[],
   options: { readonly polar?: boolean } = {},
 ): Promise<OptimumTable> {
-  const spec =
-    typeof boat === 'string'
-      ? knownBoat(boat)
-      : await readBoat(boat.text, boat.name, [...BUILT_IN_BOATS] as unknown as KnownBoats);
+  const spec = typeof boat === 'string' ? knownBoat(boat) : await readBoat(boat.text, boat.name, [...BUILT_IN_BOATS]);
   return optimumTable(makeModel(spec), spec.name, winds, options);
 }
 

@@ -157,7 +157,12 @@ export function renamed(draft: RaceDraft, rename: (file: string) => string): Rac
     if (log === null || typeof log !== 'object' || !('file' in log)) return log;
     return { ...log, file: rename(String(log.file)) };
   };
-  return { ...draft, content: withLogs(draft.content, one) };
+  // A built-in boat has a bare name, a boat file an extension or a folder.
+  const boat = <T extends string | null | undefined>(name: T): T =>
+    typeof name === 'string' && /[./\\]/.test(name) ? (rename(name) as T) : name;
+  const content = withLogs(draft.content, one);
+  const boats = content.boats.map((entry) => ({ ...entry, boat: boat(entry.boat) }));
+  return { ...draft, content: { ...content, boat: boat(content.boat), boats } };
 }
 
 /** Headers told on the command line hold for every log; what a log says for itself comes first. */

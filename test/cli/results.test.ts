@@ -58,6 +58,17 @@ describe('a result', () => {
   it('names no absolute path', () => {
     expect(texts(json('r.json')).filter((text) => isAbsolute(text) || text.includes(home))).toEqual([]);
   });
+  it('names none either where the race file does', async () => {
+    const text = readFileSync(join(demo, 'race.yaml'), 'utf8');
+    const absolute = text
+      .replace('single-hander', join(demo, 'mine.yaml'))
+      .replace('corrie.gpx', join(demo, 'corrie.gpx'));
+    fill(demo, { 'absolute.yaml': absolute, 'mine.yaml': 'boat: Mine\nlike: two-person\n' });
+    const { code, out } = await run(['debrief', 'absolute.yaml', '--json', '-'], { cwd: demo });
+    expect(code).toBe(0);
+    expect(texts(JSON.parse(out)).filter((text) => text.includes(home))).toEqual([]);
+    expect((JSON.parse(out) as Result).boats[0].model.boat).toBe('mine.yaml');
+  });
   it('has ledgers whose entries sum to what was lost', () => {
     const { boats } = json('r.json') as Result;
     const ledgers = boats.flatMap((boat) => boat.legs.flatMap((leg) => leg.ledger ?? []));
@@ -186,7 +197,7 @@ describe('tune', () => {
     const tuned = await run(['debrief', '--boat', 'single-hander-tuned.yaml', '--json', '-'], { cwd: demo });
     const { boats } = JSON.parse(tuned.out) as Result;
     expect(boats.map(({ model }) => model.tuned)).toEqual([true, true]);
-    expect(boats[0].model.boat).toBe('single-hander-tuned');
+    expect(boats[0].model.boat).toBe('single-hander-tuned.yaml');
   });
 });
 
