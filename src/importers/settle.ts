@@ -29,7 +29,21 @@ export function settle(rows: LogRows, tally: Tally, name: string, lead?: Growing
   const anchors = resolveStamps(rows, stamped, tally);
   tellSteps(tally);
   const placed = rows.untimed > 0 ? placeBetween(rows, anchors, tally, lead) : anchors;
-  return gather(rows, placed, name);
+  return gather(rows, withRoom(rows, placed, tally), name);
+}
+
+/** Between two stamps a hair apart there may be no number left for a time of its own. */
+function withRoom(rows: LogRows, placed: Uint32Array, tally: Tally): Uint32Array {
+  let before = -Infinity;
+  return placed.filter((row) => {
+    const time = rows.time(row);
+    if (time > before) {
+      before = time;
+      return true;
+    }
+    tally.reject('no room between the time stamps around it', rows.line(row), rows.records(row));
+    return false;
+  });
 }
 
 /** Rows with a time, piece by piece in order of their first times; a log written newest first is turned round. */

@@ -80,4 +80,21 @@ describe('records without a time', () => {
     // Half a second each: 120 fit into a minute.
     expect(log.rejected).toEqual([{ reason: 'no time, and no time stamp near it', count: 80, first_line: 1 }]);
   });
+
+  test('have no place between stamps that are a hair apart', async () => {
+    // At 1.8e9 s neighbouring doubles are 2.4e-7 s apart (IEEE 754, 53 bits).
+    const gga = (clock: string): string =>
+      sum(`GPGGA,${clock},4654.72,N,00903.6${clock.slice(-1)},E,1,09,0.9,412,M,47,M,,`);
+    const log = await importText(
+      [
+        rmc(100),
+        gga('000141.0000001'),
+        ...Array.from({ length: 9 }, (_, k) => hdm(k)),
+        gga('000141.0000006'),
+        rmc(103),
+      ].join('\n'),
+    );
+    checkBooks(log);
+    expect(log.rejected.map(({ reason }) => reason)).toContain('no room between the time stamps around it');
+  });
 });
