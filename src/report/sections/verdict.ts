@@ -1,4 +1,4 @@
-import type { BoatResult, Quantity, Result } from '../../result/result.js';
+import type { BoatResult, Hint, Quantity, Result } from '../../result/result.js';
 import { CAUSE_MEANING, CAUSE_WORDS, REFERENCE_WORDS } from '../causes.js';
 import {
   beyondError,
@@ -92,13 +92,17 @@ export function whyNoLedger(boat: BoatResult): string {
   return notes[0] ?? 'what it needs was not recorded';
 }
 
+/** Metres behind a hint, unless its own words give them. */
+function hintMetres({ text, metres }: Hint): Part {
+  if (!metres || /\d\s?m\b/.test(text)) return null;
+  return html` <span class="soft">About ${inline(metres, 'm')}.</span>`;
+}
+
 function hints(boat: BoatResult): Part {
   if (boat.hints.length === 0) return null;
   return html`<p class="lead-in">Worth trying:</p>
     <ul class="hints">
-      ${boat.hints.map(
-        (h) => html`<li>${h.text}${h.metres && html` <span class="soft">About ${inline(h.metres, 'm')}.</span>`}</li>`,
-      )}
+      ${boat.hints.map((hint) => html`<li>${hint.text}${hintMetres(hint)}</li>`)}
     </ul>`;
 }
 
