@@ -1,3 +1,4 @@
+import './language.js';
 import { circularMean } from '../../math/angles.js';
 import { mountInstruments } from './instruments.js';
 import { createClock, localise } from './locale.js';

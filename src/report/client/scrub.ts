@@ -78,7 +78,8 @@ export function mountScrub(race: Race, store: Store, clock: Clock): void {
 function showFrom(bar: HTMLElement, chart: HTMLElement | null): void {
   const look = (): void => {
     const top = chart ? chart.getBoundingClientRect().top : 0;
-    bar.hidden = top > window.innerHeight * 0.85 && !bar.contains(document.activeElement);
+    // Within the chart section (the bar is part of it) the keyboard may be ahead of the scrolling.
+    bar.hidden = top > window.innerHeight * 0.85 && !chart?.contains(document.activeElement);
   };
   chart?.addEventListener('focusin', () => (bar.hidden = false));
   window.addEventListener('scroll', look, { passive: true });
