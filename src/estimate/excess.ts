@@ -1,3 +1,4 @@
+import { LABEL } from '../segment/spells.js';
 import { studentInterval } from '../math/student.js';
 import type { Cause, LedgerFigures } from './ledger.js';
 
@@ -53,13 +54,17 @@ function total(beats: readonly BeatCosts[], cause: Cause): number {
 function samplingError(beats: readonly BeatCosts[], cause: Cause): { se: number; n: number } {
   if (cause === 'high' || cause === 'low' || cause === 'speed') {
     const seconds = beats.reduce((sum, beat) => sum + beat.seconds, 0);
-    const rates = beats.flatMap((beat) => beat.ledger.rates.map((rate) => rate[cause]));
+    const rates = beats.flatMap(({ ledger }) =>
+      ledger.pieces.flatMap((p) => (p.label === LABEL.settled ? [p.metres[cause] / p.seconds] : [])),
+    );
     // Neighbouring blocks share the helm's mood and the wind: about two of three count.
     const n = (2 / 3) * rates.length;
     return { se: n > 1 ? (seconds * deviation(rates)) / Math.sqrt(n) : Infinity, n };
   }
   if (cause === 'manoeuvres') {
-    const costs = beats.flatMap((beat) => beat.ledger.manoeuvres);
+    const costs = beats.flatMap(({ ledger }) =>
+      ledger.pieces.flatMap((p) => (p.metres.manoeuvres !== 0 ? [p.metres.manoeuvres] : [])),
+    );
     return { se: Math.sqrt(Math.max(1, costs.length)) * Math.max(1.5, deviation(costs)), n: costs.length };
   }
   if (cause === 'trim') {

@@ -1,5 +1,5 @@
 import { circularMean, eastOf, northOf } from '../math/angles.js';
-import { LABEL, type LegRows } from '../segment/spells.js';
+import { LABEL, type Label, type LegRows } from '../segment/spells.js';
 import { tackSign, type RowRange, type Sailing, type Tack } from '../segment/sailing.js';
 import { estimateBlock, type BlockEstimate } from './blocks.js';
 import { BOUNDS_ERROR } from './losses.js';
@@ -26,15 +26,23 @@ export interface LedgerFigures {
   readonly made: Figure;
   readonly lost: Figure;
   readonly entries: Readonly<Record<Cause, Figure>>;
-  /** What each settled block lost, in metres a second. */
-  readonly rates: readonly Rates[];
-  /** What each manoeuvre cost. [m] */
-  readonly manoeuvres: readonly number[];
+  /** What the entries are made of, in time order: their sums, trim apart. */
+  readonly pieces: readonly LedgerPiece[];
+}
+
+/** What one piece of a leg cost, by cause. */
+export interface LedgerPiece {
+  readonly label: Label;
+  /** Middle, UTC epoch seconds, and seconds counted. */
+  readonly time: number;
+  readonly seconds: number;
+  readonly tack: Tack;
+  readonly metres: Readonly<Record<Cause, number>>;
 }
 
 /** A piece of a leg: a block of steady sailing (settled or fetching), or a window in which the boat was busy. */
 interface Piece extends RowRange {
-  readonly label: number;
+  readonly label: Label;
 }
 
 /** Sums over a piece's rows: reference's best, made along the instantaneous and along the mean wind. [m], and seconds. */
@@ -74,26 +82,37 @@ export function legLedger(input: LedgerInput): LedgerFigures {
   const pieces = piecesOf(input.rows, leg);
   const sums = pieces.map((piece) => sumOver(input, piece, meanWind));
   const parts = pieces.map((piece, k) => (isBlock(piece) ? blockParts(input, piece, sums[k]!) : null));
-  const entries: Record<Cause, number> = Object.fromEntries(CAUSES.map((cause) => [cause, 0])) as never;
-  const manoeuvres: number[] = [];
-  pieces.forEach((piece, k) => {
+  const entries = nothing();
+  const costs = pieces.map((piece, k): LedgerPiece => {
     const sum = sums[k]!;
-    entries.shifts += sum.made - sum.madeMean;
+    const metres = nothing();
+    metres.shifts = sum.made - sum.madeMean;
     const part = parts[k];
-    if (part) addBlock(entries, part, piece, input.overstoodShare);
-    else {
-      const before = entries.manoeuvres;
-      addWindow(entries, piece, sum, nearRates(pieces, parts, k));
-      if (entries.manoeuvres !== before) manoeuvres.push(entries.manoeuvres - before);
-    }
+    if (part) addBlock(metres, part, piece, input.overstoodShare);
+    else addWindow(metres, piece, sum, nearRates(pieces, parts, k));
+    for (const cause of CAUSES) entries[cause] += metres[cause];
+    return {
+      label: piece.label,
+      time: sailing.t0 + (piece.from + piece.to - 1) / 2,
+      seconds: sum.seconds,
+      tack: tackAt(sailing, piece),
+      metres,
+    };
   });
   const trim = trimMetres(input);
   entries.trim += trim.value;
   entries.speed -= trim.value;
   const available = sums.reduce((total, sum) => total + sum.best, 0);
   const made = sums.reduce((total, sum) => total + sum.madeMean, 0);
-  const rates = parts.flatMap((part, k) => (part && pieces[k].label === LABEL.settled ? [rateOf(part)] : []));
-  return { ...withErrors(input, entries, available, made), rates, manoeuvres };
+  return { ...withErrors(input, entries, available, made), pieces: costs };
+}
+
+function nothing(): Record<Cause, number> {
+  return Object.fromEntries(CAUSES.map((cause) => [cause, 0])) as Record<Cause, number>;
+}
+
+function tackAt(sailing: Sailing, piece: RowRange): Tack {
+  return sailing.gamma[piece.from]! >= 0 ? 'starboard' : 'port';
 }
 
 /** Metres to windward that the trim cost over the settled sailing. */
@@ -119,7 +138,7 @@ function piecesOf(rows: LegRows, leg: RowRange): Piece[] {
   const { labels } = rows;
   let k = 0;
   while (k < labels.length) {
-    const label = labels[k]!;
+    const label = labels[k] as Label;
     let end = k + 1;
     while (end < labels.length && labels[end] === label) end++;
     if (label === LABEL.settled) {
@@ -164,7 +183,7 @@ interface BlockParts {
 }
 
 function blockParts(input: LedgerInput, piece: Piece, sum: Sums): BlockParts {
-  const tack: Tack = input.sailing.gamma[piece.from]! >= 0 ? 'starboard' : 'port';
+  const tack = tackAt(input.sailing, piece);
   const block = estimateBlock(input.sailing, input.tws, { ...piece, tack, spell: 0 }, 0);
   const { reference } = input;
   const astray =
@@ -188,11 +207,7 @@ function addBlock(entries: Record<Cause, number>, part: BlockParts, piece: Piece
   entries.speed += part.speed;
 }
 
-function rateOf({ seconds, high, low, speed }: BlockParts): Rates {
-  return { high: high / seconds, low: low / seconds, speed: speed / seconds };
-}
-
-export interface Rates {
+interface Rates {
   readonly high: number;
   readonly low: number;
   readonly speed: number;
@@ -284,7 +299,7 @@ function withErrors(
   entries: Record<Cause, number>,
   available: number,
   made: number,
-): Omit<LedgerFigures, 'rates' | 'manoeuvres'> {
+): Omit<LedgerFigures, 'pieces'> {
   const { sailing, tws, leg, rows, errors, reference } = input;
   const blocks = rows.blocks.map((block) => estimateBlock(sailing, tws, block, 0));
   const cross = blocks.map((b) => tackSign(b.tack) * b.seconds * b.speed * Math.sin(b.gamma * RAD) * RAD);

@@ -48,19 +48,23 @@ export function blocksNear(
  * Windward distance a manoeuvre cost: what the settled sailing around it would have made in its time, less what was
  * made.  loss = T x mean VMG of the blocks within 90 s - sum of VMG over the window.
  *
+ * What is sailed beyond the leg's end, after a tack close to the mark, is no part of it.
+ *
+ * @param leg Its index, and the row at which it ends.
  * @returns Loss, positive lost [m]; null without settled sailing near it.
  */
 export function manoeuvreLoss(
   sailing: Sailing,
   manoeuvre: Manoeuvre,
   blocks: readonly BlockEstimate[],
-  leg: number,
+  leg: { readonly index: number; readonly to: number },
   errors: ErrorModel,
 ): Figure | null {
-  const { near, weights, seconds: settled } = blocksNear(blocks, leg, manoeuvre);
+  const window = { entry: manoeuvre.entry, exit: Math.min(manoeuvre.exit, leg.to) };
+  const { near, weights, seconds: settled } = blocksNear(blocks, leg.index, window);
   if (settled < 20) return null;
   const rate = near.reduce((sum, block, k) => sum + weights[k]! * block.vmg, 0);
-  const { metres, seconds } = madeGood(sailing, manoeuvre.entry, manoeuvre.exit);
+  const { metres, seconds } = madeGood(sailing, window.entry, window.exit);
   const cross = near.reduce((sum, b, k) => sum + weights[k]! * b.speed * Math.sin(b.gamma * RAD), 0);
   const signed = near.map((block, k) => (block.tack === 'starboard' ? 1 : -1) * weights[k]!);
   const wind = correlatedError(near, signed, errors.mismatch.direction) * RAD * cross * seconds;

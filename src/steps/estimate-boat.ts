@@ -36,7 +36,7 @@ export function estimateBoat(one: Sailed, errors: ErrorModel, awa: Float64Array 
     const leg = one.legs.findIndex((l) => manoeuvre.at >= l.from && manoeuvre.at < l.to);
     const beat = leg >= 0 && one.legs[leg]!.kind === 'upwind';
     const loss =
-      beat && manoeuvre.kind !== 'gybe' ? manoeuvreLoss(one.sailing, manoeuvre, one.blocks, leg, errors) : null;
+      beat && manoeuvre.kind !== 'gybe' ? manoeuvreLoss(one.sailing, manoeuvre, one.blocks, { index: leg, to: one.legs[leg]!.to }, errors) : null;
     return { manoeuvre, loss };
   });
   return { legs, manoeuvres, errors };
