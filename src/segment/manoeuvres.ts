@@ -39,8 +39,10 @@ export function findManoeuvres(sailing: Sailing, thresholds: Thresholds): Manoeu
   const turning = unwrap(angle);
   const list: Manoeuvre[] = [];
   for (let k = 0; k + 1 < states.length; k++) {
-    const found = between(states, k, turning, thresholds);
+    const round = fullTurnTo(states, k, turning, thresholds);
+    const found = round === null ? between(states, k, turning, thresholds) : fullTurn(states, k, round);
     if (found) list.push(complete(found, sailing, turning, usual, thresholds));
+    if (round !== null) k = round - 1;
   }
   list.push(...changesOfPoint(states, sailing, angle, list, thresholds));
   list.sort((a, b) => a.time - b.time);
@@ -53,13 +55,31 @@ interface Turn {
   readonly after: State;
 }
 
-/** What happened between state k and those that follow it, if it was a tack, a gybe or a full turn. */
+/**
+ * Index of the state in which a full turn out of state k ends; null where there was none. A slow one has states of its
+ * own on the way: they are part of it.
+ */
+function fullTurnTo(states: readonly State[], k: number, turning: Float64Array, thresholds: Thresholds): number | null {
+  const before = states[k];
+  for (let m = k + 1; m < states.length && states[m].from - before.to <= thresholds.maxTurn; m++) {
+    const net = turning[states[m].from] - turning[before.to - 1];
+    if (Math.abs(net) >= thresholds.fullTurn) return m;
+  }
+  return null;
+}
+
+const fullTurn = (states: readonly State[], k: number, to: number): Turn => ({
+  kind: 'full-turn',
+  before: states[k],
+  after: states[to],
+});
+
+/** What happened between state k and the one that follows it, if it was a tack or a gybe. */
 function between(states: readonly State[], k: number, turning: Float64Array, thresholds: Thresholds): Turn | null {
   const before = states[k];
   const after = states[k + 1];
   if (after.from - before.to > thresholds.maxTurn) return null;
   const net = turning[after.from] - turning[before.to - 1];
-  if (Math.abs(net) >= thresholds.fullTurn) return { kind: 'full-turn', before, after };
   if (before.side === after.side) return null;
   const throughWind = before.side > 0 ? net < 0 : net > 0;
   if (throughWind) return tackTo(states, k, thresholds);
