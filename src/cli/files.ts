@@ -1,4 +1,4 @@
-import { randomBytes } from 'node:crypto';
+import { createHash, randomBytes } from 'node:crypto';
 import { closeSync, createReadStream, fsyncSync, openSync, renameSync, rmSync, writeSync } from 'node:fs';
 import { mkdir, readFile, realpath, stat } from 'node:fs/promises';
 import { basename, dirname, join, relative, resolve, sep } from 'node:path';
@@ -137,7 +137,17 @@ export function logSource(
   path: string,
   options: { most?: number; onBytes?: (n: number) => void } = {},
 ): LogSource {
-  return { name, chunks: path === '-' ? inputChunks(options.most) : fileChunks(name, path, options) };
+  return {
+    name,
+    chunks: path === '-' ? inputChunks(options.most) : fileChunks(name, path, options),
+    createHash: sha256,
+  };
+}
+
+/** The host's SHA-256: five to ten times as fast as ours. */
+function sha256(): ReturnType<NonNullable<LogSource['createHash']>> {
+  const hash = createHash('sha256');
+  return { update: (bytes) => void hash.update(bytes), digest: () => hash.digest('hex') };
 }
 
 async function* inputChunks(most?: number): AsyncGenerator<Uint8Array> {

@@ -29,7 +29,7 @@ interface ReadLog {
  */
 export async function importLog(source: LogSource, options: ImportOptions = {}): Promise<ImportedLog> {
   const tally = new Tally(source.name);
-  const hash = (options.createHash ?? createSha256)();
+  const hash = (source.createHash ?? createSha256)();
   const bytes = await unwrapped(hashed(source, hash), tally);
   const { head, all } = await peek(bytes, HEAD);
   const detected = detect(head, source.name);

@@ -6,6 +6,8 @@ import type { Channel, Recording } from '../recording/recording.js';
 export interface LogSource {
   readonly name: string;
   readonly chunks: AsyncIterable<Uint8Array> | Iterable<Uint8Array>;
+  /** A faster SHA-256 where the host has one; ours by default. */
+  readonly createHash?: () => StreamHash;
 }
 
 /** What the reader of a log may have to be told. */
@@ -16,8 +18,6 @@ export interface ImportOptions {
   readonly date?: string;
   /** Header -> `field` or `field:unit`, as `--columns` gives it. */
   readonly columns?: Readonly<Record<string, string>>;
-  /** A faster SHA-256 where the host has one; ours by default. */
-  readonly createHash?: () => StreamHash;
 }
 
 /** A column (or sentence field) as it was understood. `means` is null when nothing uses it. */
