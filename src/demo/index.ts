@@ -41,7 +41,7 @@ const MILLING = [
 const CORRIE: Sailor = {
   seed: 11,
   angle: 41,
-  speed: 0.985,
+  speed: 0.945,
   shift: 4.5,
   hold: 50,
   atGun: onCourse(30, -4),
@@ -52,7 +52,7 @@ const CORRIE: Sailor = {
 const LINNET: Sailor = {
   seed: 29,
   angle: 45,
-  speed: 0.985,
+  speed: 0.945,
   shift: 3,
   hold: 85,
   atGun: onCourse(-25, -7),
@@ -68,6 +68,7 @@ boat: single-hander
 wind:
   - file: committee.csv
     at: [${position(COMMITTEE).join(', ')}]
+    height_m: 2.5
 boats:
   - name: Corrie
     track: corrie.gpx

@@ -51,11 +51,11 @@ describe('its files', () => {
     );
     expect(digests).toMatchInlineSnapshot(`
       [
-        "race.yaml 89cbf4231a340090",
-        "corrie.gpx 3645bdddea712580",
-        "corrie-mast.csv 48c1436bce6be6fb",
-        "linnet.csv ed531556588b84a4",
-        "committee.csv 1b187e94d64e6f53",
+        "race.yaml c5556eb42deff793",
+        "corrie.gpx 8d567e13507d462a",
+        "corrie-mast.csv d023997f3b0f5d1a",
+        "linnet.csv 29b8303f22f77482",
+        "committee.csv 70ee196eedfb139d",
       ]
     `);
     expect(demoFiles()).toEqual(files);
