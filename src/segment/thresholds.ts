@@ -3,7 +3,7 @@
  * that a test can move each by a third and see that the result holds.
  */
 export interface Thresholds {
-  /** Closer to the wind than this is luffing, not sailing: no dinghy makes way to windward at it. [deg] */
+  /** Closer to the wind than this is luffing, not sailing: a yacht's bow, leeway taken off its course, lies at 25. [deg] */
   readonly luffing: number;
   /** Lower than this is not close-hauled: best angles lie at 38 to 48, a bad exit from a tack reaches 65. [deg] */
   readonly closeHauled: number;
@@ -47,7 +47,7 @@ export interface Thresholds {
 }
 
 export const THRESHOLDS: Thresholds = {
-  luffing: 22,
+  luffing: 19,
   closeHauled: 72,
   running: 110,
   minState: 7,
