@@ -259,7 +259,12 @@ function fitWith(
   return fitLeastSquares({
     residuals: (parameters) => {
       const values = fullValues(free, fixed, parameters);
-      return blocks.flatMap((block) => misfit(block, values).map((off, k) => off / sigma[k]));
+      const out = new Float64Array(blocks.length * KINDS.length);
+      for (let b = 0; b < blocks.length; b++) {
+        const off = misfit(blocks[b], values);
+        for (let k = 0; k < off.length; k++) out[b * off.length + k] = off[k] / sigma[k];
+      }
+      return out;
     },
     mean: at.map((i) => priors.mean[i]),
     sd: at.map((i) => priors.sd[i]),

@@ -107,8 +107,8 @@ export function circularMean(directions: ArrayLike<number>, weights?: ArrayLike<
   let total = 0;
   let n = 0;
   for (let i = 0; i < directions.length; i++) {
-    const direction = directions[i]!;
-    const weight = weights ? weights[i]! : 1;
+    const direction = directions[i];
+    const weight = weights ? weights[i] : 1;
     if (!Number.isFinite(direction) || !Number.isFinite(weight)) continue;
     east += weight * eastOf(direction);
     north += weight * northOf(direction);
@@ -118,6 +118,41 @@ export function circularMean(directions: ArrayLike<number>, weights?: ArrayLike<
   const resultant = total > 0 ? Math.hypot(east, north) / total : NaN;
   const mean = resultant > 1e-9 ? roundTiny(directionOf(east, north)) : NaN;
   return { mean, resultant, n };
+}
+
+/**
+ * Circular mean over a window around each direction, as circularMean of that window would have it.
+ *
+ * @param directions Directions. [deg]
+ * @param half       Entries either side that count.
+ * @returns Mean of each window in [0, 360); NaN where the entry itself is absent. [deg]
+ * @example
+ * Array.from(runningMean([350, 10, NaN, 20], 1)); // => [0, 0, NaN, 20]
+ */
+export function runningMean(directions: ArrayLike<number>, half: number): Float64Array {
+  const n = directions.length;
+  const east = new Float64Array(n);
+  const north = new Float64Array(n);
+  const there = new Uint8Array(n);
+  for (let i = 0; i < n; i++) {
+    if (!Number.isFinite(directions[i])) continue;
+    east[i] = eastOf(directions[i]);
+    north[i] = northOf(directions[i]);
+    there[i] = 1;
+  }
+  const out = new Float64Array(n).fill(NaN);
+  for (let i = 0; i < n; i++) {
+    if (there[i] === 0) continue;
+    const to = Math.min(n, i + half + 1);
+    let [x, y, count] = [0, 0, 0];
+    for (let k = Math.max(0, i - half); k < to; k++) {
+      x += east[k];
+      y += north[k];
+      count += there[k];
+    }
+    if (Math.hypot(x, y) > 1e-9 * count) out[i] = roundTiny(directionOf(x, y));
+  }
+  return out;
 }
 
 /** 360 minus a rounding error is north, not 359.999...: keeps means such as {350, 10} at 0. */
@@ -137,7 +172,7 @@ export function unwrap(directions: ArrayLike<number>): Float64Array {
   const out = new Float64Array(directions.length);
   let last = NaN;
   for (let i = 0; i < directions.length; i++) {
-    const direction = directions[i]!;
+    const direction = directions[i];
     const value = Number.isNaN(last) ? direction : last + turn(last, direction);
     out[i] = value;
     if (!Number.isNaN(value)) last = value;

@@ -139,11 +139,13 @@ const LOOKED_AT = 4000;
  * @returns The middle between the 5th and the 95th percentile, or null without a position. [deg]
  */
 export function middleOf(lat: ArrayLike<number>, lon: ArrayLike<number>): { lat: number; lon: number } | null {
-  const rows: number[] = [];
-  for (let i = 0; i < lat.length; i++) if (!Number.isNaN(lat[i]) && !Number.isNaN(lon[i])) rows.push(i);
-  if (rows.length === 0) return null;
-  const stride = Math.max(1, Math.floor(rows.length / LOOKED_AT));
-  const some = rows.filter((_, k) => k % stride === 0);
+  const isThere = (i: number): boolean => !Number.isNaN(lat[i]) && !Number.isNaN(lon[i]);
+  let count = 0;
+  for (let i = 0; i < lat.length; i++) if (isThere(i)) count++;
+  if (count === 0) return null;
+  const stride = Math.max(1, Math.floor(count / LOOKED_AT));
+  const some: number[] = [];
+  for (let i = 0, k = 0; i < lat.length; i++) if (isThere(i) && k++ % stride === 0) some.push(i);
   const first = lon[some[some.length >> 1]];
   const north = middleQuantile(some.map((i) => lat[i]));
   const east = middleQuantile(some.map((i) => wrap180(lon[i] - first)));

@@ -1,4 +1,4 @@
-import { circularMean, turn } from '../math/angles.js';
+import { runningMean, turn } from '../math/angles.js';
 
 /** A change of the wind that lasted: for the eye and for stepping through the race, not for any figure. */
 export interface Shift {
@@ -16,13 +16,7 @@ export const SHIFT_DEGREES = 5;
 
 /** Running circular mean over a minute. [deg true] */
 export function smoothedWind(twd: Float64Array, half = HALF_WINDOW): Float64Array {
-  const out = new Float64Array(twd.length);
-  for (let i = 0; i < twd.length; i++) {
-    out[i] = Number.isFinite(twd[i])
-      ? circularMean(twd.subarray(Math.max(0, i - half), Math.min(twd.length, i + half + 1))).mean
-      : NaN;
-  }
-  return out;
+  return runningMean(twd, half);
 }
 
 /** Moments at which the smoothed wind has moved by `threshold` since the last such moment. */

@@ -48,7 +48,7 @@ export function gate(o: Observations, stretch: Stretch, noise: NoiseModel, activ
     const x = o.x[i];
     if (x === x) {
       const y = o.y[i];
-      const distance = Math.hypot(x - state[0] - state[2], y - state[3] - state[5]);
+      const distance = length(x - state[0] - state[2], y - state[3] - state[5]);
       if (distance <= gateLimit(state, t - accepted, noise)) {
         updatePosition(state, x, y, noise.white * noise.white, out);
         accepted = t;
@@ -72,7 +72,7 @@ export function gate(o: Observations, stretch: Stretch, noise: NoiseModel, activ
     }
     const vx = o.vx[i];
     if (vx === vx && pending.length === 0) {
-      const off = Math.hypot(vx - state[1], o.vy[i] - state[4]);
+      const off = length(vx - state[1], o.vy[i] - state[4]);
       const sd = Math.sqrt(state[9] + noise.doppler * noise.doppler);
       if (off > GATE * sd + MANOEUVRE_ACCELERATION) rejectedVelocity.push(i);
       else updateVelocity(state, vx, o.vy[i], noise.doppler * noise.doppler, out);
@@ -85,7 +85,7 @@ export function gate(o: Observations, stretch: Stretch, noise: NoiseModel, activ
 /** Farthest a fix may lie from the prediction. [m] */
 function gateLimit(s: Float64Array, sinceAccepted: number, noise: NoiseModel): number {
   const variance = s[6] + 2 * s[8] + s[11] + noise.white * noise.white;
-  const speed = Math.hypot(s[1], s[4]);
+  const speed = length(s[1], s[4]);
   const manoeuvre = Math.min(
     0.5 * MANOEUVRE_ACCELERATION * sinceAccepted * sinceAccepted,
     (2 * speed + 2) * sinceAccepted,
@@ -107,7 +107,7 @@ function settledFrom(o: Observations, pending: readonly number[]): number {
 
 /** Whether a boat gets from one fix to the other in the time between. */
 function isPlausible(o: Observations, from: number, to: number): boolean {
-  const distance = Math.hypot(o.x[to] - o.x[from], o.y[to] - o.y[from]);
+  const distance = length(o.x[to] - o.x[from], o.y[to] - o.y[from]);
   return distance <= FASTEST * (o.time[to] - o.time[from]) + GATE_FLOOR;
 }
 
@@ -143,7 +143,12 @@ function offChord(o: Observations, last: number, at: number, next: number): numb
   const share = (o.time[at] - o.time[last]) / (o.time[next] - o.time[last]);
   const east = o.x[at] - o.x[last] - share * (o.x[next] - o.x[last]);
   const north = o.y[at] - o.y[last] - share * (o.y[next] - o.y[last]);
-  return Math.hypot(east, north);
+  return length(east, north);
+}
+
+/** Of a vector: Math.hypot guards against overflow, which costs ten times as much. */
+function length(x: number, y: number): number {
+  return Math.sqrt(x * x + y * y);
 }
 
 function nextFix(o: Observations, row: number, to: number): number {

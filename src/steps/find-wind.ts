@@ -58,14 +58,20 @@ export function findWind(
   let lags: (LagEstimate | null)[] = measured.map(() => null);
   let atBoats = tracks.map((track, boat) => windAtBoat(boat, track, corrected));
   let sailed = atBoats.map((wind, boat) => sailBoat(boat, wind));
+  let before = corrected;
   for (let round = 0; round < ROUNDS; round++) {
     lags = corrected.map(({ source }) => (source.kind === 'station' && !source.place ? lagOf(source, sailed) : null));
     const lagged = measured.map((source, k) => delayed(source, lags[k], sailed));
+    const unmoved = lagged.every((one, k) => isSame(one, before[k]));
+    if (round > 0 && unmoved) break;
+    // Sailed in this very wind already, where it is the only one and nothing of it was moved.
+    const again = round === 0 && unmoved && measured.length === 1 ? sailed : null;
     offsets = lagged.map((one, k) =>
       stationOffset && one.source.kind === 'station'
         ? { offset: stationOffset.value, se: stationOffset.se }
-        : offsetOf(one, k, tracks, measured, sailBoat),
+        : offsetOf(one, k, tracks, measured, again ? (boat) => again[boat] : sailBoat),
     );
+    before = lagged;
     corrected = lagged.map((one, k) => ({ ...one, offset: offsets[k]?.offset ?? 0 }));
     atBoats = tracks.map((track, boat) => windAtBoat(boat, track, corrected));
     sailed = atBoats.map((wind, boat) => sailBoat(boat, wind));
@@ -79,6 +85,11 @@ export function findWind(
     directionInferred: false,
     issues: lagIssues(measured, lags),
   };
+}
+
+function isSame(a: CorrectedSource, b: CorrectedSource): boolean {
+  const moved = a.lag !== b.lag || a.carry !== b.carry || a.offset !== b.offset;
+  return !moved && a.middle.x === b.middle.x && a.middle.y === b.middle.y;
 }
 
 /** A source with its delay: by its place, or by the lag that was found where that is clear. */
@@ -115,8 +126,8 @@ function checkOverlap(tracks: readonly Track[], sources: readonly WindSource[]):
   const [track] = tracks;
   const iso = (time: number): string => new Date(time * 1000).toISOString();
   throw new UserError(
-    `${source!.file}: the wind log (${iso(source!.t0)} to ${iso(source!.t0 + source!.n)}) and the tracks ` +
-      `(${iso(track!.t0)} to ${iso(track!.t0 + track!.n)}) do not overlap`,
+    `${source.file}: the wind log (${iso(source.t0)} to ${iso(source.t0 + source.n)}) and the tracks ` +
+      `(${iso(track.t0)} to ${iso(track.t0 + track.n)}) do not overlap`,
     { exitCode: 1, suggestion: 'Check the date and the time zone of the wind log (`zone`, `--zone`, `clock_s`).' },
   );
 }
@@ -159,7 +170,7 @@ function offsetOf(
 
 /** A boat's own wind is judged by that boat; a station by the boats without their own. */
 function usesSource(boat: number, index: number, sources: readonly WindSource[]): boolean {
-  const source = sources[index]!;
+  const source = sources[index];
   if (source.boat >= 0) return source.boat === boat;
   return !sources.some((other) => other.boat === boat) || sources.every((other) => other.boat >= 0 || other === source);
 }
@@ -219,7 +230,7 @@ function windFromTracks(tracks: readonly Track[], hand: readonly WindSource[], s
 /** Speed of the hand wind on the rows of the direction found from tracks. */
 function speedOf(hand: WindSource, tracks: WindSource): Pick<WindSource, 'sums' | 'hasSpeed' | 'accuracySpeed'> {
   const shift = tracks.t0 - hand.t0;
-  const at = (sums: Float64Array, i: number): number => sums[Math.max(0, Math.min(hand.n, i + shift))]!;
+  const at = (sums: Float64Array, i: number): number => sums[Math.max(0, Math.min(hand.n, i + shift))];
   const n = tracks.n + 1;
   const speed = Float64Array.from({ length: n }, (_, i) => at(hand.sums.speed, i) - at(hand.sums.speed, 0));
   const speeds = Float64Array.from({ length: n }, (_, i) => at(hand.sums.speeds, i) - at(hand.sums.speeds, 0));
@@ -234,7 +245,7 @@ function handLooks(hand: WindSource, span: { from: number; to: number }): Direct
   const middle = (span.from + span.to) / 2;
   const i = Math.max(0, Math.min(hand.n - 1, Math.round(middle - hand.t0)));
   const { east, north } = hand.sums;
-  const direction = directionOf(east[i + 1]! - east[i]!, north[i + 1]! - north[i]!);
+  const direction = directionOf(east[i + 1] - east[i], north[i + 1] - north[i]);
   return [{ time: middle, direction, se: Math.max(3, hand.accuracyDir) }];
 }
 
@@ -273,7 +284,7 @@ function steadyCourse(one: Sailed, from: number, to: number, usual: number): num
   const { ux, uy, speed, n } = one.sailing;
   const courses: number[] = [];
   for (let i = from; i < Math.min(to, n); i++) {
-    if (speed[i]! > 0.6 * usual) courses.push(directionOf(ux[i]!, uy[i]!));
+    if (speed[i] > 0.6 * usual) courses.push(directionOf(ux[i], uy[i]));
   }
   if (courses.length < 8) return NaN;
   const { mean, resultant } = circularMean(courses);

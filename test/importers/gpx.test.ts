@@ -164,10 +164,11 @@ describe('wrapping', () => {
     const expected = createHash('sha256').update(packed).digest('hex');
     expect((await importBytes(packed)).sha256).toBe(expected);
     const host = createHash('sha256');
-    const log = await importLog(
-      { name: 'log.gpx.gz', chunks: [packed] },
-      { createHash: () => ({ update: (piece) => void host.update(piece), digest: () => host.digest('hex') }) },
-    );
+    const log = await importLog({
+      name: 'log.gpx.gz',
+      chunks: [packed],
+      createHash: () => ({ update: (piece) => void host.update(piece), digest: () => host.digest('hex') }),
+    });
     expect(log.sha256).toBe(expected);
   });
 

@@ -84,7 +84,7 @@ export function timePanel(panel: PanelKind, series: RaceSeries, options: Partial
 
 function panelLabel(panel: PanelKind, series: RaceSeries, columns: readonly Float64Array[]): string {
   const parts = series.boats.map((b, i) => {
-    const known = columns[i].filter(Number.isFinite).sort();
+    const known = sortedKnown([columns[i]]);
     if (known.length === 0) return `${b.name}: not known`;
     const at = (share: number): string => String(Math.round(known[Math.floor(share * (known.length - 1))] * 10) / 10);
     return `${b.name}: middle half ${at(0.25)} to ${at(0.75)} ${panel.unit}`;
@@ -94,8 +94,12 @@ function panelLabel(panel: PanelKind, series: RaceSeries, columns: readonly Floa
 
 /** Range of a panel: of settled sailing with room for tacks where it is scaled to the beats, else of all rows. */
 function panelRange(panel: PanelKind, series: RaceSeries, columns: readonly Float64Array[]): [number, number] {
-  const settled = columns.map((c, i) => c.filter((_, row) => series.boats[i].settled[row]));
+  const settled = columns.map((c, i) => settledOnly(c, series.boats[i].settled));
   return panel.beats && settled.some((c) => c.some(Number.isFinite)) ? beatRange(settled) : rangeOf(columns);
+}
+
+function settledOnly(column: Float64Array, settled: Uint8Array): Float64Array {
+  return column.map((value, row) => (settled[row] ? value : NaN));
 }
 
 /** Settled values with room below for the dip of a tack. */
@@ -106,11 +110,19 @@ export function beatRange(settled: readonly Float64Array[]): [number, number] {
 
 /** The middle 99 % of all values: a single spike must not flatten the line. */
 export function rangeOf(columns: readonly Float64Array[]): [number, number] {
-  const all = Float64Array.from(columns.flatMap((c) => Array.from(c).filter(Number.isFinite))).sort();
+  const all = sortedKnown(columns);
   if (all.length === 0) return [0, 1];
   const low = all[Math.floor(0.005 * (all.length - 1))];
   const high = all[Math.ceil(0.995 * (all.length - 1))];
   return high - low < 1 ? [low - 0.5, high + 0.5] : [low, high];
+}
+
+/** All values there are, in order. */
+function sortedKnown(columns: readonly Float64Array[]): Float64Array {
+  const all = new Float64Array(columns.reduce((sum, column) => sum + column.length, 0));
+  let n = 0;
+  for (const column of columns) for (const value of column) if (Number.isFinite(value)) all[n++] = value;
+  return all.subarray(0, n).sort();
 }
 
 function legBands(series: RaceSeries, x: Scale, height: number): string[] {
