@@ -3,6 +3,7 @@ import { LABEL, type Label, type LegRows } from '../segment/spells.js';
 import { tackSign, type RowRange, type Sailing, type Tack } from '../segment/sailing.js';
 import { estimateBlock, type BlockEstimate } from './blocks.js';
 import { BOUNDS_ERROR } from './losses.js';
+import type { Overstood } from './overstanding.js';
 import type { Reference } from './reference.js';
 import { correlatedError, type ErrorModel, type Figure } from './steady.js';
 
@@ -33,11 +34,23 @@ export interface LedgerFigures {
 /** What one piece of a leg cost, by cause. */
 export interface LedgerPiece {
   readonly label: Label;
-  /** Middle, UTC epoch seconds, and seconds counted. */
-  readonly time: number;
+  /** Seconds counted. */
   readonly seconds: number;
-  readonly tack: Tack;
+  /** What was sailed in it on the whole. */
+  readonly block: BlockEstimate;
   readonly metres: Readonly<Record<Cause, number>>;
+  readonly offer: Offer;
+}
+
+/** What the reference offers in a piece's wind, and how it hangs on what was measured. */
+export interface Offer {
+  /** Best speed made good [m/s], and the course angle it is had at [deg]. */
+  readonly vmg: number;
+  readonly gamma: number;
+  /** Change of the speed made good along the reference's curve for a degree of course angle, at the angle sailed. [m/s] */
+  readonly slope: number;
+  /** Change of the best speed made good for a unit of ln wind speed. [m/s] */
+  readonly windSlope: number;
 }
 
 /** A piece of a leg: a block of steady sailing (settled or fetching), or a window in which the boat was busy. */
@@ -60,8 +73,8 @@ export interface LedgerInput {
   readonly rows: LegRows;
   readonly reference: Reference;
   readonly errors: ErrorModel;
-  /** Share (0..1) of the low sailing after the last tack that overstanding explains. */
-  readonly overstoodShare: number;
+  /** Stretches sailed from beyond the lay line. */
+  readonly overstood: readonly Overstood[];
   /** Speed that the trim cost, where it could be told; null: its metres stay in speed. [m/s] */
   readonly trim: { readonly loss: number; readonly sd: number } | null;
   /** Direction of the leg's mean wind where it is shared with other boats; else the leg's own. [deg] */
@@ -79,24 +92,33 @@ export interface LedgerInput {
 export function legLedger(input: LedgerInput): LedgerFigures {
   const { sailing, leg } = input;
   const meanWind = input.meanWind ?? circularMean(sailing.twd.subarray(leg.from, leg.to)).mean;
-  const pieces = piecesOf(input.rows, leg);
+  const pieces = cutWindows(piecesOf(input.rows, leg), input.overstood);
   const sums = pieces.map((piece) => sumOver(input, piece, meanWind));
   const parts = pieces.map((piece, k) => (isBlock(piece) ? blockParts(input, piece, sums[k]!) : null));
+  const blocks = pieces.map((piece) => blockOf(input, piece));
   const entries = nothing();
   const costs = pieces.map((piece, k): LedgerPiece => {
     const sum = sums[k]!;
     const metres = nothing();
     metres.shifts = sum.made - sum.madeMean;
     const part = parts[k];
-    if (part) addBlock(metres, part, piece, input.overstoodShare);
-    else addWindow(metres, piece, sum, nearRates(pieces, parts, k));
+    const share = overstoodShare(input, piece);
+    if (part) addBlock(metres, part, share);
+    else
+      addWindow(
+        metres,
+        piece,
+        sum,
+        nearRates(pieces, parts, k),
+        share > 0 ? share * blockParts(input, piece, sum).low : 0,
+      );
     for (const cause of CAUSES) entries[cause] += metres[cause];
     return {
       label: piece.label,
-      time: sailing.t0 + (piece.from + piece.to - 1) / 2,
       seconds: sum.seconds,
-      tack: tackAt(sailing, piece),
+      block: blocks[k],
       metres,
+      offer: offerOf(input.reference, blocks[k]),
     };
   });
   const trim = trimMetres(input);
@@ -123,6 +145,22 @@ function trimMetres({ sailing, rows, trim }: LedgerInput): Figure {
     for (let i = block.from; i < block.to; i++) along += Math.cos(sailing.gamma[i] * RAD) || 0;
   }
   return { value: trim.loss * along, se: trim.sd * along, sys: 0 };
+}
+
+/** Windows cut where a stretch from beyond the lay line begins or ends. */
+function cutWindows(pieces: readonly Piece[], overstood: readonly Overstood[]): Piece[] {
+  const cuts = overstood.flatMap(({ from, to }) => [from, to]);
+  return pieces.flatMap((piece) => {
+    if (isBlock(piece)) return [piece];
+    const inside = cuts.filter((row) => row > piece.from && row < piece.to).sort((a, b) => a - b);
+    const ends = [piece.from, ...inside, piece.to];
+    return inside.length === 0 ? [piece] : inside.concat(piece.to).map((to, k) => ({ ...piece, from: ends[k], to }));
+  });
+}
+
+/** Share of a piece's low sailing that was sailed from beyond the lay line. */
+function overstoodShare({ overstood }: LedgerInput, piece: RowRange): number {
+  return overstood.find(({ from, to }) => piece.from >= from && piece.to <= to)?.share ?? 0;
 }
 
 function isBlock(piece: Piece): boolean {
@@ -175,6 +213,21 @@ function sumOver(input: LedgerInput, piece: RowRange, meanWind: number): Sums {
   return { best, made, madeMean, seconds };
 }
 
+function blockOf({ sailing, tws }: LedgerInput, piece: RowRange): BlockEstimate {
+  return estimateBlock(sailing, tws, { ...piece, tack: tackAt(sailing, piece), spell: 0 }, 0);
+}
+
+function offerOf(reference: Reference, { gamma, tws }: BlockEstimate): Offer {
+  const along = (at: number): number => reference.speed(at, tws) * Math.cos(at * RAD);
+  const vmg = reference.bestVmg(tws);
+  return {
+    vmg,
+    gamma: reference.bestGamma(tws),
+    slope: along(gamma + 0.5) - along(gamma - 0.5),
+    windSlope: vmg * elasticity(reference, tws),
+  };
+}
+
 interface BlockParts {
   readonly seconds: number;
   readonly high: number;
@@ -183,8 +236,7 @@ interface BlockParts {
 }
 
 function blockParts(input: LedgerInput, piece: Piece, sum: Sums): BlockParts {
-  const tack = tackAt(input.sailing, piece);
-  const block = estimateBlock(input.sailing, input.tws, { ...piece, tack, spell: 0 }, 0);
+  const block = blockOf(input, piece);
   const { reference } = input;
   const astray =
     sum.seconds *
@@ -199,8 +251,8 @@ function blockParts(input: LedgerInput, piece: Piece, sum: Sums): BlockParts {
   };
 }
 
-function addBlock(entries: Record<Cause, number>, part: BlockParts, piece: Piece, overstoodShare: number): void {
-  const overstood = piece.label === LABEL.fetching ? overstoodShare * part.low : 0;
+function addBlock(entries: Record<Cause, number>, part: BlockParts, overstoodShare: number): void {
+  const overstood = overstoodShare * part.low;
   entries.high += part.high;
   entries.low += part.low - overstood;
   entries.overstood += overstood;
@@ -249,19 +301,21 @@ const WINDOW_CAUSE: Readonly<Record<number, Cause>> = {
   [LABEL.rounding]: 'start',
 };
 
-function addWindow(entries: Record<Cause, number>, piece: Piece, sum: Sums, rates: Rates): void {
+/** @param overstood What was lost in it by sailing low from beyond the lay line. [m] */
+function addWindow(entries: Record<Cause, number>, piece: Piece, sum: Sums, rates: Rates, overstood: number): void {
   const total = sum.best - sum.made;
   if (piece.label === LABEL.stopped) {
     entries.stopped += total;
     return;
   }
   const high = rates.high * sum.seconds;
-  const low = rates.low * sum.seconds;
+  const low = overstood > 0 ? 0 : rates.low * sum.seconds;
   const speed = rates.speed * sum.seconds;
   entries.high += high;
   entries.low += low;
   entries.speed += speed;
-  entries[WINDOW_CAUSE[piece.label] ?? 'manoeuvres'] += total - high - low - speed;
+  entries.overstood += overstood;
+  entries[WINDOW_CAUSE[piece.label] ?? 'manoeuvres'] += total - high - low - speed - overstood;
 }
 
 /** Least error of shifts: the wandering part of the wind error taken across the course for the whole leg. [m] */

@@ -33,8 +33,13 @@ export function choleskyInverse(matrix: Matrix): Matrix | null {
   );
 }
 
-/** L of matrix = L L'. */
-function cholesky(matrix: Matrix): Matrix | null {
+/**
+ * Cholesky's factor of a symmetric positive definite matrix: lower L with L L' = matrix.
+ *
+ * @param matrix Rows; only the lower triangle is read.
+ * @returns Rows of L; null when the matrix is not positive definite.
+ */
+export function cholesky(matrix: Matrix): Matrix | null {
   const lower = matrix.map((row) => new Float64Array(row.length));
   for (let i = 0; i < lower.length; i++) {
     for (let j = 0; j <= i; j++) {

@@ -1,4 +1,4 @@
-import { excesses, type BeatCosts, type Excess } from '../estimate/excess.js';
+import { excesses, type BoatCosts, type Excess } from '../estimate/excess.js';
 import type { Hint } from '../result/result.js';
 import { bestBoat, type Judgement } from './judge.js';
 import type { BoatEstimate } from './estimate-boat.js';
@@ -42,11 +42,12 @@ function nextBest(input: HintInput, best: number): number {
   return bestBoat(others, input.models);
 }
 
-function costsOf({ judgements, estimates }: HintInput, boat: number): BeatCosts[] {
-  return judgements[boat].legs.flatMap(({ ledger }, index) => {
+function costsOf({ judgements, estimates }: HintInput, boat: number): BoatCosts {
+  const beats = judgements[boat].legs.flatMap(({ ledger }, index) => {
     const { leg } = estimates[boat].legs[index];
     return ledger ? [{ lap: leg.lap, ledger, seconds: leg.to - leg.from }] : [];
   });
+  return { beats, errors: estimates[boat].errors };
 }
 
 function excessHint({ cause, metres, se }: Excess, input: HintInput, boat: number, other: number): Hint {

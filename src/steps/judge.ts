@@ -1,5 +1,5 @@
 import { legLedger, type LedgerFigures } from '../estimate/ledger.js';
-import { overstoodShare } from '../estimate/overstanding.js';
+import { overstoodStretches, type Overstood } from '../estimate/overstanding.js';
 import { anchorAt, anchoredReference, modelReference, type Anchor, type Reference } from '../estimate/reference.js';
 import type { Figure } from '../estimate/steady.js';
 import { median } from '../math/median.js';
@@ -110,7 +110,6 @@ function judgeLeg(
   if (!leg.all || Number.isNaN(leg.all.tws.value)) return NOTHING;
   const optimum = optimumAt(model, leg.all.tws, bestUpwind);
   const rows = one.rows[index];
-  const share = overstood(input, one, leg, index);
   const ledger = rows
     ? legLedger({
         sailing: one.sailing,
@@ -119,7 +118,7 @@ function judgeLeg(
         rows,
         reference,
         errors,
-        overstoodShare: share,
+        overstood: overstood(input, one, leg),
         trim: input.trims[boat].legs[index]?.loss ?? null,
         ...(input.sharedWind ? { meanWind: input.sharedWind(leg.leg.lap) } : {}),
       })
@@ -167,12 +166,11 @@ function optimumAt(model: RaceModel, tws: Figure, best: (m: RaceModel['model'], 
   };
 }
 
-function overstood(input: JudgeInput, one: Sailed, leg: LegEstimate, index: number): number {
-  const rows = one.rows[index];
-  if (!rows || !leg.all) return 0;
+function overstood(input: JudgeInput, one: Sailed, leg: LegEstimate): Overstood[] {
+  if (!leg.all) return [];
   const end = Math.min(leg.leg.to, one.sailing.n - 1);
   const mark = input.windward ?? { x: one.sailing.x[end], y: one.sailing.y[end] };
-  return overstoodShare(one.sailing, leg.leg, rows, one.manoeuvres, one.own, leg.all.gamma.se, mark);
+  return overstoodStretches(one.sailing, leg.leg, one.manoeuvres, one.own, leg.all.gamma.se, mark);
 }
 
 /** a / b with errors; the two wind errors act against each other through the optimum only. */
