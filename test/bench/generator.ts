@@ -1,0 +1,112 @@
+/**
+ * A day's sailing of stated size, invented, the same for the same size: a boat beating and running in one wind, as a
+ * GPX track at 10 Hz, its own apparent wind at 1 Hz, and the track as a table.
+ */
+import { closeSync, openSync, writeFileSync, writeSync } from 'node:fs';
+
+const START = Date.UTC(2026, 5, 6, 11, 0, 0);
+const RATE = 10;
+const WIND = { from: 230, speed: 6 };
+const PLACE = { lat: 46.9, lon: 9.05 };
+const METRES_PER_DEGREE = 111_200;
+const RAD = Math.PI / 180;
+
+/** Marsaglia's xorshift32 (Journal of Statistical Software 8(14), 2003), as numbers in [0, 1). */
+function random(seed: number): () => number {
+  let state = seed;
+  return () => {
+    state ^= state << 13;
+    state ^= state >>> 17;
+    state ^= state << 5;
+    return (state >>> 0) / 2 ** 32;
+  };
+}
+
+interface Moment {
+  readonly iso: string;
+  readonly lat: string;
+  readonly lon: string;
+  readonly speed: number;
+  readonly course: number;
+}
+
+/** Beats of eight minutes with a tack every two, runs of six minutes with a gybe every three. */
+function headingAt(second: number): number {
+  const inLap = second % 840;
+  const side = Math.floor(inLap < 480 ? inLap / 120 : inLap / 180) % 2 === 0 ? 1 : -1;
+  return WIND.from + side * (inLap < 480 ? 44 : 150);
+}
+
+function* moments(): Generator<Moment> {
+  const draw = random(2026);
+  let [east, north, heading] = [0, 0, headingAt(0)];
+  for (let n = 0; ; n++) {
+    const wanted = headingAt(n / RATE);
+    heading += Math.max(-1.5, Math.min(1.5, ((wanted - heading + 540) % 360) - 180));
+    const speed = 2.6 + 0.4 * Math.sin(n / 700);
+    east += (speed / RATE) * Math.sin(heading * RAD);
+    north += (speed / RATE) * Math.cos(heading * RAD);
+    const noise = (): number => (draw() + draw() - 1) * 0.8;
+    yield {
+      iso: new Date(START + (n * 1000) / RATE).toISOString(),
+      lat: (PLACE.lat + (north + noise()) / METRES_PER_DEGREE).toFixed(7),
+      lon: (PLACE.lon + (east + noise()) / (METRES_PER_DEGREE * Math.cos(PLACE.lat * RAD))).toFixed(7),
+      speed,
+      course: heading,
+    };
+  }
+}
+
+/** The wind as the boat feels it: angle off the bow, positive to starboard [deg], and speed [kn]. */
+function apparent({ speed, course }: Moment): string {
+  const ahead = WIND.speed * Math.cos((WIND.from - course) * RAD) + speed;
+  const abeam = WIND.speed * Math.sin((WIND.from - course) * RAD);
+  return `${(Math.atan2(abeam, ahead) / RAD).toFixed(1)},${(Math.hypot(ahead, abeam) * 1.943844).toFixed(2)}`;
+}
+
+/** Writes pieces to a file until so many bytes are there; returns how many pieces it took. */
+function write(path: string, head: string, pieces: Iterable<string>, bytes: number, tail = ''): number {
+  const handle = openSync(path, 'w');
+  let [count, size, text] = [0, 0, head];
+  for (const piece of pieces) {
+    text += piece;
+    count++;
+    if (text.length > 1 << 20) {
+      size += writeSync(handle, text);
+      text = '';
+    }
+    if (size + text.length >= bytes) break;
+  }
+  writeSync(handle, text + tail);
+  closeSync(handle);
+  return count;
+}
+
+function* points(wind: string[]): Generator<string> {
+  let n = 0;
+  for (const moment of moments()) {
+    if (n++ % RATE === 0) wind.push(`${moment.iso},${apparent(moment)}`);
+    const { lat, lon, iso, speed } = moment;
+    yield `<trkpt lat="${lat}" lon="${lon}"><time>${iso}</time><extensions><s:speed>${speed.toFixed(2)}</s:speed></extensions></trkpt>\n`;
+  }
+}
+
+/** A track of about so many megabytes and the wind aboard. */
+export function generateTrack(path: string, windPath: string, megabytes: number): void {
+  const wind = ['time,awa,aws'];
+  const head =
+    '<?xml version="1.0" encoding="UTF-8"?>\n<gpx version="1.1" creator="bench" xmlns="http://www.topografix.com/GPX/1/1" xmlns:s="urn:bench"><trk><name>bench</name><trkseg>\n';
+  write(path, head, points(wind), megabytes * 1e6, '</trkseg></trk></gpx>\n');
+  writeFileSync(windPath, wind.join('\n') + '\n');
+}
+
+function* rows(): Generator<string> {
+  for (const { iso, lat, lon, speed, course } of moments()) {
+    yield `${iso},${lat},${lon},${(speed * 1.943844).toFixed(2)},${((course + 720) % 360).toFixed(1)}\n`;
+  }
+}
+
+/** The same as a table. */
+export function generateTable(path: string, megabytes: number): void {
+  write(path, 'time,lat,lon,sog,cog\n', rows(), megabytes * 1e6);
+}
