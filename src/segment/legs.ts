@@ -193,8 +193,8 @@ function medianPlace(places: readonly Place[]): Place {
 
 /** Turns a rise or fall into legs with exact ends, reaches set apart. */
 function legsOf(piece: Piece, sailing: Sailing, angle: Float64Array, course: Course, thresholds: Thresholds): Leg[] {
-  const from = legStart(piece, sailing, angle, course, thresholds);
-  const to = legEnd(piece, sailing, angle, course);
+  const from = Math.max(Math.ceil(course.gun ?? 0), legStart(piece, sailing, angle, course, thresholds));
+  const to = Math.min(Math.floor(course.finish ?? sailing.n), legEnd(piece, sailing, angle, course));
   if (to - from < thresholds.minLeg) return [];
   if (piece.rise > 0) return [{ kind: 'upwind', lap: 0, from, to }];
   return reachesApart({ from, to }, angle, thresholds).map(({ kind, ...range }) => ({ kind, lap: 0, ...range }));
@@ -241,7 +241,7 @@ function passing(sailing: Sailing, piece: RowRange, place: Place, within: number
   let best = -1;
   let least = within;
   for (let i = piece.from; i < piece.to; i++) {
-    const distance = Math.hypot(sailing.x[i]! - place.x, sailing.y[i]! - place.y);
+    const distance = Math.hypot(sailing.x[i] - place.x, sailing.y[i] - place.y);
     if (distance < least) {
       least = distance;
       best = i;
@@ -271,8 +271,8 @@ function corner(at: number, angle: Float64Array, opening: 1 | -1): number {
   const first = Math.max(TURN_HALF, at - CORNER_BEFORE);
   const last = Math.min(angle.length - 1 - TURN_HALF, at + CORNER_AFTER);
   for (let i = first; i <= last; i++) {
-    const before = Math.abs(angle[i - TURN_HALF]!);
-    const after = Math.abs(angle[i + TURN_HALF]!);
+    const before = Math.abs(angle[i - TURN_HALF]);
+    const after = Math.abs(angle[i + TURN_HALF]);
     if (Math.min(before, after) < 35) continue;
     const turned = opening * (after - before);
     if (turned > most) {
