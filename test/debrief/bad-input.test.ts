@@ -54,10 +54,6 @@ afterAll(() => {
   dropProgram();
 });
 
-function race(changes: (text: string) => string): string[] {
-  fill(home, { 'changed.yaml': changes(RACE) });
-  return ['changed.yaml'];
-}
 const track = (file: string): string[] => [file, '--wind', 'wind.csv'];
 
 describe('bad input', () => {
