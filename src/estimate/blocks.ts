@@ -70,7 +70,7 @@ export function mean(values: Float64Array, from: number, to: number): number {
   let sum = 0;
   let n = 0;
   for (let i = from; i < to; i++) {
-    const value = values[i]!;
+    const value = values[i];
     if (Number.isNaN(value)) continue;
     sum += value;
     n++;

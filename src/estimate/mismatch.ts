@@ -62,11 +62,11 @@ function commonMode(boats: readonly { times: readonly number[]; residuals: reado
   for (let a = 0; a < boats.length; a++) {
     for (let b = 0; b < boats.length; b++) {
       if (a === b) continue;
-      boats[a]!.times.forEach((time, i) => {
-        boats[b]!.times.forEach((other, j) => {
+      boats[a].times.forEach((time, i) => {
+        boats[b].times.forEach((other, j) => {
           const apart = Math.abs(other - time);
           if (apart > 90) return;
-          const product = boats[a]!.residuals[i]! * boats[b]!.residuals[j]!;
+          const product = boats[a].residuals[i] * boats[b].residuals[j];
           if (Number.isNaN(product)) return;
           if (apart <= SAME_TIME) {
             near += product;
@@ -132,8 +132,8 @@ export function estimateMismatch(
   const far = Number.isNaN(distance) ? 500 : distance;
   const part = uniform ? UNIFORM_SHARE : 1;
   const times = used.map((blocks) => blocks.map((b) => b.time));
-  const direction = used.map((blocks, k) => ({ times: times[k]!, residuals: directionResiduals(blocks) }));
-  const speed = used.map((blocks, k) => ({ times: times[k]!, residuals: speedResiduals(blocks) }));
+  const direction = used.map((blocks, k) => ({ times: times[k], residuals: directionResiduals(blocks) }));
+  const speed = used.map((blocks, k) => ({ times: times[k], residuals: speedResiduals(blocks) }));
   return {
     direction: partFrom(direction, LEAST_DIRECTION, part * Math.min(3, (2 * far) / 1000), part * GRADIENT.direction),
     speed: partFrom(speed, LEAST_SPEED, part * Math.min(0.08, (0.05 * far) / 1000), part * GRADIENT.speed),

@@ -40,7 +40,7 @@ const RAD = Math.PI / 180;
 
 /** Weighted mean over blocks. */
 function weighted(blocks: readonly BlockEstimate[], weights: readonly number[], pick: (b: BlockEstimate) => number) {
-  return blocks.reduce((sum, block, k) => sum + weights[k]! * pick(block), 0);
+  return blocks.reduce((sum, block, k) => sum + weights[k] * pick(block), 0);
 }
 
 /**
@@ -54,11 +54,11 @@ export function correlatedError(blocks: readonly BlockEstimate[], u: readonly nu
   let variance = 0;
   let sum = 0;
   for (let k = 0; k < u.length; k++) {
-    sum += u[k]!;
-    variance += u[k]! ** 2;
+    sum += u[k];
+    variance += u[k] ** 2;
     for (let l = k + 1; l < u.length; l++) {
-      const apart = Math.abs(blocks[l]!.time - blocks[k]!.time);
-      if (apart < 8 * part.tau) variance += 2 * u[k]! * u[l]! * Math.exp(-apart / part.tau);
+      const apart = Math.abs(blocks[l].time - blocks[k].time);
+      if (apart < 8 * part.tau) variance += 2 * u[k] * u[l] * Math.exp(-apart / part.tau);
     }
   }
   const tilt = part.gradient > 0 ? part.gradient * leverage(blocks, u) : 0;
@@ -102,7 +102,7 @@ function receiverError(blocks: readonly BlockEstimate[], errors: ErrorModel): nu
 export function steadyFigures(blocks: readonly BlockEstimate[], errors: ErrorModel): SteadyFigures {
   const seconds = blocks.reduce((sum, block) => sum + block.seconds, 0);
   const weights = blocks.map((block) => block.seconds / seconds);
-  const signed = blocks.map((block, k) => tackSign(block.tack) * weights[k]!);
+  const signed = blocks.map((block, k) => tackSign(block.tack) * weights[k]);
   const imbalance = Math.abs(signed.reduce((sum, w) => sum + w, 0));
   const at = (pick: (b: BlockEstimate) => number): number => weighted(blocks, weights, pick);
   const speed = at((b) => b.speed);
@@ -156,11 +156,11 @@ function triangleSlopes(speed: number, tws: number, gamma: number): { aws: Slope
     return [aws, beta, ceilingVmg(w, beta)];
   };
   const slope = (high: readonly number[], low: readonly number[], step: number): number[] =>
-    high.map((value, k) => (value - low[k]!) / (2 * step));
+    high.map((value, k) => (value - low[k]) / (2 * step));
   const g = slope(quantities(speed, tws, gamma + 0.1), quantities(speed, tws, gamma - 0.1), 0.1);
   const w = slope(quantities(speed, tws * 1.001, gamma), quantities(speed, tws * 0.999, gamma), 0.001);
   const v = slope(quantities(speed + 0.01, tws, gamma), quantities(speed - 0.01, tws, gamma), 0.01);
-  const of = (k: number): Slopes => ({ gamma: g[k]!, tws: w[k]!, receiver: v[k]! });
+  const of = (k: number): Slopes => ({ gamma: g[k], tws: w[k], receiver: v[k] });
   return { aws: of(0), beta: of(1), ceiling: of(2) };
 }
 
@@ -171,7 +171,7 @@ export function tackingAngle(blocks: readonly BlockEstimate[], errors: ErrorMode
   const sides = { port: total('port'), starboard: total('starboard') };
   if (sides.port === 0 || sides.starboard === 0) return null;
   const weights = blocks.map((b) => b.seconds / sides[b.tack]);
-  const signed = blocks.map((b, k) => tackSign(b.tack) * weights[k]!);
+  const signed = blocks.map((b, k) => tackSign(b.tack) * weights[k]);
   const wind = correlatedError(blocks, signed, errors.mismatch.direction);
   const speed = weighted(blocks, weights, (b) => b.speed) / 2;
   const receiver = (2 * receiverError(blocks, errors)) / speed / RAD;

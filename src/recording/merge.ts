@@ -10,9 +10,9 @@ export function sliceRecording(recording: Recording, shift: number, from = -Infi
   if (shift === 0 && from === -Infinity && to === Infinity) return recording;
   const n = recording.time.length;
   let first = 0;
-  while (first < n && recording.time[first]! + shift < from) first++;
+  while (first < n && recording.time[first] + shift < from) first++;
   let last = n;
-  while (last > first && recording.time[last - 1]! + shift >= to) last--;
+  while (last > first && recording.time[last - 1] + shift >= to) last--;
   const channels: Partial<Record<Channel, Float64Array>> = {};
   for (const channel of Object.keys(recording.channels) as Channel[]) {
     channels[channel] = recording.channels[channel]!.slice(first, last);
@@ -28,13 +28,13 @@ export function sliceRecording(recording: Recording, shift: number, from = -Infi
  */
 export function mergeRecordings(recordings: readonly Recording[]): { recording: Recording; dropped: number } {
   const parts = recordings.filter((recording) => recording.time.length > 0);
-  if (parts.length === 1) return { recording: parts[0]!, dropped: 0 };
-  const sorted = [...parts].sort((a, b) => a.time[0]! - b.time[0]!);
+  if (parts.length === 1) return { recording: parts[0], dropped: 0 };
+  const sorted = [...parts].sort((a, b) => a.time[0] - b.time[0]);
   let last = -Infinity;
   let dropped = 0;
   const kept: Recording[] = [];
   for (const part of sorted) {
-    const rest = part.time[0]! > last ? part : sliceRecording(part, 0, last + 1e-6);
+    const rest = part.time[0] > last ? part : sliceRecording(part, 0, last + 1e-6);
     dropped += part.time.length - rest.time.length;
     if (rest.time.length === 0) continue;
     kept.push(rest);

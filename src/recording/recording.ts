@@ -61,8 +61,8 @@ export function createRecording(parts: {
 }): Recording {
   const { time, channels, name = '', breaks = [] } = parts;
   for (let i = 0; i < time.length; i++) {
-    if (!Number.isFinite(time[i]!)) throw new Error(`createRecording: time[${i}] is ${time[i]}`);
-    if (i > 0 && !(time[i]! > time[i - 1]!)) {
+    if (!Number.isFinite(time[i])) throw new Error(`createRecording: time[${i}] is ${time[i]}`);
+    if (i > 0 && !(time[i] > time[i - 1])) {
       throw new Error(`createRecording: time[${i}] ${time[i]} does not follow ${time[i - 1]}`);
     }
   }
@@ -84,8 +84,8 @@ function checkPositions(lat: Float64Array | undefined, lon: Float64Array | undef
   if (!lat && !lon) return;
   if (!lat || !lon) throw new Error('createRecording: latitude without longitude');
   for (let i = 0; i < lat.length; i++) {
-    const φ = lat[i]!;
-    const λ = lon[i]!;
+    const φ = lat[i];
+    const λ = lon[i];
     if (Number.isNaN(φ) && Number.isNaN(λ)) continue;
     if (!(Math.abs(φ) <= 90 && λ >= -180 && λ < 180)) throw new Error(`createRecording: position ${φ}, ${λ} at ${i}`);
   }
@@ -102,7 +102,7 @@ export function channelValues(recording: Recording, channel: Channel): { time: F
   const value = new Float64Array(n);
   let k = 0;
   for (let i = 0; i < column.length; i++) {
-    if (Number.isNaN(column[i]!)) continue;
+    if (Number.isNaN(column[i])) continue;
     time[k] = recording.time[i]!;
     value[k++] = column[i]!;
   }

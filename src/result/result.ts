@@ -29,8 +29,7 @@ export interface InputEntry {
 export type WindSource = 'station' | 'on-board' | 'tracks' | 'by-hand';
 export type Side = 'port' | 'starboard';
 export type ManoeuvreKind = 'tack' | 'gybe' | 'round-up' | 'bear-away' | 'full-turn';
-export type Cause =
-  'manoeuvres' | 'start' | 'high' | 'low' | 'trim' | 'speed' | 'overstood' | 'stopped' | 'shifts';
+export type Cause = 'manoeuvres' | 'start' | 'high' | 'low' | 'trim' | 'speed' | 'overstood' | 'stopped' | 'shifts';
 
 export interface ManoeuvreResult {
   readonly kind: ManoeuvreKind;

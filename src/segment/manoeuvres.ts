@@ -93,7 +93,7 @@ function between(states: readonly State[], k: number, turning: Float64Array, thr
  * Off a tack a boat may come out on a short reach, or reach to the mark from an overstood lay line.
  */
 function tackTo(states: readonly State[], k: number, thresholds: Thresholds): Turn | null {
-  const entered = states[k]!;
+  const entered = states[k];
   const earlier = states[k - 1];
   const viaReach =
     entered.point === 'reach' &&
@@ -101,7 +101,7 @@ function tackTo(states: readonly State[], k: number, thresholds: Thresholds): Tu
     earlier.side === entered.side &&
     entered.to - earlier.to <= thresholds.maxTurn;
   const before = viaReach ? earlier : entered;
-  const after = states[k + 1]!;
+  const after = states[k + 1];
   if (before.point === 'run' || after.point === 'run') return null;
   return before.point === 'upwind' || after.point === 'upwind' ? { kind: 'tack', before, after } : null;
 }

@@ -99,7 +99,7 @@ function windOf(a: Assembly): Result['wind'] {
   const direction = {
     value: circularMean(directions).mean,
     se: wind.directionInferred ? 2 : 1,
-    sys: wind.directionInferred ? 0 : (offset?.se ?? wind.sources[0]!.source.accuracyDir),
+    sys: wind.directionInferred ? 0 : (offset?.se ?? wind.sources[0].source.accuracyDir),
   };
   const speed = {
     value: known.reduce((sum, s) => sum + s, 0) / known.length,

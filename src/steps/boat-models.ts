@@ -1,4 +1,4 @@
-import { readBoat, type KnownBoats } from '../files/boat.js';
+import { readBoat } from '../files/boat.js';
 import type { BoatReference, Race } from '../files/race-types.js';
 import { createSha256 } from '../math/sha256.js';
 import { BUILT_IN_BOATS, builtInBoat } from '../physics/built-in.js';
@@ -48,7 +48,7 @@ async function specOf(boat: BoatReference, open: OpenLog): Promise<BoatSpec> {
 
 /** A boat file's text as a boat. */
 export async function boatFromText(text: string, file: string): Promise<BoatSpec> {
-  return readBoat(text, file, [...BUILT_IN_BOATS] as unknown as KnownBoats);
+  return readBoat(text, file, [...BUILT_IN_BOATS]);
 }
 
 async function textOf(file: string, open: OpenLog): Promise<string> {

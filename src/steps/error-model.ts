@@ -23,7 +23,7 @@ export function errorModels(
   return clean.boats.map((boat, k) => {
     const index = wind.sources.findIndex(({ source }) => source.boat === k);
     const used = index >= 0 ? index : 0;
-    const source = wind.sources[used]!.source;
+    const source = wind.sources[used].source;
     return {
       mismatch: hasOwn[k] ? ON_BOARD_MISMATCH : shared,
       sysDirection: wind.directionInferred ? 0 : (wind.offsets[used]?.se ?? source.accuracyDir),

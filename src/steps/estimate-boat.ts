@@ -34,9 +34,11 @@ export function estimateBoat(one: Sailed, errors: ErrorModel, awa: Float64Array 
   const legs = one.legs.map((leg, index) => estimateLeg(one, leg, index, errors, awa));
   const manoeuvres = one.manoeuvres.map((manoeuvre) => {
     const leg = one.legs.findIndex((l) => manoeuvre.at >= l.from && manoeuvre.at < l.to);
-    const beat = leg >= 0 && one.legs[leg]!.kind === 'upwind';
+    const beat = leg >= 0 && one.legs[leg].kind === 'upwind';
     const loss =
-      beat && manoeuvre.kind !== 'gybe' ? manoeuvreLoss(one.sailing, manoeuvre, one.blocks, { index: leg, to: one.legs[leg]!.to }, errors) : null;
+      beat && manoeuvre.kind !== 'gybe'
+        ? manoeuvreLoss(one.sailing, manoeuvre, one.blocks, { index: leg, to: one.legs[leg].to }, errors)
+        : null;
     return { manoeuvre, loss };
   });
   return { legs, manoeuvres, errors };
@@ -94,7 +96,7 @@ function vaneMean(awa: Float64Array, blocks: readonly BlockEstimate[]): Figure |
   let n = 0;
   for (const block of blocks) {
     for (let i = block.from; i < block.to; i++) {
-      const angle = Math.abs(awa[i]!);
+      const angle = Math.abs(awa[i]);
       if (Number.isNaN(angle)) continue;
       sum += angle;
       n++;

@@ -111,7 +111,7 @@ function giveApparentWind(logs: ReadLogs): ReadLogs {
     else if (boats.length === 1) {
       const [boat] = boats;
       const own = { file: wind.reference.file, recording: wind.recording };
-      boats[0] = { ...boat!, instruments: [...boat!.instruments, own] };
+      boats[0] = { ...boat, instruments: [...boat.instruments, own] };
     } else {
       throw new UserError(`${wind.reference.file}: apparent wind without a position, and more than one boat`, {
         exitCode: 2,

@@ -71,8 +71,8 @@ function throughWater(
     if (excluded[i]) ux[i] = uy[i] = NaN;
     if (!current) continue;
     const { east, north } = current(time);
-    ux[i] = ux[i]! - east;
-    uy[i] = uy[i]! - north;
+    ux[i] = ux[i] - east;
+    uy[i] = uy[i] - north;
   }
   return { ux, uy };
 }
@@ -88,10 +88,10 @@ function relativeToWater(
   const tws = Float64Array.from(wind.tws);
   for (let i = 0; i < track.n; i++) {
     const { east, north } = current(track.t0 + i);
-    const speed = wind.tws[i]!;
+    const speed = wind.tws[i];
     if (Number.isNaN(speed)) continue;
-    const e = speed * eastOf(wind.twd[i]!) + east;
-    const n = speed * northOf(wind.twd[i]!) + north;
+    const e = speed * eastOf(wind.twd[i]) + east;
+    const n = speed * northOf(wind.twd[i]) + north;
     twd[i] = directionOf(e, n);
     tws[i] = Math.hypot(e, n);
   }

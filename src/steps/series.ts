@@ -15,12 +15,12 @@ const RAD = Math.PI / 180;
 export function boatSeries(track: Track, one: Sailed, estimate: BoatEstimate): BoatSeries {
   const { sailing, tws } = one;
   const n = sailing.n;
-  const vmg = sailing.gamma.map((gamma, i) => sailing.speed[i]! * Math.cos(gamma * RAD));
+  const vmg = sailing.gamma.map((gamma, i) => sailing.speed[i] * Math.cos(gamma * RAD));
   const beta = new Float64Array(n).fill(NaN);
   const aws = new Float64Array(n).fill(NaN);
   for (let i = 0; i < n; i++) {
-    if (Number.isNaN(tws[i]!) || Number.isNaN(sailing.gamma[i]!)) continue;
-    const apparent = apparentWind(sailing.speed[i]!, tws[i]!, Math.abs(sailing.gamma[i]!));
+    if (Number.isNaN(tws[i]) || Number.isNaN(sailing.gamma[i])) continue;
+    const apparent = apparentWind(sailing.speed[i], tws[i], Math.abs(sailing.gamma[i]));
     beta[i] = apparent.beta;
     aws[i] = apparent.aws;
   }
@@ -101,7 +101,7 @@ function ends(one: Sailed, kind: string): number[] {
 }
 
 function foundMark(role: string, sailed: readonly Sailed[], rows: (one: Sailed) => number[]): MarkPlace[] {
-  const at = sailed.flatMap((one) => rows(one).map((row) => ({ x: one.sailing.x[row]!, y: one.sailing.y[row]! })));
+  const at = sailed.flatMap((one) => rows(one).map((row) => ({ x: one.sailing.x[row], y: one.sailing.y[row] })));
   const x = median(at.map((place) => place.x));
   const y = median(at.map((place) => place.y));
   return Number.isNaN(x) ? [] : [{ role, given: false, places: [{ x, y }] }];

@@ -80,15 +80,15 @@ function loggedPlace({ recording }: WindLog, frame: Frame): SensorPlace {
   const lat = channelValues(recording, 'lat');
   const lon = channelValues(recording, 'lon');
   const direction = channelValues(recording, recording.channels.twd ? 'twd' : 'twdMagnetic');
-  const t0 = Math.floor(direction.time[0]!);
+  const t0 = Math.floor(direction.time[0]);
   const n = Math.ceil(direction.time.at(-1)!) - t0 + 1;
   const xs = new Float64Array(n);
   const ys = new Float64Array(n);
   let k = 0;
   for (let i = 0; i < n; i++) {
-    while (k + 1 < lat.time.length && lat.time[k + 1]! <= t0 + i) k++;
-    xs[i] = eastInPlane(frame, lon.value[k]!);
-    ys[i] = northInPlane(frame, lat.value[k]!);
+    while (k + 1 < lat.time.length && lat.time[k + 1] <= t0 + i) k++;
+    xs[i] = eastInPlane(frame, lon.value[k]);
+    ys[i] = northInPlane(frame, lat.value[k]);
   }
   return { xs, ys };
 }

@@ -154,9 +154,9 @@ export function estimateCarry(source: WindSource, blocks: readonly CourseBlock[]
   );
   let best = CARRIES.length - 1;
   misfit.forEach((value, k) => {
-    if (value < misfit[best]!) best = k;
+    if (value < misfit[best]) best = k;
   });
-  return misfit.at(-1)! - misfit[best]! > CARRY_EVIDENCE ? CARRIES[best]! : 1;
+  return misfit.at(-1)! - misfit[best] > CARRY_EVIDENCE ? CARRIES[best] : 1;
 }
 
 /** Sailors differ this much between their tacks (half the difference of the two angles); common practice, no source. [deg] */

@@ -17,7 +17,11 @@ writeFileSync(`${FOLDER}page.html`, page);
 
 const browser = await openBrowser();
 if (!browser) throw new Error('rebuild: no browser for the pictures');
-const context = await browser.newContext({ viewport: { width: 1280, height: 900 }, colorScheme: 'light', locale: 'en-GB' });
+const context = await browser.newContext({
+  viewport: { width: 1280, height: 900 },
+  colorScheme: 'light',
+  locale: 'en-GB',
+});
 const tab = await context.newPage();
 await tab.goto(`file://${FOLDER}page.html`);
 await tab.waitForTimeout(1500);
