@@ -14,6 +14,7 @@ export type * from './files/race-types.js';
 export type { Issue } from './recording/issues.js';
 export type * from './result/result.js';
 export type * from './result/series.js';
+export type { Comparison, PairLadder } from './compare.js';
 export type { InspectFile, InspectResult } from './inspect.js';
 export { UserError };
 

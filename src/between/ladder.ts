@@ -37,6 +37,8 @@ export interface LadderRow {
   readonly time: number;
   /** Metres gained by the first boat since the start of the leg. */
   readonly gain: number;
+  /** Of them by shifts. */
+  readonly shifts: number;
 }
 
 export interface LadderTack {
@@ -106,7 +108,6 @@ function climb(
   const [start, end] = [known[0], known[known.length - 1]];
   const lead = ahead(start);
   const gain = ahead(end) - lead;
-  const rows = times(start, end, STEP).map((time) => ({ time, gain: ahead(time) - lead }));
   const origin = onLadder(first, start, wind);
   const tacks = [first, second].flatMap((boat, index) =>
     tackTimes(boat, start, end).map((time) => {
@@ -116,7 +117,12 @@ function climb(
     }),
   );
   tacks.sort((a, b) => a.time - b.time || a.boat - b.boat);
-  const parts = split(first, second, start, end, wind);
+  const { parts, shifts } = split(first, second, start, end, wind);
+  const rows = times(start, end, STEP).map((time) => ({
+    time,
+    gain: ahead(time) - lead,
+    shifts: shifts[time - start],
+  }));
   const rest = gain - parts.sailing - parts.manoeuvres - parts.shifts;
   return { from: start, to: end, wind, lead, gain, parts: { ...parts, rest }, rows, tacks };
 }
@@ -132,24 +138,28 @@ function tackTimes(boat: BetweenBoat, from: number, to: number): number[] {
     .filter((time) => time >= from && time <= to);
 }
 
+/** The parts, and what shifts gave up to each second. */
 function split(
   first: BetweenBoat,
   second: BetweenBoat,
   from: number,
   to: number,
   wind: UnitVector,
-): Omit<LadderParts, 'rest'> {
+): { parts: Omit<LadderParts, 'rest'>; shifts: Float64Array } {
   const parts = { sailing: 0, manoeuvres: 0, shifts: 0 };
+  const shifts = new Float64Array(to - from + 1);
   const busy = [inManoeuvre(first), inManoeuvre(second)] as const;
   for (let time = from; time < to; time++) {
     const [i, j] = [rowAt(first, time), rowAt(second, time)];
     const a = progress(first, i, wind);
     const b = progress(second, j, wind);
-    if (!a || !b) continue;
-    parts[busy[0][i] || busy[1][j] ? 'manoeuvres' : 'sailing'] += a.own - b.own;
-    parts.shifts += a.shift - b.shift;
+    if (a && b) {
+      parts[busy[0][i] || busy[1][j] ? 'manoeuvres' : 'sailing'] += a.own - b.own;
+      parts.shifts += a.shift - b.shift;
+    }
+    shifts[time - from + 1] = parts.shifts;
   }
-  return parts;
+  return { parts, shifts };
 }
 
 /** One second's metres against the boat's own wind, and what is left toward the mean wind; null in a gap. */

@@ -1,5 +1,6 @@
 import type { Command } from 'commander';
 import { compare, comparePage } from '../index.js';
+import type { PairLadder } from '../index.js';
 import { runBatch } from './batch.js';
 import type { Task } from './batch.js';
 import { addManners, addOutputOptions, addRaceOptions, collect } from './options.js';
@@ -36,17 +37,21 @@ export function compareCommand(program: Command): Command {
     .action(async (inputs: string[], flags: CompareFlags) => {
       if (flags.pair?.length === 1)
         throw unusable(`--pair ${flags.pair[0]}: one boat alone.`, 'Name two: --pair A --pair B.');
+      let ladders: readonly PairLadder[] = [];
       const task: Task = {
         suffix: '-compare',
         work: async (job) => {
           checkPairs(flags.pair ?? [], job);
-          return compare(job.race, job.open, {
+          const compared = await compare(job.race, job.open, {
             version: programVersion(),
             ...(flags.pair ? { pairs: [...flags.pair] } : {}),
             ...(await referenceFor(flags.reference, job)),
           });
+          ladders = compared.ladders;
+          return compared;
         },
-        page: comparePage,
+        // One race after the other: these are of the race at hand.
+        page: (result, series) => comparePage(result, series, ladders),
         summary: compareSummary,
       };
       process.exitCode = await runBatch(inputs, flags, task);

@@ -1,9 +1,11 @@
+import type { PairLadder } from '../compare.js';
 import type { Result } from '../result/result.js';
 import type { RaceSeries } from '../result/series.js';
 import { document } from './document.js';
 import { html, type Part, type Safe } from './html.js';
 import { encodePayload } from './payload.js';
 import { angles } from './sections/angles.js';
+import { ladders } from './sections/ladder.js';
 import { ledger } from './sections/ledger.js';
 import { legs, otherLegs } from './sections/legs.js';
 import { masthead } from './sections/masthead.js';
@@ -32,11 +34,19 @@ export function debriefPage(result: Result, series: RaceSeries): string {
 /**
  * The same race with boat against boat first.
  *
+ * @param climbs What `compare` found along each beat; left out, no ladder is drawn.
  * @returns One self-contained HTML document; the same input gives the same bytes.
  */
-export function comparePage(result: Result, series: RaceSeries): string {
-  const front = [pairs(result), verdicts(result), ledger(result), legs(result), replay(result, series)];
-  return page(result, series, 'Boat against boat', 'compare', front);
+export function comparePage(result: Result, series: RaceSeries, climbs: readonly PairLadder[] = []): string {
+  const front = [
+    pairs(result),
+    ladders(result, series, climbs),
+    verdicts(result),
+    ledger(result),
+    legs(result),
+    replay(result, series),
+  ];
+  return page(result, series, 'Boat against boat', 'compare', front, front[1] !== null);
 }
 
 const NAVIGATION: readonly (readonly [string, string])[] = [
@@ -51,9 +61,14 @@ const NAVIGATION: readonly (readonly [string, string])[] = [
   ['words', 'Words'],
 ];
 
-function contents(withPairs: boolean): Safe {
+function contents(withPairs: boolean, withLadder: boolean): Safe {
   const entries = withPairs
-    ? [...NAVIGATION.slice(0, 2), ['pairs', 'Side by side'] as const, ...NAVIGATION.slice(2)]
+    ? [
+        ...NAVIGATION.slice(0, 2),
+        ['pairs', 'Side by side'] as const,
+        ...(withLadder ? [['ladder', 'Rung by rung'] as const] : []),
+        ...NAVIGATION.slice(2),
+      ]
     : NAVIGATION;
   return html`<nav aria-label="Contents">
     <ul>
@@ -62,12 +77,19 @@ function contents(withPairs: boolean): Safe {
   </nav>`;
 }
 
-function page(result: Result, series: RaceSeries, kind: string, className: string, front: readonly Part[]): string {
+function page(
+  result: Result,
+  series: RaceSeries,
+  kind: string,
+  className: string,
+  front: readonly Part[],
+  withLadder = false,
+): string {
   const appendix = html`<div class="after">
     ${seriesSection(series)}${tacks(result, series)}${angles(result, series)}${otherLegs(result)}${trust(result)}${glossary()}
   </div>`;
   const body = html`<a class="skip" href="#verdict">To the verdict</a
-    >${masthead(result, series, kind)}${contents((result.pairs?.length ?? 0) > 0)}
+    >${masthead(result, series, kind)}${contents((result.pairs?.length ?? 0) > 0, withLadder)}
     <main class="${className}">${front}${appendix}</main>
 
     <div id="tip" class="card" popover="manual" role="status"></div>

@@ -2,6 +2,7 @@ import './language.js';
 import { circularMean } from '../../math/angles.js';
 import { mountInstruments } from './instruments.js';
 import { createClock, localise } from './locale.js';
+import { mountLadders } from './ladder.js';
 import { mountMap } from './map.js';
 import { mountPicks } from './picks.js';
 import { readRace, type Race } from './race.js';
@@ -26,6 +27,7 @@ function start(): void {
   if (!race || race.boats.length === 0) return;
   const store = createStore(race.from, race.to, race.racing);
   mountMap(race, store, meanWind(race));
+  mountLadders(race, store);
   mountInstruments(race, store);
   mountPicks(race, store, clock);
   mountSeries(race, store, clock);

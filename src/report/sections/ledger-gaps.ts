@@ -1,0 +1,50 @@
+import type { BoatResult } from '../../result/result.js';
+import { CAUSE_MEANING, CAUSE_WORDS } from '../causes.js';
+import { inline, quantity } from '../format.js';
+import { html, nameOf, type Part, type Safe } from '../html.js';
+import { ledgerGaps, type LedgerGap } from '../ledger-gaps.js';
+import { table } from './figure.js';
+
+type Names = readonly [string, string];
+
+/** One boat's ledger less the other's, shifts under a line of their own. */
+export function ledgerGapTable(first: BoatResult, second: BoatResult): Part {
+  const gaps = ledgerGaps(first, second);
+  if (!gaps) return null;
+  const names: Names = [first.name, second.name];
+  const several = gaps.laps.length > 1;
+  const cells = ({ laps, together }: Pick<LedgerGap, 'laps' | 'together'>): Part[] =>
+    [...laps, ...(several ? [together] : [])].map((q) => quantity(q, 'm', { sign: true }));
+  const row = (gap: LedgerGap): Part[] => [
+    html`<span title="${CAUSE_MEANING[gap.cause]}">${CAUSE_WORDS[gap.cause]}</span>`,
+    ...cells(gap),
+  ];
+  return html`<div class="gaps">
+    <h3>Where ${nameOf(names[0])} lost more than ${nameOf(names[1])}</h3>
+    ${saidOf(gaps.causes, names)}
+    ${table(
+      'Metres to windward; below zero she lost less',
+      ['', ...gaps.laps.map((lap) => `Lap ${lap}`), ...(several ? ['Together'] : [])],
+      [
+        ...gaps.causes.map(row),
+        [html`<b>Before shifts</b>`, ...cells(gaps.before)],
+        ...(gaps.shifts ? [row(gaps.shifts)] : []),
+      ],
+      'plain gap-table',
+    )}
+  </div>`;
+}
+
+/** What is more than chance, largest first. */
+function saidOf(causes: readonly LedgerGap[], [first, second]: Names): Safe {
+  const told = causes
+    .flatMap(({ together, stands, cause }) => (together && stands ? [{ together, cause }] : []))
+    .sort((a, b) => Math.abs(b.together.value) - Math.abs(a.together.value));
+  if (told.length === 0) return html`<p>No cause stands out beyond its error, all of them looked at together.</p>`;
+  const parts = told.map(({ together, cause }, k) => {
+    const name = together.value > 0 ? first : second;
+    const size = { ...together, value: Math.abs(together.value) };
+    return html`${k > 0 && '; '}${nameOf(name)} lost ${inline(size, 'm')} more (${CAUSE_WORDS[cause].toLowerCase()})`;
+  });
+  return html`<p>Beyond the errors, all causes looked at together: ${parts}.</p>`;
+}
