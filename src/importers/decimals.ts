@@ -32,6 +32,39 @@ export function readDecimal(text: string, start = 0, end = text.length): number 
   return sign === 45 ? -value : value;
 }
 
+let stop = -1;
+
+/** Where the last `readPlainDecimal` stopped. */
+export function stoppedAt(): number {
+  return stop;
+}
+
+/**
+ * The number that begins at `from` and is ended by the letter `until`, in one pass: what readDecimal makes of it.
+ *
+ * @returns NaN when it is not plain: digits with at most a sign and a point, 15 at most. Then nothing is said.
+ */
+export function readPlainDecimal(text: string, from: number, until: number): number {
+  let at = from;
+  let code = text.charCodeAt(at);
+  const negative = code === 45;
+  if (negative || code === 43) code = text.charCodeAt(++at);
+  const first = at;
+  let value = 0;
+  let point = -1;
+  while (code !== until) {
+    if (code >= 48 && code <= 57) value = value * 10 + (code - 48);
+    else if (code === 46 && point < 0) point = at;
+    else return NaN;
+    code = text.charCodeAt(++at);
+  }
+  const digits = at - first - (point < 0 ? 0 : 1);
+  if (digits === 0 || digits > 15) return NaN;
+  stop = at;
+  if (point >= 0 && point < at - 1) value /= EXACT_TENS[at - 1 - point];
+  return negative ? -value : value;
+}
+
 const DECIMAL = /^\s*([+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d{1,3})?)\s*$/;
 const DECIMAL_COMMA = /^\s*([+-]?\d*),(\d+)\s*$/;
 

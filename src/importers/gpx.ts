@@ -198,7 +198,7 @@ export async function readGpx(
   const feed = createFilter(tally);
   let held = '';
   for await (const text of texts) {
-    if (quick) held = feedAround(held + text, walk, points, parser, feed);
+    if (quick) held = feedInPieces(held, text, (piece, from) => feedAround(piece, from, walk, points, parser, feed));
     else parser.write(feed(text));
   }
   parser.write(feed(held));
@@ -227,15 +227,25 @@ const MOST_HELD = 1 << 16;
 /** Points in a row that were not plain: what follows will hardly be. */
 const MOST_MISSES = 16;
 
+/** What was held back is joined to the end of its point only: long texts put together are slow to look into. */
+function feedInPieces(held: string, text: string, feed: (text: string, from: number) => string): string {
+  const end = held === '' ? -1 : text.indexOf('</trkpt>');
+  if (end < 0 || end > MOST_HELD) return feed(held + text, 0);
+  const cut = end + '</trkpt>'.length;
+  const rest = feed(held + text.slice(0, cut), 0);
+  return rest === '' ? feed(text, cut) : feed(rest + text.slice(cut), 0);
+}
+
 /** Hands plain points to the quick reader and all else to the parser; returns what may be a point begun. */
 function feedAround(
   text: string,
+  from: number,
   walk: GpxWalk,
   points: PlainPoints,
   parser: SaxesParser,
   feed: (text: string) => string,
 ): string {
-  let at = 0;
+  let at = from;
   let misses = 0;
   while (at < text.length && misses < MOST_MISSES) {
     if (walk.atPoints) {
@@ -250,8 +260,10 @@ function feedAround(
     parser.write(feed(text.slice(at, fence)));
     at = fence;
   }
-  walk.atPoints = false;
-  if (at < text.length) parser.write(feed(text.slice(at)));
+  if (at < text.length) {
+    walk.atPoints = false;
+    parser.write(feed(text.slice(at)));
+  }
   return '';
 }
 

@@ -3,7 +3,8 @@
  * times, one after another. Anything else (an entity, a comment, an attribute, a bad value, a time without a zone) is
  * left where it stands for the XML parser, which is the reference.
  */
-import { readDecimal } from './decimals.js';
+import { readDecimal, readPlainDecimal, stoppedAt } from './decimals.js';
+import { MinuteClock } from './minute-clock.js';
 import { readIso } from './times.js';
 
 const CLOSE = '</trkpt>';
@@ -38,6 +39,7 @@ interface Skeleton {
 export class PlainPoints {
   readonly #take: TakePoint;
   readonly #seen: Set<string>;
+  readonly #clock = new MinuteClock();
   #skeleton: Skeleton | null = null;
   #lat = NaN;
   #lon = NaN;
@@ -81,15 +83,32 @@ export class PlainPoints {
     let p = at;
     for (let k = 0; k < roles.length; k++) {
       if (!text.startsWith(literals[k], p)) return -1;
-      p += literals[k].length;
-      const end = endOfValue(text, p, k < 2 ? QUOTE : LESS);
-      if (end < 0 || !this.#use(roles[k], text, p, end)) return -1;
-      p = end;
+      p = this.#value(roles[k], text, p + literals[k].length, k < 2 ? QUOTE : LESS);
+      if (p < 0) return -1;
     }
     const last = literals[roles.length];
     if (!text.startsWith(last, p) || !this.#add(line + skeleton.linesToTag)) return -1;
     this.lines += skeleton.lines;
     return p + last.length;
+  }
+
+  /** Uses the value that begins at `from` in one go where it is as usual; returns its end, -1 when it is not plain. */
+  #value(role: Role, text: string, from: number, stop: number): number {
+    if (role === 'time' && Number.isNaN(this.#time)) {
+      const end = this.#clock.read(text, from);
+      if (end > 0 && text.charCodeAt(end) === stop) {
+        this.#time = this.#clock.seconds;
+        return end;
+      }
+    } else if (role !== null && role !== 'time') {
+      const value = readPlainDecimal(text, from, stop);
+      if (!Number.isNaN(value)) {
+        this.#set(role, value);
+        return stoppedAt();
+      }
+    }
+    const end = endOfValue(text, from, stop);
+    return end >= 0 && this.#use(role, text, from, end) ? end : -1;
   }
 
   /** Hands a point on if it has all it needs. */
@@ -183,14 +202,19 @@ export class PlainPoints {
     if (role === 'time') {
       if (!Number.isNaN(this.#time)) return true;
       this.#time = text.charCodeAt(end - 1) === 90 ? readIso(text, start, end) : NaN;
+      this.#clock.remember(text, start);
       return !Number.isNaN(this.#time);
     }
     const value = readDecimal(text, start, end);
+    this.#set(role, value);
+    return !Number.isNaN(value);
+  }
+
+  #set(role: Exclude<Role, 'time' | null>, value: number): void {
     if (role === 'lat') this.#lat = value;
     else if (role === 'lon') this.#lon = value;
     else if (role === 'speed') this.#speed = Number.isNaN(this.#speed) ? value : this.#speed;
     else this.#course = Number.isNaN(this.#course) ? value : this.#course;
-    return !Number.isNaN(value);
   }
 }
 
