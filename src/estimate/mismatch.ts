@@ -113,7 +113,7 @@ function partFrom(
 /** Wind differs by about 5 degrees and 10 % across a course of some 1200 m: common practice, no source. [per km] */
 const GRADIENT = { direction: 4, speed: 0.08 };
 /** Where shifts were found to reach the whole course at once the wind is of one piece: so much of that is left. */
-const UNIFORM_SHARE = 0.25;
+const UNIFORM_SHARE = 0.12;
 
 /**
  * Station-to-boat mismatch from what two or more boats' settled blocks share at the same time; with one boat, 0.4 of its

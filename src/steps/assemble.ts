@@ -129,6 +129,7 @@ function boatResult(boat: CleanBoat, k: number, a: Assembly): BoatResult {
   return {
     name: reference.name,
     sailor: reference.sailor,
+    ...(reference.crewMassKg === undefined ? {} : { crew_mass_kg: reference.crewMassKg }),
     model: { boat: reference.boat, tuned: model.tuned, sha256: model.sha256 },
     corrections: {
       compass_offset_deg: quantity(a.corrections.boats[k].compass, 'inferred'),

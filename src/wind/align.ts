@@ -160,9 +160,9 @@ export function estimateCarry(source: WindSource, blocks: readonly CourseBlock[]
 }
 
 /** Sailors differ this much between their tacks (half the difference of the two angles); common practice, no source. [deg] */
-const ASYMMETRY = 1;
+const ASYMMETRY = 0.8;
 /** What a leg's shifts and blocks leave of error in half the difference of its tacks. [deg] */
-const LEG_ERROR = 1.2;
+const LEG_ERROR = 1;
 
 export interface OffsetEstimate {
   /** To be added to the direction. [deg] */
