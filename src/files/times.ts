@@ -58,6 +58,8 @@ export function onDay(date: string, ofDay: number, zone: string): number {
 
 /** Calendar day of an instant in a zone, YYYY-MM-DD. */
 export function dayOf(seconds: number, zone: string): string {
+  // The host's locale, which a zone asks for, takes 0.1 s to find.
+  if (zone === 'UTC') return new Date(seconds * 1000).toISOString().slice(0, 10);
   return DateTime.fromSeconds(seconds, { zone }).toISODate()!;
 }
 

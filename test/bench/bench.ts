@@ -14,7 +14,7 @@ import { makeModel } from '../../src/physics/model.js';
 import { bestUpwind } from '../../src/physics/optimum.js';
 import { checksum, columnsOf, meanSpeed, sumsText } from './columns.js';
 import { ROOT, scratch, table, track, whichGenerator } from './data.js';
-import { inTurn, measure, runCommand, type Cost, type Measured } from './measure.js';
+import { inTurn, measure, runCommand, SAYS_COST, type Cost, type Measured } from './measure.js';
 import { bestByGrid, gpxBySaxes, TABLE_BY_PANDAS, tableByPapaparse } from './rivals.js';
 import { read, stages } from './stages.js';
 
@@ -96,7 +96,20 @@ function row(
 /** The command line from the log to the report and the result file. */
 async function wholeRun(gpx: string, wind: string): Promise<Measured<string>> {
   const result = scratch('result.json');
-  const args = [PROGRAM, 'debrief', gpx, '--wind', wind, '--json', result, '--out', scratch('report.html'), '--quiet'];
+  const args = [
+    '--import',
+    SAYS_COST,
+    PROGRAM,
+    'debrief',
+    gpx,
+    '--wind',
+    wind,
+    '--json',
+    result,
+    '--out',
+    scratch('report.html'),
+    '--quiet',
+  ];
   return { ...(await runCommand(process.execPath, args)), value: result };
 }
 
@@ -132,13 +145,14 @@ async function wholeAgainst(gpx: string, wind: string, reader: string, rounds: n
   ]);
   const says = JSON.parse(theirs.value) as BaselineSays;
   const { recording, fixes } = await read(gpx);
+  const python = { ...theirs, memory: says.rss_mb };
   const result = JSON.parse(readFileSync(ours.value, 'utf8')) as { inputs: { fixes: number }[] };
   const check = [
     `${result.inputs[0].fixes} ${meanSpeed(columnsOf(recording)).toFixed(4)}`,
     `${says.fixes} ${says.sog_raw.toFixed(4)}`,
   ] as const;
   if (fixes !== result.inputs[0].fixes) throw new Error('the program and its importer differ in fixes');
-  return { what: 'whole debrief', size: `${MB} MB`, rival: `Python, ${reader}`, ours, theirs, most, check };
+  return { what: 'whole debrief', size: `${MB} MB`, rival: `Python, ${reader}`, ours, theirs: python, most, check };
 }
 
 async function optimumTable(): Promise<Row> {
