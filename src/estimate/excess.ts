@@ -34,13 +34,17 @@ export interface Excess {
   readonly fromSpeed: number;
 }
 
-/** Causes looked at. Shifts are luck and choice of side: they are ranked apart. */
-const LOOKED_AT = ['manoeuvres', 'start', 'high', 'low', 'trim', 'speed', 'overstood', 'stopped', 'shifts'] as const;
-/** An excess smaller than this is nothing to tell a sailor. [m] */
-const LEAST = 5;
-/** Never below two standard errors; wider for small samples and for looking at so many causes at once (Bonferroni, 5 % one-sided). */
-const LEVEL = 1 - (2 * 0.05) / LOOKED_AT.length;
+/** An excess smaller than this, two lengths of a dinghy, is nothing to tell a sailor. [m] */
+const LEAST = 8;
+/**
+ * Never below two standard errors; wider for small samples and for looking at six causes that chance moves at once
+ * (manoeuvres, start, high, low, speed, overstood): Bonferroni, 5 % one-sided.
+ */
+const LEVEL = 1 - (2 * 0.05) / 6;
 const LEAST_FACTOR = 2;
+
+/** Degrees of freedom of an error that is not told from this race. */
+const MANY = 1000;
 
 /** An excess before it is judged. */
 interface Found {
@@ -73,7 +77,7 @@ export function excesses(boat: BoatCosts, other: BoatCosts): Excess[] {
     ...ratesFound(mine, theirs, boat.errors, other.errors),
     manoeuvresFound(mine, theirs),
     eventFound('start', mine, theirs, START_SECONDS),
-    eventFound('overstood', mine, theirs, LAY_LINE_SECONDS),
+    overstoodFound(mine, theirs),
     eventFound('stopped', mine, theirs, STOP_SECONDS),
     trimFound(mine, theirs),
   ].sort((a, b) => b.metres - a.metres);
@@ -127,14 +131,14 @@ const ALIKE = 0.01;
  * What the bend of a speed curve at its best angle is known to: share of the best speed made good per squared degree.
  * Built-in boats bend by 0.0011 to 0.0024, others of their size by as much again: common practice, no source.
  */
-const BEND = 0.0008;
+const BEND = 0.001;
 
 /**
  * High, low and speed. A boat sailed off the best angle loses by the bend of the speed curve there, which no boat file
  * knows well; what it loses beyond the curve is then in part the curve's, in part its own, by how much of either is to be
  * expected.
  *
- *     part of speed that goes to the angle = q^2 / (q^2 + (1 % of available)^2 + se(speed)^2),  q = bend x (off best)^2 / 2
+ *     part of speed that goes to the angle = q^2 / (q^2 + (1 % of available)^2),  q = bend x (off best)^2 / 2
  */
 function ratesFound(
   mine: readonly BeatCosts[],
@@ -157,7 +161,7 @@ function ratesFound(
   const vmg = mean(a.map(({ offer }) => offer.vmg));
   const lower = offBest(a) - offBest(b);
   const q = (Math.abs(offBest(a) ** 2 - offBest(b) ** 2) / 2) * BEND * vmg * seconds;
-  const share = q > 0 ? q ** 2 / (q ** 2 + (ALIKE * vmg * seconds) ** 2 + speed.se ** 2) : 0;
+  const share = q > 0 ? q ** 2 / (q ** 2 + (ALIKE * vmg * seconds) ** 2) : 0;
   const curve = q * Math.sqrt(1 - share);
   const angle = of(lower < 0 ? 'high' : 'low');
   const moved = Math.max(share * speed.metres, -Math.max(0, angle.metres));
@@ -237,8 +241,6 @@ function tackCosts(pieces: readonly LedgerPiece[]): number[] {
 
 /** Two boats that start and round equally well differ, each time, by about so much time each: common practice, no source. [s] */
 const START_SECONDS = 4;
-/** The same for the judgement of a lay line, as far as it shows in `overstood`. [s] */
-const LAY_LINE_SECONDS = 3;
 /** A stop is a stop: when it began and ended is read off to about this. [s] */
 const STOP_SECONDS = 1.5;
 
@@ -247,16 +249,49 @@ function eventFound(cause: Cause, mine: readonly BeatCosts[], theirs: readonly B
   const vmg = mean([...mine, ...theirs].map((beat) => beat.ledger.available.value / beat.seconds));
   const se = seconds * vmg * Math.sqrt(mine.length + theirs.length);
   const metres = total(mine, cause) - total(theirs, cause);
-  return { cause, metres, se, sys: 0, curve: 0, madeByCurve: false, freedom: Infinity, fromSpeed: 0 };
+  return { cause, metres, se, sys: 0, curve: 0, madeByCurve: false, freedom: MANY, fromSpeed: 0 };
+}
+
+/** A tack at the lay line is sailed so far beyond it while the boat turns; more is overstood. [m] */
+const TURNING = 20;
+/** A lay line is judged to about three lengths: common practice, no source. [m] */
+const LAY_LINE = 12;
+
+/**
+ * How far beyond the lay line a boat tacked for the mark, all told, less how far the other did, times what a metre of it
+ * cost the two. What a later shift made of it does not count.
+ */
+function overstoodFound(mine: readonly BeatCosts[], theirs: readonly BeatCosts[]): Found {
+  const of = (beats: readonly BeatCosts[]): number[] =>
+    beats.flatMap(({ ledger }) => ledger.overstood.map(({ past }) => past));
+  const sum = (values: readonly number[]): number => values.reduce((total, value) => total + value, 0);
+  const [a, b] = [of(mine), of(theirs)];
+  const beyond = (values: readonly number[]): number[] =>
+    values.filter((past) => past > TURNING).map((past) => past - TURNING);
+  const each = (total(mine, 'overstood') + total(theirs, 'overstood')) / Math.max(1, sum(a) + sum(b));
+  const events = Math.max(1, beyond(a).length + beyond(b).length);
+  return {
+    cause: 'overstood',
+    metres: each * (sum(beyond(a)) - sum(beyond(b))),
+    se: each * LAY_LINE * Math.sqrt(events),
+    sys: 0,
+    curve: 0,
+    madeByCurve: false,
+    freedom: MANY,
+    fromSpeed: 0,
+  };
 }
 
 function trimFound(mine: readonly BeatCosts[], theirs: readonly BeatCosts[]): Found {
   const se = Math.hypot(...[...mine, ...theirs].map(({ ledger }) => ledger.entries.trim.se));
   const metres = total(mine, 'trim') - total(theirs, 'trim');
-  return { cause: 'trim', metres, se, sys: 0, curve: 0, madeByCurve: false, freedom: Infinity, fromSpeed: 0 };
+  return { cause: 'trim', metres, se, sys: 0, curve: 0, madeByCurve: false, freedom: MANY, fromSpeed: 0 };
 }
 
-/** Shifts: which tack was sailed in which wind is chosen once a stretch, so the spread between stretches is the error. */
+/**
+ * Shifts: which tack was sailed in which wind is chosen once a stretch, so the spread between stretches of the share that
+ * was made of the shifts there were is the error.
+ */
 function shiftsFound(mine: readonly BeatCosts[], theirs: readonly BeatCosts[]): Found {
   const [a, b] = [mine, theirs].map((beats) => stretchSpread(beats));
   const metres = total(mine, 'shifts') - total(theirs, 'shifts');
@@ -274,26 +309,26 @@ function shiftsFound(mine: readonly BeatCosts[], theirs: readonly BeatCosts[]): 
 }
 
 function stretchSpread(beats: readonly BeatCosts[]): { se: number; n: number } {
-  const stretches: { seconds: number; metres: number }[] = [];
+  const stretches: { size: number; metres: number }[] = [];
   for (const { ledger } of beats) {
     let tack = '';
-    for (const { block, seconds, metres } of ledger.pieces) {
-      if (block.tack !== tack) stretches.push({ seconds: 0, metres: 0 });
+    for (const { block, metres } of ledger.pieces) {
+      if (block.tack !== tack) stretches.push({ size: 0, metres: 0 });
       tack = block.tack;
       const last = stretches.at(-1)!;
-      last.seconds += seconds;
+      last.size += Math.abs(metres.shifts);
       last.metres += metres.shifts;
     }
   }
   const n = stretches.length;
   const sum = (pick: (s: (typeof stretches)[number]) => number): number =>
     stretches.reduce((s, one) => s + pick(one), 0);
-  const rate =
+  const share =
     sum((s) => s.metres) /
     Math.max(
       1,
-      sum((s) => s.seconds),
+      sum((s) => s.size),
     );
-  const squares = sum((s) => (s.metres - rate * s.seconds) ** 2);
+  const squares = sum((s) => (s.metres - share * s.size) ** 2);
   return { se: n > 1 ? Math.sqrt((squares * n) / (n - 1)) : Infinity, n };
 }

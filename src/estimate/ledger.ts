@@ -29,6 +29,7 @@ export interface LedgerFigures {
   readonly entries: Readonly<Record<Cause, Figure>>;
   /** What the entries are made of, in time order: their sums, trim apart. */
   readonly pieces: readonly LedgerPiece[];
+  readonly overstood: readonly Overstood[];
 }
 
 /** What one piece of a leg cost, by cause. */
@@ -126,7 +127,7 @@ export function legLedger(input: LedgerInput): LedgerFigures {
   entries.speed -= trim.value;
   const available = sums.reduce((total, sum) => total + sum.best, 0);
   const made = sums.reduce((total, sum) => total + sum.madeMean, 0);
-  return { ...withErrors(input, entries, available, made), pieces: costs };
+  return { ...withErrors(input, entries, available, made), pieces: costs, overstood: input.overstood };
 }
 
 function nothing(): Record<Cause, number> {
@@ -353,7 +354,7 @@ function withErrors(
   entries: Record<Cause, number>,
   available: number,
   made: number,
-): Omit<LedgerFigures, 'pieces'> {
+): Omit<LedgerFigures, 'pieces' | 'overstood'> {
   const { sailing, tws, leg, rows, errors, reference } = input;
   const blocks = rows.blocks.map((block) => estimateBlock(sailing, tws, block, 0));
   const cross = blocks.map((b) => tackSign(b.tack) * b.seconds * b.speed * Math.sin(b.gamma * RAD) * RAD);

@@ -29,15 +29,15 @@ export interface RateDifference {
   readonly value: number;
   /** Its sampling error. [m/s] */
   readonly se: number;
-  /** Stretches of neighbouring blocks it rests on, less the two means. */
+  /** Blocks it rests on, less what was fitted. */
   readonly freedom: number;
 }
 
 /** Shares of the wind's part that are tried, on its stated variance; and correlations of a boat's neighbouring blocks. */
 const WIND_SCALES = [0.02, 0.1, 0.3, 1, 3, 10, 50];
 const KEEPINGS = [-0.4, -0.2, 0, 0.25, 0.5];
-/** Blocks of one boat further apart belong to different stretches. [s] */
-const STRETCH = 45;
+/** Two means, the scale and the keeping. */
+const PARAMETERS = 4;
 /** Length of a usual block: shorter ones are the noisier. [s] */
 const BLOCK = 30;
 
@@ -56,7 +56,7 @@ const BLOCK = 30;
  * [1] Patterson, Thompson, Recovery of inter-block information when block sizes are unequal, Biometrika 58, 1971.
  */
 export function rateDifference(first: readonly Rate[], second: readonly Rate[], wind: WindErrors): RateDifference {
-  const freedom = stretches(first) + stretches(second) - 2;
+  const freedom = first.length + second.length - PARAMETERS;
   if (first.length < 2 || second.length < 2 || freedom < 1) return { value: NaN, se: Infinity, freedom: 0 };
   const rates = [...first, ...second];
   const boats = rates.map((_, k) => (k < first.length ? 1 : 0));
@@ -71,11 +71,6 @@ export function rateDifference(first: readonly Rate[], second: readonly Rate[], 
     }
   }
   return best ? { value: best.difference, se: best.se, freedom } : { value: NaN, se: Infinity, freedom: 0 };
-}
-
-/** Runs of a boat's blocks without a manoeuvre between. */
-function stretches(rates: readonly Rate[]): number {
-  return rates.filter((rate, k) => k === 0 || rate.time - rates[k - 1].time > STRETCH).length;
 }
 
 /** Variance of all rates about their mean, the unit of the own part. [m2/s2] */
