@@ -26,13 +26,24 @@ export async function writeWhole(path: string, content: string | Uint8Array, opt
   const shown = forMessages(path);
   try {
     const target = await realTarget(path);
-    await mkdir(dirname(target), { recursive: true });
+    await makeFolder(dirname(target));
     const bytes = typeof content === 'string' ? Buffer.from(content, 'utf8') : content;
     if (await isSpecial(target)) writeBytes(target, 'w', bytes, false);
     else writeThenRename(target, bytes);
     if (options?.syncFolder) syncFolder(dirname(target));
   } catch (error) {
     throw asUserError(error, shown);
+  }
+}
+
+/** Makes a folder and those above it. On a read-only disk Node's own way says that nothing is there. */
+async function makeFolder(path: string): Promise<void> {
+  try {
+    await mkdir(path, { recursive: true });
+  } catch (error) {
+    if ((error as NodeJS.ErrnoException).code !== 'ENOENT') throw error;
+    if ((await kindOf(dirname(path))) === null) await makeFolder(dirname(path));
+    await mkdir(path);
   }
 }
 

@@ -7,6 +7,11 @@ if (first === '--version' || first === '-V') {
   const { version } = JSON.parse(readFileSync(new URL('../../package.json', import.meta.url), 'utf8')) as {
     version: string;
   };
+  process.stdout.on('error', ({ code, message }: NodeJS.ErrnoException) => {
+    if (code === 'EPIPE') return;
+    process.exitCode = 2;
+    process.stderr.write(`legwork: standard output: ${message}\n`);
+  });
   process.stdout.write(`${version}\n`);
 } else {
   const { main } = await import('./main.js');

@@ -1,12 +1,12 @@
 import { CommanderError } from 'commander';
-import { exitCodeOf, tellFailure } from './failures.js';
+import { asUserError, exitCodeOf, tellFailure } from './failures.js';
 import { dropTemporaries } from './files.js';
 import { makeProgram } from './program.js';
 import { guardOutput } from './terminal.js';
 
 /** Runs the program; the exit code is left in `process.exitCode`. */
 export async function main(args: readonly string[]): Promise<void> {
-  guardOutput();
+  guardOutput((error) => asUserError(error, 'standard output'));
   stopOn('SIGINT', 130);
   stopOn('SIGTERM', 143);
   stopOn('SIGHUP', 129);

@@ -3,11 +3,15 @@ import pc from 'picocolors';
 /** Set once the reader of standard output has gone: what follows is not for anyone. */
 let closed = false;
 
-/** A closed pipe is the reader's choice, not a fault. */
-export function guardOutput(): void {
+/**
+ * A closed pipe is the reader's choice, not a fault; a full disk behind standard output is the user's to mend.
+ *
+ * @param inWords Makes what the system refused into an error for the user.
+ */
+export function guardOutput(inWords: (error: unknown) => unknown): void {
   process.stdout.on('error', (error: NodeJS.ErrnoException) => {
-    if (error.code !== 'EPIPE') throw error;
     closed = true;
+    if (error.code !== 'EPIPE') throw inWords(error);
   });
   process.stderr.on('error', () => undefined);
 }
