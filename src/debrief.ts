@@ -52,7 +52,7 @@ export async function debrief(race: Race, open: OpenLog, options: DebriefOptions
   const rigHeight = models[0].spec.rig.centre;
   const reconciled = sailReconciled(race, logs, raw, { thresholds: options.thresholds ?? THRESHOLDS, rigHeight });
   const { clean, corrections, wind, course } = reconciled;
-  mustHaveBeat(reconciled, clean);
+  mustHaveBeat(reconciled, reasonsIn(logs, clean));
   const errors = errorModels(
     clean,
     wind,
@@ -80,7 +80,7 @@ export async function debrief(race: Race, open: OpenLog, options: DebriefOptions
     ...wind.issues,
     ...corrections.issues,
     ...trimIssues(race, trims),
-    ...assumptions(race),
+    ...assumptions(race, logs),
   ];
   const result = assemble({
     race,
@@ -90,7 +90,7 @@ export async function debrief(race: Race, open: OpenLog, options: DebriefOptions
     models,
     wind,
     corrections,
-    handWind: race.wind.some((w) => w.kind === 'by-hand'),
+    handWind: reconciled.handUsed,
     estimates,
     trims,
     judgements,
@@ -124,7 +124,7 @@ function sailReconciled(
   try {
     first = sailAll(race, logs, raw, null, options);
   } catch (error) {
-    throw error instanceof UserError ? withReasons(error, raw.issues) : error;
+    throw error instanceof UserError ? withReasons(error, reasonsIn(logs, raw)) : error;
   }
   const corrections = reconcileBoats(raw, first.wind, race.start, currentOf(race));
   const found = corrections.station ?? corrections.current;
@@ -148,31 +148,48 @@ function meanWindOfLap(estimates: readonly BoatEstimate[], lap: number): number 
 }
 
 /** Trouble with the input that can be why there is nothing to analyse. */
-const TELLING = new Set(['under-engine', 'wind-dead', 'wind-stuck', 'clock-steps', 'zone-suspect', 'file-truncated']);
+const TELLING = new Set([
+  'under-engine',
+  'wind-dead',
+  'wind-stuck',
+  'wind-no-overlap',
+  'clock-steps',
+  'zone-suspect',
+  'zone-assumed',
+  'file-truncated',
+]);
 
-function mustHaveBeat({ wind, issues }: SailedRace, clean: CleanTracks): void {
+const reasonsIn = (logs: ReadLogs, clean: CleanTracks): Issue[] => [
+  ...logs.issues,
+  ...clockIssues(logs),
+  ...clean.issues,
+];
+
+function mustHaveBeat({ wind, issues }: SailedRace, reasons: readonly Issue[]): void {
   if (wind.sailed.some((one) => one.legs.some((leg) => leg.kind === 'upwind'))) return;
   throw withReasons(
     new UserError('no upwind leg found in any track', {
       exitCode: 1,
       suggestion: 'Check the wind direction, `start` and `finish`; for practice without a course give `runs`.',
     }),
-    [...issues, ...clean.issues],
+    [...issues, ...reasons],
   );
 }
 
 /** The same error with what was seen of the input that can be its reason. */
 function withReasons(error: UserError, issues: readonly Issue[]): UserError {
-  const reasons = issues.filter(({ code }) => TELLING.has(code)).map(({ message }) => message);
+  const reasons = issues
+    .filter(({ code }) => TELLING.has(code))
+    .map(({ message, file }) => (file === undefined || message.includes(file) ? message : `${file}: ${message}`));
   if (reasons.length === 0 || error.exitCode !== 1) return error;
   const { exitCode, suggestion } = error;
-  return new UserError([error.message, ...new Set(reasons)].join('. '), {
+  return new UserError([error.message, ...new Set(reasons)].join('\n  '), {
     exitCode,
     ...(suggestion === undefined ? {} : { suggestion }),
   });
 }
 
-function assumptions(race: Race): Issue[] {
+function assumptions(race: Race, logs: ReadLogs): Issue[] {
   const issues: Issue[] = [];
   if (race.boatAssumed) {
     issues.push({
@@ -180,12 +197,14 @@ function assumptions(race: Race): Issue[] {
       message: 'No boat was named: the built-in single-hander stands in. Name it with `boat` or --boat.',
     });
   }
-  for (const wind of race.wind) {
-    if (wind.kind !== 'log' || wind.heightM !== undefined) continue;
+  // A log that a boat of the race carried at its masthead is not among these.
+  for (const { reference, recording } of logs.winds) {
+    const hasSpeed = recording.channels.tws ?? recording.channels.aws;
+    if (!hasSpeed || reference.heightM !== undefined) continue;
     issues.push({
       code: 'wind-height-unknown',
       message: 'The height of this wind log is not given: its speed is taken as the wind at the rig.',
-      file: wind.file,
+      file: reference.file,
     });
   }
   return issues;

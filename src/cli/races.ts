@@ -75,8 +75,7 @@ async function prepare(plain: RaceDraft, names: FileNames, options: RaceOptions,
   const innerNames = new Map<string, string>();
   let firstTime: number | null = null;
   for (const file of new Set([...(dayWanted ? [first] : []), ...unnamed])) {
-    const zone = options.zone ?? draft.content.zone;
-    const seen = await glance(file, names.pathOf(file), { ...importOptions(options), ...(zone ? { zone } : {}) });
+    const seen = await glance(file, names.pathOf(file), parts.readingOf(draft, file));
     innerNames.set(file, seen.inner);
     if (file === first) firstTime = seen.firstTime;
   }

@@ -212,6 +212,33 @@ export function whereNamed(draft: RaceDraft, file: string): string {
   return draft.where(at < 0 ? [] : ['wind', at]);
 }
 
+/** How a boat's log is to be read: what it says for itself, else its boat, else the race. */
+export function readingOf(
+  draft: RaceDraft,
+  file: string,
+): { zone?: string; date?: string; columns?: Record<string, string> } {
+  const { content } = draft;
+  const logsOf = (logs: WrittenLogs | null | undefined): (string | WrittenReading)[] =>
+    logs === undefined || logs === null ? [] : Array.isArray(logs) ? logs : [logs];
+  for (const boat of content.boats) {
+    for (const log of [...logsOf(boat.track), ...logsOf(boat.instruments)]) {
+      if ((typeof log === 'string' ? log : log.file) !== file) continue;
+      const own: Partial<WrittenReading> = typeof log === 'string' ? {} : log;
+      const zone = own.zone ?? boat.zone ?? content.zone;
+      const date = own.date ?? content.date;
+      return { ...(zone && { zone }), ...(date && { date }), ...(own.columns && { columns: own.columns }) };
+    }
+  }
+  return {};
+}
+
+interface WrittenReading {
+  readonly file: string;
+  readonly zone?: string | null | undefined;
+  readonly date?: string | null | undefined;
+  readonly columns?: Record<string, string> | null | undefined;
+}
+
 /** Files of a `track` or `instruments` value. */
 export function filesOf(logs: WrittenLogs | null | undefined): string[] {
   if (logs === undefined || logs === null) return [];

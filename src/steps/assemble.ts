@@ -101,20 +101,34 @@ function windOf(a: Assembly): Result['wind'] {
     se: wind.directionInferred ? 2 : 1,
     sys: wind.directionInferred ? 0 : (offset?.se ?? wind.sources[0].source.accuracyDir),
   };
+  const mean = known.reduce((sum, s) => sum + s, 0) / known.length;
   const speed = {
-    value: known.reduce((sum, s) => sum + s, 0) / known.length,
-    se: 0.02 * (known[0] ?? NaN),
-    sys: (wind.sources[0]?.source.accuracySpeed ?? 0) * (known[0] ?? NaN),
+    value: mean,
+    se: 0.02 * mean,
+    sys: (wind.sources[0]?.source.accuracySpeed ?? 0) * mean,
   };
+  const bases = new Set(a.boats.map((_, k) => windBasis(a, k)));
+  const basis = bases.size === 1 ? [...bases][0] : 'measured';
   return {
     sources: [...names],
-    twd_deg: quantity(direction, wind.directionInferred ? 'inferred' : 'measured'),
-    tws_kn: known.length > 0 ? knotsQuantity(speed, handWind ? 'assumed' : 'measured') : null,
+    twd_deg: quantity(direction, wind.directionInferred ? 'inferred' : basis),
+    tws_kn: known.length > 0 ? knotsQuantity(speed, handWind ? 'assumed' : basis) : null,
   };
 }
 
+/** A station measures the true wind; from a moving boat it is derived. */
+function windBasis({ wind }: Assembly, boat: number): Basis {
+  const own = wind.sources.filter(({ source }) => source.boat === boat);
+  const used = own.length > 0 ? own : wind.sources.filter(({ source }) => source.boat < 0);
+  return (used.length > 0 ? used : wind.sources).every(({ source }) => source.kind === 'on-board')
+    ? 'derived'
+    : 'measured';
+}
+
+/** Of the first station where there is one: what the boats measured is theirs. */
 function firstOffset(wind: FoundWind): { offset: number; se: number } | null {
-  return wind.offsets.find((offset) => offset !== null) ?? null;
+  const station = wind.offsets.find((offset, k) => offset !== null && wind.sources[k]?.source.kind === 'station');
+  return station ?? wind.offsets.find((offset) => offset !== null) ?? null;
 }
 
 function twdOffset(wind: FoundWind): Q {
@@ -162,7 +176,12 @@ function legResult(estimate: LegEstimate, boat: number, index: number, a: Assemb
     tacks: estimate.tacks,
     gybes: estimate.gybes,
     vmg_kn: knotsQuantity(estimate.vmg, inferred ? 'inferred' : 'derived'),
-    steady: all ? steadyOf(estimate, a.trims[boat].legs[index], inferred) : null,
+    steady: all
+      ? steadyOf(estimate, a.trims[boat].legs[index], {
+          inferred,
+          tws: a.handWind ? 'assumed' : windBasis(a, boat),
+        })
+      : null,
     optimum: judged.optimum && optimumResult(judged.optimum),
     ceiling_vmg_kn: all ? knotsQuantity(all.ceiling, 'derived') : null,
     efficiency: quantity(judged.efficiency, 'inferred'),
@@ -172,10 +191,18 @@ function legResult(estimate: LegEstimate, boat: number, index: number, a: Assemb
   };
 }
 
-function legNotes({ leg, all }: LegEstimate, judged: LegJudgement, trim: LegTrim | null): string[] {
-  if (leg.kind !== 'upwind') return ['settled figures are for beats only'];
-  if (!all) return ['no settled close-hauled sailing on this leg'];
+function legNotes(estimate: LegEstimate, judged: LegJudgement, trim: LegTrim | null): string[] {
+  const { leg, all, port, starboard } = estimate;
+  if (leg.kind === 'reach') return ['settled figures are for beats only', 'no VMG on a reach'];
+  if (leg.kind === 'downwind') {
+    return ['settled figures are for beats only', ...(judged.optimum ? [] : ['wind speed unknown'])];
+  }
+  if (!all) {
+    const calm = Number.isNaN(estimate.twd) ? ['wind unknown: no wind log reaches this leg'] : [];
+    return ['no settled close-hauled sailing on this leg', ...calm];
+  }
   const notes: string[] = [];
+  if (!port || !starboard) notes.push(`no settled sailing on ${port ? 'starboard' : 'port'} tack`);
   if (Number.isNaN(all.tws.value)) notes.push('wind speed unknown');
   if (judged.ledger && !trim?.loss) {
     notes.push('trim: leeway was not measured closely enough to tell it from speed, so its metres stay in speed');
@@ -206,30 +233,43 @@ function ledgerResult(ledger: LedgerFigures, reference: Ledger['reference']): Le
   };
 }
 
+/** Standard deviation of a direction of which nothing is known: uniform over the circle, 180 / sqrt(3). [deg] */
+const ANY = 180 / Math.sqrt(3);
+
 function currentResult({ current }: Corrections): Result['corrections']['current'] {
   if (!current) return null;
   const { east, north } = current;
   const drift = Math.hypot(east.value, north.value);
   const se = Math.hypot(east.se, north.se) / Math.SQRT2;
   return {
-    set_deg: quantity({ value: directionOf(east.value, north.value), se: (180 / Math.PI) * (se / drift) }, 'inferred'),
+    set_deg: quantity(
+      { value: directionOf(east.value, north.value), se: Math.min(ANY, (180 / Math.PI) * (se / drift)) },
+      'inferred',
+    ),
     drift_kn: knotsQuantity({ value: drift, se }, 'inferred'),
   };
 }
 
-function steadyOf(estimate: LegEstimate, trim: LegTrim | null, inferred: boolean): Steady {
+/** What the wind of a leg rests on. */
+interface WindBasis {
+  /** Its direction comes from the tracks. */
+  readonly inferred: boolean;
+  readonly tws: Basis;
+}
+
+function steadyOf(estimate: LegEstimate, trim: LegTrim | null, basis: WindBasis): Steady {
   const side = (figures: SteadyFigures | null, own: Trim | null | undefined): TackSide | null =>
-    figures && sideOf(figures, null, own ?? null, inferred);
+    figures && sideOf(figures, null, own ?? null, basis);
   return {
-    ...sideOf(estimate.all!, estimate.vane, trim?.all ?? null, inferred),
-    tacking_angle_deg: quantity(estimate.tackingAngle, inferred ? 'inferred' : 'derived'),
+    ...sideOf(estimate.all!, estimate.vane, trim?.all ?? null, basis),
+    tacking_angle_deg: quantity(estimate.tackingAngle, basis.inferred ? 'inferred' : 'derived'),
     port: side(estimate.port, trim?.port),
     starboard: side(estimate.starboard, trim?.starboard),
   };
 }
 
-function sideOf(figures: SteadyFigures, vane: Figure | null, trim: Trim | null, inferred: boolean): TackSide {
-  const basis: Basis = inferred ? 'inferred' : 'derived';
+function sideOf(figures: SteadyFigures, vane: Figure | null, trim: Trim | null, wind: WindBasis): TackSide {
+  const basis: Basis = wind.inferred ? 'inferred' : 'derived';
   const leeway = trim?.leeway ?? null;
   const sheeting = trim?.sheeting ?? null;
   return {
@@ -237,7 +277,7 @@ function sideOf(figures: SteadyFigures, vane: Figure | null, trim: Trim | null, 
     gamma_deg: quantity(figures.gamma, basis),
     speed_kn: knotsQuantity(figures.speed, 'measured'),
     vmg_kn: knotsQuantity(figures.vmg, basis),
-    tws_kn: knotsQuantity(figures.tws, 'measured'),
+    tws_kn: knotsQuantity(figures.tws, wind.tws),
     aws_kn: knotsQuantity(figures.aws, basis),
     beta_deg: quantity(figures.beta, basis),
     awa_deg: vane ? quantity(vane, 'measured') : quantity(trim?.awa ?? null, 'inferred'),

@@ -102,7 +102,8 @@ function giveApparentWind(logs: ReadLogs): ReadLogs {
     const isTrue = channels.twd ?? channels.twdMagnetic;
     const apparentOnly = !isTrue && channels.awa && countFixes(wind.recording) === 0;
     if (!isTrue && !channels.awa) {
-      throw new UserError(`${wind.reference.file}: no wind in this log`, {
+      const what = channels.tws ? 'a wind speed but no wind direction in this log' : 'no wind in this log';
+      throw new UserError(`${wind.reference.file}: ${what}`, {
         exitCode: 2,
         suggestion: 'A wind log needs a wind direction and speed, or a moving boat’s apparent wind.',
       });

@@ -13,11 +13,14 @@ import { findWind, type FoundWind } from './find-wind.js';
 import type { ReadLogs } from './read-logs.js';
 import type { Corrections } from './reconcile-boats.js';
 import { sail, type CurrentAt, type Sailed } from './sail.js';
+import { windGaps } from './wind-gaps.js';
 import { windSources } from './wind-sources.js';
 
 export interface SailedRace {
   readonly wind: FoundWind;
   readonly course: CoursePlaces;
+  /** True where a wind told by hand is used. */
+  readonly handUsed: boolean;
   readonly issues: readonly Issue[];
 }
 
@@ -40,9 +43,11 @@ export function sailAll(
   { thresholds, rigHeight }: SailOptions,
 ): SailedRace {
   const tracks = clean.boats.map((boat) => boat.track);
-  const { sources, issues: windIssues } = windSources(race, logs, clean, corrections, (height) =>
-    logLawFactor(height, rigHeight),
-  );
+  const {
+    sources,
+    handUsed,
+    issues: windIssues,
+  } = windSources(race, logs, clean, corrections, (height) => logLawFactor(height, rigHeight));
   const engine = engineRows(clean.boats, sources);
   const course = coursePlaces(race, clean.frame);
   const current = currentOf(race) ?? foundCurrent(corrections);
@@ -59,7 +64,13 @@ export function sailAll(
   const wind = findWind(tracks, sources, (boat, at) => sailIn(boat, at, null), corrections?.station ?? null);
   const bottom = course.leeward ? null : leewardOf(wind.sailed);
   const sailed = bottom ? wind.atBoats.map((at, boat) => sailIn(boat, at, bottom)) : wind.sailed;
-  return { wind: { ...wind, sailed }, course, issues: [...windIssues, ...engine.issues] };
+  const sailors = clean.boats.map(({ track, logs: { reference, trackFiles } }) => ({
+    name: reference.name,
+    file: trackFiles[0] ?? '',
+    track,
+  }));
+  const gaps = windGaps(sailors, sources, wind.atBoats);
+  return { wind: { ...wind, sailed }, course, handUsed, issues: [...windIssues, ...engine.issues, ...gaps] };
 }
 
 function foundCurrent(corrections: Corrections | null): CurrentAt | null {

@@ -12,6 +12,13 @@ import type { CleanTracks } from './clean-tracks.js';
 import type { ReadLogs, WindLog } from './read-logs.js';
 import type { Corrections } from './reconcile-boats.js';
 
+export interface WindSources {
+  readonly sources: readonly WindSource[];
+  /** True where a wind told by hand is used. */
+  readonly handUsed: boolean;
+  readonly issues: readonly Issue[];
+}
+
 /**
  * Every source of wind of a race: the boats' own, stations and coach boats, hand readings.
  *
@@ -24,7 +31,7 @@ export function windSources(
   clean: CleanTracks,
   corrections: Corrections | null,
   heightFactor: (height: number) => number,
-): { sources: readonly WindSource[]; issues: readonly Issue[] } {
+): WindSources {
   const sources: WindSource[] = [];
   const issues: Issue[] = [];
   clean.boats.forEach((boat, k) => {
@@ -43,10 +50,35 @@ export function windSources(
     from: Math.min(...clean.boats.map((boat) => boat.track.t0)),
     to: Math.max(...clean.boats.map((boat) => boat.track.t0 + boat.track.n)),
   };
-  for (const wind of race.wind) {
-    if (wind.kind === 'by-hand') sources.push(handSource(wind.readings, wind, span));
-  }
-  return { sources, issues };
+  const hands = race.wind.flatMap((wind) => (wind.kind === 'by-hand' ? [handSource(wind.readings, wind, span)] : []));
+  const told = withHand(sources, hands);
+  return { ...told, issues: [...issues, ...told.issues] };
+}
+
+/** Winds told by hand: one stands in where no log tells the wind, or its speed where the logs have none. */
+function withHand(logged: readonly WindSource[], hands: readonly WindSource[]): WindSources {
+  if (hands.length === 0) return { sources: logged, handUsed: false, issues: [] };
+  const handUsed = !logged.some((source) => source.hasSpeed);
+  const [hand] = hands;
+  const more = hands.length > 1 && handUsed;
+  const message = more
+    ? 'More than one wind is told by hand: only the first is used. Give `readings` with times for a wind that changed.'
+    : 'A wind log is there: the wind told by hand is not used.';
+  const issues = more || !handUsed ? [{ code: 'wind-unused', message }] : [];
+  if (!handUsed) return { sources: logged, handUsed, issues };
+  if (logged.length === 0) return { sources: [hand], handUsed, issues };
+  return { sources: logged.map((source) => ({ ...source, ...speedOn(source, hand) })), handUsed, issues };
+}
+
+/** The speed told by hand on the seconds of a log without any. */
+function speedOn(log: WindSource, hand: WindSource): Pick<WindSource, 'sums' | 'hasSpeed' | 'accuracySpeed'> {
+  const of = (sums: Float64Array): Float64Array =>
+    Float64Array.from({ length: log.n + 1 }, (_, i) => sums[Math.max(0, Math.min(hand.n, i + log.t0 - hand.t0))]);
+  return {
+    sums: { ...log.sums, speed: of(hand.sums.speed), speeds: of(hand.sums.speeds) },
+    hasSpeed: hand.hasSpeed,
+    accuracySpeed: hand.accuracySpeed,
+  };
 }
 
 /** An error of the vane turns the true wind by about this much more than itself upwind: from the wind triangle. */
