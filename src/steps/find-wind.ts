@@ -1,4 +1,3 @@
-import { circularMean, directionOf } from '../math/angles.js';
 import { median } from '../math/median.js';
 import type { Issue } from '../recording/issues.js';
 import { UserError } from '../recording/issues.js';
@@ -13,9 +12,9 @@ import {
   type OffsetEstimate,
 } from '../wind/align.js';
 import { uncorrected, windAtBoat, type CorrectedSource, type WindAtBoat } from '../wind/field.js';
-import { bisectorOf, guessWindDirection, windFromLooks, type DirectionLook } from '../wind/from-tracks.js';
-import { windSums, type WindSource } from '../wind/source.js';
+import type { WindSource } from '../wind/source.js';
 import type { Sailed } from './sail.js';
+import { windFromTracks } from './wind-from-tracks.js';
 
 export interface FoundWind {
   readonly sources: readonly CorrectedSource[];
@@ -187,108 +186,6 @@ function tackDifferences(one: Sailed, boat: number): { boat: number; starboard: 
     const port = mean(side('port'));
     return Number.isNaN(starboard + port) ? [] : [{ boat, starboard, port }];
   });
-}
-
-/** One tack's bisector is off by helm wander and by what a sailor's two tacks differ: common practice, no source. [deg] */
-const BISECTOR_SE = 2.5;
-
-function windFromTracks(tracks: readonly Track[], hand: readonly WindSource[], sailBoat: SailBoat): FoundWind {
-  const span = { from: Math.min(...tracks.map((t) => t.t0)), to: Math.max(...tracks.map((t) => t.t0 + t.n)) };
-  const [byHand] = hand;
-  const guess = byHand ? NaN : guessWindDirection(tracks);
-  if (!byHand && Number.isNaN(guess)) {
-    throw new UserError('no wind log, and too few tacks to find the wind direction from the tracks', {
-      exitCode: 1,
-      suggestion: 'Give a wind log with --wind FILE, or a wind by hand with --wind DIRECTION@KNOTS.',
-    });
-  }
-  const first = byHand ?? constantSource(guess, span);
-  let corrected: CorrectedSource[] = [uncorrected(first)];
-  let atBoats = tracks.map((track, boat) => windAtBoat(boat, track, corrected));
-  let sailed = atBoats.map((wind, boat) => sailBoat(boat, wind));
-  for (let round = 0; round < ROUNDS + 1; round++) {
-    const looks = sailed.flatMap((one) => tackLooks(one));
-    if (byHand) looks.push(...handLooks(byHand, span));
-    const found = windFromLooks(looks, span);
-    if (!found) break;
-    const source = byHand ? { ...found.source, ...speedOf(byHand, found.source) } : found.source;
-    corrected = [uncorrected(source)];
-    atBoats = tracks.map((track, boat) => windAtBoat(boat, track, corrected));
-    sailed = atBoats.map((wind, boat) => sailBoat(boat, wind));
-  }
-  return {
-    sources: corrected,
-    atBoats,
-    sailed,
-    offsets: [null],
-    lags: [null],
-    directionInferred: true,
-    issues: [],
-  };
-}
-
-/** Speed of the hand wind on the rows of the direction found from tracks. */
-function speedOf(hand: WindSource, tracks: WindSource): Pick<WindSource, 'sums' | 'hasSpeed' | 'accuracySpeed'> {
-  const shift = tracks.t0 - hand.t0;
-  const at = (sums: Float64Array, i: number): number => sums[Math.max(0, Math.min(hand.n, i + shift))];
-  const n = tracks.n + 1;
-  const speed = Float64Array.from({ length: n }, (_, i) => at(hand.sums.speed, i) - at(hand.sums.speed, 0));
-  const speeds = Float64Array.from({ length: n }, (_, i) => at(hand.sums.speeds, i) - at(hand.sums.speeds, 0));
-  return {
-    sums: { ...tracks.sums, speed, speeds },
-    hasSpeed: hand.hasSpeed,
-    accuracySpeed: hand.accuracySpeed,
-  };
-}
-
-function handLooks(hand: WindSource, span: { from: number; to: number }): DirectionLook[] {
-  const middle = (span.from + span.to) / 2;
-  const i = Math.max(0, Math.min(hand.n - 1, Math.round(middle - hand.t0)));
-  const { east, north } = hand.sums;
-  const direction = directionOf(east[i + 1] - east[i], north[i + 1] - north[i]);
-  return [{ time: middle, direction, se: Math.max(3, hand.accuracyDir) }];
-}
-
-function constantSource(direction: number, span: { from: number; to: number }): WindSource {
-  const n = Math.ceil(span.to - span.from) + 1;
-  return {
-    kind: 'tracks',
-    file: '',
-    boat: -1,
-    t0: Math.floor(span.from),
-    n,
-    place: null,
-    accuracyDir: 10,
-    accuracySpeed: 1,
-    hasSpeed: false,
-    window: 1,
-    sums: windSums(new Float64Array(n).fill(direction), new Float64Array(n).fill(NaN)),
-  };
-}
-
-/** Bisectors of the courses before and after each tack of a boat. */
-function tackLooks(one: Sailed): DirectionLook[] {
-  const { sailing } = one;
-  const usual = one.usual;
-  return one.manoeuvres.flatMap((manoeuvre) => {
-    if (manoeuvre.kind !== 'tack') return [];
-    const before = steadyCourse(one, Math.max(0, manoeuvre.entry - 20), manoeuvre.entry, usual);
-    const after = steadyCourse(one, manoeuvre.at + 12, Math.min(sailing.n, manoeuvre.at + 35), usual);
-    if (Number.isNaN(before + after)) return [];
-    return [{ time: manoeuvre.time, direction: bisectorOf(before, after), se: BISECTOR_SE }];
-  });
-}
-
-/** Median-like course over rows with way on; NaN when fewer than eight. */
-function steadyCourse(one: Sailed, from: number, to: number, usual: number): number {
-  const { ux, uy, speed, n } = one.sailing;
-  const courses: number[] = [];
-  for (let i = from; i < Math.min(to, n); i++) {
-    if (speed[i] > 0.6 * usual) courses.push(directionOf(ux[i], uy[i]));
-  }
-  if (courses.length < 8) return NaN;
-  const { mean, resultant } = circularMean(courses);
-  return resultant > 0.96 ? mean : NaN;
 }
 
 /** Typical distance of the boats from the nearest sensor. [m] */
