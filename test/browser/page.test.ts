@@ -9,6 +9,7 @@ import { toKnots } from '../../src/math/units.js';
 import { comparePage, debriefPage } from '../../src/report/page.js';
 import { seasonPage } from '../../src/report/season-page.js';
 import { season } from '../../src/season.js';
+import { sampleLadders } from '../report/sample-ladders.js';
 import { bareSample, noWindSpeedSample, renamed, sample, type Sample } from '../report/sample.js';
 import { inventedSeason } from '../season/invented-season.js';
 import { openBrowser } from './browser.js';
@@ -21,7 +22,7 @@ const HOSTILE = '</script><img src=x onerror=alert(1)>';
 const full = sample();
 const FILES: Readonly<Record<string, string>> = {
   full: debriefPage(full.result, full.series),
-  compare: comparePage(full.result, full.series),
+  compare: comparePage(full.result, full.series, sampleLadders(full)),
   bare: pageOf(bareSample()),
   nowind: pageOf(noWindSpeedSample()),
   hostile: pageOf(renamed(full, HOSTILE)),
@@ -201,6 +202,31 @@ describe.skipIf(!browser)('the page in a browser', () => {
     await close();
   });
 
+  test('the ladder follows the cursor: its mark stands at the gain of that second, and a touch on it moves the cursor', async () => {
+    const { page, trouble, close } = await open('compare');
+    const { from, lead, wind } = sampleLadders(full)[0].legs[0];
+    const [a, b] = full.series.boats;
+    for (const after of [60, 333, 500]) {
+      await scrubTo(page, from + after);
+      const [svg, dot] = await page.evaluate(() => {
+        const picture = document.querySelector('svg.ladder')!;
+        return [picture.getAttribute('data-ladder')!, picture.querySelector('.gain-mark')!.getAttribute('cx')!];
+      });
+      const { gain } = JSON.parse(svg) as { gain: [number, number] };
+      const [i, j] = [from + after - a.t0, from + after - b.t0];
+      const apart = (a.x[i] - b.x[j]) * wind.east + (a.y[i] - b.y[j]) * wind.north;
+      expect((Number(dot) - gain[0]) / gain[1]).toBeCloseTo(apart, 0);
+      expect(Math.abs((Number(dot) - gain[0]) / gain[1] - lead - (apart - lead))).toBeLessThan(0.3);
+    }
+    expect(await page.locator('svg.ladder').nth(1).locator('.rung-mark').count()).toBe(0); // not on that beat
+    const pin = page.locator('svg.ladder').first().locator('.ladder-tack').nth(1);
+    const at = Number(await pin.getAttribute('data-at'));
+    await pin.click();
+    await expect.poll(async () => Math.abs(Number(await page.locator('#cursor').inputValue()) - at)).toBeLessThan(8);
+    expect(trouble).toEqual([]);
+    await close();
+  });
+
   test('steps go from tack to tack', async () => {
     const { page, close } = await open('full');
     const tacks = full.series.boats.flatMap((b) => b.manoeuvres.filter((m) => m.kind === 'tack' || m.kind === 'gybe').map((m) => b.t0 + m.at)).sort((a, b) => a - b); // prettier-ignore
@@ -287,10 +313,16 @@ describe.skipIf(!browser)('the page in a browser', () => {
 
   test.each(['full', 'compare'])('%s: two boats and two laps print on two leaves before the appendix', async (name) => {
     const { page, close } = await open(name);
+    const leaves = async (): Promise<number> => {
+      const pdf = (await page.pdf({ preferCSSPageSize: true, printBackground: true })).toString('latin1');
+      return pdf.match(/\/Type\s*\/Page\b(?!s)/g)!.length;
+    };
     await page.waitForSelector('html.live');
     await page.evaluate(() => document.querySelector('.after')!.remove());
-    const pdf = (await page.pdf({ preferCSSPageSize: true, printBackground: true })).toString('latin1');
-    expect(pdf.match(/\/Type\s*\/Page\b(?!s)/g)).toHaveLength(2);
+    // The ladder of a comparison has the third leaf to itself.
+    expect(await leaves()).toBe(name === 'compare' ? 3 : 2);
+    await page.evaluate(() => document.querySelector('#ladder')?.remove());
+    expect(await leaves()).toBe(2);
     await close();
   });
 

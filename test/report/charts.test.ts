@@ -11,6 +11,7 @@ import {
   worldTransform,
   type MapView,
 } from '../../src/report/charts/map-view.js';
+import { ladder } from '../../src/report/charts/ladder.js';
 import { pairBars } from '../../src/report/charts/pair-bars.js';
 import { polar } from '../../src/report/charts/polar.js';
 import { portStarboard } from '../../src/report/charts/port-starboard.js';
@@ -21,9 +22,11 @@ import { trackMap } from '../../src/report/charts/track-map.js';
 import { steps, waterfall } from '../../src/report/charts/waterfall.js';
 import { windStrip } from '../../src/report/charts/wind-strip.js';
 import { causeTotals, settledMean } from '../../src/report/figures.js';
+import { climbOf } from '../../src/report/rungs.js';
 import { shiftsOf } from '../../src/report/shifts.js';
 import type { Quantity } from '../../src/result/result.js';
 import { bareSample, sample } from './sample.js';
+import { sampleLadders } from './sample-ladders.js';
 
 const { result, series } = sample();
 const [corrie, linnet] = result.boats;
@@ -55,6 +58,7 @@ const PICTURES: Readonly<Record<string, () => string>> = {
   'angle-distribution': () => angleDistribution(series.boats, { best: 43.8, bestWords: 'day’s best' }),
   'wind-strip': () => windStrip(series.boats[0], shiftsOf(series.boats[0].twd)),
   'tack-overlay': () => tackOverlay(series.boats[1]),
+  ladder: () => ladder(climbOf(sampleLadders({ result, series })[0].legs[0], [series.boats[0], series.boats[1]], [0, 1])), // prettier-ignore
   'pair-bars': () => pairBars([{ name: 'VMG', value: q(0.2, 0.05) }, { name: 'by height', value: null }], { first: 'Corrie', second: 'Linnet' }), // prettier-ignore
 };
 

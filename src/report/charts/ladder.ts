@@ -176,7 +176,7 @@ function gainPanel(climb: Climb, sheet: LadderSheet, x: Scale, up: (rung: number
       return row ? dot(index[tack.boat], x(tack.gain), up(heightOf(row)), 3.2, boatPaint(index[tack.boat]).colour, 1) : '';
     }),
     footAxis(x, bottom, { count: 4 }),
-    text((left + right) / 2, bottom + 34, 'm gained: line all, dashes by shifts', { anchor: 'middle', size: 11, italic: true, fill: SOFT }),
+    text(right, bottom + 34, 'm gained: line all, dashes by shifts', { anchor: 'end', size: 11, italic: true, fill: SOFT }),
     text(sheet.tracks[0], bottom + 34, 'm to windward', { size: 11, italic: true, fill: SOFT }),
   ].join(''); // prettier-ignore
 }

@@ -3,15 +3,16 @@ import type { LadderLeg } from '../../between/ladder.js';
 import type { Result } from '../../result/result.js';
 import type { RaceSeries } from '../../result/series.js';
 import { ladder as ladderPicture } from '../charts/ladder.js';
-import { duration, number, plural, time } from '../format.js';
+import { duration, number, time } from '../format.js';
 import { html, nameOf, type Part, type Safe } from '../html.js';
 import { climbOf, shareOnTheRight, type Climb, type RungTack } from '../rungs.js';
 import { term } from '../terms.js';
 import { figure, section, table } from './figure.js';
+import { ledgerGapTable } from './ledger-gaps.js';
 import { swatch } from './masthead.js';
 
-/** Beats drawn at most: a fleet has more pairs than a page can carry. The others keep their row of figures. */
-const MOST_DRAWN = 36;
+/** Beats drawn at most, whole pairs: a fleet has more pairs than a page can carry. The others get a row of figures. */
+const MOST_DRAWN = 12;
 /** What the positions of two receivers wander against one another on a beat (common practice, no source). [m] */
 const WANDER = 5;
 /** Share of a beat on one side that is told as being on that side. */
@@ -27,16 +28,18 @@ function wordsOf(climb: Climb): Safe {
   const [first, second] = leg.gain >= 0 ? names : ([names[1], names[0]] as const);
   const way = leg.gain >= 0 ? 1 : -1;
   const { sailing, manoeuvres, shifts, rest } = leg.parts;
-  const ahead =
+  const lead =
     Math.abs(leg.lead) < 1
-      ? 'level at the start of it'
-      : html`${nameOf(leg.lead * way > 0 ? first : second)} ${metres(Math.abs(leg.lead))} ahead at the start of it`;
+      ? 'they began level'
+      : html`${nameOf(leg.lead > 0 ? names[0] : names[1])} began ${metres(Math.abs(leg.lead))} ahead`;
   const doubt =
     Math.abs(leg.gain) < WANDER && ' Receivers wander that much against one another: call it no gain at all.';
-  return html`In ${duration(leg.to - leg.from)} minutes ${nameOf(first)} gained ${metres(Math.abs(leg.gain))} on
-  ${nameOf(second)}, ${ahead}. Sailing made ${metres(sailing * way, true)} of it, the time in which either was tacking
-  or turning ${metres(manoeuvres * way, true)}; ${term('shift', 'shifts')} ${metres(shifts * way, true)}; tracks alone
-  show ${metres(rest * way, true)}.${doubt} ${sideOf(climb)}`;
+  return html`${nameOf(first)} gained ${metres(Math.abs(leg.gain))} on ${nameOf(second)} in
+  ${duration(leg.to - leg.from)} minutes; ${lead}. It is made of sailing, ${metres(sailing * way, true)}, and of the
+  moments when either tacked or turned, ${metres(manoeuvres * way, true)}. Apart from that the
+  ${term('shift', 'shifts')} gave her
+  ${metres(shifts * way, true)}${Math.abs(rest) >= 0.5 && html`; ${metres(rest * way, true)} is not explained`}.${doubt}
+  ${sideOf(climb)}`;
 }
 
 function sideOf(climb: Climb): Part {
@@ -44,8 +47,8 @@ function sideOf(climb: Climb): Part {
   if (!Number.isFinite(share)) return null;
   const [first, second] = climb.names;
   const [name, part] = share >= 0.5 ? [first, share] : [second, 1 - share];
-  if (part < CLEARLY) return html`They shared the two sides of the beat.`;
-  return html`${nameOf(name)} was to the right for ${number(100 * part, 0)}&nbsp;% of it.`;
+  if (part < CLEARLY) return html`Each was to the right of the other for part of the beat.`;
+  return html`${nameOf(name)} was the boat to the right for ${number(100 * part, 0)}&nbsp;% of the beat.`;
 }
 
 const ONTO = { port: 'port', starboard: 'starboard' } as const;
@@ -75,26 +78,20 @@ function tackTable(climb: Climb): Safe {
   );
 }
 
+const sumOf = (values: readonly number[]): number => values.reduce((sum, value) => sum + value, 0);
+
 /** What was gained and of what, a beat a column; shifts under a line of their own. */
 function partsTable({ boats, legs }: PairLadder): Safe {
   const row = (words: Part, get: (leg: LadderLeg) => number): Part[] => [
     words,
-    ...legs.map((leg) => number(get(leg), 0, true)),
-    ...(legs.length > 1
-      ? [
-          number(
-            legs.reduce((sum, leg) => sum + get(leg), 0),
-            0,
-            true,
-          ),
-        ]
-      : []),
+    ...[...legs.map(get), ...(legs.length > 1 ? [sumOf(legs.map(get))] : [])].map((value) => number(value, 0, true)),
   ];
   const rows = [
     row('By sailing', ({ parts }) => parts.sailing),
     row('While either tacked or turned', ({ parts }) => parts.manoeuvres),
+    row(html`<b>Before shifts</b>`, ({ parts }) => parts.sailing + parts.manoeuvres),
     row(html`By ${term('shift', 'shifts')}`, ({ parts }) => parts.shifts),
-    row('Tracks alone', ({ parts }) => parts.rest),
+    row('Not explained', ({ parts }) => parts.rest),
     row(html`<b>Gained on the beat</b>`, ({ gain }) => gain),
   ];
   return table(
@@ -124,21 +121,47 @@ function climbPlate(climb: Climb): Safe {
   });
 }
 
+/** One pair: a plate a beat, what the gains were made of, and where one lost more than the other. */
+function pairParts(pair: PairLadder, result: Result, series: RaceSeries, alone: boolean): Safe {
+  const [first, second] = pair.boats.map((name) => result.boats.find((boat) => boat.name === name));
+  return html`${!alone && html`<h3>${nameOf(pair.boats[0])} and ${nameOf(pair.boats[1])}</h3>`}
+    <div class="plates">${climbsOf(pair, series).map(climbPlate)}</div>
+    <div class="plates">${partsTable(pair)} ${first && second && ledgerGapTable(first, second)}</div>`;
+}
+
+/** Pairs that are not drawn, a row each: metres over all beats. */
+function restTable(pairs: readonly PairLadder[]): Safe {
+  const rows = pairs.map(({ boats, legs }): Part[] => {
+    const sum = (get: (leg: LadderLeg) => number): Part => number(sumOf(legs.map(get)), 0, true);
+    return [
+      html`${nameOf(boats[0])} on ${nameOf(boats[1])}`,
+      sum(({ parts }) => parts.sailing),
+      sum(({ parts }) => parts.manoeuvres),
+      sum(({ parts }) => parts.shifts),
+      sum(({ gain }) => gain),
+    ];
+  });
+  return html`<p class="small">Of a fleet only the first pairs are drawn; compare fewer boats to see the others.</p>
+    ${table(
+      'The other pairs, metres the first gained over all beats',
+      ['', 'By sailing', 'While either turned', 'By shifts', 'In all'],
+      rows,
+    )}`;
+}
+
+/** How many pairs can be drawn before the page holds too many beats; one always. */
+function pairsDrawn(pairs: readonly PairLadder[]): number {
+  let beats = 0;
+  const over = pairs.findIndex(({ legs }) => (beats += legs.length) > MOST_DRAWN);
+  return over < 0 ? pairs.length : Math.max(1, over);
+}
+
 /** The pairs that sailed a beat at the same time, up the ladder together. */
 export function ladders(result: Result, series: RaceSeries, pairs: readonly PairLadder[]): Part {
   const sailed = pairs.filter(({ legs }) => legs.length > 0);
   if (sailed.length === 0) return null;
-  let drawn = 0;
-  let left = 0;
-  const parts = sailed.map((pair) => {
-    const climbs = climbsOf(pair, series);
-    const shown = climbs.slice(0, Math.max(0, MOST_DRAWN - drawn));
-    drawn += shown.length;
-    left += climbs.length - shown.length;
-    return html`${sailed.length > 1 && html`<h3>${nameOf(pair.boats[0])} and ${nameOf(pair.boats[1])}</h3>`}
-      <div class="plates">${shown.map(climbPlate)}</div>
-      ${partsTable(pair)}`;
-  });
+  const drawn = pairsDrawn(sailed);
+  const rest = sailed.slice(drawn);
   return section(
     'ladder',
     'Rung by rung',
@@ -147,8 +170,9 @@ export function ladders(result: Result, series: RaceSeries, pairs: readonly Pair
         numbered. Right, at the same height: what was gained by then. Shifts are what a boat got for being on the tack
         the wind favoured at that moment; sailing is the rest.
       </p>
-      ${clockNotes(result)}${parts}
-      ${left > 0 && html`<p class="small">${plural(left, 'beat')} more are not drawn; compare fewer boats to see them.</p>`}`,
+      ${clockNotes(result)}
+      ${sailed.slice(0, drawn).map((pair) => pairParts(pair, result, series, sailed.length === 1))}
+      ${rest.length > 0 && restTable(rest)}`,
   );
 }
 

@@ -20,10 +20,8 @@ export function ledgerGapTable(first: BoatResult, second: BoatResult): Part {
     ...cells(gap),
   ];
   return html`<div class="gaps">
-    <h3>Where ${nameOf(names[0])} lost more than ${nameOf(names[1])}</h3>
-    ${saidOf(gaps.causes, names)}
     ${table(
-      'Metres to windward; below zero she lost less',
+      html`Where ${nameOf(names[0])} lost more than ${nameOf(names[1])}, metres (below zero: less)`,
       ['', ...gaps.laps.map((lap) => `Lap ${lap}`), ...(several ? ['Together'] : [])],
       [
         ...gaps.causes.map(row),
@@ -32,6 +30,7 @@ export function ledgerGapTable(first: BoatResult, second: BoatResult): Part {
       ],
       'plain gap-table',
     )}
+    ${saidOf(gaps.causes, names)}
   </div>`;
 }
 

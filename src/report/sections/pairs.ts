@@ -4,7 +4,6 @@ import { duration, inline, plural, quantity } from '../format.js';
 import { html, nameOf, type Part, type Safe } from '../html.js';
 import { term } from '../terms.js';
 import { figure, section, table } from './figure.js';
-import { ledgerGapTable } from './ledger-gaps.js';
 
 function verdictOf(pair: PairResult): Safe {
   const [first, second] = pair.boats;
@@ -19,9 +18,8 @@ function verdictOf(pair: PairResult): Safe {
   return html`<p class="first">${parts}</p>`;
 }
 
-function pairPlate(pair: PairResult, result: Result): Safe {
+function pairPlate(pair: PairResult): Safe {
   const [first, second] = pair.boats;
-  const [a, b] = pair.boats.map((name) => result.boats.find((boat) => boat.name === name));
   const d = pair.vmg_difference_kn;
   const columns = [...pair.legs, pair];
   const row = (words: Part, get: (p: PairLeg | PairResult) => Part): Part[] => [words, ...columns.map(get)];
@@ -58,12 +56,12 @@ function pairPlate(pair: PairResult, result: Result): Safe {
       <p>${amount}</p>
       ${table('Differences, first less second', heads, rows)} ${pair.notes.length > 0 && notes}
     </div>
-    ${plate} ${a && b && ledgerGapTable(a, b)}
+    ${plate}
   </div>`;
 }
 
 /** Boat against boat where they sailed in the same wind. */
 export function pairs(result: Result): Part {
   if (!result.pairs || result.pairs.length === 0) return null;
-  return section('pairs', 'Side by side', html`${result.pairs.map((pair) => pairPlate(pair, result))}`);
+  return section('pairs', 'Side by side', html`${result.pairs.map(pairPlate)}`);
 }
