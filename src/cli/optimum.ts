@@ -13,7 +13,7 @@ Examples:
 
 interface OptimumFlags {
   readonly boat?: string;
-  readonly tws: readonly number[];
+  readonly tws?: readonly number[];
   readonly polar?: boolean;
   readonly json?: string;
   readonly quiet?: boolean;
@@ -25,7 +25,7 @@ export function optimumCommand(program: Command): Command {
     .summary('the boat model alone, over a range of true wind speeds')
     .description('The best course, speed, leeway and sheeting to windward that the boat model knows.')
     .option('--boat <NAME|FILE>', 'built-in boat or boat file (default: single-hander)')
-    .option('--tws <FROM:TO:STEP>', 'true wind speeds in knots (default: 4:24:2)', readWinds, readWinds('4:24:2'))
+    .option('--tws <FROM:TO:STEP>', 'true wind speeds in knots (default: 4:24:2)', readWinds)
     .option('--polar', 'also the whole polar diagram, close-hauled to dead downwind')
     .option('--json <FILE>', 'for programs; - is standard output')
     .option('--quiet', 'no table')
@@ -36,7 +36,7 @@ export function optimumCommand(program: Command): Command {
 async function runOptimum(flags: OptimumFlags): Promise<void> {
   const { boat = 'single-hander' } = flags;
   const file = (await kindOf(boat)) === 'file' ? { name: forMessages(boat), text: await readText(boat) } : null;
-  const table = await optimum(file ?? boat, flags.tws, { polar: flags.polar ?? false });
+  const table = await optimum(file ?? boat, flags.tws ?? readWinds('4:24:2'), { polar: flags.polar ?? false });
   const { jsonText } = await resultFiles();
   if (flags.json === '-') await print(jsonText(table));
   else if (flags.json !== undefined) await writeWhole(flags.json, jsonText(table));

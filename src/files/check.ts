@@ -1,6 +1,6 @@
 import type { z } from 'zod';
 import { UserError } from '../recording/issues.js';
-import { nearestKey } from './nearest-key.js';
+import { editDistance, nearestKey } from './nearest-key.js';
 import type { WrittenFile } from './written.js';
 
 /** How many mistakes of one file are told at once. */
@@ -77,11 +77,31 @@ const article = (type: string): string =>
   type === 'array' ? 'a list' : type === 'object' ? 'a group of keys' : `a ${type}`;
 
 function unknownKey(key: string, path: Path, schema: z.ZodType, written: WrittenFile, data: unknown): string {
-  const known = knownKeys(schema, path, data).filter((candidate) => candidate !== '$schema' || path.length === 0);
+  const known = knownKeys(schema, path, data).filter((candidate) => candidate !== '$schema' || key.startsWith('$'));
   const near = nearestKey(key, known);
   const place = path.length === 0 ? 'here' : `in ${fieldName(path)}`;
-  const hint = near === null ? '' : ` The nearest known one is \`${near}\`.`;
+  const hint = near === null ? '' : ` The nearest known one is \`${near}\`${elsewhere(key, near, schema)}.`;
   return `${written.file}:${written.lineOfKey(path, key)}: unknown key \`${key}\` ${place}.${hint}`;
+}
+
+/** A key that is known under another one, and much more like what was written: `height_m` belongs under `wind`. */
+function elsewhere(key: string, near: string, schema: z.ZodType): string {
+  const under = new Map<string, string>();
+  for (const { def } of unwrapped(schema)) {
+    for (const [owner, value] of Object.entries(def.shape ?? {})) {
+      for (const inside of keysWithin(value)) if (!under.has(inside)) under.set(inside, owner);
+    }
+  }
+  const other = nearestKey(key, [...under.keys()]);
+  if (other === null || editDistance(key, other) >= Math.min(editDistance(key, near), key.length / 2)) return '';
+  return `; \`${other}\` stands under \`${under.get(other)!}\``;
+}
+
+/** Keys of the groups a value may be or be a list of. */
+function keysWithin(schema: unknown): string[] {
+  return unwrapped(schema).flatMap(({ def }) =>
+    def.shape ? Object.keys(def.shape) : def.element ? keysWithin(def.element) : [],
+  );
 }
 
 /** `boats[1].track` */

@@ -208,7 +208,7 @@ function legNotes(estimate: LegEstimate, judged: LegJudgement, trim: LegTrim | n
     notes.push('trim: leeway was not measured closely enough to tell it from speed, so its metres stay in speed');
   }
   if (trim && !trim.all.sheeting) notes.push('sheeting: the log says too little of it');
-  if (trim?.all.leeway?.beatsModel) notes.push('leeway and drag angles: faster than the boat file allows');
+  if (trim?.all.beatsModel) notes.push('leeway and drag angles: faster than the boat file allows');
   return notes;
 }
 

@@ -24,15 +24,28 @@ export function engineRows(
     return findEngine(track, wind, logs.trackFiles[0]);
   });
   const masks = found.map((one) => one.mask);
-  const issues = found.flatMap((one) => one.issues);
-  if (boats.every(({ track }, k) => sailedSeconds(track, masks[k]) < 0.1 * sailedSeconds(track, null))) {
-    const reason = issues[0]?.message ?? 'The boat was under engine.';
-    throw new UserError(`${boats[0].logs.trackFiles[0] ?? ''}: under engine, nothing here was sailed. ${reason}`, {
+  const motored = boats.map(({ track }, k) => sailedSeconds(track, masks[k]) < 0.1 * sailedSeconds(track, null));
+  const issues = found.flatMap((one, k) => {
+    const { reference, trackFiles } = boats[k].logs;
+    if (one.issues.length > 0 || !motored[k]) return one.issues;
+    return [underEngine(reference.name, trackFiles[0])];
+  });
+  if (motored.every(Boolean)) {
+    throw new UserError(`${boats[0].logs.trackFiles[0] ?? ''}: nothing here was sailed. ${issues[0].message}`, {
       exitCode: 1,
       suggestion: 'Give a log of sailing; a wind log with --wind helps to tell the two apart.',
     });
   }
   return { masks, issues };
+}
+
+/** Said of a log too short to be worth a word elsewhere: here it is all of it. */
+function underEngine(name: string, file: string | undefined): Issue {
+  return {
+    code: 'under-engine',
+    message: `All the time ${name} moved it looks to be under engine (nearer to the wind than a sail draws): it is left out.`,
+    ...(file === undefined ? {} : { file }),
+  };
 }
 
 /** Seconds a boat moved, those under engine left out. */

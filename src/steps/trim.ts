@@ -16,6 +16,10 @@ import type { Sailed } from './sail.js';
 /** What the model and the sensors say of a stretch's trim. null: not to be had. */
 export interface Trim {
   readonly leeway: LeewayEstimate | null;
+  /** True where no trim of the model drives the boat so fast. */
+  readonly beatsModel: boolean;
+  /** The same, by more than the errors of speed and wind. */
+  readonly clearlyBeats: boolean;
   /** Displayed posterior (speed included); null where it did not narrow. */
   readonly sheeting: SheetingPosterior | null;
   readonly incidence: Figure | null;
@@ -55,7 +59,7 @@ export function trimBoat(
 ): BoatTrim {
   const legs = estimate.legs.map((leg) => (leg.all && !Number.isNaN(leg.all.tws.value) ? legTrim(leg) : null));
   const judged = legs.filter((leg) => leg !== null);
-  const beaten = judged.filter((leg) => leg.all.leeway?.beatsModel ?? false).length;
+  const beaten = judged.filter((leg) => leg.all.clearlyBeats).length;
   return { legs, beatsModel: judged.length > 0 ? beaten / judged.length : 0 };
 
   function legTrim(leg: LegEstimate): LegTrim {
@@ -105,11 +109,13 @@ function trimOf(
   });
   const fits = posterior && Math.abs(posterior.mean - posterior.priorMean) < MOST_ASTRAY * posterior.priorSd;
   const sheeting = posterior?.narrowed && fits ? posterior : null;
-  const state = achieved(model, { speed, tws, gamma }).eased;
+  const { eased: state, margin } = achieved(model, { speed, tws, gamma });
   const beta = figures.beta;
   const aero = state ? { value: state.aeroDragAngle, se: MODEL_ANGLE, sys: 0 } : null;
   return {
     leeway,
+    beatsModel: margin < 0,
+    clearlyBeats: achieved(model, { speed: speed - 2 * errors.speed, tws: tws + 2 * errors.tws, gamma }).margin < 0,
     sheeting,
     incidence:
       sheeting && leeway

@@ -1,8 +1,9 @@
 import type { Race } from '../files/race-types.js';
 import { eastInPlane, northInPlane, toPlane } from '../math/geo.js';
 import type { Issue } from '../recording/issues.js';
-import { channelValues, countFixes } from '../recording/recording.js';
+import { channelValues, countFixes, type Recording } from '../recording/recording.js';
 import type { Frame } from '../recording/track.js';
+import { withoutMasked } from '../sensors/stuck.js';
 import { smoothTrack } from '../smooth/index.js';
 import { onBoardSource } from '../wind/on-board.js';
 import type { SensorPlace, WindSource } from '../wind/source.js';
@@ -42,8 +43,9 @@ export function windSources(
   });
   for (const log of logs.winds) {
     const checked = checkRecording(log.recording, log.reference.file, log.reference.at ?? clean.frame);
-    issues.push(...checked.issues);
-    const source = logSource({ ...log, recording: checked.recording }, clean.frame, heightFactor);
+    const alive = withoutDeadCups(checked.recording, log.reference.file);
+    issues.push(...checked.issues, ...alive.issues);
+    const source = logSource({ ...log, recording: alive.recording }, clean.frame, heightFactor);
     if (source) sources.push(source);
   }
   const span = {
@@ -85,6 +87,19 @@ function speedOn(log: WindSource, hand: WindSource): Pick<WindSource, 'sums' | '
 const TURNED = 1.4;
 /** A vane is not better known than this: its offset changes with heel and sheeting. [deg] Common practice, no source. */
 const LEAST_VANE = 0.7;
+
+/** Cups that say less than this from first to last do not turn: boats sailed in that wind. [m/s] */
+const STILL = 0.2;
+const STILL_READINGS = 60;
+
+/** The log without a wind speed of 0 throughout, whether or not its vane moved. */
+function withoutDeadCups(recording: Recording, file: string): { recording: Recording; issues: readonly Issue[] } {
+  const speed = channelValues(recording, 'tws').value;
+  if (speed.length < STILL_READINGS || speed.some((value) => value >= STILL)) return { recording, issues: [] };
+  const mask = new Uint8Array(recording.time.length).fill(1);
+  const message = 'The wind speed reads 0 throughout while boats sailed, so the cups do not turn: it is not used.';
+  return { recording: withoutMasked(recording, { tws: mask }), issues: [{ code: 'wind-dead', message, file }] };
+}
 
 /** A wind log: a moving boat's apparent wind is made true by its own motion, anything else is a station. */
 function logSource(log: WindLog, frame: Frame, heightFactor: (height: number) => number): WindSource | null {

@@ -44,6 +44,10 @@ beforeAll(async () => {
     'quarter.csv': windText(NOON + 900_000),
     'vane.csv': `time,twd_deg\n${every10s('0').join('\n')}\n`,
     'cups.csv': `time,tws_kn\n${every10s('10').join('\n')}\n`,
+    'still.csv': `time,twd_deg,tws_kn\n${every10s('0,0').concat(every10s('1,0')).sort().join('\n')}\n`,
+    'motor.gpx': gpxText(
+      Array.from({ length: 480 }, (_, i) => ({ time: NOON + 1000 * i, lat: 46.9 + 2.3e-5 * i, lon: 9.06 })),
+    ),
     'local.csv': table('time,lat,lon', auckland),
     'odd.csv': table('zeit,a,b', (ms) => new Date(ms).toISOString()),
   });
@@ -104,6 +108,57 @@ describe('wind that is not there', () => {
     const { code, err } = await run(['debrief', 'ann.gpx', '--wind', 'cups.csv'], { cwd: home });
     expect(code).toBe(2);
     expect(err).toContain('cups.csv: a wind speed but no wind direction');
+  });
+});
+
+describe('a boat faster than its boat file', () => {
+  it('by far: it says so', async () => {
+    // Five knots at 45 degrees to six knots of wind: no boat of the built-in kind does that.
+    expect(codes(await debriefed('ann.gpx', '--wind', '0@6'))).toContain('model-slow');
+  });
+  it('by less than the error of the wind: it does not', async () => {
+    const told = await debriefed('ann.gpx', '--wind', 'wind.csv');
+    expect(Math.abs(told.boats[0].legs[0].efficiency!.value - 1)).toBeLessThan(0.03);
+    expect(codes(told)).not.toContain('model-slow');
+  });
+});
+
+describe('what a log is not used for is said', () => {
+  it('cups that read 0 while boats sail, even when the vane hardly moves', async () => {
+    const told = await debriefed('ann.gpx', '--wind', 'still.csv');
+    expect(told.warnings).toContainEqual(expect.objectContaining({ code: 'wind-dead', file: 'still.csv' }));
+    expect(codes(told)).toContain('wind-unknown');
+    expect(told.wind.tws_kn).toBeNull();
+  });
+  it('a short log of motoring straight into the wind, beside a boat that sailed', async () => {
+    const told = await debriefed('ann.gpx', 'motor.gpx', '--wind', 'wind.csv');
+    expect(told.warnings).toContainEqual(expect.objectContaining({ code: 'under-engine', file: 'motor.gpx' }));
+    expect(told.boats.map(({ legs }) => legs.length)).toEqual([1, 0]);
+  });
+  it('the same alone: nothing to analyse', async () => {
+    const { code, err } = await run(['debrief', 'motor.gpx', '--wind', 'wind.csv'], { cwd: home });
+    expect(code).toBe(1);
+    expect(err).toMatch(/^legwork: motor\.gpx: nothing here was sailed\. .*under engine/);
+  });
+});
+
+describe('a key in the wrong place', () => {
+  it.each([
+    ['crew_mass: 78', '`crew_mass_kg` stands under `boats`'],
+    ['height_m: 3', '`height_m` stands under `wind`'],
+    ['curent: []', 'The nearest known one is `current`.'],
+  ])('%s', async (line, hint) => {
+    fill(home, { 'wrong.yaml': `wind: wind.csv\nboats: [{ track: ann.gpx }]\n${line}\n` });
+    const { code, err } = await run(['debrief', 'wrong.yaml'], { cwd: home });
+    expect(code).toBe(2);
+    expect(err).toContain(hint);
+  });
+});
+
+describe('help', () => {
+  it('tells a default once, as it is written', async () => {
+    const { out } = await run(['optimum', '--help'], { cwd: home });
+    expect(out.match(/default: [^s)][^)]*/g)).toEqual(['default: 4:24:2']);
   });
 });
 
