@@ -3,6 +3,9 @@ import type { BoatSeries } from '../result/series.js';
 
 /** One beat of two boats seen with the mean wind from the top: what the picture and the words of a ladder share. */
 
+/** What the positions of two receivers wander against one another on a beat (common practice, no source). [m] */
+export const WANDER = 5;
+
 /** A place on the ladder: metres to windward, and to the right, of where the first boat was when both had begun. */
 export interface RungPlace {
   readonly rung: number;

@@ -72,6 +72,7 @@ describe('the ladder', () => {
     const gained = 4 * 2 * T * Math.sin(45 * RAD) * Math.sin(ψ * RAD);
     expect(Math.abs(leg.gain / gained - 1)).toBeLessThan(0.005);
     expect(leg.parts.shifts).toBeCloseTo(leg.gain, 6);
+    for (const row of leg.rows) expect(row.shifts).toBeCloseTo(row.gain, 6);
     expect(leg.parts.sailing + leg.parts.manoeuvres).toBeCloseTo(0, 9);
     expect(leg.tacks.map(({ boat, time }) => [boat, time])).toEqual([
       [0, 1000 + T],

@@ -1,7 +1,7 @@
 import { scaleLinear } from 'd3-scale';
 import { plain } from '../format.js';
 import { boatPaint, INK, PAPER, RULE, SOFT } from '../palette.js';
-import { heightOf, type Climb, type RungRow } from '../rungs.js';
+import { heightOf, WANDER, type Climb, type RungRow } from '../rungs.js';
 import { dot } from './polar.js';
 import { simplify } from './simplify.js';
 import { coordinate, el, footAxis, line, numberText, pathOf, picture, text, type Scale } from './svg.js';
@@ -166,6 +166,7 @@ function gainPanel(climb: Climb, sheet: LadderSheet, x: Scale, up: (rung: number
   const size = 11.5;
   const bottom = sheet.foot + 4;
   return [
+    el('rect', { x: x(-WANDER), y: TOP - 6, width: x(WANDER) - x(-WANDER), height: bottom - TOP + 6, fill: 'var(--water,#e9f0ef)' }),
     line(x(0), TOP - 6, x(0), bottom, SOFT),
     text(left, 18, `◂ ${short(names[1])}`, { size, fill: boatPaint(index[1]).colour }),
     text(right, 18, `${short(names[0])} ▸`, { size, anchor: 'end', fill: boatPaint(index[0]).colour }),

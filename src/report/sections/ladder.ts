@@ -5,7 +5,7 @@ import type { RaceSeries } from '../../result/series.js';
 import { ladder as ladderPicture } from '../charts/ladder.js';
 import { duration, number, time } from '../format.js';
 import { html, nameOf, type Part, type Safe } from '../html.js';
-import { climbOf, shareOnTheRight, type Climb, type RungTack } from '../rungs.js';
+import { climbOf, shareOnTheRight, WANDER, type Climb, type RungTack } from '../rungs.js';
 import { term } from '../terms.js';
 import { figure, section, table } from './figure.js';
 import { ledgerGapTable } from './ledger-gaps.js';
@@ -13,8 +13,6 @@ import { swatch } from './masthead.js';
 
 /** Beats drawn at most, whole pairs: a fleet has more pairs than a page can carry. The others get a row of figures. */
 const MOST_DRAWN = 12;
-/** What the positions of two receivers wander against one another on a beat (common practice, no source). [m] */
-const WANDER = 5;
 /** Share of a beat on one side that is told as being on that side. */
 const CLEARLY = 0.6;
 
@@ -35,9 +33,8 @@ function wordsOf(climb: Climb): Safe {
   const doubt =
     Math.abs(leg.gain) < WANDER && ' Receivers wander that much against one another: call it no gain at all.';
   return html`${nameOf(first)} gained ${metres(Math.abs(leg.gain))} on ${nameOf(second)} in
-  ${duration(leg.to - leg.from)} minutes; ${lead}. It is made of sailing, ${metres(sailing * way, true)}, and of the
-  moments when either tacked or turned, ${metres(manoeuvres * way, true)}. Apart from that the
-  ${term('shift', 'shifts')} gave her
+  ${duration(leg.to - leg.from)} minutes; ${lead}. Sailing brought ${metres(sailing * way, true)}, the moments when
+  either tacked or turned ${metres(manoeuvres * way, true)}. Apart from that the ${term('shift', 'shifts')} gave her
   ${metres(shifts * way, true)}${Math.abs(rest) >= 0.5 && html`; ${metres(rest * way, true)} is not explained`}.${doubt}
   ${sideOf(climb)}`;
 }
@@ -47,6 +44,7 @@ function sideOf(climb: Climb): Part {
   if (!Number.isFinite(share)) return null;
   const [first, second] = climb.names;
   const [name, part] = share >= 0.5 ? [first, share] : [second, 1 - share];
+  if (part > 0.995) return html`${nameOf(name)} was the boat to the right throughout.`;
   if (part < CLEARLY) return html`Each was to the right of the other for part of the beat.`;
   return html`${nameOf(name)} was the boat to the right for ${number(100 * part, 0)}&nbsp;% of the beat.`;
 }
@@ -168,7 +166,8 @@ export function ladders(result: Result, series: RaceSeries, pairs: readonly Pair
     html`<p>
         Rungs lie square to the mean wind of the beat, so two boats on one rung are level. Left: the tracks, tacks
         numbered. Right, at the same height: what was gained by then. Shifts are what a boat got for being on the tack
-        the wind favoured at that moment; sailing is the rest.
+        the wind favoured at that moment; sailing is the rest. Within the pale band nothing was gained: that is what two
+        receivers wander.
       </p>
       ${clockNotes(result)}
       ${sailed.slice(0, drawn).map((pair) => pairParts(pair, result, series, sailed.length === 1))}

@@ -45,5 +45,13 @@ function saidOf(causes: readonly LedgerGap[], [first, second]: Names): Safe {
     const size = { ...together, value: Math.abs(together.value) };
     return html`${k > 0 && '; '}${nameOf(name)} lost ${inline(size, 'm')} more (${CAUSE_WORDS[cause].toLowerCase()})`;
   });
-  return html`<p>Beyond the errors, all causes looked at together: ${parts}.</p>`;
+  const angled = told.some(({ cause }) => cause === 'high' || cause === 'low');
+  return html`<p>Beyond the errors, all causes looked at together: ${parts}.</p>
+    ${
+      angled &&
+      html`<p class="small">
+        Sailing high or low and speed for the angle belong together: where the reference judges the speed at that angle
+        wrongly, one is too large by what the other is too small.
+      </p>`
+    }`;
 }
