@@ -111,10 +111,17 @@ export function forMessages(path: string): string {
 /** Contents of a small text file. */
 export async function readText(path: string): Promise<string> {
   try {
-    return new TextDecoder('utf-8').decode(await readFile(path));
+    const bytes = await readFile(path);
+    return new TextDecoder(encodingOf(bytes)).decode(bytes);
   } catch (error) {
     throw asUserError(error, forMessages(path));
   }
+}
+
+/** By its byte-order mark; some editors write UTF-16. */
+function encodingOf([a, b]: Uint8Array): string {
+  if (a === 0xff && b === 0xfe) return 'utf-16le';
+  return a === 0xfe && b === 0xff ? 'utf-16be' : 'utf-8';
 }
 
 /** Whether there is something at a path, and what. */

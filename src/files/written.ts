@@ -17,6 +17,10 @@ export interface WrittenFile {
 
 /** Longest file read: far above any race file, far below what would hurt. */
 const LONGEST = 4_000_000;
+/** Deeper than this nothing lies in a race or boat file. */
+const DEEPEST = 40;
+/** Brackets upon brackets: the parser would take a second for every few thousand. */
+const BRACKETS = new RegExp(`(?:[[{]\\s*){${DEEPEST + 1}}`);
 /** An alias may stand for at most this many copies of what it names. */
 const MOST_ALIASES = 100;
 
@@ -33,6 +37,7 @@ export function readWritten(text: string, file: string): WrittenFile {
       suggestion: 'Is it a log? Name it under `boats` or `wind` in a race file, or give it with its own extension.',
     });
   }
+  if (BRACKETS.test(text)) throw tooDeep(file);
   const lines = new LineCounter();
   const document = parsed(text.replace(/^\uFEFF/, ''), file, lines);
   const trouble = document.errors[0] ?? document.warnings[0];
@@ -44,9 +49,11 @@ export function readWritten(text: string, file: string): WrittenFile {
         'The file must be YAML 1.2 or JSON. Look at the indentation, quotes and brackets on and above that line.',
     });
   }
+  const data = plainData(document, file);
+  if (isDeeperThan(data, DEEPEST)) throw tooDeep(file);
   return {
     file,
-    data: plainData(document, file),
+    data,
     lineOf: (path) => lineAt(lines, nodeNear(document, path)),
     lineOfKey: (path, key) => lineAt(lines, keyNode(document, path, key) ?? nodeNear(document, path)),
     sourceOf: (path) => scalarSource(document, path),
@@ -66,8 +73,21 @@ function parsed(text: string, file: string, lineCounter: LineCounter): Document 
     });
   } catch (error) {
     if (!(error instanceof RangeError)) throw error;
-    throw new UserError(`${file}: nested too deeply to be a race or boat file.`, { exitCode: 2 });
+    throw tooDeep(file);
   }
+}
+
+function tooDeep(file: string): UserError {
+  return new UserError(`${file}: nested too deeply to be a race or boat file.`, {
+    exitCode: 2,
+    suggestion: 'Look for an `*alias` inside what it stands for, or for brackets that are never closed.',
+  });
+}
+
+/** An alias inside what it stands for makes data without an end. */
+function isDeeperThan(data: unknown, most: number): boolean {
+  if (data === null || typeof data !== 'object') return false;
+  return most === 0 || Object.values(data).some((one) => isDeeperThan(one, most - 1));
 }
 
 function plainData(document: Document, file: string): unknown {

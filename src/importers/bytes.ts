@@ -8,6 +8,9 @@ import type { Tally } from './tally.js';
 const PIECE = 1 << 16;
 /** What a compressed log may grow to. The longest log we know of has 0.5 GB. */
 const LARGEST = 8e9;
+/** Logs shrink to a tenth, at best to a fiftieth; what grows so many times beyond so many bytes was made to do harm. */
+const MOST_GROWTH = 250;
+const GROWN = 64e6;
 
 export type Bytes = AsyncIterable<Uint8Array>;
 
@@ -56,9 +59,21 @@ export function join(pieces: readonly Uint8Array[], length: number): Uint8Array 
 /** What is inside a gzip (RFC 1952) or zip (APPNOTE.TXT 6.3) wrapping, judged by the first bytes; else the bytes. */
 export async function unwrapped(bytes: Bytes, tally: Tally): Promise<Bytes> {
   const { head, all } = await peek(bytes, 4);
-  if (head[0] === 0x1f && head[1] === 0x8b) return inflated(all, tally, gunzip);
-  if (head[0] === 0x50 && head[1] === 0x4b && head[2] === 3 && head[3] === 4) return inflated(all, tally, unzip);
-  return all;
+  const wrapping = wrappingOf(head);
+  if (wrapping === null) return all;
+  if (wrapping === 'empty') throw new UserError(`${tally.file}: the archive holds no file.`, { exitCode: 2 });
+  const inner = await peek(inflated(all, tally, wrapping === 'gzip' ? gunzip : unzip), 4);
+  if (wrappingOf(inner.head) === null) return inner.all;
+  throw new UserError(`${tally.file}: an archive within an archive.`, {
+    exitCode: 2,
+    suggestion: 'Unpack it and give the log itself.',
+  });
+}
+
+function wrappingOf([a, b, c, d]: Uint8Array): 'gzip' | 'zip' | 'empty' | null {
+  if (a === 0x1f && b === 0x8b) return 'gzip';
+  if (a !== 0x50 || b !== 0x4b) return null;
+  return c === 3 && d === 4 ? 'zip' : c === 5 && d === 6 ? 'empty' : null;
 }
 
 /** Takes compressed bytes, hands on what they hold. */
@@ -98,6 +113,7 @@ async function* inflated(
   open: (out: (bytes: Uint8Array) => void, tally: Tally) => Inflater,
 ): Bytes {
   let ready: Uint8Array[] = [];
+  let given = 0;
   let size = 0;
   const inflater = open((piece) => {
     size += piece.length;
@@ -106,11 +122,12 @@ async function* inflated(
   let broken = false;
   for await (const chunk of bytes) {
     for (let at = 0; at < chunk.length && !broken; at += 4096) {
+      given += Math.min(4096, chunk.length - at);
       broken = !pushed(inflater, chunk.subarray(at, at + 4096), false, tally);
       const done = ready;
       ready = [];
       for (const piece of done) yield piece;
-      if (size > LARGEST) throw tooLarge(tally.file);
+      if (size > LARGEST || (size > GROWN && size > MOST_GROWTH * given)) throw tooLarge(tally.file, size, given);
     }
   }
   if (!broken) pushed(inflater, new Uint8Array(0), true, tally);
@@ -129,8 +146,9 @@ function pushed(inflater: Inflater, piece: Uint8Array, final: boolean, tally: Ta
   }
 }
 
-function tooLarge(file: string): UserError {
-  return new UserError(`${file}: unpacks to more than ${LARGEST / 1e9} GB.`, {
+function tooLarge(file: string, size: number, given: number): UserError {
+  const grown = size > LARGEST ? `more than ${LARGEST / 1e9} GB` : `${Math.round(size / given)} times its size`;
+  return new UserError(`${file}: unpacks to ${grown}, which no log does.`, {
     exitCode: 2,
     suggestion: 'Unpack it and give the part that was sailed.',
   });
