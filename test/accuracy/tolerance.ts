@@ -96,21 +96,21 @@ export const GATES: readonly Gate[] = [
     condition: 'no wind log',
     ...usual,
     rows: [
-      // Courses before and after each tack; left: what the wind turned in between, and boats that tack on shifts. (1.8)
-      { quantity: 'wind direction', mean: 3 },
-      // Read from the same: boats that tack when headed read too high, as stated with 2 degrees and more. (2.97)
-      { quantity: 'gamma', mean: 4 },
+      // Courses about each tack and gybe, and the other boat's courses; left: what the wind turned in between. (0.8)
+      { quantity: 'wind direction', mean: 1.8 },
+      // Its mean from the tacking angles, its turning between the tacks from the other boat. (0.9)
+      { quantity: 'gamma', mean: 2 },
     ],
   },
   {
     condition: 'station 6 degrees wrong',
     ...usual,
     rows: [
-      // Both tacks tell the offset; left: the prior of 2 degrees that pulls it to nought, real differences between the
-      // tacks. Nearer the truth than the station's 6. (1.2)
-      { quantity: 'wind direction', mean: 3 },
-      { quantity: 'station direction', mean: 3 },
-      // Opposite on the two tacks, so mostly gone in the leg's mean. (0.41)
+      // Both tacks tell the offset; left: real differences between the tacks, a little of the prior of 2 degrees, whose
+      // tails give way. (0.5)
+      { quantity: 'wind direction', mean: 1.5 },
+      { quantity: 'station direction', mean: 1.5 },
+      // Opposite on the two tacks, so mostly gone in the leg's mean. (0.38)
       { quantity: 'gamma', mean: 0.8 },
     ],
   },
