@@ -32,6 +32,8 @@ export interface Excess {
   readonly stands: boolean;
   /** Metres of it that the two ledgers have under `speed`: the curve may be too flat so far from its best angle. */
   readonly fromSpeed: number;
+  /** Of manoeuvres: the mean cost of a tack, this boat's and the other's. [m] */
+  readonly each?: { readonly mine: number; readonly theirs: number };
 }
 
 /** An excess smaller than this, two lengths of a dinghy, is nothing to tell a sailor. [m] */
@@ -58,6 +60,7 @@ interface Found {
   readonly madeByCurve: boolean;
   readonly freedom: number;
   readonly fromSpeed: number;
+  readonly each?: Excess['each'];
 }
 
 /**
@@ -84,10 +87,10 @@ export function excesses(boat: BoatCosts, other: BoatCosts): Excess[] {
   return [...found, shiftsFound(mine, theirs)].map(judged);
 }
 
-function judged({ cause, metres, se, sys, curve, madeByCurve, freedom, fromSpeed }: Found): Excess {
+function judged({ cause, metres, se, sys, curve, madeByCurve, freedom, fromSpeed, each }: Found): Excess {
   const factor = Math.max(LEAST_FACTOR, studentInterval(LEVEL, Math.max(2, freedom)));
   const stands = metres > LEAST && metres > factor * Math.hypot(se, sys, madeByCurve ? curve : 0);
-  return { cause, metres, se, sys: Math.hypot(sys, curve), stands, fromSpeed };
+  return { cause, metres, se, sys: Math.hypot(sys, curve), stands, fromSpeed, ...(each ? { each } : {}) };
 }
 
 function total(beats: readonly BeatCosts[], cause: Cause): number {
@@ -220,7 +223,8 @@ function manoeuvresFound(mine: readonly BeatCosts[], theirs: readonly BeatCosts[
   const squares = [a, b].flatMap((costs) => costs.map((cost) => (cost - mean(costs)) ** 2));
   const variance = Math.max(TACK_SPREAD ** 2, squares.reduce((sum, square) => sum + square, 0) / freedom);
   const metres = a.length * (mean(a) - mean(b));
-  return { ...rest, metres, se: a.length * Math.sqrt(variance * (1 / a.length + 1 / b.length)) };
+  const each = { mine: mean(a), theirs: mean(b) };
+  return { ...rest, metres, each, se: a.length * Math.sqrt(variance * (1 / a.length + 1 / b.length)) };
 }
 
 /** Cost of each tack of a beat that was sailed out before the mark, double tacks as one. [m] */

@@ -95,11 +95,11 @@ export function legLedger(input: LedgerInput): LedgerFigures {
   const meanWind = input.meanWind ?? circularMean(sailing.twd.subarray(leg.from, leg.to)).mean;
   const pieces = cutWindows(piecesOf(input.rows, leg), input.overstood);
   const sums = pieces.map((piece) => sumOver(input, piece, meanWind));
-  const parts = pieces.map((piece, k) => (isBlock(piece) ? blockParts(input, piece, sums[k]!) : null));
+  const parts = pieces.map((piece, k) => (isBlock(piece) ? blockParts(input, piece, sums[k]) : null));
   const blocks = pieces.map((piece) => blockOf(input, piece));
   const entries = nothing();
   const costs = pieces.map((piece, k): LedgerPiece => {
-    const sum = sums[k]!;
+    const sum = sums[k];
     const metres = nothing();
     metres.shifts = sum.made - sum.madeMean;
     const part = parts[k];
@@ -135,7 +135,7 @@ function nothing(): Record<Cause, number> {
 }
 
 function tackAt(sailing: Sailing, piece: RowRange): Tack {
-  return sailing.gamma[piece.from]! >= 0 ? 'starboard' : 'port';
+  return sailing.gamma[piece.from] >= 0 ? 'starboard' : 'port';
 }
 
 /** Metres to windward that the trim cost over the settled sailing. */
@@ -203,12 +203,12 @@ function sumOver(input: LedgerInput, piece: RowRange, meanWind: number): Sums {
   let madeMean = 0;
   let seconds = 0;
   for (let i = piece.from; i < piece.to; i++) {
-    const toWind = sailing.ux[i]! * eastOf(sailing.twd[i]!) + sailing.uy[i]! * northOf(sailing.twd[i]!);
-    const offered = reference.bestVmg(tws[i]!);
+    const toWind = sailing.ux[i] * eastOf(sailing.twd[i]) + sailing.uy[i] * northOf(sailing.twd[i]);
+    const offered = reference.bestVmg(tws[i]);
     if (Number.isNaN(toWind + offered)) continue;
     best += offered;
     made += toWind;
-    madeMean += sailing.ux[i]! * eastOf(meanWind) + sailing.uy[i]! * northOf(meanWind);
+    madeMean += sailing.ux[i] * eastOf(meanWind) + sailing.uy[i] * northOf(meanWind);
     seconds++;
   }
   return { best, made, madeMean, seconds };
@@ -330,6 +330,9 @@ function mean(values: readonly number[]): number {
   return values.reduce((sum, value) => sum + value, 0) / values.length;
 }
 
+/** When a leg's start is sailed off and its end begins is known to about this. [s] */
+const ENDS_ERROR = 1.2;
+
 /** Runs of rows in which the boat was busy. */
 function countWindows({ labels }: LegRows): number {
   let n = 0;
@@ -366,15 +369,16 @@ function withErrors(
   const total = Math.max(1, sum(seconds));
   const scale = (leg.to - leg.from) / total;
   const imbalance = sum(cross);
-  const centred = cross.map((value, k) => value - (imbalance * seconds[k]!) / total);
+  const centred = cross.map((value, k) => value - (imbalance * seconds[k]) / total);
   const swing = correlatedError(blocks, centred, { ...errors.mismatch.direction, slow: 0 });
   const receiver = Math.SQRT2 * errors.displacementSe(leg.to - leg.from);
   const sysDirection = Math.abs(imbalance) * errors.sysDirection;
   const sysWind = sum(offered) * scale * errors.sysSpeed;
   const windows = leg.to - leg.from - total;
   const speedRate = total > 0 ? (Math.hypot(direction, windSpeed) / total) * windows : 0;
-  const bounds = BOUNDS_ERROR * Math.sqrt(countWindows(rows)) * (available / (leg.to - leg.from));
-  const busy = Math.hypot(receiver, 0.5 * speedRate, bounds);
+  const vmg = available / (leg.to - leg.from);
+  const tacks = Math.hypot(receiver, 0.5 * speedRate, BOUNDS_ERROR * Math.sqrt(countWindows(rows)) * vmg);
+  const ends = Math.hypot(receiver, ENDS_ERROR * vmg);
   const figure = (value: number, se: number, sys = 0): Figure => ({ value, se: value === 0 ? 0 : se, sys });
   const angleRate = Math.abs(entries.high) + Math.abs(entries.low);
   const angle = Math.min(angleRate, Math.hypot(direction, 0.2 * angleRate));
@@ -383,8 +387,8 @@ function withErrors(
     made: figure(made, Math.hypot(receiver, errors.leastGamma * RAD * Math.abs(sum(cross)))),
     lost: figure(available - made, Math.hypot(receiver, windSpeed * scale), sysWind),
     entries: {
-      manoeuvres: figure(entries.manoeuvres, busy),
-      start: figure(entries.start, busy),
+      manoeuvres: figure(entries.manoeuvres, tacks),
+      start: figure(entries.start, ends),
       high: figure(entries.high, angle, sysDirection),
       low: figure(entries.low, angle, sysDirection),
       trim: trimMetres(input),

@@ -50,32 +50,49 @@ function costsOf({ judgements, estimates }: HintInput, boat: number): BoatCosts 
   return { beats, errors: estimates[boat].errors };
 }
 
-function excessHint({ cause, metres, se }: Excess, input: HintInput, boat: number, other: number): Hint {
+function excessHint(excess: Excess, input: HintInput, boat: number, other: number): Hint {
+  const { cause, metres, se, sys } = excess;
   const name = input.names[other];
   const more = `about ${metres.toFixed(0)} m more lost than ${name}, ±${Math.max(1, se).toFixed(0)}`;
   const text = ((): string => {
     switch (cause) {
       case 'high':
-        return `Sailed${angleWords(input, boat, 'above')} the best course angle: ${more}. Try a little lower and faster.`;
+        return `Sailed${angleWords(input, boat, 'above')} the best course angle: ${more}${bentWords(excess)}. Try a little lower and faster.`;
       case 'low':
-        return `Sailed${angleWords(input, boat, 'below')} the best course angle: ${more}. Try a little higher.`;
+        return `Sailed${angleWords(input, boat, 'below')} the best course angle: ${more}${bentWords(excess)}. Try a little higher.`;
       case 'speed':
         return `Slower at the same angle: ${more}. Speed or trim, the log cannot tell.`;
       case 'trim':
         return `Trim: ${more}.`;
       case 'manoeuvres':
-        return `Tacks: ${more}${tackWords(input, boat, other)}.`;
+        return `Dearer tacks: ${more}${tackWords(excess)}.`;
       case 'start':
         return `Starts and roundings: ${more}.`;
       case 'overstood':
-        return `Overstood the windward mark: ${more}.`;
+        return `Tacked for the mark beyond the lay line: ${more}${lengthWords(input, boat)}.`;
       case 'stopped':
         return `Stops and full turns: ${more}.`;
       case 'shifts':
-        return `Shifts: ${more}.`;
+        return `Shifts: ${more}. More of the time on the headed tack.`;
     }
   })();
-  return { text, metres: { value: metres, se, basis: 'inferred' } };
+  return { text, metres: { value: metres, se, ...(sys > 0 ? { sys } : {}), basis: 'inferred' } };
+}
+
+/** What of it the ledgers show under speed, where that is worth a word. */
+function bentWords({ fromSpeed, metres }: Excess): string {
+  if (fromSpeed < Math.max(8, 0.25 * metres)) return '';
+  return `, ${fromSpeed.toFixed(0)} m of them shown under speed in the ledger, as the boat file may make too little of such an angle`;
+}
+
+/** How far beyond the lay line, at the worst. */
+function lengthWords({ judgements }: HintInput, boat: number): string {
+  const past = judgements[boat].legs.flatMap(({ ledger }) => ledger?.overstood.map((one) => one.past) ?? []);
+  return past.length > 0 ? ` (up to ${Math.max(...past).toFixed(0)} m beyond it)` : '';
+}
+
+function tackWords({ each }: Excess): string {
+  return each ? ` (${each.mine.toFixed(0)} m a tack against ${each.theirs.toFixed(0)})` : '';
 }
 
 /** " on average 3 degrees above", where the settled blocks say so. */
@@ -86,18 +103,6 @@ function angleWords({ sailed, judgements }: HintInput, boat: number, side: 'abov
   const mean = off.reduce((sum, x) => sum + x, 0) / off.length;
   const size = side === 'above' ? mean : -mean;
   return size >= 0.75 ? `, on average, ${size.toFixed(0)}° ${side}` : ` ${side}`;
-}
-
-function tackWords(input: HintInput, boat: number, other: number): string {
-  const mean = (k: number): number => {
-    const costs = input.estimates[k].manoeuvres.flatMap(({ manoeuvre, loss }) =>
-      manoeuvre.kind === 'tack' && loss ? [loss.value] : [],
-    );
-    return costs.reduce((sum, cost) => sum + cost, 0) / costs.length;
-  };
-  const [mine, theirs] = [mean(boat), mean(other)];
-  if (!Number.isFinite(mine + theirs)) return '';
-  return ` (${mine.toFixed(0)} m a tack against ${theirs.toFixed(0)})`;
 }
 
 /** Leeway this far from the best is worth a word, where sensors measured it beyond two standard errors. [deg] */
