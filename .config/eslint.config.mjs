@@ -2,7 +2,7 @@ import tseslint from 'typescript-eslint';
 
 /** Types catch most mistakes; these rules catch what types let through. */
 export default tseslint.config(
-  { ignores: ['dist/**', 'node_modules/**', 'reports/**', 'coverage/**', '.config/**'] },
+  { ignores: ['dist/**', 'node_modules/**', 'reports/**', 'coverage/**', '.config/**', 'test/bench/*.mjs'] },
   ...tseslint.configs.recommendedTypeChecked,
   {
     languageOptions: { parserOptions: { projectService: true } },
