@@ -1,6 +1,7 @@
 /**
  * Hints against planted faults: the first hint of the boat that has the fault names it; of clean pairs at most one in ten
- * is told anything. Short: six races each; with LEGWORK_LONG=1 thirty, on seeds no figure of the program was looked at on.
+ * is told anything. Short: six races each, so one miss more than the share is let pass; with LEGWORK_LONG=1 thirty, on
+ * seeds no figure of the program was looked at on.
  */
 import { describe, expect, it } from 'vitest';
 import { debrief } from '../../src/debrief.js';
@@ -55,14 +56,14 @@ const PLANTED: readonly Planted[] = [
   { name: 'pinching 5 degrees', faults: { pinch: 5 }, words: /above the best course angle/, came: always, share: 0.9 },
   // Largest in every race, and beyond two standard errors in 19 of 20; told only beyond some 2.5, for so many are looked at.
   { name: '3 % slow', faults: { slow: 0.03 }, words: /^Slower at the same angle/, came: always, share: 0.8 },
-  { name: 'tacks of twice the cost', faults: { tackCost: 2 }, words: /^Dearer tacks/, came: always, share: 0.7 },
+  { name: 'tacks of twice the cost', faults: { tackCost: 2 }, words: /^Dearer tacks/, came: always, share: 0.8 },
   {
     name: 'overstanding by 60 m',
     faults: { overstand: 60 },
     words: /beyond the lay line/,
     came: (truth) => beyondLayLine(truth) > 50 && trueExcess(truth).overstood > 20,
     // Where the other boat stood on by a shift as well, or a later header made good the loss, nothing is told.
-    share: 0.6,
+    share: 0.5,
   },
   {
     name: 'the headed tack',
@@ -88,7 +89,7 @@ describe.each(PLANTED)('$name', ({ faults, words, came, share }) => {
       if (!named) missed.push(`${seed}: ${told.join(' / ')}`);
     }
     expect(n).toBeGreaterThan(SEEDS.length / 3);
-    expect(missed.length, missed.join('\n')).toBeLessThanOrEqual(Math.max(1, Math.floor((1 - share) * n)));
+    expect(missed.length, missed.join('\n')).toBeLessThanOrEqual(1 + Math.floor((1 - share) * n));
   }, 300_000);
 });
 
