@@ -488,8 +488,12 @@ export interface Header {
   readonly sensor: boolean;
 }
 
+/** No header of a column is longer: what follows is damage, and taking it apart grows with the square of its length. */
+const LONGEST_HEADER = 200;
+
 /** What a header says, as far as it is known. */
-export function readHeader(header: string): Header {
+export function readHeader(text: string): Header {
+  const header = text.slice(0, LONGEST_HEADER);
   const all = wordsOf(header);
   const { words, unit: said } = MEANING_OF.has(all.join(' ')) ? { words: all, unit: null } : splitUnit(header);
   const qualifiers = { utc: false, sensor: false, north: '' };
