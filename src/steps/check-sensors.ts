@@ -2,6 +2,7 @@ import type { LatLon } from '../files/race-types.js';
 import type { Issue } from '../recording/issues.js';
 import type { Recording } from '../recording/recording.js';
 import { checkClocks, type ClockedLog } from '../sensors/clock.js';
+import { clockSteps } from '../sensors/clock-step.js';
 import { trueHeading } from '../sensors/magnetic.js';
 import { findStuckWind, withoutMasked } from '../sensors/stuck.js';
 import type { ReadLogs } from './read-logs.js';
@@ -31,5 +32,6 @@ export function clockIssues(logs: ReadLogs): readonly Issue[] {
     ...logs.boats.flatMap((boat) => boat.instruments.map((own) => ({ ...own, isTrack: false }))),
     ...logs.winds.map((wind) => ({ file: wind.reference.file, isTrack: false, recording: wind.recording })),
   ];
-  return checkClocks(clocked).issues;
+  const steps = clocked.filter(({ isTrack }) => isTrack).flatMap(({ recording, file }) => clockSteps(recording, file));
+  return [...checkClocks(clocked).issues, ...steps];
 }
