@@ -152,6 +152,7 @@ const TELLING = new Set([
   'under-engine',
   'wind-dead',
   'wind-stuck',
+  'clock-offset',
   'wind-no-overlap',
   'clock-steps',
   'zone-suspect',
