@@ -25,18 +25,15 @@ const REACH = 10;
  * @returns At most one issue, for the first jump, with how many there are.
  */
 export function clockSteps(recording: Recording, file: string): Issue[] {
-  const rows = fixRows(recording);
-  const { time } = recording;
+  const { time, channels } = recording;
   const steps: { readonly at: number; readonly seconds: number }[] = [];
-  for (let k = 1; k < rows.length; k++) {
-    const hole = time[rows[k]] - time[rows[k - 1]];
-    if (hole < SHORTEST) continue;
-    const before = speedOver(recording, rows, k - 1, -1);
-    const after = speedOver(recording, rows, k, 1);
-    const speed = Math.min(before, after);
-    const moved = distanceBetween(recording, rows[k - 1], rows[k]);
-    if (!(speed >= LEAST_SPEED) || moved > MOMENT * speed || moved > MOST_SHARE * speed * hole) continue;
-    steps.push({ at: time[rows[k - 1]], seconds: hole - moved / speed });
+  let last = -1;
+  for (let row = 0; channels.lat && row < time.length; row++) {
+    if (Number.isNaN(channels.lat[row])) continue;
+    const hole = last < 0 ? 0 : time[row] - time[last];
+    const step = hole < SHORTEST ? NaN : stepOver(recording, last, row);
+    if (!Number.isNaN(step)) steps.push({ at: time[last], seconds: step });
+    last = row;
   }
   if (steps.length === 0) return [];
   const [{ at, seconds }] = steps;
@@ -47,21 +44,24 @@ export function clockSteps(recording: Recording, file: string): Issue[] {
   return [{ code: 'clock-steps', message, file }];
 }
 
-function fixRows({ channels }: Recording): number[] {
-  const rows: number[] = [];
-  channels.lat?.forEach((value, row) => {
-    if (!Number.isNaN(value)) rows.push(row);
-  });
-  return rows;
+/** By how much the clock jumped between two fixes; NaN where the boat has sailed meanwhile, or lay still. [s] */
+function stepOver(recording: Recording, before: number, after: number): number {
+  const hole = recording.time[after] - recording.time[before];
+  const speed = Math.min(speedOver(recording, before, -1), speedOver(recording, after, 1));
+  const moved = distanceBetween(recording, before, after);
+  const isThere = moved <= MOMENT * speed && moved <= MOST_SHARE * speed * hole;
+  return speed >= LEAST_SPEED && isThere ? hole - moved / speed : NaN;
 }
 
 /** Mean speed from a fix over the seconds before or after it; NaN where the log has a hole there too. [m/s] */
-function speedOver(recording: Recording, rows: readonly number[], k: number, way: 1 | -1): number {
-  const { time } = recording;
-  let end = k;
-  while (Math.abs(time[rows[end + way]] - time[rows[k]]) <= REACH) end += way;
-  const seconds = Math.abs(time[rows[end]] - time[rows[k]]);
-  return seconds >= REACH / 2 ? distanceBetween(recording, rows[k], rows[end]) / seconds : NaN;
+function speedOver(recording: Recording, row: number, way: 1 | -1): number {
+  const { time, channels } = recording;
+  let end = row;
+  for (let i = row + way; Math.abs(time[i] - time[row]) <= REACH; i += way) {
+    if (!Number.isNaN(channels.lat?.[i] ?? NaN)) end = i;
+  }
+  const seconds = Math.abs(time[end] - time[row]);
+  return seconds >= REACH / 2 ? distanceBetween(recording, row, end) / seconds : NaN;
 }
 
 function distanceBetween({ channels: { lat, lon } }: Recording, a: number, b: number): number {
