@@ -68,8 +68,13 @@ export function readPlainDecimal(text: string, from: number, until: number): num
 const DECIMAL = /^\s*([+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d{1,3})?)\s*$/;
 const DECIMAL_COMMA = /^\s*([+-]?\d*),(\d+)\s*$/;
 
+/** A double has no more digits than this; what is longer is damage, and matching it grows with its length squared. */
+const LONGEST_NUMBER = 400;
+
 /** Exponents, many digits, spaces around, a decimal comma. */
-function readOddDecimal(text: string): number {
+function readOddDecimal(written: string): number {
+  const text = written.trim();
+  if (text.length > LONGEST_NUMBER) return NaN;
   const plain = DECIMAL.exec(text);
   if (plain) {
     const value = Number(plain[1]);
