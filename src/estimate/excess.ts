@@ -38,6 +38,8 @@ export interface Excess {
 
 /** An excess smaller than this, two lengths of a dinghy, is nothing to tell a sailor. [m] */
 const LEAST = 8;
+/** The same for what goes on all the way (high, low, speed), as a share of the way: no helm repeats itself better. */
+const LEAST_SHARE = 0.005;
 /**
  * Never below two standard errors; wider for small samples and for looking at six causes that chance moves at once
  * (manoeuvres, start, high, low, speed, overstood): Bonferroni, 5 % one-sided.
@@ -60,6 +62,8 @@ interface Found {
   readonly madeByCurve: boolean;
   readonly freedom: number;
   readonly fromSpeed: number;
+  /** Nothing to tell below this. [m] */
+  readonly least?: number;
   readonly each?: Excess['each'];
 }
 
@@ -92,9 +96,9 @@ export function excesses(boat: BoatCosts, other: BoatCosts): Excess[] {
   return [...found, shiftsFound(mine, theirs)].map(judged);
 }
 
-function judged({ cause, metres, se, sys, curve, madeByCurve, freedom, fromSpeed, each }: Found): Excess {
+function judged({ cause, metres, se, sys, curve, madeByCurve, freedom, fromSpeed, each, least }: Found): Excess {
   const factor = Math.max(LEAST_FACTOR, studentInterval(LEVEL, Math.max(2, freedom)));
-  const stands = metres > LEAST && metres > factor * Math.hypot(se, sys, madeByCurve ? curve : 0);
+  const stands = metres > Math.max(LEAST, least ?? 0) && metres > factor * Math.hypot(se, sys, madeByCurve ? curve : 0);
   return { cause, metres, se, sys: Math.hypot(sys, curve), stands, fromSpeed, ...(each ? { each } : {}) };
 }
 
@@ -162,7 +166,8 @@ function ratesFound(
     const sys = seconds * instrumentShift(first, second, errors, others);
     const plain = total(mine, cause) - total(theirs, cause);
     const metres = Number.isNaN(value) ? plain : seconds * value;
-    return { cause, metres, se: seconds * se, sys, curve: 0, madeByCurve: false, freedom, fromSpeed: 0 };
+    const least = LEAST_SHARE * mine.reduce((sum, { ledger }) => sum + ledger.available.value, 0);
+    return { cause, metres, se: seconds * se, sys, curve: 0, madeByCurve: false, freedom, fromSpeed: 0, least };
   };
   const speed = of('speed');
   const offBest = (pieces: readonly LedgerPiece[]): number => mean(pieces.map((p) => p.block.gamma - p.offer.gamma));

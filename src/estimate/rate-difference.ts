@@ -35,7 +35,7 @@ export interface RateDifference {
 
 /** Shares of the wind's part that are tried, on its stated variance; and correlations of a boat's neighbouring blocks. */
 const WIND_SCALES = [0.02, 0.1, 0.5, 2, 8, 30, 120, 500, 2000];
-const KEEPINGS = [-0.4, -0.2, 0, 0.25, 0.5];
+const KEEPINGS = [-0.4, -0.2, 0, 0.25, 0.5, 0.7, 0.85];
 /** Two means, the scale and the keeping. */
 const PARAMETERS = 4;
 /** Length of a usual block: shorter ones are the noisier. [s] */
