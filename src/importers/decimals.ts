@@ -1,4 +1,5 @@
 /** Numbers as logs write them. */
+import { latin1 } from './encoding.js';
 
 /** Powers of ten that a double holds exactly. */
 const EXACT_TENS = Array.from({ length: 23 }, (_, k) => Number(`1e${k}`));
@@ -29,6 +30,28 @@ export function readDecimal(text: string, start = 0, end = text.length): number 
   if (digits === 0) return NaN;
   if (digits > 15) return readOddDecimal(text.slice(start, end));
   if (places > 0) value /= EXACT_TENS[places];
+  return sign === 45 ? -value : value;
+}
+
+/** The decimal number that stands in the bytes [start, end): what readDecimal makes of their letters. */
+export function readDecimalBytes(bytes: Uint8Array, start: number, end: number): number {
+  let at = start;
+  const sign = at < end ? bytes[at] : 0;
+  if (sign === 45 || sign === 43) at++;
+  let digits = 0;
+  let value = 0;
+  let point = -1;
+  for (; at < end; at++) {
+    const code = bytes[at];
+    if (code >= 48 && code <= 57) {
+      value = value * 10 + (code - 48);
+      digits++;
+    } else if (code === 46 && point < 0) point = at;
+    else return readDecimal(latin1(bytes.subarray(start, end)));
+  }
+  if (digits === 0) return NaN;
+  if (digits > 15) return readDecimal(latin1(bytes.subarray(start, end)));
+  if (point >= 0 && point < end - 1) value /= EXACT_TENS[end - 1 - point];
   return sign === 45 ? -value : value;
 }
 

@@ -49,7 +49,7 @@ function hasSentences(text: string): boolean {
 }
 
 function detectXml(text: string, file: string): LogKind {
-  const root = /<(?![?!])(?:[\w.-]+:)?([\w.-]+)/.exec(text.replace(/<!--[\s\S]*?-->/g, ''))?.[1] ?? '';
+  const root = /<(?![?!])(?:[\w.-]+:)?([\w.-]+)/.exec(text.replace(/<!--[\s\S]*?(?:-->|$)/g, ''))?.[1] ?? '';
   if (root.toLowerCase() === 'gpx' || /^(trk|trkseg|trkpt)$/i.test(root)) return 'gpx';
   throw new UserError(`${file}: this is XML, but not GPX (its root element is '${root.slice(0, 60)}').`, {
     exitCode: 2,

@@ -7,9 +7,10 @@ import { latin1 } from './encoding.js';
 import { carriesZone, fromUnix, readClock, readIso } from './times.js';
 import { readDecimal } from './decimals.js';
 import type { Bytes } from './bytes.js';
+import { TextFields, type Fields } from './fields.js';
 
 /** No sentence is longer, with its stamps; what is, is not one. */
-const LONGEST = 4096;
+export const LONGEST = 4096;
 const LF = 10;
 const CR = 13;
 const DOLLAR = 36;
@@ -17,10 +18,14 @@ const BANG = 33;
 const STAR = 42;
 const COMMA = 44;
 
-/** Calls `take` with each line (without its end) and its number, counted from 1. */
+/** Takes the line (numbered from 1) that begins at `from`, if it can; returns where the next begins, -1 if it cannot. */
+export type TakeQuickly = (bytes: Uint8Array, from: number, end: number, number: number) => number;
+
+/** Calls `take` with each line (without its end) and its number, counted from 1, that `quick` does not take. */
 export async function eachLine(
   bytes: Bytes,
   take: (line: Uint8Array, number: number, ended: boolean) => void,
+  quick: TakeQuickly | null,
 ): Promise<void> {
   let held = new Uint8Array(0);
   let number = 0;
@@ -38,8 +43,12 @@ export async function eachLine(
       data.set(piece, held.length);
     }
     let from = 0;
-    for (let to = data.indexOf(end); to >= 0; to = data.indexOf(end, from)) {
-      take(trimmed(data, from, to), ++number, true);
+    for (;;) {
+      const next = quick ? quick(data, from, end, number + 1) : -1;
+      const to = next < 0 ? data.indexOf(end, from) : next - 1;
+      if (to < 0) break;
+      number++;
+      if (next < 0) take(trimmed(data, from, to), number, true);
       from = to + 1;
     }
     held = data.slice(from);
@@ -65,7 +74,7 @@ export interface Sentence {
   /** Talker and formatter, upper case. */
   readonly address: string;
   /** The fields, taken apart when asked for: most sentences of a log are none of ours. */
-  readonly fields: () => string[];
+  readonly fields: () => Fields;
   readonly check: Check;
 }
 
@@ -102,10 +111,12 @@ function sentenceAt(line: Uint8Array, from: number, start: number, end: number):
   const address = latin1(line.subarray(at + 1, comma < 0 || comma > stop ? stop : comma)).toUpperCase();
   if (!/^[A-Z][A-Z0-9]{2,14}$/.test(address)) return undefined;
   const prefix = at === start && start > from ? latin1(line.subarray(from, start)) : '';
-  const fields = (): string[] =>
-    latin1(line.subarray(at + 1, stop))
-      .split(',')
-      .slice(1);
+  const fields = (): Fields =>
+    new TextFields(
+      latin1(line.subarray(at + 1, stop))
+        .split(',')
+        .slice(1),
+    );
   return { prefix, address, fields, check };
 }
 
@@ -119,7 +130,8 @@ function checkOf(line: Uint8Array, start: number, end: number): Check {
   return at + 3 === end && written === sum ? 'good' : 'bad';
 }
 
-function hex(byte: number): number {
+/** The value of a hexadecimal digit, NaN for any other byte. */
+export function hex(byte: number): number {
   if (byte >= 48 && byte <= 57) return byte - 48;
   const letter = byte | 32;
   return letter >= 97 && letter <= 102 ? letter - 87 : NaN;
@@ -134,12 +146,15 @@ export interface Stamp {
   readonly dayless: boolean;
 }
 
+/** No stamp or tag block is longer: what is, is damage, and looking for a stamp in it grows with its length squared. */
+const LONGEST_STAMP = 400;
+
 export const NO_STAMP: Stamp = { seconds: NaN, zoned: true, dayless: false };
 
 /** The stamp before a sentence: a tag block, Unix time, ISO 8601 or a time of day; else none. */
 export function stampOf(prefix: string): Stamp {
   const text = prefix.trim();
-  if (text === '') return NO_STAMP;
+  if (text === '' || text.length > LONGEST_STAMP) return NO_STAMP;
   if (text.startsWith('\\')) return tagStamp(text);
   const bare = text.replace(/^[[("']+|[\])"';,:\s]+$/g, '');
   const unix = fromUnix(readDecimal(/^[\d.]+/.exec(bare)?.[0] ?? ''));

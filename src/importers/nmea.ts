@@ -10,7 +10,9 @@ import { DAY, DayCount, readDay } from './days.js';
 import { asAscii } from './encoding.js';
 import { eachLine, sentencesOf, stampOf, type Sentence } from './framing.js';
 import { GrowingColumn, type LogRows } from './rows.js';
-import { decode, type Reading, type Values } from './sentences.js';
+import type { Fields } from './fields.js';
+import { PlainSentences } from './plain-sentences.js';
+import { addressOf, NOTHING, type Address, type Reading, type Values } from './sentences.js';
 import { settle, type Settled } from './settle.js';
 import type { Tally } from './tally.js';
 import type { ColumnReading, ImportOptions } from './types.js';
@@ -39,6 +41,7 @@ class NmeaLog {
   readonly days = new DayCount();
   readonly #leadDays = new DayCount();
   readonly lead = new GrowingColumn();
+  readonly #plain = new PlainSentences();
   readonly #checked = new Set<string>();
   readonly #seen = new Map<string, Set<Channel>>();
   readonly #zone: ZoneClock | null;
@@ -76,17 +79,34 @@ class NmeaLog {
     }
   }
 
+  /** Takes the line that begins at `from` if it is plain; returns where the next one begins, -1 if it is not. */
+  plain(bytes: Uint8Array, from: number, end: number, line: number): number {
+    const next = this.#plain.read(bytes, from, end);
+    if (next < 0) return next;
+    const { address, fields } = this.#plain;
+    this.#tally.read++;
+    this.#checked.add(address.talker);
+    this.#leadNow = NaN;
+    this.#use(address, address.decode ? address.decode(fields) : NOTHING, fields, line);
+    return next;
+  }
+
   #sentence(sentence: Sentence, line: number): void {
-    const talker = sentence.address.slice(0, 2);
+    const address = addressOf(sentence.address);
+    const { talker, decode } = address;
     if (sentence.check === 'good') this.#checked.add(talker);
     if (sentence.check === 'bad') return this.#tally.reject('bad checksum', line);
     if (sentence.check === 'missing') {
       if (this.#checked.has(talker)) return this.#tally.reject('checksum missing', line);
       this.#tally.notice('checksum-missing', line);
     }
-    const formatter = sentence.address.startsWith('P') ? sentence.address : sentence.address.slice(-3);
     this.#readLead(sentence.prefix);
-    const reading = decode(formatter, sentence.fields);
+    if (!decode) return this.#tally.ignore(address.formatter);
+    const fields = sentence.fields();
+    this.#use(address, decode(fields), fields, line);
+  }
+
+  #use({ formatter, talker }: Address, reading: Reading, fields: Fields, line: number): void {
     switch (reading.is) {
       case 'nothing':
         return this.#tally.ignore(formatter);
@@ -98,7 +118,7 @@ class NmeaLog {
       case 'fix':
         return this.#fixSentence(formatter, talker, reading, line);
       case 'values':
-        return this.#values(labelOf(formatter, sentence), reading.values, line);
+        return this.#values(labelOf(formatter, fields), reading.values, line);
     }
   }
 
@@ -146,7 +166,9 @@ class NmeaLog {
       this.#rows.set('lat', fix.row, reading.position.lat);
       this.#rows.set('lon', fix.row, reading.position.lon);
     }
-    this.#set(formatter, fix.row, { lat: NaN, lon: NaN, ...reading.values });
+    const seen = this.#seenOf(formatter);
+    seen.add('lat').add('lon');
+    this.#set(seen, fix.row, reading.values);
     if (!Number.isNaN(reading.values.sog ?? NaN)) this.#speedInFix = true;
   }
 
@@ -165,16 +187,21 @@ class NmeaLog {
   #values(label: string, values: Values, line: number): void {
     if (label === 'VTG' && this.#fix && (this.#fix.quiet || this.#speedInFix)) {
       const row = this.#join(this.#fix).row;
-      if (!this.#speedInFix) this.#set(label, row, values);
+      if (!this.#speedInFix) this.#set(this.#seenOf(label), row, values);
       return;
     }
     if (this.#fix) this.#fix.quiet = false;
-    this.#set(label, this.#add(NaN, line), values);
+    this.#set(this.#seenOf(label), this.#add(NaN, line), values);
   }
 
-  #set(label: string, row: number, values: Values): void {
+  /** The channels seen under a label so far. */
+  #seenOf(label: string): Set<Channel> {
     let seen = this.#seen.get(label);
     if (!seen) this.#seen.set(label, (seen = new Set()));
+    return seen;
+  }
+
+  #set(seen: Set<Channel>, row: number, values: Values): void {
     for (const channel in values) {
       seen.add(channel as Channel);
       this.#rows.set(channel as Channel, row, values[channel as Channel]!);
@@ -189,20 +216,29 @@ class NmeaLog {
 }
 
 /** MWV is two sentences under one name. */
-function labelOf(formatter: string, sentence: Sentence): string {
-  return formatter === 'MWV' ? `MWV ${(sentence.fields()[1] ?? '').trim().toUpperCase()}` : formatter;
+function labelOf(formatter: string, fields: Fields): string {
+  return formatter === 'MWV' ? `MWV ${fields.letters(1).trim()}` : formatter;
 }
 
-/** Reads an NMEA 0183 log. */
+/**
+ * Reads an NMEA 0183 log.
+ *
+ * @param quick Lines that are plain go past the tolerant reader; without it all goes through it, which is the reference.
+ */
 export async function readNmea(
   bytes: Bytes,
   encoding: string,
   rows: LogRows,
   tally: Tally,
   options: ImportOptions,
+  quick = true,
 ): Promise<{ settled: Settled; columns: ColumnReading[] }> {
   const log = new NmeaLog(rows, tally, options.zone === undefined ? null : createZoneClock(options.zone));
-  await eachLine(asAscii(bytes, encoding, tally), (line, number, ended) => log.line(line, number, ended));
+  await eachLine(
+    asAscii(bytes, encoding, tally),
+    (line, number, ended) => log.line(line, number, ended),
+    quick ? (piece, from, end, number) => log.plain(piece, from, end, number) : null,
+  );
   const date = readDay(options.date);
   const lead = log.leads > 0 ? log.lead : undefined;
   if (log.fixes > 0) dropClockRows(log, rows, tally);

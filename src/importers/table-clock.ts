@@ -82,11 +82,14 @@ export function readUnix(number: number, factor: number): number {
   return Number.isNaN(factor) || number * factor < 1e8 ? fromUnix(number) : number * factor;
 }
 
+/** No time is written longer: what is, is damage, and looking for a time in it grows with the square of its length. */
+const LONGEST_TIME = 64;
 const COMPACT = /^(\d{4})(\d\d)(\d\d)[T ]?(\d\d)(\d\d)(\d\d(?:\.\d+)?)?(?:Z|[+-]\d\d:?\d\d)?$/i;
 const PARTED = /^(\d{1,4}[-/.]\d{1,2}[-/.]\d{1,4})[T ,]+(\d{1,2}:\d\d.*)$/i;
 
 /** Date and time in another form than ISO's usual one: compact, or day or month first. Zone left out. */
 export function readOddTime(text: string, order: DateOrder): number {
+  if (text.length > LONGEST_TIME) return NaN;
   const compact = COMPACT.exec(text);
   if (compact) {
     const [, y, m, d, hh, mm, ss = '0'] = compact;
@@ -119,6 +122,7 @@ export function readDate(text: string, order: DateOrder): number {
 
 /** Seconds of the day of `h:mm`, `hh:mm:ss.f`, `hhmmss`, with AM or PM; NaN when not understood. */
 export function readTimeOfDay(text: string): number {
+  if (text.length > LONGEST_TIME) return NaN;
   const parts = /^(\d{1,2}):?(\d\d)(?::?(\d\d(?:[.,]\d+)?))?\s*([AP]M)?\s*(?:Z|UTC|GMT|[+-]\d\d:?\d\d)?$/i.exec(text);
   if (!parts) return NaN;
   let hour = Number(parts[1]);

