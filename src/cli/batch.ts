@@ -87,7 +87,10 @@ async function runJob(
   const worked = await task.work(job).catch(withZoneHint(job));
   const result = withIssues(worked.result, job);
   await writeOutputs(places, result, worked.series, () => task.page(result, worked.series));
-  const filed = flags.logbook === undefined ? [] : [await fileInLogbook(flags.logbook, result, job.day)];
+  const filed =
+    flags.logbook === undefined
+      ? []
+      : [`Filed: ${forMessages((await fileInLogbook(flags.logbook, result, job.day)).path)}`];
   progress.clear();
   if (flags.quiet || places.json === '-') return [];
   if (several) return [`${oneLine(result, job)}  ${forMessages(places.html ?? places.json ?? '')}`];

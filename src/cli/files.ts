@@ -6,8 +6,12 @@ import { UserError } from '../index.js';
 import type { LogSource } from '../index.js';
 import { asUserError } from './failures.js';
 
-/** Files being written at this moment. */
+/** Files that are there for a moment only. */
 const temporaries = new Set<string>();
+
+/** Told of a file that an interruption must take away, and that it is gone or done. */
+export const dropAtEnd = (path: string): void => void temporaries.add(path);
+export const keep = (path: string): void => void temporaries.delete(path);
 
 /** Takes away what an interruption left unfinished. */
 export function dropTemporaries(): void {
@@ -26,7 +30,7 @@ export async function writeWhole(path: string, content: string | Uint8Array, opt
   const shown = forMessages(path);
   try {
     const target = await realTarget(path);
-    await makeFolder(dirname(target));
+    await makeFolders(dirname(target));
     const bytes = typeof content === 'string' ? Buffer.from(content, 'utf8') : content;
     if (await isSpecial(target)) writeBytes(target, 'w', bytes, false);
     else writeThenRename(target, bytes);
@@ -36,13 +40,25 @@ export async function writeWhole(path: string, content: string | Uint8Array, opt
   }
 }
 
-/** Makes a folder and those above it. On a read-only disk Node's own way says that nothing is there. */
-async function makeFolder(path: string): Promise<void> {
+/** Names of files half written, as `writeThenRename` makes them. */
+export const TEMPORARY = /^\..+\.[0-9a-f]{12}\.tmp$/;
+
+/** Makes a folder and those above it where they are not there. */
+export async function makeFolder(path: string): Promise<void> {
+  try {
+    await makeFolders(path);
+  } catch (error) {
+    throw asUserError(error, forMessages(path));
+  }
+}
+
+/** On a read-only disk Node's own way says that nothing is there. */
+async function makeFolders(path: string): Promise<void> {
   try {
     await mkdir(path, { recursive: true });
   } catch (error) {
     if ((error as NodeJS.ErrnoException).code !== 'ENOENT') throw error;
-    if ((await kindOf(dirname(path))) === null) await makeFolder(dirname(path));
+    if ((await kindOf(dirname(path))) === null) await makeFolders(dirname(path));
     await mkdir(path);
   }
 }

@@ -1,23 +1,54 @@
 import { createHash } from 'node:crypto';
-import { readdir } from 'node:fs/promises';
+import { readdir, rm, stat } from 'node:fs/promises';
 import { join } from 'node:path';
 import { resultFiles } from '../index.js';
 import type { BoatResult, InputEntry, Result, Warning } from '../index.js';
-import { forMessages, kindOf, readText, unusable, writeWhole } from './files.js';
+import { forMessages, kindOf, makeFolder, readText, TEMPORARY, unusable, writeWhole } from './files.js';
+import { withLock } from './lock.js';
 import { raceSlug } from './slug.js';
 import { complain } from './terminal.js';
 
+/** What came of filing. */
+export interface Filed {
+  readonly path: string;
+  /** The file's text. */
+  readonly text: string;
+}
+
+/** Half-written files older than this were left by a run that was killed. [ms] */
+const LEFT_BEHIND = 5 * 60_000;
+
 /**
  * Files a result in a logbook: one file a race, named by date, race and the digest of name and start. The same race
- * filed again is replaced; its boats are merged by name. Written beside its place, flushed, renamed, the folder flushed.
+ * filed again is replaced; its boats are merged by name. Written beside its place, flushed, renamed, the folder
+ * flushed; one run at a time, so that two who file boats of one race lose none.
  */
-export async function fileInLogbook(folder: string, result: Result, day: string | null): Promise<string> {
+export async function fileInLogbook(folder: string, result: Result, day: string | null): Promise<Filed> {
   if ((await kindOf(folder)) === 'file') throw unusable(`${forMessages(folder)}: a file, not a logbook folder.`);
   const { jsonText, readResult } = await resultFiles();
   const path = join(folder, logbookName(result, day));
-  const before = (await kindOf(path)) === 'file' ? await readResult(await readText(path)).catch(nothing(path)) : null;
-  await writeWhole(path, jsonText(before === null ? result : merged(before, result)), { syncFolder: true });
-  return `Filed: ${forMessages(path)}`;
+  await makeFolder(folder);
+  return withLock(folder, async (held) => {
+    await sweep(folder);
+    const before = (await kindOf(path)) === 'file' ? await readResult(await readText(path)).catch(nothing(path)) : null;
+    const text = jsonText(before === null ? result : merged(before, result));
+    if (!held()) throw unusable(`${forMessages(folder)}: this run stood still and lost its turn.`, 'Run it again.');
+    await writeWhole(path, text, { syncFolder: true });
+    return { path, text };
+  });
+}
+
+/** Takes away what killed runs left half written. */
+async function sweep(folder: string): Promise<void> {
+  for (const name of await readdir(folder)) {
+    if (!TEMPORARY.test(name)) continue;
+    const path = join(folder, name);
+    const age = await stat(path).then(
+      ({ mtimeMs }) => Date.now() - mtimeMs,
+      () => 0,
+    );
+    if (age > LEFT_BEHIND) await rm(path, { force: true });
+  }
 }
 
 /** A damaged file of ours is replaced, a newer one is not touched. */
@@ -30,8 +61,7 @@ const nothing =
   };
 
 /** `<date>-<race>-<8 characters of the digest of name and start>.json`; without a start the day stands for it. */
-export function logbookName(result: Result, day: string | null): string {
-  const { name, start } = result.race;
+export function logbookName({ race: { name, start } }: Pick<Result, 'race'>, day: string | null): string {
   const digest = createHash('sha256')
     .update(`${name}\n${start ?? day ?? ''}`)
     .digest('hex');
@@ -76,8 +106,10 @@ export async function readLogbook(folder: string): Promise<Result[]> {
     try {
       results.push(await readResult(await readText(join(folder, name))));
     } catch (error) {
-      if ((error as Error).name !== 'NotAResult') throw error;
-      complain(`${forMessages(join(folder, name))}: ${(error as Error).message} It was left out.`);
+      const { name: kind, message } = error as Error;
+      if (kind !== 'NotAResult' && kind !== 'UserError') throw error;
+      const path = forMessages(join(folder, name));
+      complain(`${message.startsWith(path) ? message : `${path}: ${message}`} It was left out.`);
     }
   }
   if (results.length > 0) return results;

@@ -13,10 +13,13 @@ export const ROOT = fileURLToPath(new URL('../../', import.meta.url));
  * The program as one would install it, put together once for a test file: what is tested does not change under the
  * test, and starts as fast as the built one. Packages are found from inside node_modules.
  */
-async function build(): Promise<string> {
+async function build(helpers: readonly string[]): Promise<string> {
   const place = join(ROOT, 'node_modules/.cache', `legwork-${process.pid}-${Date.now()}`);
   await esbuild.build({
-    entryPoints: [join(ROOT, 'src/cli/legwork.ts')],
+    entryPoints: {
+      legwork: join(ROOT, 'src/cli/legwork.ts'),
+      ...Object.fromEntries(helpers.map((name) => [name, join(ROOT, 'test/cli', `${name}.ts`)])),
+    },
     outdir: join(place, 'dist/cli'),
     bundle: true,
     splitting: true,
@@ -30,10 +33,12 @@ async function build(): Promise<string> {
 }
 
 let place: string | undefined;
-/** For `beforeAll`. */
-export async function buildProgram(): Promise<void> {
-  place = await build();
+/** For `beforeAll`. `helpers`: programs of test/cli that are put together with it, by name. */
+export async function buildProgram(...helpers: string[]): Promise<void> {
+  place = await build(helpers);
 }
+/** Where a helper lies that `buildProgram` was given. */
+export const helperPath = (name: string): string => join(place!, 'dist/cli', `${name}.js`);
 /** For `afterAll`. */
 export function dropProgram(): void {
   if (place) drop(place);
