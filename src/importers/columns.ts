@@ -491,8 +491,11 @@ export interface Header {
 /** No header of a column is longer: what follows is damage, and taking it apart grows with the square of its length. */
 const LONGEST_HEADER = 200;
 
+const NO_HEADER: Header = { meaning: null, unit: null, utc: false, sensor: false };
+
 /** What a header says, as far as it is known. */
 export function readHeader(text: string): Header {
+  if (text === '') return NO_HEADER;
   const header = text.slice(0, LONGEST_HEADER);
   const all = wordsOf(header);
   const { words, unit: said } = MEANING_OF.has(all.join(' ')) ? { words: all, unit: null } : splitUnit(header);

@@ -3,7 +3,10 @@ import { CHANNELS, type Channel } from '../recording/recording.js';
 /** Rows a block: a column grows by blocks, so that it is never copied while the log is read. */
 const BLOCK = 1 << 15;
 
-/** A column of numbers that grows at its end. What was never set is `fill`. */
+/** A block in which nothing was set. */
+const NO_VALUES = new Float64Array(BLOCK).fill(NaN);
+
+/** A column of numbers that grows at its end. What was never set is NaN. */
 export class GrowingColumn {
   readonly #blocks: Float64Array[] = [];
   set(row: number, value: number): void {
@@ -14,13 +17,32 @@ export class GrowingColumn {
 
   /** The values of some rows, in their order. */
   pick(rows: Uint32Array): Float64Array {
+    const blocks = this.#blocks;
     const values = new Float64Array(rows.length);
+    let at = -1;
+    let block = NO_VALUES;
     for (let i = 0; i < rows.length; i++) {
       const row = rows[i];
-      const block = this.#blocks[row >>> 15];
-      values[i] = block ? block[row & (BLOCK - 1)] : NaN;
+      if (row >>> 15 !== at) block = blocks[(at = row >>> 15)] ?? NO_VALUES;
+      values[i] = block[row & (BLOCK - 1)];
     }
     return values;
+  }
+
+  /** Marks those of some rows (all, if undefined) that hold a value; returns how many do. */
+  mark(marks: Uint8Array, rows: Uint32Array | undefined): number {
+    const blocks = this.#blocks;
+    let present = 0;
+    for (let i = 0; i < marks.length; i++) {
+      const row = rows ? rows[i] : i;
+      const block = blocks[row >>> 15];
+      if (!block) continue;
+      const value = block[row & (BLOCK - 1)];
+      if (value !== value) continue;
+      marks[i] = 1;
+      present++;
+    }
+    return present;
   }
 
   /** The first `length` values. */

@@ -35,15 +35,16 @@ export function settle(rows: LogRows, tally: Tally, name: string, lead?: Growing
 /** Between two stamps a hair apart there may be no number left for a time of its own. */
 function withRoom(rows: LogRows, placed: Uint32Array, tally: Tally): Uint32Array {
   let before = -Infinity;
-  return placed.filter((row) => {
+  let n = 0;
+  for (let i = 0; i < placed.length; i++) {
+    const row = placed[i];
     const time = rows.time(row);
     if (time > before) {
       before = time;
-      return true;
-    }
-    tally.reject('no room between the time stamps around it', rows.line(row), rows.records(row));
-    return false;
-  });
+      placed[n++] = row;
+    } else tally.reject('no room between the time stamps around it', rows.line(row), rows.records(row));
+  }
+  return placed.subarray(0, n);
 }
 
 /** Rows with a time, piece by piece in order of their first times; a log written newest first is turned round. */
@@ -145,17 +146,11 @@ function markPresent(values: Float64Array, marks?: Uint8Array): number {
 function withValues(rows: LogRows, placed: Uint32Array | undefined): Uint32Array | undefined {
   const length = placed?.length ?? rows.length;
   const some = new Uint8Array(length);
-  for (const channel of rows.channels) {
-    const column = rows.column(channel);
-    let present = 0;
-    for (let i = 0; i < length; i++) {
-      if (Number.isNaN(column.get(placed ? placed[i] : i))) continue;
-      present++;
-      some[i] = 1;
-    }
-    if (present === length) return placed;
-  }
-  return (placed ?? new Uint32Array(length).map((_, row) => row)).filter((_, i) => some[i] === 1);
+  for (const channel of rows.channels) if (rows.column(channel).mark(some, placed) === length) return placed;
+  const left = new Uint32Array(length);
+  let n = 0;
+  for (let i = 0; i < length; i++) if (some[i] === 1) left[n++] = placed ? placed[i] : i;
+  return left.subarray(0, n);
 }
 
 function findBreaks(order: Uint32Array, pieces: readonly number[]): number[] {

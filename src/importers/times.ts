@@ -103,10 +103,11 @@ function endOfClock(text: string, from: number): number {
 }
 
 /** Seconds east of UTC written at the end of a time: `Z`, `+hh:mm`, `+hhmm`, `+hh`. NaN when it is none of these. */
-function readOffset(text: string, at: number, stop: number): number {
+function readOffset(text: string, from: number, stop: number): number {
+  let at = from;
+  while (text.charCodeAt(at) === 32) at++;
   const first = text.charCodeAt(at);
   if ((first === 90 || first === 122) && stop === at + 1) return 0;
-  if (first === 32) return readOffset(text, at + 1, stop);
   if (first !== 43 && first !== 45) return NaN;
   const colon = text.charCodeAt(at + 3) === 58 ? 1 : 0;
   const hours = digits(text, at + 1, at + 3);
