@@ -1,4 +1,4 @@
-import type { Basis, Q, Quantity } from '../result/result.js';
+import type { Q, Quantity } from '../result/result.js';
 import { html, type Safe } from './html.js';
 
 /** Numbers and times as the page shows them. Only here are figures rounded; the reader's browser localises them. */
@@ -13,13 +13,6 @@ const SUFFIX: Readonly<Record<Unit, string>> = {
   percent: '\u00a0%',
   s: '\u00a0s',
   count: '',
-};
-
-export const BASIS_WORDS: Readonly<Record<Basis, string>> = {
-  measured: 'measured',
-  derived: 'worked out from measurements by geometry',
-  inferred: 'inferred through the boat model',
-  assumed: 'assumed',
 };
 
 /**
@@ -49,32 +42,24 @@ export function suffix(unit: Unit): string {
   return SUFFIX[unit];
 }
 
-/** A bare number the client localises in place. */
+/** A bare number the client localises in place, reading it as it stands. */
 export function number(value: number, digits: number, sign = false): Safe {
-  const text = sign ? signed(value, digits) : plain(value, digits);
   if (!Number.isFinite(value)) return html`<span class="none">–</span>`;
-  return html`<span class="n" data-v="${trim(value)}" data-d="${digits}" ${sign && ATTR_SIGN}>${text}</span>`;
-}
-const ATTR_SIGN = html`data-sign=""`;
-
-/** Enough figures for the client to round again, no more. */
-function trim(value: number): string {
-  return String(Number(value.toPrecision(8)));
+  return html`<span class="n">${sign ? signed(value, digits) : plain(value, digits)}</span>`;
 }
 
-/** How a quantity is known, as one sentence for hover, focus or a tap. */
-export function errorSentence(q: Quantity, unit: Unit): string {
+/**
+ * How a quantity is known, in short, for its title: "±0.03 kn, ±0.08 kn by calibration; derived". The client tells it
+ * at length.
+ */
+export function errorNote(q: Quantity, unit: Unit): string {
   const digits = digitsFor(q, unit === 'm' ? 1 : DIGITS[unit]);
-  const parts = [
-    q.se === null ? 'no error could be stated' : `±\u00a0${withUnit(q.se, unit, digits)} (one standard error)`,
-    ...(q.sys
-      ? [
-          `a further ±\u00a0${withUnit(Math.abs(q.sys), unit, digits)} if the instruments are out by their usual calibration error`,
-        ]
-      : []),
-    BASIS_WORDS[q.basis],
+  const sys = Math.abs(q.sys ?? 0);
+  const errors = [
+    q.se === null ? 'error not stated' : `±${withUnit(q.se, unit, digits)}`,
+    ...(Number(sys.toFixed(digits)) > 0 ? [`±${withUnit(sys, unit, digits)} by calibration`] : []),
   ];
-  return `${withUnit(q.value, unit, digits)}: ${parts.join('; ')}.`;
+  return `${errors.join(', ')}; ${q.basis}`;
 }
 
 /** One more figure where the error would else read as none. */
@@ -104,15 +89,10 @@ export function quantity(q: Q, unit: Unit, options: QuantityOptions = {}): Safe 
   const { times = 1, sign = false, bare = false, unitless = false } = options;
   const shown = scaled(q, times);
   const digits = digitsFor(shown, options.digits ?? DIGITS[unit]);
-  const pm =
-    shown.se !== null && !bare
-      ? html` <small class="pm"
-          >±${html`<span class="n" data-v="${trim(shown.se)}" data-d="${digits}">${plain(shown.se, digits)}</span>`}</small
-        >`
-      : '';
-  return html`<button type="button" class="q b-${q.basis}" title="${errorSentence(shown, unit)}">
-    ${number(shown.value, digits, sign)}${!unitless && html`<span class="u">${SUFFIX[unit]}</span>`}${pm}
-  </button>`;
+  const pm = shown.se !== null && !bare ? html` <small class="pm">±${number(shown.se, digits)}</small>` : '';
+  const mark = !unitless && html`<span class="u">${SUFFIX[unit]}</span>`;
+  const note = errorNote(shown, unit);
+  return html`<button class="q b-${q.basis}" title="${note}">${number(shown.value, digits, sign)}${mark}${pm}</button>`;
 }
 
 export function scaled(q: Quantity, times: number): Quantity {
@@ -138,7 +118,7 @@ export type TimeStyle = 'day' | 'date' | 'hm' | 'hms';
 /** A time, in UTC until the reader's browser puts it in the race's zone. */
 export function time(seconds: number, style: TimeStyle): Safe {
   const iso = isoOf(seconds);
-  return html`<time datetime="${iso}" data-t="${style}">${timeText(iso, style)}</time>`;
+  return html`<time datetime="${iso.replace('.000', '')}" data-t="${style}">${timeText(iso, style)}</time>`;
 }
 
 /** The same as text for pictures. */

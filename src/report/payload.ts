@@ -1,19 +1,24 @@
 import { gunzipSync, gzipSync, strFromU8 } from 'fflate';
+import { DEG, directionOf, RAD, turn } from '../math/angles.js';
 import type { RaceSeries, BoatSeries, ManoeuvreSpan } from '../result/series.js';
 import { shiftsOf } from './shifts.js';
 
 /**
  * The series as the page carries it: whole numbers, differences from row to row, seven bits a byte, compressed, as
- * base64. The client takes it apart with the same file.
+ * base64. The client takes it apart with the same file, and works out from the carried columns what follows from them
+ * by geometry.
  */
 
 /** Columns carried and the steps they are rounded to. */
-export const COLUMNS = {
-  x: 0.1, y: 0.1, ux: 0.005, uy: 0.005, twd: 0.1, tws: 0.01, gamma: 0.1, speed: 0.005, vmg: 0.005, beta: 0.1, aws: 0.01, heading: 0.1,
-} as const; // prettier-ignore
+export const COLUMNS = { x: 0.1, y: 0.1, ux: 0.002, uy: 0.002, twd: 0.1, tws: 0.01, heading: 0.1 } as const;
 
-export type ColumnName = keyof typeof COLUMNS;
-const NAMES = Object.keys(COLUMNS) as ColumnName[];
+export type CarriedName = keyof typeof COLUMNS;
+/** Carried, and worked out: angles [deg], speeds [m/s], signs as in the series. */
+export type ColumnName = CarriedName | 'speed' | 'gamma' | 'vmg' | 'beta' | 'aws';
+const NAMES = Object.keys(COLUMNS) as CarriedName[];
+
+/** These run on as they ran: written as the difference from where the last two rows point. */
+const RUN_ON: ReadonlySet<CarriedName> = new Set(['x', 'y', 'ux', 'uy']);
 
 export interface BoatHeader {
   readonly name: string;
@@ -41,14 +46,16 @@ export interface Payload {
   readonly data: string;
 }
 
-/** More rows than this a boat are thinned for display. */
+/** More rows than this a boat, or of all boats, are thinned for display. */
 export const MOST_ROWS = 20000;
+export const MOST_ROWS_IN_ALL = 60000;
 
 export function encodePayload(series: RaceSeries): Payload {
   const longest = Math.max(1, ...series.boats.map((b) => b.n));
-  const step = Math.ceil(longest / MOST_ROWS);
+  const all = series.boats.reduce((sum, b) => sum + b.n, 0);
+  const step = Math.max(Math.ceil(longest / MOST_ROWS), Math.ceil(all / MOST_ROWS_IN_ALL));
   const bytes: number[] = [];
-  for (const boat of series.boats) for (const name of NAMES) pushColumn(bytes, boat[name], COLUMNS[name], step);
+  for (const boat of series.boats) for (const name of NAMES) pushColumn(bytes, boat[name], name, step);
   const packed = gzipSync(Uint8Array.from(bytes), { level: 9, mtime: 0 });
   return { step, zone: series.zone, boats: series.boats.map((b) => headerOf(b, step)), data: toBase64(packed) };
 }
@@ -83,19 +90,33 @@ export function stretches(flags: Uint8Array): [number, number][] {
   return out;
 }
 
-/** Zero is "not known"; other numbers are one more than the zigzag of the difference from the last known one. */
-function pushColumn(bytes: number[], column: Float64Array, unit: number, step: number): void {
-  let last = 0;
+/** Zero is "not known"; other numbers are one more than the zigzag of the difference from what was to be expected. */
+function pushColumn(bytes: number[], column: Float64Array, name: CarriedName, step: number): void {
+  const expected = expectation(name);
   for (let i = 0; i < column.length; i += step) {
-    const value = Math.round(column[i] / unit);
+    const value = Math.round(column[i] / COLUMNS[name]);
     if (!Number.isFinite(value)) {
       bytes.push(0);
       continue;
     }
-    const change = value - last;
+    const change = value - expected.next();
     pushNumber(bytes, (change < 0 ? -2 * change - 1 : 2 * change) + 1);
-    last = value;
+    expected.had(value);
   }
+}
+
+/** What a column's next known value is expected to be: the last one, or a step on from it as long as the last step. */
+function expectation(name: CarriedName): { next: () => number; had: (value: number) => void } {
+  const run = RUN_ON.has(name) ? 1 : 0;
+  let last = 0;
+  let pace = 0;
+  return {
+    next: () => last + run * pace,
+    had: (value) => {
+      pace = value - last;
+      last = value;
+    },
+  };
 }
 
 function pushNumber(bytes: number[], value: number): void {
@@ -124,14 +145,14 @@ export function decodePayload(payload: Payload): Columns[] {
     }
   };
   return payload.boats.map((boat) => {
-    const columns = NAMES.map((name) => [name, pullColumn(next, boat.rows, COLUMNS[name])] as const);
-    return Object.fromEntries(columns) as Record<ColumnName, Float64Array>;
+    const columns = NAMES.map((name) => [name, pullColumn(next, boat.rows, name)] as const);
+    return completed(Object.fromEntries(columns) as Record<CarriedName, Float64Array>);
   });
 }
 
-function pullColumn(next: () => number, rows: number, unit: number): Float64Array {
+function pullColumn(next: () => number, rows: number, name: CarriedName): Float64Array {
   const out = new Float64Array(rows);
-  let last = 0;
+  const expected = expectation(name);
   for (let i = 0; i < rows; i++) {
     const code = next();
     if (code === 0) {
@@ -139,10 +160,24 @@ function pullColumn(next: () => number, rows: number, unit: number): Float64Arra
       continue;
     }
     const zigzag = code - 1;
-    last += zigzag % 2 ? -(zigzag + 1) / 2 : zigzag / 2;
-    out[i] = last * unit;
+    const value = expected.next() + (zigzag % 2 ? -(zigzag + 1) / 2 : zigzag / 2);
+    out[i] = value * COLUMNS[name];
+    expected.had(value);
   }
   return out;
+}
+
+/** The triangle of speeds row by row, as the series has it: course, true wind, and the apparent wind they make. */
+function completed(carried: Readonly<Record<CarriedName, Float64Array>>): Columns {
+  const { ux, uy, twd, tws } = carried;
+  const speed = ux.map((east, i) => Math.hypot(east, uy[i]));
+  const gamma = ux.map((east, i) => turn(directionOf(east, uy[i]), twd[i]));
+  const vmg = speed.map((v, i) => v * Math.cos(gamma[i] * RAD));
+  const across = tws.map((wind, i) => wind * Math.sin(Math.abs(gamma[i]) * RAD));
+  const ahead = tws.map((wind, i) => speed[i] + wind * Math.cos(gamma[i] * RAD));
+  const beta = across.map((side, i) => DEG * Math.atan2(side, ahead[i]));
+  const aws = across.map((side, i) => Math.hypot(side, ahead[i]));
+  return { ...carried, speed, gamma, vmg, beta, aws };
 }
 
 function toBase64(bytes: Uint8Array): string {

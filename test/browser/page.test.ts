@@ -128,9 +128,9 @@ describe.skipIf(!browser)('the page in a browser', () => {
       page.evaluate(() => [
         document.getElementById('clock')!.textContent,
         (document.getElementById('cursor') as HTMLInputElement).value,
-        document.querySelector('#map .boat')!.getAttribute('transform')!,
+        document.querySelector('.map-live .boat')!.getAttribute('transform')!,
         (document.querySelector('.u-cursor-x') as HTMLElement).style.transform,
-        document.querySelector('.strip line:last-child')!.getAttribute('x1')!,
+        (document.querySelector('.strip-cursor') as HTMLElement).style.transform,
         document.querySelector('.triangle [data-side=boat]')!.getAttribute('x2')!,
       ]);
     const t0 = full.series.boats[0].t0;
@@ -151,7 +151,7 @@ describe.skipIf(!browser)('the page in a browser', () => {
         const [matrix, shift] = await page.evaluate(
           (k) => [
             document.querySelector('#map .world')!.getAttribute('transform')!,
-            document.querySelector(`#map .boat[data-boat="${k}"]`)!.getAttribute('transform')!,
+            document.querySelector(`.map-live .boat[data-boat="${k}"]`)!.getAttribute('transform')!,
           ],
           i,
         );

@@ -3,8 +3,7 @@ import { plain } from '../format.js';
 import { boatPaint, INK, PAPER, RULE, SOFT } from '../palette.js';
 import { heightOf, WANDER, type Climb, type RungRow } from '../rungs.js';
 import { dot } from './polar.js';
-import { simplify } from './simplify.js';
-import { coordinate, el, footAxis, line, numberText, pathOf, picture, text, type Scale } from './svg.js';
+import { coordinate, curveOf, el, footAxis, line, numberText, picture, text, type Scale } from './svg.js';
 
 export interface LadderOptions {
   readonly width: number;
@@ -135,10 +134,7 @@ function track(climb: Climb, k: 0 | 1, sheet: LadderSheet): string {
   const { colour, dash } = boatPaint(climb.index[k]);
   const points = climb.rows.map(({ places }) => places[k]);
   return el('path', {
-    d: thinPath(
-      points.map(({ across }) => sheet.x0 + across * sheet.scale),
-      points.map(({ rung }) => sheet.y0 - rung * sheet.scale),
-    ),
+    d: curveOf(points.map(({ across, rung }) => [sheet.x0 + across * sheet.scale, sheet.y0 - rung * sheet.scale])),
     fill: 'none',
     stroke: colour,
     'stroke-width': 2,
@@ -147,21 +143,10 @@ function track(climb: Climb, k: 0 | 1, sheet: LadderSheet): string {
   });
 }
 
-/** A line within half a pixel of all its points. */
-function thinPath(x: readonly number[], y: readonly number[]): string {
-  const [xs, ys] = [Float64Array.from(x), Float64Array.from(y)];
-  return simplify(xs, ys, 0, xs.length, 0.35)
-    .map((rows) => pathOf(rows.map((i) => [xs[i], ys[i]])))
-    .join('');
-}
-
 function gainPanel(climb: Climb, sheet: LadderSheet, x: Scale, up: (rung: number) => number): string {
   const { rows, names, index } = climb;
   const curve = (value: (row: RungRow) => number): string =>
-    thinPath(
-      rows.map((row) => x(value(row))),
-      rows.map((row) => up(heightOf(row))),
-    );
+    curveOf(rows.map((row) => [x(value(row)), up(heightOf(row))]));
   const [left, right] = sheet.gains;
   const size = 11.5;
   const bottom = sheet.foot + 4;

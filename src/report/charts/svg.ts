@@ -1,6 +1,7 @@
 import { escapeText } from '../html.js';
 import { plain } from '../format.js';
 import { INK, RULE, SOFT } from '../palette.js';
+import { simplify } from './simplify.js';
 
 /** Pieces of SVG as strings: elements, axes, patterns. No element carries a style attribute: the page forbids them. */
 
@@ -54,7 +55,7 @@ export function text(x: number, y: number, words: string, options: TextOptions =
 
 /** A number the client localises in place. */
 export function numberText(x: number, y: number, value: number, digits: number, options: TextOptions = {}): string {
-  const extra = { ...options.extra, 'data-v': String(Number(value.toPrecision(8))), 'data-d': digits };
+  const extra = { ...options.extra, class: 'n' };
   return text(x, y, plain(value, digits), { ...options, extra });
 }
 
@@ -121,17 +122,36 @@ export function picture(width: number, height: number, label: string, body: stri
   );
 }
 
-/** A polyline that lifts the pen wherever a point is not finite. */
+/**
+ * A polyline that lifts the pen wherever a point is not finite: tenths of a pixel, each move from where the last one
+ * ended as rounded, so that nothing drifts.
+ */
 export function pathOf(points: Iterable<readonly [number, number]>): string {
   let d = '';
-  let down = false;
+  let at: readonly [number, number] | null = null;
   for (const [x, y] of points) {
     if (!Number.isFinite(x) || !Number.isFinite(y)) {
-      down = false;
+      at = null;
       continue;
     }
-    d += `${down ? 'L' : 'M'}${Math.round(x * 10) / 10} ${Math.round(y * 10) / 10}`;
-    down = true;
+    const to = [Math.round(x * 10), Math.round(y * 10)] as const;
+    const [dx, dy] = at ? [to[0] - at[0], to[1] - at[1]] : to;
+    if (!at || dx !== 0 || dy !== 0) d += `${at ? 'l' : 'M'}${short(dx)}${dy < 0 ? '' : ' '}${short(dy)}`;
+    at = to;
   }
   return d;
+}
+
+/** Tenths as text without a zero that says nothing. */
+function short(tenths: number): string {
+  return String(tenths / 10).replace(/^(-?)0\./, '$1.');
+}
+
+/** A curve drawn with no more points than keep it within a third of a pixel of them all. */
+export function curveOf(points: readonly (readonly [number, number])[]): string {
+  const xs = Float64Array.from(points, ([x]) => x);
+  const ys = Float64Array.from(points, ([, y]) => y);
+  return simplify(xs, ys, 0, xs.length, 0.35)
+    .map((rows) => pathOf(rows.map((i) => [xs[i], ys[i]])))
+    .join('');
 }

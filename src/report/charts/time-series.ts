@@ -4,7 +4,7 @@ import { toKnots } from '../../math/units.js';
 import type { BoatSeries, RaceSeries } from '../../result/series.js';
 import { isoOf, timeText } from '../format.js';
 import { boatPaint, INK, SOFT } from '../palette.js';
-import { el, leftAxis, line, pathOf, picture, text, type Scale } from './svg.js';
+import { curveOf, el, leftAxis, line, picture, text, type Scale } from './svg.js';
 
 /** One quantity against time: which column, how it is written, how the axis is named. */
 export interface PanelKind {
@@ -34,11 +34,12 @@ export const PANELS: readonly PanelKind[] = [
 export interface SeriesOptions {
   readonly width: number;
   readonly height: number;
-  /** Points drawn a line at most. */
+  /** Points drawn a line at most, and in all. */
   readonly points: number;
+  readonly pointsInAll: number;
 }
 
-export const SERIES_DEFAULTS: SeriesOptions = { width: 720, height: 132, points: 360 };
+export const SERIES_DEFAULTS: SeriesOptions = { width: 720, height: 132, points: 360, pointsInAll: 1440 };
 
 const MARGIN = { left: 46, right: 12, top: 22, bottom: 24 };
 
@@ -68,6 +69,7 @@ export function timePanel(panel: PanelKind, series: RaceSeries, options: Partial
   const o = { ...SERIES_DEFAULTS, ...options };
   const [t0, t1] = racingSpan(series);
   const columns = series.boats.map((b) => panel.values(b));
+  const points = Math.min(o.points, o.pointsInAll / series.boats.length);
   const x = scaleLinear([t0, t1], [MARGIN.left, o.width - MARGIN.right]);
   const y = scaleLinear(panelRange(panel, series, columns), [o.height - MARGIN.bottom, MARGIN.top]).nice(4);
   const write = panel.key === 'direction' ? wrap360 : undefined;
@@ -75,7 +77,7 @@ export function timePanel(panel: PanelKind, series: RaceSeries, options: Partial
     ...legBands(series, x, o.height),
     leftAxis(y, MARGIN.left, o.width - MARGIN.right, { count: 4, ...(write ? { write } : {}) }),
     timeAxis(x, o.height - MARGIN.bottom),
-    ...series.boats.map((b, i) => boatLine(b, columns[i], i, x, y, o.points)),
+    ...series.boats.map((b, i) => boatLine(b, columns[i], i, x, y, points)),
     ...series.boats.flatMap((b, i) => turnTicks(b, i, x)),
     text(MARGIN.left, 12, `${panel.title}, ${panel.unit}`, { size: 12, italic: true, fill: INK }),
   ];
@@ -185,7 +187,7 @@ function boatLine(boat: BoatSeries, values: Float64Array, index: number, x: Scal
     at.push([x(boat.t0 + i), v >= low && v <= high ? y(v) : NaN]);
   }
   return el('path', {
-    d: pathOf(at),
+    d: curveOf(at),
     fill: 'none',
     stroke: colour,
     'stroke-width': 1.3,

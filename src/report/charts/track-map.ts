@@ -5,7 +5,7 @@ import { settledMean } from '../figures.js';
 import { boatPaint, INK, PAPER, PORT, SOFT, STARBOARD } from '../palette.js';
 import { barLength, fitView, toSheet, worldTransform, type MapView, type Place } from './map-view.js';
 import { simplify } from './simplify.js';
-import { coordinate, el, line, picture, text } from './svg.js';
+import { coordinate, el, line, pathOf, picture, text } from './svg.js';
 
 export interface MapOptions {
   readonly width: number;
@@ -35,13 +35,7 @@ export function trackMap(result: Result, series: RaceSeries, options: Partial<Ma
   ];
   const body = [
     sheet(o.width, o.height),
-    el(
-      'g',
-      { 'clip-path': 'url(#map-clip)' },
-      world,
-      el('g', { class: 'pins' }, ...pins),
-      el('g', { class: 'live' }, ''),
-    ),
+    el('g', { 'clip-path': 'url(#map-clip)' }, world, el('g', { class: 'pins' }, ...pins)),
     el('g', { class: 'furniture' }, windArrow(o.width, wind, view.up), northArrow(o.width, view.up), scaleBar(view)),
   ];
   return picture(o.width, o.height, mapLabel(result, series, wind), body.join(''), { class: 'track-map', id: 'map' });
@@ -100,11 +94,14 @@ function sheet(width: number, height: number): string {
   return el('defs', {}, clip) + water + el('g', { class: 'border' }, ...bars, frame(3, 0.8), frame(7, 0.8));
 }
 
+/** What was sailed apart from the legs is faint, and drawn so much coarser. */
+const TRAIL = 3;
+
 function boatPaths(boat: BoatSeries, index: number, tolerance: number): string[] {
   const { colour, dash } = boatPaint(index);
-  const draw = (from: number, to: number, extra: Record<string, string | number>): string =>
+  const draw = (from: number, to: number, within: number, extra: Record<string, string | number>): string =>
     el('path', {
-      d: simplify(boat.x, boat.y, from, Math.min(to + 1, boat.n), tolerance)
+      d: simplify(boat.x, boat.y, from, Math.min(to + 1, boat.n), within)
         .map((rows) => metresPath(boat, rows))
         .join(''),
       stroke: colour,
@@ -112,9 +109,9 @@ function boatPaths(boat: BoatSeries, index: number, tolerance: number): string[]
       'vector-effect': 'non-scaling-stroke',
       ...extra,
     });
-  const whole = draw(0, boat.n, { class: 'trail', 'stroke-width': 1, opacity: 0.35 });
+  const whole = draw(0, boat.n, TRAIL * tolerance, { class: 'trail', 'stroke-width': 1, opacity: 0.35 });
   const legs = boat.legs.map((leg) =>
-    draw(leg.from, leg.to, {
+    draw(leg.from, leg.to, tolerance, {
       class: 'leg-path',
       'data-boat': index,
       'data-leg': leg.index,
@@ -125,19 +122,9 @@ function boatPaths(boat: BoatSeries, index: number, tolerance: number): string[]
   return [whole, ...legs];
 }
 
-/** Relative moves in decimetres' precision: short, and the same whatever the view. */
+/** In metres, north up: short, and the same whatever the view. */
 function metresPath(boat: BoatSeries, rows: readonly number[]): string {
-  let d = '';
-  let px = 0;
-  let py = 0;
-  rows.forEach((row, i) => {
-    const x = Math.round(boat.x[row] * 10);
-    const y = Math.round(-boat.y[row] * 10);
-    d += `${i === 0 ? 'M' : 'l'}${coordinate((x - px) / 10)} ${coordinate((y - py) / 10)}`;
-    px = x;
-    py = y;
-  });
-  return d;
+  return pathOf(rows.map((row) => [boat.x[row], -boat.y[row]]));
 }
 
 /** A symbol that keeps its size: placed on the sheet, with its place in the plane for the client. */

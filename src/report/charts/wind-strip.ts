@@ -5,7 +5,7 @@ import { isoOf, timeText } from '../format.js';
 import { CURSOR, INK, PORT, RULE, SOFT, STARBOARD } from '../palette.js';
 import { smoothedWind, type Shift } from '../shifts.js';
 import { clockTicks } from './time-series.js';
-import { el, line, numberText, pathOf, picture, text } from './svg.js';
+import { curveOf, el, line, numberText, picture, text } from './svg.js';
 
 export interface WindStripOptions {
   readonly width: number;
@@ -35,14 +35,14 @@ export function windStrip(boat: BoatSeries, shifts: readonly Shift[], options: P
     ...y.ticks(5).map((v) => line(44, y(v), o.width - 10, y(v), v === 0 ? SOFT : RULE, { 'stroke-width': 0.7 })),
     ...y.ticks(5).map((v) => numberText(38, y(v) + 4, wrap360(mean + v), 0, { anchor: 'end', size: 11, fill: SOFT })),
     el('path', {
-      d: pathOf(rows.map((i) => [x(boat.t0 + i), y(swings[i])])),
+      d: curveOf(rows.map((i) => [x(boat.t0 + i), y(swings[i])])),
       fill: 'none',
       stroke: SOFT,
       'stroke-width': 0.7,
       opacity: 0.7,
     }),
     el('path', {
-      d: pathOf(rows.map((i) => [x(boat.t0 + i), y(turn(mean, smooth[i]))])),
+      d: curveOf(rows.map((i) => [x(boat.t0 + i), y(turn(mean, smooth[i]))])),
       fill: 'none',
       stroke: INK,
       'stroke-width': 1.7,

@@ -1,5 +1,5 @@
 import { make } from './dom.js';
-import { localNumber } from './locale.js';
+import { localNumber, write } from './locale.js';
 import { behindAt, readingAt, windwardGap, type Reading } from './reading.js';
 import type { Race } from './race.js';
 import type { Store } from './store.js';
@@ -63,7 +63,7 @@ export function mountInstruments(race: Race, store: Store): void {
   home.append(table, gap, make('div', { class: 'triangles' }, ...triangles.map((t) => t.element)));
   store.listen(({ time }) => {
     const readings = race.boats.map((b) => readingAt(race, b, time));
-    for (const { key, boat, cell } of cells) cell.textContent = wordsFor(race, key, boat, readings[boat], time);
+    for (const { key, boat, cell } of cells) write(cell, wordsFor(race, key, boat, readings[boat], time));
     triangles.forEach((t, i) => t.show(readings[i]));
     gap.textContent = gapWords(race, readings);
   });

@@ -28,7 +28,11 @@ export function mountLadders(race: Race, store: Store): void {
     const frame = JSON.parse(svg.dataset.ladder ?? 'null') as Frame | null;
     const live = svg.querySelector('.ladder-live');
     if (!frame || !live) continue;
-    store.listen(({ time }) => live.replaceChildren(...marks(race, frame, time)));
+    store.listen(({ time }) => {
+      const on = time >= frame.span[0] && time <= frame.span[1];
+      if (on) live.replaceChildren(...marks(race, frame, time));
+      else if (live.firstChild) live.replaceChildren();
+    });
     const put = (event: PointerEvent): void => {
       const time = timeAt(race, frame, svg, event);
       if (Number.isFinite(time)) store.set({ time });
@@ -49,7 +53,6 @@ function placeAt(race: Race, frame: Frame, index: number, time: number): Place |
 }
 
 function marks(race: Race, frame: Frame, time: number): SVGElement[] {
-  if (time < frame.span[0] || time > frame.span[1]) return [];
   const places = frame.boats.map((index) => placeAt(race, frame, index, time));
   const rungs = places.flatMap((place, k) => (place ? [boatMark(place, frame, frame.boats[k])] : []));
   const [first, second] = places;

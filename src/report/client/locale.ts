@@ -15,6 +15,13 @@ export function localNumber(value: number, digits: number): string {
   return value < 0 && !zero ? `−${text}` : text;
 }
 
+/** A number as the page was made with it, with a point and a true minus, as this reader writes it. */
+export function localText(text: string): string {
+  const value = Number(text.replace('−', '-'));
+  const written = localNumber(value, text.split('.')[1]?.length ?? 0);
+  return text.startsWith('+') ? `+${written}` : written;
+}
+
 export type TimeStyle = 'day' | 'date' | 'hm' | 'hms';
 
 const OPTIONS: Readonly<Record<TimeStyle, Intl.DateTimeFormatOptions>> = {
@@ -50,20 +57,18 @@ function zoneKnown(zone: string): boolean {
   }
 }
 
+/** Most readers write most numbers as the page has them: those are left alone. */
+export function write(element: Element, text: string): void {
+  if (element.textContent !== text) element.textContent = text;
+}
+
 /** Rewrites every number and time on the page in place. */
 export function localise(root: ParentNode, clock: Clock): void {
-  for (const element of root.querySelectorAll('[data-v]')) {
-    const value = Number(element.getAttribute('data-v'));
-    const digits = Number(element.getAttribute('data-d'));
-    const text = localNumber(value, digits);
-    const plus = element.hasAttribute('data-sign') && value > 0 && Number(value.toFixed(digits)) !== 0;
-    element.textContent = plus ? `+${text}` : text;
-  }
+  for (const element of root.querySelectorAll('.n')) write(element, localText(element.textContent));
   for (const element of root.querySelectorAll('[data-t]')) {
     const given = element.getAttribute('data-ms');
     const seconds = (given === null ? Date.parse(element.getAttribute('datetime') ?? '') : Number(given)) / 1000;
-    if (Number.isFinite(seconds))
-      element.textContent = clock.write(seconds, element.getAttribute('data-t') as TimeStyle);
+    if (Number.isFinite(seconds)) write(element, clock.write(seconds, element.getAttribute('data-t') as TimeStyle));
   }
   const words = document.getElementById('zone-words');
   if (words)

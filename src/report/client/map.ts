@@ -14,6 +14,8 @@ interface Living {
   readonly race: Race;
   readonly store: Store;
   readonly svg: SVGSVGElement;
+  /** What moves lies on a sheet of its own, so that the map beneath is not painted again. */
+  readonly live: SVGSVGElement;
   view: MapView;
   readonly home: { wind: number };
 }
@@ -23,7 +25,10 @@ export function mountMap(race: Race, store: Store, wind: number): void {
   const tools = document.querySelector<HTMLElement>('.map-tools');
   if (!svg || !tools) return;
   const [, , width, height] = svg.getAttribute('viewBox')!.split(' ').map(Number) as [number, number, number, number];
-  const map: Living = { race, store, svg, view: { cx: 0, cy: 0, scale: 1, up: wind, width, height }, home: { wind } };
+  const live = draw('svg', { class: 'map-live', viewBox: `0 0 ${width} ${height}`, 'aria-hidden': 'true' });
+  svg.after(live);
+  const view = { cx: 0, cy: 0, scale: 1, up: wind, width, height };
+  const map: Living = { race, store, svg, live, view, home: { wind } };
   map.view = fitView(placesIn(race, null, ...race.racing), wind, width, height);
   mountTools(map, tools);
   mountGestures(svg, {
@@ -78,7 +83,7 @@ function mountTools(map: Living, tools: HTMLElement): void {
     }),
     turn,
   );
-  map.svg.parentElement!.addEventListener('keydown', (event) => panKey(map, event, zoom));
+  map.svg.closest<HTMLElement>('.map-frame')!.addEventListener('keydown', (event) => panKey(map, event, zoom));
 }
 
 const PAN: Readonly<Record<string, readonly [number, number]>> = {
@@ -127,8 +132,7 @@ function redrawBar(svg: SVGSVGElement, view: MapView): void {
 
 /** Boats, their last minute, and their laylines at this moment. */
 function drawLive(map: Living, time: number): void {
-  const live = map.svg.querySelector('.live')!;
-  live.replaceChildren(...map.race.boats.flatMap((b) => drawBoat(map, b, time)));
+  map.live.replaceChildren(...map.race.boats.flatMap((b) => drawBoat(map, b, time)));
 }
 
 function drawBoat(map: Living, boat: Boat, time: number): SVGElement[] {

@@ -21,6 +21,8 @@ export interface Boat {
   readonly name: string;
   readonly header: BoatHeader;
   readonly columns: Columns;
+  /** Metres made to windward by each row, from the first. */
+  readonly made: Float64Array;
   readonly legs: readonly LegFacts[];
 }
 
@@ -49,6 +51,7 @@ export function readRace(): Race {
     name: header.name,
     header,
     columns: columns[index],
+    made: madeBy(columns[index].vmg, payload.step),
     legs: facts.boats[index]?.legs ?? [],
   }));
   const from = Math.min(...boats.map((b) => b.header.t0));
@@ -62,6 +65,12 @@ export function readRace(): Race {
     boats,
     marks: facts.marks,
   };
+}
+
+function madeBy(vmg: Float64Array, step: number): Float64Array {
+  const made = new Float64Array(vmg.length);
+  for (let i = 1; i < vmg.length; i++) made[i] = made[i - 1] + (vmg[i - 1] || 0) * step;
+  return made;
 }
 
 function racingOf(boats: readonly Boat[], from: number, to: number): [number, number] {

@@ -64,12 +64,10 @@ export function behindAt(race: Race, boat: Boat, time: number): number {
   const leg = legAt(boat, time);
   if (!leg || leg.facts.kind !== 'upwind') return NaN;
   const rate = referenceRate(race, leg.facts.available, leg.to - leg.from);
-  let made = 0;
   const first = rowAt(race, boat, leg.from);
   const last = rowAt(race, boat, time);
   if (first < 0 || last < 0) return NaN;
-  for (let i = first; i < last; i++) made += (boat.columns.vmg[i] || 0) * race.step;
-  return rate * (last - first) * race.step - made;
+  return rate * (last - first) * race.step - (boat.made[last] - boat.made[first]);
 }
 
 /** Metres a second to windward that count as none lost: the ledger's, else the day's best settled VMG. */

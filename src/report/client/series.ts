@@ -57,13 +57,18 @@ export function mountSeries(race: Race, store: Store, clock: Clock): void {
   );
   home.append(tools);
   const living: Living[] = [];
+  // Asked once: after each new panel the answer would cost a layout of the page.
+  let width = home.clientWidth;
   for (const panel of PANELS) {
     const columns = race.boats.map((b) => onTimes(race, b, panel.values(b), times));
     if (!columns.some((c) => c.some((v) => v !== null))) continue;
-    living.push(mountPanel(home, panel, race, store, clock, [times, ...columns]));
+    living.push(mountPanel(home, panel, race, store, clock, [times, ...columns], width));
   }
-  const resize = (): void =>
-    living.forEach(({ plot }) => plot.setSize({ width: home.clientWidth, height: plot.height }));
+  const resize = (): void => {
+    if (home.clientWidth === width) return;
+    width = home.clientWidth;
+    living.forEach(({ plot }) => plot.setSize({ width, height: plot.height }));
+  };
   new ResizeObserver(resize).observe(home);
   matchMedia('(prefers-color-scheme: dark)').addEventListener('change', () =>
     living.forEach(({ plot }) => plot.redraw()),
@@ -109,6 +114,7 @@ function mountPanel(
   store: Store,
   clock: Clock,
   data: (number | null)[][],
+  width: number,
 ): Living {
   const readouts = race.boats.map((b) =>
     make('output', { 'data-panel': panel.key, 'data-boat': b.index, 'aria-live': 'off' }),
@@ -120,7 +126,7 @@ function mountPanel(
     'aria-label': `${panel.title} against time; the figures are in the table below`,
   });
   home.append(make('div', { class: 'live-head' }, make('i', {}, `${panel.title}, ${panel.unit}`), ...heads), frame);
-  const plot = new uPlot(optionsFor(panel, race, store, clock, home.clientWidth), data as uPlot.AlignedData, frame);
+  const plot = new uPlot(optionsFor(panel, race, store, clock, width), data as uPlot.AlignedData, frame);
   mountTouch(plot, store);
   return { panel, plot, readouts, data };
 }

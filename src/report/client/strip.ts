@@ -1,4 +1,4 @@
-import { boatPaint, CURSOR, INK, LOSS, PORT, SOFT, STARBOARD } from '../palette.js';
+import { boatPaint, INK, LOSS, PORT, SOFT, STARBOARD } from '../palette.js';
 import { byId, draw, make } from './dom.js';
 import { localNumber } from './locale.js';
 import { behindAt, referenceRate } from './reading.js';
@@ -40,13 +40,8 @@ function createStrip(race: Race, boat: Boat, store: Store): Strip {
   const out = make('output', { 'data-strip': boat.index, 'aria-live': 'off' });
   const span = race.to - race.from;
   const x = (t: number): number => ((t - race.from) / span) * WIDTH;
-  const cursor = draw('line', {
-    y1: 0,
-    y2: LANE + BAND + 2,
-    stroke: CURSOR,
-    'stroke-width': 2,
-    'vector-effect': 'non-scaling-stroke',
-  });
+  // On a sheet of its own and moved as a whole, so that the strip is not painted again.
+  const cursor = make('div', { class: 'strip-cursor', 'aria-hidden': 'true' });
   const body = draw('svg', {
     viewBox: `0 0 ${WIDTH} ${LANE + BAND + 2}`,
     preserveAspectRatio: 'none',
@@ -54,20 +49,21 @@ function createStrip(race: Race, boat: Boat, store: Store): Strip {
     role: 'img',
     'aria-label': `Running account of ${boat.name}`,
   });
-  body.append(...bands(race, boat, x), ...lossCurve(race, boat, x), cursor);
+  body.append(...bands(race, boat, x), ...lossCurve(race, boat, x));
   body.addEventListener('pointerdown', (event) => put(event, body, store));
   body.addEventListener('pointermove', (event) => event.buttons > 0 && put(event, body, store));
   const element = make(
     'div',
     { class: 'strip-row' },
     make('div', { class: 'strip-head' }, make('bdi', {}, boat.name), ' ', out),
-    body,
+    make('div', { class: 'strip-sheet' }, body, cursor),
   );
+  let inView: readonly [number, number] | null = null;
   const show = (time: number, window: readonly [number, number]): void => {
-    cursor.setAttribute('x1', String(x(time)));
-    cursor.setAttribute('x2', String(x(time)));
+    cursor.style.transform = `translateX(${((100 * (time - window[0])) / (window[1] - window[0])).toFixed(3)}%)`;
     const left = x(window[0]);
-    body.setAttribute('viewBox', `${left} 0 ${x(window[1]) - left} ${LANE + BAND + 2}`);
+    if (window !== inView) body.setAttribute('viewBox', `${left} 0 ${x(window[1]) - left} ${LANE + BAND + 2}`);
+    inView = window;
     const behind = behindAt(race, boat, time);
     out.textContent = Number.isFinite(behind) ? `${localNumber(behind, 0)} m behind` : '–';
   };

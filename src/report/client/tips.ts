@@ -1,4 +1,6 @@
+import { errorSentence } from '../notes.js';
 import { byId } from './dom.js';
+import { localText } from './locale.js';
 
 /** Notes on figures and words: on hover, on focus, on a tap. One table is one stop of the tab key, arrows move within. */
 export function mountTips(): void {
@@ -42,13 +44,8 @@ export function mountTips(): void {
   window.addEventListener('scroll', hide, { passive: true });
 }
 
-/** The title would come up a second time on hover: it becomes the note. */
+/** Words open here, not by their own button; of a table's figures the first is a stop of the tab key. */
 function prepareFigures(): void {
-  for (const figure of document.querySelectorAll<HTMLElement>('.q')) {
-    figure.dataset.note = figure.title;
-    figure.setAttribute('aria-description', figure.title);
-    figure.removeAttribute('title');
-  }
   for (const word of document.querySelectorAll('.term')) {
     word.setAttribute('aria-describedby', word.getAttribute('popovertarget')!);
     word.removeAttribute('popovertarget');
@@ -58,7 +55,18 @@ function prepareFigures(): void {
   }
 }
 
+/** What a figure or a word has to say. The title would come up a second time on hover: it becomes the note. */
 function noteOf(target: HTMLElement): string {
+  if (target.title) {
+    const shown = [...target.querySelectorAll('.q > .n, .u')].map((part) => part.textContent).join('');
+    const note = errorSentence(shown, target.title).replace(
+      /±(\d+(?:\.\d+)?)/g,
+      (_, error: string) => `±${localText(error)}`,
+    );
+    target.dataset.note = note;
+    target.setAttribute('aria-description', note);
+    target.removeAttribute('title');
+  }
   if (target.dataset.note) return target.dataset.note;
   const card = byId(target.getAttribute('aria-describedby') ?? '');
   return card?.querySelector('p')?.textContent ?? '';

@@ -60,8 +60,45 @@ function pairPlate(pair: PairResult): Safe {
   </div>`;
 }
 
+/** Pairs shown in full at most: all there are among four boats. Of a fleet every pair has a row. */
+const MOST_IN_FULL = 6;
+
+/** Every pair of a fleet in a row. */
+function fleetTable(all: readonly PairResult[]): Safe {
+  const rows = all.map((pair): Part[] => [
+    html`${nameOf(pair.boats[0])} less ${nameOf(pair.boats[1])}`,
+    quantity(pair.vmg_difference_kn, 'kn', { sign: true, unitless: true }),
+    quantity(pair.height_part_kn, 'kn', { sign: true, unitless: true }),
+    quantity(pair.speed_part_kn, 'kn', { sign: true, unitless: true }),
+    quantity(pair.gamma_difference_deg, 'deg', { sign: true }),
+    quantity(pair.gain_m, 'm', { sign: true }),
+    pair.blocks,
+    pair.faster ? html`<b>${nameOf(pair.faster)}</b>` : 'not shown',
+  ]);
+  const heads = [
+    '',
+    'VMG, kn',
+    'by height',
+    'by speed',
+    'Course angle',
+    'Gained',
+    'Stretches',
+    'Made more to windward',
+  ];
+  return html`<p>
+      ${plural(all.length, 'pair')}; a name in the last column stands only where the difference is more than chance
+      makes of so many pairs looked at together. ${term('height', 'Height')} and ${term('quickness', 'speed')} add up to
+      the whole.
+    </p>
+    ${table('Every pair, first less second', heads, rows, 'plain fleet')}
+    <p class="small">Of a fleet only the first pairs follow in full; compare fewer boats to see the others.</p>`;
+}
+
 /** Boat against boat where they sailed in the same wind. */
 export function pairs(result: Result): Part {
-  if (!result.pairs || result.pairs.length === 0) return null;
-  return section('pairs', 'Side by side', html`${result.pairs.map(pairPlate)}`);
+  const all = result.pairs ?? [];
+  if (all.length === 0) return null;
+  const fleet = all.length > MOST_IN_FULL;
+  const shown = fleet ? all.slice(0, MOST_IN_FULL) : all;
+  return section('pairs', 'Side by side', html`${fleet && fleetTable(all)}${shown.map(pairPlate)}`);
 }

@@ -21,7 +21,7 @@ export function replay(result: Result, series: RaceSeries): Safe {
     html`<div class="bench">
         <div class="map-frame" tabindex="0" role="group" aria-label="Chart: arrow keys move it, plus and minus zoom">
           <div class="map-tools" hidden></div>
-          ${trusted(trackMap(result, series))}
+          <div class="sheet">${trusted(trackMap(result, series))}</div>
           <p class="plate-words">
             Circles are tacks, squares gybes. ${marks}
             <span class="only-live"
@@ -55,17 +55,27 @@ export function seriesSection(series: RaceSeries): Safe {
         beats.${missing.length > 0 && html` Not known in this race: ${missing.map((p) => p.title.toLowerCase()).join(', ')}.`}
       </p>
       <details class="figures">
-        <summary>The figures behind it, one row a minute</summary>
+        <summary>
+          The figures behind it, one row
+          ${minutesARow(series) === 1 ? 'a minute' : `every ${minutesARow(series)} minutes`}
+        </summary>
         ${minuteTables(series)}
       </details>`,
     'wide',
   );
 }
 
+/** Rows of the tables of all boats together at most, about. */
+const MOST_ROWS = 360;
+
+function minutesARow(series: RaceSeries): number {
+  return Math.max(1, Math.ceil(series.boats.reduce((sum, b) => sum + b.n / 60, 0) / MOST_ROWS));
+}
+
 function minuteTables(series: RaceSeries): Part {
+  const step = 60 * minutesARow(series);
   return series.boats.map((b) => {
     const rows: Part[][] = [];
-    const step = Math.max(60, Math.ceil(b.n / 180 / 60) * 60);
     for (let i = 0; i < b.n; i += step) {
       rows.push([
         time(b.t0 + i, 'hms'),

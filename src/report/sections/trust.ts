@@ -1,7 +1,8 @@
 import type { BoatResult, InputEntry, Result } from '../../result/result.js';
 import { REFERENCE_WORDS } from '../causes.js';
-import { BASIS_WORDS, quantity, secondsOf, time } from '../format.js';
+import { quantity, secondsOf, time } from '../format.js';
 import { html, nameOf, type Part, type Safe } from '../html.js';
+import { BASIS_WORDS } from '../notes.js';
 import { TERMS } from '../terms.js';
 import { section, table } from './figure.js';
 import { SOURCE_WORDS } from './masthead.js';
