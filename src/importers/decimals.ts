@@ -57,7 +57,7 @@ export function readDecimalBytes(bytes: Uint8Array, start: number, end: number):
 
 let stop = -1;
 
-/** Where the last `readPlainDecimal` stopped. */
+/** Where the last `readPlainBytes` stopped. */
 export function stoppedAt(): number {
   return stop;
 }
@@ -67,11 +67,11 @@ export function stoppedAt(): number {
  *
  * @returns NaN when it is not plain: digits with at most a sign and a point, 15 at most. Then nothing is said.
  */
-export function readPlainDecimal(text: string, from: number, until: number): number {
+export function readPlainBytes(bytes: Uint8Array, from: number, until: number): number {
   let at = from;
-  let code = text.charCodeAt(at);
+  let code = bytes[at];
   const negative = code === 45;
-  if (negative || code === 43) code = text.charCodeAt(++at);
+  if (negative || code === 43) code = bytes[++at];
   const first = at;
   let value = 0;
   let point = -1;
@@ -79,7 +79,7 @@ export function readPlainDecimal(text: string, from: number, until: number): num
     if (code >= 48 && code <= 57) value = value * 10 + (code - 48);
     else if (code === 46 && point < 0) point = at;
     else return NaN;
-    code = text.charCodeAt(++at);
+    code = bytes[++at];
   }
   const digits = at - first - (point < 0 ? 0 : 1);
   if (digits === 0 || digits > 15) return NaN;

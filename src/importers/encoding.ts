@@ -45,34 +45,50 @@ function isUtf8(head: Uint8Array): boolean {
   }
 }
 
-/** The stream as text, without a byte-order mark and without the zero bytes that a failing card leaves behind. */
-export async function* decoded(bytes: Bytes, encoding: string, tally: Tally): AsyncIterable<string> {
+/**
+ * Turns the pieces of a stream into text, without a byte-order mark and without the zero bytes that a failing card
+ * leaves behind; null ends it.
+ */
+export function createDecoder(encoding: string, tally: Tally): (piece: Uint8Array | null) => string {
   const decoder = new TextDecoder(encoding);
+  return (piece) => {
+    const text = piece ? decoder.decode(piece, { stream: true }) : decoder.decode();
+    if (!text.includes('\0')) return text;
+    tally.notice('zero-bytes', 1);
+    return text.replaceAll('\0', '');
+  };
+}
+
+/** The stream as text. */
+export async function* decoded(bytes: Bytes, encoding: string, tally: Tally): AsyncIterable<string> {
+  const decode = createDecoder(encoding, tally);
   for await (const piece of bytes) {
-    const text = withoutZeros(decoder.decode(piece, { stream: true }), tally);
+    const text = decode(piece);
     if (text !== '') yield text;
   }
-  const rest = withoutZeros(decoder.decode(), tally);
+  const rest = decode(null);
   if (rest !== '') yield rest;
 }
 
-function withoutZeros(text: string, tally: Tally): string {
-  if (!text.includes('\0')) return text;
-  tally.notice('zero-bytes', 1);
-  return text.replaceAll('\0', '');
+/** Encodings whose bytes below 128 are those letters, wherever they stand. */
+const ASCII_BASED = /^(utf-8|windows-\d+|iso-8859-\d+|latin1|us-ascii|ascii)$/;
+
+/** Bytes that are ASCII where the text is, and their encoding: the stream itself, or made UTF-8. */
+export function asciiBased(bytes: Bytes, encoding: string, tally: Tally): { bytes: Bytes; encoding: string } {
+  if (ASCII_BASED.test(encoding)) return { bytes: withoutMark(bytes), encoding };
+  return { bytes: encoded(decoded(bytes, encoding, tally)), encoding: 'utf-8' };
 }
 
-/** The same stream in bytes that are ASCII where the text is: itself, unless it is UTF-16. */
-export async function* asAscii(bytes: Bytes, encoding: string, tally: Tally): Bytes {
-  if (!encoding.startsWith('utf-16')) {
-    let first = true;
-    for await (const piece of bytes) {
-      const marked = first && piece[0] === 0xef && piece[1] === 0xbb && piece[2] === 0xbf;
-      yield marked ? piece.subarray(3) : piece;
-      first = false;
-    }
-    return;
-  }
+async function* encoded(texts: AsyncIterable<string>): Bytes {
   const encoder = new TextEncoder();
-  for await (const text of decoded(bytes, encoding, tally)) yield encoder.encode(text);
+  for await (const text of texts) yield encoder.encode(text);
+}
+
+async function* withoutMark(bytes: Bytes): Bytes {
+  let first = true;
+  for await (const piece of bytes) {
+    const marked = first && piece[0] === 0xef && piece[1] === 0xbb && piece[2] === 0xbf;
+    yield marked ? piece.subarray(3) : piece;
+    first = false;
+  }
 }

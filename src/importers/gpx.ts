@@ -5,7 +5,10 @@
  */
 import { SaxesParser, type SaxesTagPlain } from 'saxes';
 import { wrap360 } from '../math/angles.js';
+import type { Bytes } from './bytes.js';
 import { readDecimal } from './decimals.js';
+import { asciiBased, createDecoder } from './encoding.js';
+import { feedAround } from './gpx-feed.js';
 import { PlainPoints, type TakePoint } from './plain-points.js';
 import type { LogRows } from './rows.js';
 import type { Tally } from './tally.js';
@@ -184,7 +187,8 @@ function localName(name: string): string {
  * @param quick Points that are plain go past the parser; without it all goes through the parser, which is the reference.
  */
 export async function readGpx(
-  texts: AsyncIterable<string>,
+  bytes: Bytes,
+  encoding: string,
   rows: LogRows,
   tally: Tally,
   zone: ZoneClock | null,
@@ -195,14 +199,18 @@ export async function readGpx(
   const points = new PlainPoints(taker.plain, walk.seen);
   const line = (): number => parser.line + points.lines;
   const { parser, fault } = openParser(walk, tally, line);
-  const feed = createFilter(tally);
-  let held = '';
-  for await (const text of texts) {
-    if (quick) held = feedInPieces(held, text, (piece, from) => feedAround(piece, from, walk, points, parser, feed));
-    else parser.write(feed(text));
-  }
-  parser.write(feed(held));
-  parser.write(feed(null));
+  const filter = createFilter(tally);
+  const ascii = asciiBased(bytes, encoding, tally);
+  const decode = createDecoder(ascii.encoding, tally);
+  const write = (text: string): void => {
+    walk.atPoints = false;
+    parser.write(filter(text));
+  };
+  const reader = { atPoints: () => walk.atPoints, line: () => parser.line, decode, write };
+  if (quick) await feedAround(ascii.bytes, points, reader);
+  else for await (const piece of ascii.bytes) write(decode(piece));
+  write(decode(null));
+  parser.write(filter(null));
   const open = walk.depth > 0;
   const last = line();
   walk.end(last);
@@ -220,65 +228,6 @@ function tellTracks(names: readonly string[], tally: Tally): void {
   const some = different.slice(0, 5).map((name) => `'${name.slice(0, 40)}'`);
   const rest = different.length > some.length ? ` and ${different.length - some.length} more` : '';
   tally.issue('several-tracks', `The log holds tracks of several names, read as one: ${some.join(', ')}${rest}.`);
-}
-
-/** What is held back for a point that is not yet whole. */
-const MOST_HELD = 1 << 16;
-/** Points in a row that were not plain: what follows will hardly be. */
-const MOST_MISSES = 16;
-
-/** What was held back is joined to the end of its point only: long texts put together are slow to look into. */
-function feedInPieces(held: string, text: string, feed: (text: string, from: number) => string): string {
-  const end = held === '' ? -1 : text.indexOf('</trkpt>');
-  if (end < 0 || end > MOST_HELD) return feed(held + text, 0);
-  const cut = end + '</trkpt>'.length;
-  const rest = feed(held + text.slice(0, cut), 0);
-  return rest === '' ? feed(text, cut) : feed(rest + text.slice(cut), 0);
-}
-
-/** Hands plain points to the quick reader and all else to the parser; returns what may be a point begun. */
-function feedAround(
-  text: string,
-  from: number,
-  walk: GpxWalk,
-  points: PlainPoints,
-  parser: SaxesParser,
-  feed: (text: string) => string,
-): string {
-  let at = from;
-  let misses = 0;
-  while (at < text.length && misses < MOST_MISSES) {
-    if (walk.atPoints) {
-      const to = points.take(text, at, parser.line);
-      misses = to > at ? 0 : misses + 1;
-      at = to;
-      if (text.length - at < MOST_HELD && text.indexOf('</trkpt>', at) < 0 && isPointBegun(text, at))
-        return text.slice(at);
-    }
-    const fence = fenceAfter(text, at);
-    walk.atPoints = false;
-    parser.write(feed(text.slice(at, fence)));
-    at = fence;
-  }
-  if (at < text.length) {
-    walk.atPoints = false;
-    parser.write(feed(text.slice(at)));
-  }
-  return '';
-}
-
-/** Whether nothing but (the beginning of) a point stands from `at` to the end. */
-function isPointBegun(text: string, at: number): boolean {
-  const rest = text.slice(at, at + 4096).trimStart();
-  return rest.startsWith('<trkpt ') || '<trkpt '.startsWith(rest);
-}
-
-/** Behind the next tag after which points may come; the end of the text when there is none. */
-function fenceAfter(text: string, at: number): number {
-  const close = text.indexOf('</trkpt>', at);
-  const open = text.indexOf('<trkseg>', at);
-  if (close < 0 && open < 0) return text.length;
-  return (close < 0 ? open : open < 0 ? close : Math.min(close, open)) + '<trkseg>'.length;
 }
 
 function openParser(walk: GpxWalk, tally: Tally, line: () => number): { parser: SaxesParser; fault: () => string } {

@@ -93,9 +93,8 @@ async function read(
 ): Promise<ReadLog> {
   const rows = new LogRows();
   if (kind === 'nmea') return readNmea(bytes, encoding, rows, tally, options);
-  const texts = decoded(bytes, encoding, tally);
-  if (kind === 'csv') return readCsv(texts, rows, tally, options);
+  if (kind === 'csv') return readCsv(decoded(bytes, encoding, tally), rows, tally, options);
   const zone = options.zone === undefined ? null : createZoneClock(options.zone);
-  const { name, columns } = await readGpx(texts, rows, tally, zone);
+  const { name, columns } = await readGpx(bytes, encoding, rows, tally, zone);
   return { settled: settle(rows, tally, name), columns };
 }

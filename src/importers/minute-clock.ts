@@ -10,7 +10,8 @@ const TENS = [1, 10, 100, 1e3, 1e4, 1e5, 1e6, 1e7, 1e8, 1e9];
  * reading. What it reads it reads as readIso does, to the last bit.
  */
 export class MinuteClock {
-  #minute = '';
+  /** The letters of the minute; zeros, which no time has, before there is one. */
+  readonly #minute = new Uint8Array(MINUTE);
   #day = NaN;
   #ofDay = NaN;
   /** The time last read. [UTC s] */
@@ -22,24 +23,25 @@ export class MinuteClock {
     const start = readIso(`${minute}00Z`);
     // 24:00 is of the day that ends.
     if (Number.isNaN(start) || !minute.endsWith(':') || minute.startsWith('24', 11)) return;
-    this.#minute = minute;
+    for (let at = 0; at < MINUTE; at++) this.#minute[at] = minute.charCodeAt(at);
     this.#day = Math.floor(start / DAY) * DAY;
     this.#ofDay = start - this.#day;
   }
 
   /** Reads `2026-04-18T14:05:06.25Z` at `from`; returns its end, -1 when it is another minute or not so plain. */
-  read(text: string, from: number): number {
-    if (this.#minute === '' || !text.startsWith(this.#minute, from)) return -1;
-    const tens = text.charCodeAt(from + MINUTE) - 48;
-    const ones = text.charCodeAt(from + MINUTE + 1) - 48;
+  read(bytes: Uint8Array, from: number): number {
+    const minute = this.#minute;
+    for (let at = 0; at < MINUTE; at++) if (bytes[from + at] !== minute[at]) return -1;
+    const tens = bytes[from + MINUTE] - 48;
+    const ones = bytes[from + MINUTE + 1] - 48;
     if (!(tens >= 0 && tens <= 5 && ones >= 0 && ones <= 9)) return -1;
     let at = from + MINUTE + 2;
     let clock = this.#ofDay + tens * 10 + ones;
-    let code = text.charCodeAt(at);
+    let code = bytes[at];
     if (code === 46) {
       const first = ++at;
       let fraction = 0;
-      while ((code = text.charCodeAt(at)) >= 48 && code <= 57) {
+      while ((code = bytes[at]) >= 48 && code <= 57) {
         fraction = fraction * 10 + (code - 48);
         at++;
       }

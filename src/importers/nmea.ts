@@ -7,7 +7,7 @@ import { CHANNELS, type Channel } from '../recording/recording.js';
 import { UserError } from '../recording/issues.js';
 import type { Bytes } from './bytes.js';
 import { DAY, DayCount, readDay } from './days.js';
-import { asAscii } from './encoding.js';
+import { asciiBased } from './encoding.js';
 import { eachLine, sentencesOf, stampOf, type Sentence } from './framing.js';
 import { GrowingColumn, type LogRows } from './rows.js';
 import type { Fields } from './fields.js';
@@ -235,7 +235,7 @@ export async function readNmea(
 ): Promise<{ settled: Settled; columns: ColumnReading[] }> {
   const log = new NmeaLog(rows, tally, options.zone === undefined ? null : createZoneClock(options.zone));
   await eachLine(
-    asAscii(bytes, encoding, tally),
+    asciiBased(bytes, encoding, tally).bytes,
     (line, number, ended) => log.line(line, number, ended),
     quick ? (piece, from, end, number) => log.plain(piece, from, end, number) : null,
   );

@@ -3,17 +3,15 @@
  * times, one after another. Anything else (an entity, a comment, an attribute, a bad value, a time without a zone) is
  * left where it stands for the XML parser, which is the reference.
  */
-import { readDecimal, readPlainDecimal, stoppedAt } from './decimals.js';
+import { readDecimal } from './decimals.js';
 import { MinuteClock } from './minute-clock.js';
+import { newValues, PointPattern, ROLES, type Role } from './point-pattern.js';
 import { readIso } from './times.js';
 
 const CLOSE = '</trkpt>';
 const OPEN_TAG = /<([A-Za-z_][\w.-]*(?::[A-Za-z_][\w.-]*)?)>/y;
 const QUOTE = 34;
 const LESS = 60;
-
-/** What a value of a point is used for. */
-type Role = 'lat' | 'lon' | 'time' | 'speed' | 'course' | null;
 
 /** Takes a judged point: degrees, UTC seconds, m/s, degrees; NaN for what is absent. */
 export type TakePoint = (lat: number, lon: number, time: number, speed: number, course: number, line: number) => void;
@@ -25,27 +23,21 @@ interface Value {
   readonly to: number;
 }
 
-/** What stands between the values of a point, the same in nearly every point of a file. */
-interface Skeleton {
-  /** Text before each value, and behind the last; begins with the blanks before the point. */
-  readonly literals: readonly string[];
-  readonly roles: readonly Role[];
+/** A point like most of the file. */
+interface Usual {
+  readonly pattern: PointPattern;
   /** Line ends before the end of the point's own tag, and in all. */
   readonly linesToTag: number;
   readonly lines: number;
 }
 
-/** Reads plain points. A point like the one before is matched by its skeleton, any other is taken apart by its tags. */
+/** Reads plain points: one like the one before is matched as bytes, any other is taken apart by its tags. */
 export class PlainPoints {
   readonly #take: TakePoint;
   readonly #seen: Set<string>;
   readonly #clock = new MinuteClock();
-  #skeleton: Skeleton | null = null;
-  #lat = NaN;
-  #lon = NaN;
-  #time = NaN;
-  #speed = NaN;
-  #course = NaN;
+  readonly #values = newValues();
+  #usual: Usual | null = null;
   /** Line ends in all that was taken. */
   lines = 0;
 
@@ -55,80 +47,43 @@ export class PlainPoints {
   }
 
   /**
-   * Takes the plain points that stand whole in `text` from `from` on.
+   * Takes the points that stand whole from `from` on and are like the one taken apart last.
    *
    * @param line Line on which `from` stands, less what was taken before.
    * @returns Where it stopped: behind the last point taken.
    */
-  take(text: string, from: number, line: number): number {
+  takeAlike(bytes: Uint8Array, from: number, line: number): number {
+    const usual = this.#usual;
+    if (!usual) return from;
     let at = from;
     for (;;) {
-      let to = this.#match(text, at, line);
-      if (to < 0) to = this.#takeApart(text, at, line);
-      if (to < 0) return at;
-      at = to;
+      const end = usual.pattern.match(bytes, at, this.#values);
+      if (end < 0 || !this.#add(line + usual.linesToTag)) return at;
+      this.lines += usual.lines;
+      at = end;
     }
   }
 
-  #forget(): void {
-    this.#lat = this.#lon = this.#time = this.#speed = this.#course = NaN;
-  }
-
-  /** Takes the point at `at` if it is like the one before; returns its end, -1 when it is not. */
-  #match(text: string, at: number, line: number): number {
-    const skeleton = this.#skeleton;
-    if (!skeleton) return -1;
-    const { literals, roles } = skeleton;
-    this.#forget();
-    let p = at;
-    for (let k = 0; k < roles.length; k++) {
-      if (!text.startsWith(literals[k], p)) return -1;
-      p = this.#value(roles[k], text, p + literals[k].length, k < 2 ? QUOTE : LESS);
-      if (p < 0) return -1;
-    }
-    const last = literals[roles.length];
-    if (!text.startsWith(last, p) || !this.#add(line + skeleton.linesToTag)) return -1;
-    this.lines += skeleton.lines;
-    return p + last.length;
-  }
-
-  /** Uses the value that begins at `from` in one go where it is as usual; returns its end, -1 when it is not plain. */
-  #value(role: Role, text: string, from: number, stop: number): number {
-    if (role === 'time' && Number.isNaN(this.#time)) {
-      const end = this.#clock.read(text, from);
-      if (end > 0 && text.charCodeAt(end) === stop) {
-        this.#time = this.#clock.seconds;
-        return end;
-      }
-    } else if (role !== null && role !== 'time') {
-      const value = readPlainDecimal(text, from, stop);
-      if (!Number.isNaN(value)) {
-        this.#set(role, value);
-        return stoppedAt();
-      }
-    }
-    const end = endOfValue(text, from, stop);
-    return end >= 0 && this.#use(role, text, from, end) ? end : -1;
-  }
-
-  /** Hands a point on if it has all it needs. */
+  /** Hands a point on if it has all it needs: a position on earth, not 0, 0, and a time. */
   #add(line: number): boolean {
-    if (!(Math.abs(this.#lat) <= 90 && Math.abs(this.#lon) <= 180) || (this.#lat === 0 && this.#lon === 0))
-      return false;
-    if (Number.isNaN(this.#time)) return false;
-    this.#take(this.#lat, this.#lon, this.#time, this.#speed, this.#course, line + this.lines);
+    const values = this.#values;
+    const lat = values[ROLES.lat];
+    const lon = values[ROLES.lon];
+    const time = values[ROLES.time];
+    if (!(Math.abs(lat) <= 90 && Math.abs(lon) <= 180) || (lat === 0 && lon === 0) || Number.isNaN(time)) return false;
+    this.#take(lat, lon, time, values[ROLES.speed], values[ROLES.course], line + this.lines);
     return true;
   }
 
-  /** Takes the point at `at` by its tags and keeps its skeleton; returns its end, -1 when it is not plain or not whole. */
-  #takeApart(text: string, at: number, line: number): number {
+  /** Takes the point at `at` by its tags; returns its end, -1 when it is not plain or not whole. */
+  takeApart(text: string, at: number, line: number): number {
     const start = skipBlanks(text, at, text.length);
     if (!text.startsWith('<trkpt l', start)) return -1;
     const end = text.indexOf(CLOSE, start);
     const values = end < 0 ? null : this.#attributes(text, start, end);
     const tag = values ? values[1].to + 2 : 0;
     if (!values || text.charCodeAt(tag - 1) !== 62 || !this.#elements(text, tag, end, values)) return -1;
-    this.#forget();
+    this.#values.fill(NaN);
     for (const { role, from, to } of values) if (!this.#use(role, text, from, to)) return -1;
     const linesToTag = countLines(text, at, tag);
     if (!this.#add(line + linesToTag)) return -1;
@@ -140,7 +95,11 @@ export class PlainPoints {
     );
     // A value that runs over lines is not matched: its line ends would be miscounted.
     const single = values.every(({ from, to }) => countLines(text, from, to) === 0);
-    this.#skeleton = single ? { literals, roles: values.map(({ role }) => role), linesToTag, lines } : null;
+    const roles = values.map(({ role }) => role);
+    const fits = single && roles.filter((role) => role === 'time').length === 1 && PointPattern.fits(literals);
+    this.#usual = fits
+      ? { pattern: new PointPattern(literals, onceEach(roles), this.#clock), linesToTag, lines }
+      : null;
     return stop;
   }
 
@@ -179,7 +138,7 @@ export class PlainPoints {
       const close = endOfValue(text, inner, LESS, true);
       if (close < 0) return false;
       if (text.startsWith(`</${name}>`, close)) {
-        values.push({ role: used ? local : null, from: inner, to: close });
+        values.push({ role: used ? local : 'nothing', from: inner, to: close });
         at = close + name.length + 3;
       } else {
         if (used || text.charCodeAt(close + 1) === 47) return false;
@@ -193,29 +152,28 @@ export class PlainPoints {
 
   /** Uses the text of a value, blanks around it left out; an empty one says nothing, the first that speaks holds. */
   #use(role: Role, text: string, from: number, to: number): boolean {
-    if (role === null) return true;
+    if (role === 'nothing') return true;
     let start = from;
     let end = to;
     while (start < end && text.charCodeAt(start) <= 32) start++;
     while (end > start && text.charCodeAt(end - 1) <= 32) end--;
     if (start === end) return role !== 'lat' && role !== 'lon';
-    if (role === 'time') {
-      if (!Number.isNaN(this.#time)) return true;
-      this.#time = text.charCodeAt(end - 1) === 90 ? readIso(text, start, end) : NaN;
-      this.#clock.remember(text, start);
-      return !Number.isNaN(this.#time);
-    }
-    const value = readDecimal(text, start, end);
-    this.#set(role, value);
+    const first = Number.isNaN(this.#values[ROLES[role]]);
+    if (role === 'time' && !first) return true;
+    const value = role === 'time' ? this.#readTime(text, start, end) : readDecimal(text, start, end);
+    if (first) this.#values[ROLES[role]] = value;
     return !Number.isNaN(value);
   }
 
-  #set(role: Exclude<Role, 'time' | null>, value: number): void {
-    if (role === 'lat') this.#lat = value;
-    else if (role === 'lon') this.#lon = value;
-    else if (role === 'speed') this.#speed = Number.isNaN(this.#speed) ? value : this.#speed;
-    else this.#course = Number.isNaN(this.#course) ? value : this.#course;
+  #readTime(text: string, start: number, end: number): number {
+    this.#clock.remember(text, start);
+    return text.charCodeAt(end - 1) === 90 ? readIso(text, start, end) : NaN;
   }
+}
+
+/** The first of a kind that speaks holds; later ones are only read. */
+function onceEach(roles: readonly Role[]): Role[] {
+  return roles.map((role, k) => (role !== 'nothing' && roles.indexOf(role) < k ? 'again' : role));
 }
 
 /** Behind the blanks at `at`. Stops at a carriage return that stands alone. */

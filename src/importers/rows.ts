@@ -20,7 +20,7 @@ export class GrowingColumn {
     const blocks = this.#blocks;
     const values = new Float64Array(rows.length);
     let at = -1;
-    let block = NO_VALUES;
+    let block: Float64Array = NO_VALUES;
     for (let i = 0; i < rows.length; i++) {
       const row = rows[i];
       if (row >>> 15 !== at) block = blocks[(at = row >>> 15)] ?? NO_VALUES;

@@ -1,8 +1,10 @@
 import fc from 'fast-check';
 import { expect, test } from 'vitest';
-import { readDecimal, readPlainDecimal, stoppedAt } from '../../src/importers/decimals.js';
+import { readDecimal, readDecimalBytes, readPlainBytes, stoppedAt } from '../../src/importers/decimals.js';
 import { MinuteClock } from '../../src/importers/minute-clock.js';
 import { readIso } from '../../src/importers/times.js';
+
+const bytesOf = (text: string): Uint8Array => new Uint8Array(Buffer.from(text, 'latin1'));
 
 const runs = { seed: 11, numRuns: process.env['LEGWORK_LONG'] ? 200_000 : 2000 };
 
@@ -18,7 +20,7 @@ test('a number read in one pass is the number read otherwise, to the last bit', 
   let read = 0;
   fc.assert(
     fc.property(numberText, fc.string({ maxLength: 3 }), (text, before) => {
-      const value = readPlainDecimal(`${before}${text}<`, before.length, 60);
+      const value = readPlainBytes(bytesOf(`${before}${text}<`), before.length, 60);
       if (Number.isNaN(value)) return;
       read++;
       expect(value).toBe(readDecimal(text));
@@ -27,6 +29,17 @@ test('a number read in one pass is the number read otherwise, to the last bit', 
     runs,
   );
   expect(read).toBeGreaterThan(runs.numRuns / 4);
+});
+
+test('a number read from bytes is the number read from letters, to the last bit', () => {
+  fc.assert(
+    fc.property(fc.oneof(numberText, fc.string({ maxLength: 20 })), fc.string({ maxLength: 3 }), (text, before) => {
+      const bytes = bytesOf(before + text);
+      const letters = Buffer.from(bytes).toString('latin1');
+      expect(readDecimalBytes(bytes, before.length, bytes.length)).toBe(readDecimal(letters.slice(before.length)));
+    }),
+    runs,
+  );
 });
 
 test('times of one minute are those read otherwise, to the last bit', () => {
@@ -46,7 +59,7 @@ test('times of one minute are those read otherwise, to the last bit', () => {
         const text = minute + rest;
         const expected = readIso(text);
         if (!Number.isNaN(expected)) clock.remember(text, 0);
-        const end = clock.read(`${text}<`, 0);
+        const end = clock.read(bytesOf(`${text}<`), 0);
         if (end < 0) return;
         read++;
         expect(text.charAt(end - 1)).toBe('Z');
