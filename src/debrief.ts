@@ -14,6 +14,7 @@ import { errorModels } from './steps/error-model.js';
 import { estimateBoat, type BoatEstimate } from './steps/estimate-boat.js';
 import { hints } from './steps/hints.js';
 import { judge } from './steps/judge.js';
+import { polarCurves } from './steps/polar-curves.js';
 import { readLogs, type OpenLog, type ReadLogs } from './steps/read-logs.js';
 import { correctTracks, reconcileBoats, type Corrections } from './steps/reconcile-boats.js';
 import { sailAll, type SailedRace, type SailOptions } from './steps/sail-all.js';
@@ -109,6 +110,7 @@ export async function debrief(race: Race, open: OpenLog, options: DebriefOptions
     zone: race.zone,
     marks: placesOf(race.marks, course, wind.sailed, clean.frame),
     boats: clean.boats.map((boat, k) => boatSeries(boat.track, wind.sailed[k], estimates[k])),
+    polars: polarCurves(models, judgements, wind.sailed),
   };
   return { result, series };
 }

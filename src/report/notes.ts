@@ -21,7 +21,9 @@ export function errorSentence(shown: string, note: string): string {
   const parts = [
     own.startsWith('±') ? `${own} (one standard error)` : 'no error could be stated',
     ...(calibration
-      ? [`a further ${calibration.replace(/ by calibration$/, '')} if the instruments are out by their usual calibration error`]
+      ? [
+          `a further ${calibration.replace(/ by calibration$/, '')} if the instruments are out by their usual calibration error`,
+        ]
       : []),
     BASIS_WORDS[basis as Basis],
   ];

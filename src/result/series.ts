@@ -80,6 +80,27 @@ export interface MarkPlace {
   readonly places: readonly { readonly x: number; readonly y: number }[];
 }
 
+export interface PolarPoint {
+  /** Course angle to the true wind [deg] and speed [m/s]. */
+  readonly gamma: number;
+  readonly speed: number;
+}
+
+/** Speed over course angle in one wind, of a boat model or of the reference of the ledgers. */
+export interface PolarCurve {
+  readonly kind: 'model' | 'best' | 'file';
+  /** Boat file, and the places in `boats` of the boats it stands for. */
+  readonly boat: string;
+  readonly boats: readonly number[];
+  /** True wind at the rig: the mean over all settled blocks of the race. [m/s] */
+  readonly tws: number;
+  /** From a little inside the best upwind course, angle rising: to dead downwind for a model. */
+  readonly points: readonly PolarPoint[];
+  /** The best upwind and downwind courses; null where the curve does not reach so far. */
+  readonly up: PolarPoint;
+  readonly down: PolarPoint | null;
+}
+
 export interface RaceSeries {
   /** Origin of the local plane, and metres a degree there. */
   readonly frame: {
@@ -91,4 +112,6 @@ export interface RaceSeries {
   readonly zone: string | null;
   readonly marks: readonly MarkPlace[];
   readonly boats: readonly BoatSeries[];
+  /** Left out where no boat model took part. */
+  readonly polars?: readonly PolarCurve[];
 }

@@ -14,6 +14,7 @@ import {
 import { ladder } from '../../src/report/charts/ladder.js';
 import { pairBars } from '../../src/report/charts/pair-bars.js';
 import { polar } from '../../src/report/charts/polar.js';
+import { polarWhole } from '../../src/report/charts/polar-whole.js';
 import { portStarboard } from '../../src/report/charts/port-starboard.js';
 import { simplify } from '../../src/report/charts/simplify.js';
 import { middle, tackOverlay, tacksOf } from '../../src/report/charts/tack-overlay.js';
@@ -52,6 +53,7 @@ const PICTURES: Readonly<Record<string, () => string>> = {
   'time-wind-direction': () => timePanel(PANELS[3], series),
   waterfall: () => waterfall({ boat: 'Corrie', entries: causeTotals(corrie) }),
   polar: () => polar(result, series),
+  'polar-whole': () => polarWhole(series),
   'drag-angles': () =>
     dragAngles([{ name: 'Corrie', aero: settledMean(corrie, 'aero_drag_angle_deg'), hydro: settledMean(corrie, 'hydro_drag_angle_deg'), beta: settledMean(corrie, 'beta_deg') }]), // prettier-ignore
   'port-starboard': () => portStarboard([{ name: 'Corrie', port: corrie.legs[0].steady!.port!.vmg_kn, starboard: corrie.legs[0].steady!.starboard!.vmg_kn }]), // prettier-ignore

@@ -13,7 +13,16 @@ import type {
   Steady,
   TackSide,
 } from '../../src/result/result.js';
-import type { BlockRow, BoatSeries, LegSpan, ManoeuvreSpan, MarkPlace, RaceSeries } from '../../src/result/series.js';
+import type {
+  BlockRow,
+  BoatSeries,
+  LegSpan,
+  ManoeuvreSpan,
+  MarkPlace,
+  PolarCurve,
+  PolarPoint,
+  RaceSeries,
+} from '../../src/result/series.js';
 
 /**
  * An invented race of two boats over two laps, for the tests of the report only: a toy boat in a swinging wind, and a
@@ -378,6 +387,19 @@ function marksOf(): MarkPlace[] {
   ];
 }
 
+/** The toy polar as the curve of a model, and the same two per cent slower and turned by a degree as the reference. */
+function polarsOf(): PolarCurve[] {
+  const tws = 5.6;
+  const off = (gamma: number): number => toySpeed(Math.min(gamma, 90), tws) * (1 - Math.max(0, gamma - 90) / 300);
+  const curve = (kind: PolarCurve['kind'], speed: (gamma: number) => number, last: number): PolarCurve => {
+    const points = Array.from({ length: 60 }, (_, k) => 38 + ((last - 38) * k) / 59).map((gamma) => ({ gamma, speed: speed(gamma) })); // prettier-ignore
+    const best = (sign: number): PolarPoint =>
+      points.reduce((a, b) => (sign * (b.speed * Math.cos(b.gamma * RAD) - a.speed * Math.cos(a.gamma * RAD)) > 0 ? b : a)); // prettier-ignore
+    return { kind, boat: 'single-hander', boats: [0, 1], tws, points, up: best(1), down: last > 90 ? best(-1) : null };
+  };
+  return [curve('model', off, 180), curve('best', (gamma) => 0.98 * off(gamma - 1), 75)];
+}
+
 function pairOf(a: BoatResult, b: BoatResult): PairResult {
   const mean = (boat: BoatResult): number => boat.legs[0].steady!.vmg_kn!.value;
   const d = mean(a) - mean(b);
@@ -421,7 +443,7 @@ export function sample(): Sample {
     warnings: [{ code: 'boat-assumed', message: 'No boat was named, so the built-in single-hander was taken.' }],
   }; // prettier-ignore
   const frame = { lat: 46.912, lon: 9.061, metresPerDegreeLat: 111170, metresPerDegreeLon: 76190 };
-  return { result, series: { frame, zone: 'Europe/Zurich', marks: marksOf(), boats } };
+  return { result, series: { frame, zone: 'Europe/Zurich', marks: marksOf(), boats, polars: polarsOf() } };
 }
 
 /** The same race with null in every place that may hold null, and no wind speed in the series. */
@@ -454,7 +476,7 @@ export function bareSample(): Sample {
     warnings: [{ code: 'wind-unknown', message: 'There is no wind log: wind speed is not known.' }],
   };
   const without = series.boats.map((b) => ({ ...b, tws: blank(b.n), beta: blank(b.n), aws: blank(b.n), heading: blank(b.n), blocks: [], manoeuvres: b.manoeuvres.map((m) => ({ ...m, loss: NaN })) })); // prettier-ignore
-  return { result: withoutPairs(bare), series: { ...series, zone: null, marks: [], boats: without } };
+  return { result: withoutPairs(bare), series: { ...series, zone: null, marks: [], boats: without, polars: [] } };
 }
 
 function withoutPairs(result: Result): Result {
@@ -476,7 +498,10 @@ export function noWindSpeedSample(): Sample {
   })); // prettier-ignore
   const blank = (n: number): Float64Array => new Float64Array(n).fill(NaN);
   const bare = series.boats.map((b) => ({ ...b, tws: blank(b.n), beta: blank(b.n), aws: blank(b.n) }));
-  return { result: { ...result, boats, wind: { ...result.wind, tws_kn: null } }, series: { ...series, boats: bare } };
+  return {
+    result: { ...result, boats, wind: { ...result.wind, tws_kn: null } },
+    series: { ...series, boats: bare, polars: [] },
+  };
 }
 
 /** Boats renamed, the race too: for names that try to break out. */

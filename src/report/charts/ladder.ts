@@ -2,7 +2,7 @@ import { scaleLinear } from 'd3-scale';
 import { plain } from '../format.js';
 import { boatPaint, INK, PAPER, RULE, SOFT } from '../palette.js';
 import { heightOf, WANDER, type Climb, type RungRow } from '../rungs.js';
-import { dot } from './polar.js';
+import { dot } from './sign.js';
 import { coordinate, curveOf, el, footAxis, line, numberText, picture, text, type Scale } from './svg.js';
 
 export interface LadderOptions {

@@ -2,47 +2,69 @@ import { scaleLinear } from 'd3-scale';
 import { RAD } from '../../math/angles.js';
 import { toKnots } from '../../math/units.js';
 import type { Q, Result } from '../../result/result.js';
-import type { RaceSeries } from '../../result/series.js';
+import type { PolarCurve, PolarPoint, RaceSeries } from '../../result/series.js';
 import { dayBest, settledMean, timeMean, upwindLegs } from '../figures.js';
 import { boatPaint, INK, PAPER, RULE, SOFT } from '../palette.js';
-import { el, line, numberText, pathOf, picture, text } from './svg.js';
+import { bestSign, dot, dots } from './sign.js';
+import { curveOf, el, line, numberText, pathOf, picture, text, tickDigits } from './svg.js';
 
 export interface PolarOptions {
   readonly width: number;
-  readonly height: number;
+  /** Height at most. */
+  readonly most: number;
 }
 
-export const POLAR_DEFAULTS: PolarOptions = { width: 460, height: 330 };
+export const POLAR_DEFAULTS: PolarOptions = { width: 460, most: 420 };
 
-interface Fan {
-  readonly cx: number;
-  readonly cy: number;
-  readonly r: (knots: number) => number;
-  readonly limit: number;
+/**
+ * The close-hauled part of the polar diagram, each tack on a sheet of its own: up the sheet is speed toward the wind,
+ * to the side speed across it, on one scale, so that a ray is a course angle and an arc a speed.
+ */
+interface Sheet {
+  readonly side: -1 | 1;
+  /** Place of a course angle and a speed in knots. */
+  readonly at: (gamma: number, knots: number) => [number, number];
+  readonly box: { readonly left: number; readonly right: number; readonly top: number; readonly bottom: number };
+  readonly vmg: readonly [number, number];
+  readonly across: readonly [number, number];
 }
 
-/** Settled blocks by course angle and speed; port to the left, starboard to the right, wind from the top. */
+const LEFT = 40;
+const BETWEEN = 16;
+const TOP = 26;
+/** Least span of a sheet. [kn] */
+const LEAST = 0.9;
+const ROOM = 0.12;
+
+/** Settled blocks by course angle and speed with the curves of model and reference; port to the left. */
 export function polar(result: Result, series: RaceSeries, options: Partial<PolarOptions> = {}): string {
   const o = { ...POLAR_DEFAULTS, ...options };
-  const speeds = series.boats.flatMap((b) => b.blocks.map((k) => toKnots(k.speed)));
-  const known = result.boats.map((b) => optimumOf(b, 'speed_kn')?.value ?? 0);
-  const limit = Math.max(3, 0.3 + Math.max(0, ...speeds, ...known));
-  const cy = o.height - 26;
-  const scale = scaleLinear([0, limit], [0, Math.min(cy - 16, o.width / 2 / Math.sin(64 * RAD) - 18)]);
-  const fan: Fan = { cx: o.width / 2, cy, r: scale, limit };
+  const curves = series.polars ?? [];
+  const sheets = sheetsOf(series, curves, o);
+  const bottom = sheets[0].box.bottom;
   const body = [
-    rings(fan),
-    vmgLines(result, fan, o.width),
-    ...series.boats.flatMap((b, i) => blockDots(b.blocks, i, fan)),
-    ...result.boats.flatMap((_, i) => meanMark(result, i, fan)),
-    ...optimumMarks(result, fan),
-    text(12, o.height - 6, '◂ port tack', { size: 12, italic: true, fill: SOFT }),
-    text(o.width - 12, o.height - 6, 'starboard tack ▸', { anchor: 'end', size: 12, italic: true, fill: SOFT }),
+    ...sheets.map((sheet, k) => clip(sheet, k)),
+    ...sheets.flatMap((sheet, k) => [
+      net(sheet),
+      el(
+        'g',
+        { 'clip-path': `url(#polar-clip-${k})` },
+        bestLine(result, sheet),
+        ...series.boats.map((b, i) => blockDots(b.blocks, i, sheet)),
+        ...curves.map((curve) => curveLine(curve, curves, sheet)),
+      ),
+      ...result.boats.map((_, i) => meanMark(result, i, sheet)),
+    ]),
+    text(2, 13, 'VMG, kn', { size: 12, italic: true }),
+    text(sheets[0].box.left, bottom + 18, '◂ port tack', { size: 12, italic: true, fill: SOFT }),
+    text(sheets[1].box.right, bottom + 18, 'starboard tack ▸', { anchor: 'end', size: 12, italic: true, fill: SOFT }),
+    legend(curves, bottom + 38, o.width),
   ];
-  return picture(o.width, o.height, polarLabel(result), body.join(''), { class: 'polar' });
+  const height = bottom + (curves.length > 0 ? 46 : 26);
+  return picture(o.width, Math.ceil(height), polarLabel(result, curves), body.join(''), { class: 'polar' });
 }
 
-function polarLabel(result: Result): string {
+function polarLabel(result: Result, curves: readonly PolarCurve[]): string {
   const parts = result.boats.map((b) => {
     const gamma = settledMean(b, 'gamma_deg');
     const speed = settledMean(b, 'speed_kn');
@@ -50,118 +72,169 @@ function polarLabel(result: Result): string {
       ? `${b.name} ${gamma.value.toFixed(1)} degrees at ${speed.value.toFixed(2)} knots`
       : `${b.name} not known`;
   });
-  return `Polar diagram of settled sailing: ${parts.join('; ')}.`;
+  const bests = curves.map(
+    ({ kind, boat, up }) =>
+      `${kind === 'model' ? `best of the ${boat} model` : 'best of the reference'} ${up.gamma.toFixed(1)} degrees at ${toKnots(up.speed).toFixed(2)} knots`,
+  );
+  return `Polar diagram of settled sailing: ${[...parts, ...bests].join('; ')}.`;
 }
 
-function optimumOf(boat: Result['boats'][number], key: 'gamma_deg' | 'speed_kn' | 'vmg_kn'): Q {
-  return timeMean(
-    upwindLegs(boat).map(({ leg }) => ({ q: leg.optimum?.[key] ?? null, seconds: leg.steady?.seconds ?? 1 })),
+/** Two sheets that hold every block and the best points, on one scale. */
+function sheetsOf(series: RaceSeries, curves: readonly PolarCurve[], o: PolarOptions): [Sheet, Sheet] {
+  const points: PolarPoint[] = [...series.boats.flatMap((b) => b.blocks), ...curves.map(({ up }) => up)];
+  const vmg = spanOf(points.map((p) => toKnots(p.speed) * Math.cos(p.gamma * RAD)));
+  const across = spanOf(points.map((p) => toKnots(p.speed) * Math.sin(p.gamma * RAD)));
+  const width = (o.width - LEFT - BETWEEN - 8) / 2;
+  const scale = Math.min(width / (across[1] - across[0]), (o.most - TOP - 46) / (vmg[1] - vmg[0]));
+  // What the shape of the sheet leaves over goes to both sides of the data.
+  const spare = (width / scale - (across[1] - across[0])) / 2;
+  const wide = [across[0] - spare, across[1] + spare] as const;
+  const bottom = TOP + scale * (vmg[1] - vmg[0]);
+  return ([-1, 1] as const).map((side): Sheet => {
+    const left = side < 0 ? LEFT : LEFT + width + BETWEEN;
+    const x = scaleLinear(side < 0 ? [wide[1], wide[0]] : [...wide], [left, left + width]);
+    const y = scaleLinear([...vmg], [bottom, TOP]);
+    return {
+      side,
+      at: (gamma, knots) => [x(knots * Math.sin(gamma * RAD)), y(knots * Math.cos(gamma * RAD))],
+      box: { left, right: left + width, top: TOP, bottom },
+      vmg,
+      across: wide,
+    };
+  }) as [Sheet, Sheet];
+}
+
+function spanOf(values: readonly number[]): [number, number] {
+  const known = values.filter(Number.isFinite);
+  if (known.length === 0) return [0, LEAST];
+  const [low, high] = [Math.min(...known), Math.max(...known)];
+  const room = Math.max((LEAST - (high - low)) / 2, ROOM);
+  return [low - room, high + room];
+}
+
+function clip({ box }: Sheet, k: number): string {
+  const { left, right, top, bottom } = box;
+  return el(
+    'clipPath',
+    { id: `polar-clip-${k}` },
+    el('rect', { x: left, y: top, width: right - left, height: bottom - top }),
   );
 }
 
-/** Place of a course angle (negative: port) and speed. */
-function at(fan: Fan, gamma: number, knots: number): [number, number] {
-  return [fan.cx + fan.r(knots) * Math.sin(gamma * RAD), fan.cy - fan.r(knots) * Math.cos(gamma * RAD)];
-}
-
-function arc(fan: Fan, knots: number): string {
-  const points: [number, number][] = [];
-  for (let g = -64; g <= 64; g += 2) points.push(at(fan, g, knots));
-  return pathOf(points);
-}
-
-function rings(fan: Fan): string {
-  const out: string[] = [];
-  const step = fan.limit > 8 ? 2 : 1;
-  for (let v = step; v <= fan.limit; v += step) {
-    out.push(el('path', { d: arc(fan, v), fill: 'none', stroke: RULE, 'stroke-width': 0.8 }));
-    out.push(numberText(fan.cx + 3, fan.cy - fan.r(v) + 11, v, 0, { size: 10.5, fill: SOFT }));
+/** Level lines of VMG, rays of course angle, arcs of speed. */
+function net(sheet: Sheet): string {
+  const { box, vmg, across, side, at } = sheet;
+  const inside = ([x, y]: readonly [number, number]): boolean =>
+    x >= box.left - 0.01 && x <= box.right + 0.01 && y >= box.top - 0.01 && y <= box.bottom + 0.01;
+  const levels = scaleLinear([...vmg], [box.bottom, box.top]);
+  const ticks = levels.ticks(5);
+  const digits = tickDigits(ticks);
+  const out = ticks.map(
+    (v) =>
+      line(box.left, levels(v), box.right, levels(v), RULE, { 'stroke-width': 0.7 }) +
+      (side < 0 ? numberText(LEFT - 6, levels(v) + 4, v, digits, { anchor: 'end', size: 11, fill: SOFT }) : ''),
+  );
+  const [slow, fast] = [Math.hypot(vmg[0], across[0]), Math.hypot(vmg[1], across[1])];
+  for (let gamma = 20; gamma <= 75; gamma += 5) {
+    const ray = along(slow, fast, (knots) => at(gamma, knots)).filter(inside);
+    if (ray.length < 2) continue;
+    const [x, y] = ray[ray.length - 1];
+    out.push(el('path', { d: pathOf([ray[0], ray[ray.length - 1]]), stroke: RULE, 'stroke-width': 0.8 }));
+    if (y < box.top + 3) out.push(text(x, box.top - 5, `${gamma}°`, { size: 10.5, fill: SOFT, anchor: 'middle' }));
   }
-  for (const g of [30, 40, 50, 60]) {
-    for (const side of [-1, 1]) {
-      const [x, y] = at(fan, side * g, fan.limit);
-      out.push(line(fan.cx, fan.cy, x, y, RULE, { 'stroke-width': 0.6 }));
-      out.push(text(x + side * 4, y - 3, `${g}°`, { size: 10.5, fill: SOFT, anchor: side < 0 ? 'end' : 'start' }));
+  const speeds = scaleLinear([slow, fast], [0, 1]).ticks(6);
+  for (const knots of speeds) {
+    const arc = along(15, 80, (gamma) => at(gamma, knots)).filter(inside);
+    if (arc.length < 2) continue;
+    const [x, y] = arc[arc.length - 1];
+    out.push(
+      el('path', { d: curveOf(arc), fill: 'none', stroke: RULE, 'stroke-width': 0.8, 'stroke-dasharray': '1 3' }),
+    );
+    if (y > box.bottom - 6) {
+      out.push(
+        text(x, box.bottom - 5, `${knots.toFixed(1)} kn`, { size: 10.5, fill: SOFT, anchor: 'middle', extra: EDGE }),
+      );
     }
   }
-  out.push(line(fan.cx, fan.cy, fan.cx, fan.cy - fan.r(fan.limit), SOFT, { 'stroke-width': 0.8 }));
-  out.push(text(fan.cx - 4, fan.cy - 8, 'knots', { size: 10.5, italic: true, fill: SOFT, anchor: 'end' }));
+  out.push(
+    el('rect', { x: box.left, y: box.top, width: box.right - box.left, height: box.bottom - box.top, fill: 'none', stroke: SOFT, 'stroke-width': 0.8 }),
+  ); // prettier-ignore
   return out.join('');
+}
+
+const FINE = 120;
+
+function along(from: number, to: number, place: (value: number) => [number, number]): [number, number][] {
+  return Array.from({ length: FINE + 1 }, (_, k) => place(from + ((to - from) * k) / FINE));
 }
 
 /** A paper-coloured edge keeps words legible over lines. */
 const EDGE = { 'paint-order': 'stroke', stroke: PAPER, 'stroke-width': 3.5 };
 
-/** Equal VMG is a level line: the best of the day, and the bound set by the angle to the apparent wind. */
-function vmgLines(result: Result, fan: Fan, width: number): string {
-  const best = dayBest(result);
-  const ceiling = best?.leg.ceiling_vmg_kn?.value ?? NaN;
-  const rule = (knots: number, words: string, dash: string): string => {
-    if (!Number.isFinite(knots) || knots > fan.limit) return '';
-    const y = fan.cy - fan.r(knots);
-    return (
-      line(20, y, width - 20, y, INK, { 'stroke-width': 0.9, 'stroke-dasharray': dash }) +
-      text(width / 2, y - 4, words, { size: 11, italic: true, anchor: 'middle', extra: EDGE })
-    );
-  };
+/** Equal VMG is a level line: the best of the day. */
+function bestLine(result: Result, { box, vmg, side }: Sheet): string {
+  const best = dayBest(result)?.vmg.value ?? NaN;
+  if (!(best > vmg[0] && best < vmg[1])) return '';
+  const y = scaleLinear([...vmg], [box.bottom, box.top])(best);
+  const words = text(box.right - 4, y - 4, 'best settled VMG', { size: 11, italic: true, anchor: 'end', extra: EDGE });
   return (
-    rule(best?.vmg.value ?? NaN, 'best settled VMG', '6 3') +
-    rule(ceiling, 'upper bound at that leg’s apparent angle', '1.5 3')
+    line(box.left, y, box.right, y, INK, { 'stroke-width': 0.9, 'stroke-dasharray': '1.5 3' }) + (side > 0 ? words : '')
   );
 }
 
 type Block = RaceSeries['boats'][number]['blocks'][number];
 
-function blockDots(blocks: readonly Block[], index: number, fan: Fan): string[] {
+function blockDots(blocks: readonly Block[], index: number, { at, side }: Sheet): string {
   const { colour } = boatPaint(index);
-  return blocks.map((b) => {
-    const [x, y] = at(fan, b.tack === 'port' ? -b.gamma : b.gamma, toKnots(b.speed));
-    return dot(index, x, y, 3.4, colour, 0.5);
-  });
+  const places = blocks.filter(({ tack }) => (tack === 'port') === side < 0).map((b) => at(b.gamma, toKnots(b.speed)));
+  return dots(index, places, 3.4, { fill: colour, 'fill-opacity': 0.45, stroke: colour, 'stroke-width': 0.8 });
 }
 
-/** Boats differ in shape as well as in colour. */
-export function dot(index: number, x: number, y: number, r: number, colour: string, opacity: number): string {
-  const paint = { fill: colour, 'fill-opacity': opacity, stroke: colour, 'stroke-width': 0.8 };
-  if (index % 4 === 0) return el('circle', { cx: x, cy: y, r, ...paint });
-  if (index % 4 === 1) return el('rect', { x: x - r * 0.9, y: y - r * 0.9, width: r * 1.8, height: r * 1.8, ...paint });
-  const d =
-    index % 4 === 2
-      ? `M${x} ${y - r * 1.2}L${x + r * 1.1} ${y + r}L${x - r * 1.1} ${y + r}Z`
-      : `M${x} ${y - r * 1.3}L${x + r * 1.3} ${y}L${x} ${y + r * 1.3}L${x - r * 1.3} ${y}Z`;
-  return el('path', { d, ...paint });
+/** One model: in ink; of several each in the colour of its first boat. The reference is broken. */
+export function curvePaint(
+  curve: PolarCurve,
+  all: readonly PolarCurve[],
+): { readonly stroke: string; readonly dash: string | undefined } {
+  const models = all.filter(({ kind }) => kind === 'model').length;
+  return {
+    stroke: models > 1 ? boatPaint(curve.boats[0]).colour : INK,
+    dash: curve.kind === 'model' ? undefined : '7 4',
+  };
 }
 
-function meanMark(result: Result, index: number, fan: Fan): string[] {
+function curveLine(curve: PolarCurve, all: readonly PolarCurve[], { at }: Sheet): string {
+  const { stroke, dash } = curvePaint(curve, all);
+  const [x, y] = at(curve.up.gamma, toKnots(curve.up.speed));
+  const d = curveOf(curve.points.map(({ gamma, speed }) => at(gamma, toKnots(speed))));
+  return (
+    el('path', { class: 'curve', d, fill: 'none', stroke, 'stroke-width': 1.8, 'stroke-dasharray': dash }) +
+    bestSign(x, y, stroke, PAPER)
+  );
+}
+
+/** What the lines are, under the sheets. */
+function legend(curves: readonly PolarCurve[], y: number, width: number): string {
+  const [model, reference] = [curves.find(({ kind }) => kind === 'model'), curves.find(({ kind }) => kind !== 'model')];
+  const entry = (x: number, words: string, dash?: string): string =>
+    line(x, y - 4, x + 26, y - 4, INK, { 'stroke-width': 1.8, 'stroke-dasharray': dash }) +
+    text(x + 32, y, words, { size: 11.5 });
+  return (
+    (model ? entry(LEFT, `boat model in ${toKnots(model.tws).toFixed(1)} kn`) : '') +
+    (reference ? entry(width / 2 + 6, 'reference', '7 4') : '')
+  );
+}
+
+function meanMark(result: Result, index: number, { at, side }: Sheet): string {
   const boat = result.boats[index];
   const { colour } = boatPaint(index);
-  return ([-1, 1] as const).flatMap((side) => {
-    const legs = upwindLegs(boat).map(({ leg }) => (side < 0 ? leg.steady?.port : leg.steady?.starboard));
-    const of = (key: 'gamma_deg' | 'speed_kn'): Q =>
-      timeMean(legs.map((s) => ({ q: s?.[key] ?? null, seconds: s?.seconds ?? 0 })));
-    const gamma = of('gamma_deg');
-    const speed = of('speed_kn');
-    if (!gamma || !speed) return [];
-    const [x, y] = at(fan, side * gamma.value, speed.value);
-    const a = (gamma.se ?? 0) + 1e-6;
-    const bar = pathOf([
-      at(fan, side * (gamma.value - a), speed.value),
-      at(fan, side * (gamma.value + a), speed.value),
-    ]);
-    return [el('path', { d: bar, stroke: INK, 'stroke-width': 2.2, fill: 'none' }), dot(index, x, y, 6, colour, 1)];
-  });
-}
-
-function optimumMarks(result: Result, fan: Fan): string[] {
-  const boat = result.boats.find((b) => optimumOf(b, 'gamma_deg'));
-  const gamma = boat && optimumOf(boat, 'gamma_deg');
-  const speed = boat && optimumOf(boat, 'speed_kn');
-  if (!gamma || !speed) return [];
-  return [-1, 1].map((side) => {
-    const [x, y] = at(fan, side * gamma.value, speed.value);
-    return (
-      el('path', { d: `M${x - 6} ${y}H${x + 6}M${x} ${y - 6}V${y + 6}`, stroke: INK, 'stroke-width': 1.6 }) +
-      el('circle', { cx: x, cy: y, r: 4, fill: PAPER, stroke: INK, 'stroke-width': 1.4 })
-    );
-  });
+  const legs = upwindLegs(boat).map(({ leg }) => (side < 0 ? leg.steady?.port : leg.steady?.starboard));
+  const of = (key: 'gamma_deg' | 'speed_kn'): Q =>
+    timeMean(legs.map((s) => ({ q: s?.[key] ?? null, seconds: s?.seconds ?? 0 })));
+  const gamma = of('gamma_deg');
+  const speed = of('speed_kn');
+  if (!gamma || !speed) return '';
+  const [x, y] = at(gamma.value, speed.value);
+  const error = gamma.se ?? 0;
+  const bar = pathOf([at(gamma.value - error, speed.value), at(gamma.value + error, speed.value)]);
+  return el('path', { d: bar, stroke: INK, 'stroke-width': 2.2, fill: 'none' }) + dot(index, x, y, 6, colour, 1);
 }

@@ -1,16 +1,19 @@
 import type { BoatResult, Q, Result } from '../../result/result.js';
-import type { RaceSeries } from '../../result/series.js';
+import type { PolarCurve, PolarPoint, RaceSeries } from '../../result/series.js';
 import { angleDistribution, histogram } from '../charts/angle-distribution.js';
 import { dragAngles, type DragAngleRow } from '../charts/drag-angles.js';
 import { polar } from '../charts/polar.js';
+import { polarWhole } from '../charts/polar-whole.js';
 import { portStarboard, type TwoTacks } from '../charts/port-starboard.js';
 import { racingSpan } from '../charts/time-series.js';
 import { windStrip } from '../charts/wind-strip.js';
 import { dayBest, settledMean, timeMean, upwindLegs } from '../figures.js';
-import { plain, quantity, time, withUnit } from '../format.js';
+import { number, plain, quantity, time, withUnit } from '../format.js';
 import { html, nameOf, type Part, type Safe } from '../html.js';
 import { shiftsOf } from '../shifts.js';
+import { RAD } from '../../math/angles.js';
 import { toKnots } from '../../math/units.js';
+import { REFERENCE_WORDS } from '../causes.js';
 import { term } from '../terms.js';
 import { figure, section, table } from './figure.js';
 
@@ -20,8 +23,10 @@ function modelMean(boat: BoatResult, key: 'gamma_deg' | 'beta_deg'): Q {
   );
 }
 
-function polarPlate(result: Result, series: RaceSeries): Part {
-  if (series.boats.every((b) => b.blocks.length === 0)) return null;
+/** Half minutes listed one by one at most; of more, the means of legs and tacks are given. */
+const MOST_LISTED = 240;
+
+function blockTable(series: RaceSeries): Safe {
   const rows = series.boats.flatMap((b) =>
     b.blocks.map((k) => [
       html`${nameOf(b.name)} ${time(b.t0 + k.from, 'hms')}`,
@@ -33,19 +38,98 @@ function polarPlate(result: Result, series: RaceSeries): Part {
       plain(toKnots(k.tws), 1),
     ]),
   );
-  const model = result.boats.some((b) => b.legs.some((l) => l.optimum))
-    ? ' The cross in a ring is the model’s optimum.'
-    : '';
+  return table(
+    'Settled half minutes',
+    ['Boat and time', 'Tack', 'Seconds', 'Course angle °', 'Speed kn', 'VMG kn', 'Wind kn'],
+    rows,
+  );
+}
+
+function tackTable(result: Result): Safe {
+  const rows = result.boats.flatMap((boat) =>
+    upwindLegs(boat).flatMap(({ leg }) =>
+      (['port', 'starboard'] as const).flatMap((tack): Part[][] => {
+        const side = leg.steady?.[tack];
+        if (!side) return [];
+        return [
+          [
+            html`${nameOf(boat.name)}, lap ${leg.lap}`,
+            tack,
+            plain(side.seconds, 0),
+            quantity(side.gamma_deg, 'deg'),
+            quantity(side.speed_kn, 'kn', { unitless: true }),
+            quantity(side.vmg_kn, 'kn', { unitless: true }),
+            quantity(side.tws_kn, 'kn', { unitless: true, digits: 1 }),
+          ],
+        ];
+      }),
+    ),
+  );
+  return table(
+    'Means of the settled half minutes',
+    ['Boat and leg', 'Tack', 'Seconds', 'Course angle', 'Speed kn', 'VMG kn', 'Wind kn'],
+    rows,
+  );
+}
+
+function polarPlate(result: Result, series: RaceSeries): Part {
+  const blocks = series.boats.reduce((sum, b) => sum + b.blocks.length, 0);
+  if (blocks === 0) return null;
+  const curves = series.polars ?? [];
+  const model = curves.find(({ kind }) => kind === 'model');
+  const reference = curves.find(({ kind }) => kind !== 'model');
+  const lines =
+    model &&
+    html` The line is the boat model in ${number(toKnots(model.tws), 1)}&nbsp;kn, the mean wind of all these half
+    minutes${reference && html`, the broken one the ${term('reference')}: ${REFERENCE_WORDS[reference.kind]}`}. The
+    cross in a ring is the best point on it. A sign outside a line is more speed than that at the angle, or more wind
+    than the mean just then.`;
   return figure({
     svg: polar(result, series),
     title: 'Angle and speed of every settled half minute',
-    summary: html`Small signs are half minutes, large ones each boat’s mean on that tack with the error of its angle.
-    Level lines are equal VMG. The dotted one is the ${term('ceiling')}: a bound, not a mark.${model}`,
-    table: table(
-      'Settled half minutes',
-      ['Boat and time', 'Tack', 'Seconds', 'Course angle °', 'Speed kn', 'VMG kn', 'Wind kn'],
-      rows,
-    ),
+    summary: html`Up is speed toward the wind, to the side speed across it; rays are course angles, dotted arcs speeds.
+    Small signs are half minutes, large ones each boat’s mean on that tack with the error of its angle.${lines}`,
+    table: blocks > MOST_LISTED ? tackTable(result) : blockTable(series),
+  });
+}
+
+/** Angles at which the curves are told in figures. [deg] */
+const TOLD = [40, 50, 60, 75, 90, 105, 120, 135, 150, 165, 180];
+
+function curveTable(curve: PolarCurve): Safe {
+  const row = (words: Part, { gamma, speed }: PolarPoint): Part[] => [
+    words,
+    number(gamma, 1),
+    number(toKnots(speed), 2),
+    number(toKnots(speed) * Math.cos(gamma * RAD), 2),
+  ];
+  const nearest = (gamma: number): PolarPoint =>
+    curve.points.reduce((best, one) => (Math.abs(one.gamma - gamma) < Math.abs(best.gamma - gamma) ? one : best));
+  const told = [...new Set(TOLD.map(nearest))].map((point) => row('', point));
+  return table(
+    html`${curve.boat} in ${number(toKnots(curve.tws), 1)} kn`,
+    ['', 'Course angle °', 'Speed kn', 'VMG kn'],
+    [row('best upwind', curve.up), ...(curve.down ? [row('best downwind', curve.down)] : []), ...told],
+  );
+}
+
+function bestWords({ boat, up, down }: PolarCurve): Part {
+  const point = ({ gamma, speed }: PolarPoint): Part =>
+    html`${number(gamma, 0)}° at ${number(toKnots(speed), 1)}&nbsp;kn`;
+  return html` Best of the ${boat} model: upwind ${point(up)}${down && html`, downwind ${point(down)}`}.`;
+}
+
+function wholePolarPlate(series: RaceSeries): Part {
+  const models = (series.polars ?? []).filter(({ kind }) => kind === 'model');
+  if (models.length === 0) return null;
+  return figure({
+    svg: polarWhole(series),
+    title: 'The whole polar diagram',
+    summary: html`The line is the boat model’s speed at every course angle in
+    ${number(toKnots(models[0].tws), 1)}&nbsp;kn; crosses in rings are its best courses.${models.map(bestWords)} Full
+    signs are settled half minutes upwind, open ones half minutes off the wind, sailed in whatever wind there was. The
+    broken line is the ${term('reference')}, drawn only where it was anchored.`,
+    table: html`${models.map(curveTable)}`,
   });
 }
 
@@ -142,6 +226,7 @@ function windPlate(series: RaceSeries): Part {
 export function angles(result: Result, series: RaceSeries): Safe {
   const plates = [
     polarPlate(result, series),
+    wholePolarPlate(series),
     distributionPlate(result, series),
     dragPlate(result),
     tackPlates(result),

@@ -2,7 +2,7 @@ import type { Result, WindSource } from '../../result/result.js';
 import type { RaceSeries } from '../../result/series.js';
 import { el } from '../charts/svg.js';
 import { racingSpan } from '../charts/time-series.js';
-import { dot } from '../charts/polar.js';
+import { dot } from '../charts/sign.js';
 import { inline, secondsOf, time } from '../format.js';
 import { html, nameOf, trusted, type Safe } from '../html.js';
 import { boatPaint } from '../palette.js';
