@@ -1,12 +1,11 @@
 import type { Command } from 'commander';
 import { compare, comparePage } from '../index.js';
-import type { PairLadder } from '../index.js';
 import { runBatch } from './batch.js';
-import type { Task } from './batch.js';
 import { addManners, addOutputOptions, addRaceOptions, collect } from './options.js';
 import type { OutputFlags, RaceFlags } from './options.js';
 import { referenceFor } from './reference.js';
 import { compareSummary } from './summary.js';
+import type { Task } from './task.js';
 import { programVersion } from './version.js';
 import { unusable } from './files.js';
 import type { Job } from './races.js';
@@ -37,25 +36,27 @@ export function compareCommand(program: Command): Command {
     .action(async (inputs: string[], flags: CompareFlags) => {
       if (flags.pair?.length === 1)
         throw unusable(`--pair ${flags.pair[0]}: one boat alone.`, 'Name two: --pair A --pair B.');
-      let ladders: readonly PairLadder[] = [];
-      const task: Task = {
-        suffix: '-compare',
-        work: async (job) => {
-          checkPairs(flags.pair ?? [], job);
-          const compared = await compare(job.race, job.open, {
-            version: programVersion(),
-            ...(flags.pair ? { pairs: [...flags.pair] } : {}),
-            ...(await referenceFor(flags.reference, job)),
-          });
-          ladders = compared.ladders;
-          return compared;
-        },
-        // One race after the other: these are of the race at hand.
-        page: (result, series) => comparePage(result, series, ladders),
-        summary: compareSummary,
-      };
-      process.exitCode = await runBatch(inputs, flags, task);
+      process.exitCode = await runBatch(inputs, flags, compareTask(flags));
     });
+}
+
+export function compareTask(flags: CompareFlags): Task {
+  const basis = async () => ({
+    ...(flags.pair ? { pairs: [...flags.pair] } : {}),
+    ...(await referenceFor(flags.reference)),
+  });
+  return {
+    name: 'compare',
+    suffix: '-compare',
+    work: async (job) => {
+      checkPairs(flags.pair ?? [], job);
+      const options = { version: programVersion(), ...(await basis()) };
+      const { result, series, ladders } = await compare(job.race, job.open, options);
+      return { result, series, page: (whole) => comparePage(whole, series, ladders) };
+    },
+    summary: compareSummary,
+    basis,
+  };
 }
 
 function checkPairs(pair: readonly string[], job: Job): void {

@@ -1,11 +1,11 @@
 import type { Command } from 'commander';
 import { debrief, debriefPage } from '../index.js';
 import { runBatch } from './batch.js';
-import type { Task } from './batch.js';
 import { addManners, addOutputOptions, addRaceOptions } from './options.js';
 import type { OutputFlags, RaceFlags } from './options.js';
 import { referenceFor } from './reference.js';
 import { debriefSummary } from './summary.js';
+import type { Task } from './task.js';
 import { programVersion } from './version.js';
 
 const EXAMPLE = `
@@ -41,13 +41,19 @@ export function debriefCommand(program: Command): Command {
     });
 }
 
-export function runDebrief(inputs: readonly string[], flags: DebriefFlags): Promise<number> {
-  const task: Task = {
+export const runDebrief = (inputs: readonly string[], flags: DebriefFlags): Promise<number> =>
+  runBatch(inputs, flags, debriefTask(flags));
+
+export function debriefTask(flags: DebriefFlags): Task {
+  const reference = () => referenceFor(flags.reference);
+  return {
+    name: 'debrief',
     suffix: '',
-    work: async (job) =>
-      debrief(job.race, job.open, { version: programVersion(), ...(await referenceFor(flags.reference, job)) }),
-    page: debriefPage,
+    work: async ({ race, open }) => {
+      const { result, series } = await debrief(race, open, { version: programVersion(), ...(await reference()) });
+      return { result, series, page: (whole) => debriefPage(whole, series) };
+    },
     summary: debriefSummary,
+    basis: reference,
   };
-  return runBatch(inputs, flags, task);
 }

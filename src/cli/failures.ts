@@ -45,3 +45,26 @@ export function tellFailure(error: unknown): void {
   complain(`${errColour.red('legwork:')} a fault of the program, not of your files: ${message}`);
   complain('  Please report it with the files that show it. LEGWORK_DEBUG=1 shows where it happened.');
 }
+
+/** A failure as plain data, to go from one thread to another. */
+export interface PlainFailure {
+  readonly message: string;
+  readonly stack: string | undefined;
+  /** Of a `UserError`; null: a fault of ours. */
+  readonly exitCode: 1 | 2 | null;
+  readonly suggestion: string | undefined;
+}
+
+export function plainFailure(error: unknown): PlainFailure {
+  const { message, stack } = error instanceof Error ? error : new Error(String(error));
+  const { exitCode, suggestion } = error instanceof UserError ? error : { exitCode: null, suggestion: undefined };
+  return { message, stack, exitCode, suggestion };
+}
+
+export function failureFrom({ message, stack, exitCode, suggestion }: PlainFailure): Error {
+  const error =
+    exitCode === null
+      ? new Error(message)
+      : new UserError(message, { exitCode, ...(suggestion === undefined ? {} : { suggestion }) });
+  return Object.assign(error, stack === undefined ? {} : { stack });
+}

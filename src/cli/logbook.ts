@@ -11,7 +11,9 @@ import { complain } from './terminal.js';
 /** What came of filing. */
 export interface Filed {
   readonly path: string;
-  /** The file's text. */
+  /** Of the file in the logbook. */
+  readonly name: string;
+  /** What it holds now. */
   readonly text: string;
 }
 
@@ -26,7 +28,8 @@ const LEFT_BEHIND = 5 * 60_000;
 export async function fileInLogbook(folder: string, result: Result, day: string | null): Promise<Filed> {
   if ((await kindOf(folder)) === 'file') throw unusable(`${forMessages(folder)}: a file, not a logbook folder.`);
   const { jsonText, readResult } = await resultFiles();
-  const path = join(folder, logbookName(result, day));
+  const name = logbookName(result, day);
+  const path = join(folder, name);
   await makeFolder(folder);
   return withLock(folder, async (held) => {
     await sweep(folder);
@@ -34,7 +37,7 @@ export async function fileInLogbook(folder: string, result: Result, day: string 
     const text = jsonText(before === null ? result : merged(before, result));
     if (!held()) throw unusable(`${forMessages(folder)}: this run stood still and lost its turn.`, 'Run it again.');
     await writeWhole(path, text, { syncFolder: true });
-    return { path, text };
+    return { path, name, text };
   });
 }
 

@@ -1,9 +1,8 @@
 import { join, resolve } from 'node:path';
 import { exporters, resultFiles } from '../index.js';
 import type { RaceSeries, Result } from '../index.js';
-import { forMessages, kindOf, unusable, writeWhole } from './files.js';
+import { forMessages, kindOf, unusable } from './files.js';
 import type { OutputFlags } from './options.js';
-import { print } from './terminal.js';
 
 /** Where one race's files go. */
 export interface Places {
@@ -47,30 +46,54 @@ export async function placesFor(flags: OutputFlags, slug: string, suffix: string
 /** No output may take the place of an input, nor two outputs the same place. */
 export function checkPlaces(places: Places, inputs: readonly string[]): void {
   const taken = new Map(inputs.filter((path) => path !== '-').map((path) => [resolve(path), 'an input']));
-  const files = [places.html, places.json, places.geojson, places.parquet];
-  if (places.csv !== null) files.push(join(places.csv, 'legs.csv'), join(places.csv, 'seconds.csv'));
-  for (const file of files) {
-    if (file === null || file === '-') continue;
+  for (const file of Object.values(outputFiles(places))) {
     const other = taken.get(resolve(file));
     if (other) throw unusable(`${forMessages(file)}: would be written over ${other}.`, 'Choose another name.');
     taken.set(resolve(file), 'another output');
   }
 }
 
-/** Makes everything first, then writes it: a failure leaves no mixture of old and new. */
-export async function writeOutputs(places: Places, result: Result, series: RaceSeries, page: () => Promise<string>) {
-  const { jsonText } = await resultFiles();
-  const files: [string, string | Uint8Array][] = [];
-  if (places.csv !== null) {
-    const { legsCsv, secondsCsv } = await exporters();
-    files.push([join(places.csv, 'legs.csv'), legsCsv(result)], [join(places.csv, 'seconds.csv'), secondsCsv(series)]);
+/** One file to be written. */
+export interface Output {
+  readonly role: OutputRole;
+  readonly path: string;
+  readonly bytes: Uint8Array;
+}
+export type OutputRole = 'legs' | 'seconds' | 'geojson' | 'parquet' | 'json' | 'html';
+
+/** The files that go to places, in the order they are written. */
+export function outputFiles(places: Places): Partial<Record<OutputRole, string>> {
+  const { csv, geojson, parquet, json, html } = places;
+  return {
+    ...(csv === null ? {} : { legs: join(csv, 'legs.csv'), seconds: join(csv, 'seconds.csv') }),
+    ...(geojson === null ? {} : { geojson }),
+    ...(parquet === null ? {} : { parquet }),
+    ...(json === null || json === '-' ? {} : { json }),
+    ...(html === null ? {} : { html }),
+  };
+}
+
+/** Everything is made before anything is written: a failure leaves no mixture of old and new. */
+export async function makeOutputs(
+  places: Places,
+  result: Result,
+  series: RaceSeries,
+  page: () => Promise<string>,
+): Promise<Output[]> {
+  const make: Readonly<Record<OutputRole, () => Promise<string | Uint8Array>>> = {
+    legs: async () => (await exporters()).legsCsv(result),
+    seconds: async () => (await exporters()).secondsCsv(series),
+    geojson: async () => (await exporters()).geoJsonText(result, series),
+    parquet: async () => (await exporters()).parquetBytes(result, series),
+    json: async () => (await resultFiles()).jsonText(result),
+    html: page,
+  };
+  const outputs: Output[] = [];
+  for (const [role, path] of Object.entries(outputFiles(places)) as [OutputRole, string][]) {
+    const made = await make[role]();
+    outputs.push({ role, path, bytes: typeof made === 'string' ? new TextEncoder().encode(made) : made });
   }
-  if (places.geojson !== null) files.push([places.geojson, await (await exporters()).geoJsonText(result, series)]);
-  if (places.parquet !== null) files.push([places.parquet, await (await exporters()).parquetBytes(result, series)]);
-  if (places.json !== null && places.json !== '-') files.push([places.json, jsonText(result)]);
-  if (places.html !== null) files.push([places.html, await page()]);
-  for (const [path, content] of files) await writeWhole(path, content);
-  if (places.json === '-') await print(jsonText(result));
+  return outputs;
 }
 
 /** Lines that say where the files are. */

@@ -6,16 +6,25 @@ import { nearestName } from './inputs.js';
 import type { Source } from './inputs.js';
 import type { Progress } from './terminal.js';
 
-/** A race ready to be worked on. */
-export interface Job {
+/** A race put together: plain data, that may go to another thread. */
+export interface PlainJob {
   readonly race: Race;
   /** Said while it was put together; goes into the result's warnings. */
   readonly issues: readonly Issue[];
-  readonly open: (file: string) => LogSource;
   /** Local day of the race, YYYY-MM-DD; null when no time is known. */
   readonly day: string | null;
-  /** Where its files lie, so that no output is written over them. */
-  readonly paths: readonly string[];
+  readonly files: Whereabouts;
+}
+
+/** A race ready to be worked on. */
+export interface Job extends PlainJob {
+  readonly open: (file: string) => LogSource;
+}
+
+/** Where the files of a race lie, by the names results show; a name that is not among them counts from the folder. */
+export interface Whereabouts {
+  readonly folder: string;
+  readonly paths: ReadonlyMap<string, string>;
 }
 
 /** The command line's words that change a race. */
@@ -28,16 +37,12 @@ export interface RaceOptions extends Omit<Overrides, 'wind'> {
 const GLANCE = 1 << 18;
 
 /** The races of one source, each to be made ready when its turn comes. */
-export async function loadRaces(
-  source: Source,
-  options: RaceOptions,
-  progress: Progress,
-): Promise<(() => Promise<Job>)[]> {
+export async function loadRaces(source: Source, options: RaceOptions): Promise<(() => Promise<PlainJob>)[]> {
   const folder = source.kind === 'race-file' && source.path !== '-' ? dirname(resolve(source.path)) : process.cwd();
   const names = new FileNames(folder);
   const drafts =
     source.kind === 'race-file' ? await draftsOf(source, names) : [await draftOfLogs(source.paths, names, options)];
-  return drafts.map((draft) => () => prepare(draft, names, options, progress));
+  return drafts.map((draft) => () => prepare(draft, names, options));
 }
 
 async function draftsOf(source: Extract<Source, { kind: 'race-file' }>, names: FileNames): Promise<RaceDraft[]> {
@@ -60,7 +65,7 @@ const importOptions = ({ zone, date, columns }: RaceOptions): ImportOptions => (
   ...(columns === undefined ? {} : { columns }),
 });
 
-async function prepare(plain: RaceDraft, names: FileNames, options: RaceOptions, progress: Progress): Promise<Job> {
+async function prepare(plain: RaceDraft, names: FileNames, options: RaceOptions): Promise<PlainJob> {
   const parts = await raceParts();
   const wind = options.wind.map((entry) => (typeof entry === 'string' ? names.given(entry) : entry));
   const boat =
@@ -84,22 +89,25 @@ async function prepare(plain: RaceDraft, names: FileNames, options: RaceOptions,
   return {
     race,
     issues,
-    open: openWith(names, progress),
     day: at === null ? null : parts.dayOf(at, race.zone ?? 'UTC'),
-    paths: [...names.paths()],
+    files: names.whereabouts(),
   };
 }
 
-function openWith(names: FileNames, progress: Progress): (file: string) => LogSource {
-  return (file) => {
+/** With its logs at hand. */
+export function jobOf(plain: PlainJob, progress: Progress): Job {
+  const open = (file: string): LogSource => {
     let read = 0;
     const onBytes = (bytes: number): void => {
       read += bytes;
       progress.say(`reading ${file}: ${(read / 1e6).toFixed(1)} MB`);
     };
-    return logSource(file, names.pathOf(file), { onBytes });
+    return logSource(file, pathIn(plain.files, file), { onBytes });
   };
+  return { ...plain, open };
 }
+
+const pathIn = ({ folder, paths }: Whereabouts, name: string): string => paths.get(name) ?? resolve(folder, name);
 
 async function mustBeThere(file: string, path: string, draft: RaceDraft): Promise<void> {
   if (path === '-') return;
@@ -189,11 +197,11 @@ class FileNames {
   }
 
   pathOf(name: string): string {
-    return this.#paths.get(name) ?? resolve(this.#folder, name);
+    return pathIn({ folder: this.#folder, paths: this.#paths }, name);
   }
 
-  paths(): Iterable<string> {
-    return this.#paths.values();
+  whereabouts(): Whereabouts {
+    return { folder: this.#folder, paths: new Map(this.#paths) };
   }
 
   /** Two files of one name are told apart by a number. */

@@ -1,5 +1,5 @@
 import type { BoatResult, LegResult, PairResult, Q, Result } from '../index.js';
-import type { Job } from './races.js';
+import type { PlainJob } from './races.js';
 import { outColour } from './terminal.js';
 
 /** Most lines of a summary, the paths after it not counted. */
@@ -8,7 +8,7 @@ const MOST_LINES = 26;
 const WIDTH = 110;
 
 /** A race in at most 26 lines. */
-export function debriefSummary(result: Result, job: Job): string[] {
+export function debriefSummary(result: Result, job: PlainJob): string[] {
   const legs = legTable(result, job.race.zone);
   const hints = hintLines(result);
   const warnings = warningLines(result);
@@ -19,7 +19,7 @@ export function debriefSummary(result: Result, job: Job): string[] {
 }
 
 /** A race of a batch: its name and, of each boat, how near its best it sailed its beats. */
-export function oneLine(result: Result, job: Job): string {
+export function oneLine(result: Result, job: PlainJob): string {
   const boats = result.boats.map((boat) => {
     const shares = boat.legs.flatMap((leg) => (leg.kind === 'upwind' && leg.efficiency ? [leg.efficiency.value] : []));
     const mean = shares.reduce((sum, share) => sum + share, 0) / shares.length;
@@ -30,7 +30,7 @@ export function oneLine(result: Result, job: Job): string {
 }
 
 /** Pairs of boats in at most 26 lines. */
-export function compareSummary(result: Result, job: Job): string[] {
+export function compareSummary(result: Result, job: PlainJob): string[] {
   const pairs = (result.pairs ?? []).flatMap(pairLines);
   const warnings = warningLines(result);
   const head = [...titleLines(result, job), ''];
@@ -38,12 +38,12 @@ export function compareSummary(result: Result, job: Job): string[] {
   return [...head, ...shortened(pairs, MOST_LINES - head.length - tail.length), ...tail, ''];
 }
 
-function titleOf(result: Result, job: Job): string {
+function titleOf(result: Result, job: PlainJob): string {
   const { name } = result.race;
   return job.day === null || name.startsWith(job.day) ? name : `${name}, ${job.day}`;
 }
 
-function titleLines(result: Result, job: Job): string[] {
+function titleLines(result: Result, job: PlainJob): string[] {
   const { twd_deg, tws_kn, sources } = result.wind;
   const speed = tws_kn ? ` ${text(tws_kn, 1)} kn` : ', speed unknown';
   const wind = twd_deg ? `Wind ${text(twd_deg, 0)}°${speed} (${sources.join(', ')})` : 'Wind unknown';

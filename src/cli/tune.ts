@@ -5,7 +5,7 @@ import { expandInputs } from './inputs.js';
 import { forMessages, kindOf, unusable, writeWhole } from './files.js';
 import { addManners, addRaceOptions, checkFlags, raceOptions } from './options.js';
 import type { RaceFlags } from './options.js';
-import { loadRaces } from './races.js';
+import { jobOf, loadRaces } from './races.js';
 import type { Job } from './races.js';
 import { slugOf } from './slug.js';
 import { outColour, print, Progress } from './terminal.js';
@@ -40,7 +40,7 @@ async function runTune(inputs: string[], flags: TuneFlags): Promise<void> {
   const progress = new Progress(flags.progress && !flags.quiet);
   const jobs: Job[] = [];
   for (const source of await expandInputs(inputs)) {
-    for (const job of await loadRaces(source, raceOptions(flags), progress)) jobs.push(await job());
+    for (const job of await loadRaces(source, raceOptions(flags))) jobs.push(jobOf(await job(), progress));
   }
   const tuned = await tune(
     jobs.map(({ race, open }) => ({ race, open })),

@@ -18,6 +18,7 @@ async function build(helpers: readonly string[]): Promise<string> {
   await esbuild.build({
     entryPoints: {
       legwork: join(ROOT, 'src/cli/legwork.ts'),
+      'race-worker': join(ROOT, 'src/cli/race-worker.ts'),
       ...Object.fromEntries(helpers.map((name) => [name, join(ROOT, 'test/cli', `${name}.ts`)])),
     },
     outdir: join(place, 'dist/cli'),
