@@ -367,6 +367,31 @@ describe.skipIf(!browser)('the page in a browser', () => {
     await close();
   });
 
+  test('a tack picked on the overlay stands out in all three panels, and its figures are told beside it', async () => {
+    const { page, trouble, close } = await open('full');
+    await page.waitForSelector('html.live');
+    const boat = full.series.boats[1];
+    const k = boat.manoeuvres.findIndex((m) => m.kind === 'tack');
+    const home = page.locator('.picked-turn[data-boat="1"]');
+    await page.locator(`svg.tack-overlay[data-boat="1"] [data-turn="${k}"]`).first().dispatchEvent('click');
+    await expect.poll(() => page.locator('svg.tack-overlay .tack-curve.picked').count()).toBe(3);
+    const row = async (words: string): Promise<number> =>
+      read(await home.locator('tr', { hasText: words }).locator('td').innerText());
+    const { entry, exit, loss } = boat.manoeuvres[k];
+    const knots = [...boat.speed.slice(entry, exit)].map(toKnots);
+    expect(await row('Lowest speed')).toBeCloseTo(Math.min(...knots), 1);
+    expect(await row('Cost')).toBeCloseTo(loss, 1);
+    expect(await page.locator('.picked-turn[data-boat="0"] table').count()).toBe(0);
+    // The table beside it does the same for the keyboard.
+    const pick = page.locator(`.turns .pick[data-boat="1"][data-turn="${k}"]`);
+    expect(await pick.getAttribute('aria-pressed')).toBe('true');
+    await pick.focus();
+    await page.keyboard.press('Enter');
+    await expect.poll(() => home.locator('table').count()).toBe(0);
+    expect(trouble).toEqual([]);
+    await close();
+  });
+
   test('a picked leg stands alone, and is let go again', async () => {
     const { page, close } = await open('full');
     const leg = page.locator('table.legs .pick').nth(1);

@@ -1,6 +1,7 @@
 import { existsSync, mkdirSync, readFileSync, writeFileSync } from 'node:fs';
 import { describe, expect, test } from 'vitest';
 import { RAD } from '../../src/math/angles.js';
+import { KNOT } from '../../src/math/units.js';
 import { angleDistribution, histogram } from '../../src/report/charts/angle-distribution.js';
 import { dragAngles } from '../../src/report/charts/drag-angles.js';
 import {
@@ -17,7 +18,7 @@ import { polar } from '../../src/report/charts/polar.js';
 import { polarWhole } from '../../src/report/charts/polar-whole.js';
 import { portStarboard } from '../../src/report/charts/port-starboard.js';
 import { simplify } from '../../src/report/charts/simplify.js';
-import { middle, tackOverlay, tacksOf } from '../../src/report/charts/tack-overlay.js';
+import { middle, sortTacks, tackOverlay, tacksOf } from '../../src/report/charts/tack-overlay.js';
 import { clockTicks, PANELS, timePanel } from '../../src/report/charts/time-series.js';
 import { trackMap } from '../../src/report/charts/track-map.js';
 import { steps, waterfall } from '../../src/report/charts/waterfall.js';
@@ -25,6 +26,7 @@ import { windStrip } from '../../src/report/charts/wind-strip.js';
 import { causeTotals, settledMean } from '../../src/report/figures.js';
 import { climbOf } from '../../src/report/rungs.js';
 import { shiftsOf } from '../../src/report/shifts.js';
+import { turnFigures } from '../../src/report/tack-figures.js';
 import type { Quantity } from '../../src/result/result.js';
 import { bareSample, sample } from './sample.js';
 import { sampleLadders } from './sample-ladders.js';
@@ -182,10 +184,62 @@ describe('other figures drawn', () => {
     expect(sum).toBeCloseTo(inside / settled, 12);
   });
 
-  test('every tack of the boat is laid over, the middle one is their median', () => {
+  test('every tack of the boat is laid over in each of three panels, the middle one is their median', () => {
     expect(tacksOf(series.boats[0])).toHaveLength(corrie.manoeuvres.filter((m) => m.kind === 'tack').length);
-    expect(tackOverlay(series.boats[0]).match(/class="tack-curve"/g)).toHaveLength(8);
+    const svg = tackOverlay(series.boats[0]);
+    for (const title of ['VMG, kn', 'Speed, kn', 'Course angle, °']) expect(svg).toContain(title);
+    expect(svg.match(/class="tack-curve/g)).toHaveLength(3 * 8);
+    for (const k of tacksOf(series.boats[0])) expect(svg.split(`data-turn="${k}"`)).toHaveLength(1 + 3);
     expect(middle([[[0, 1]], [[0, 5]], [[0, 2]], [[0, 9]]])).toEqual([[0, 3.5]]); // by hand
+  });
+
+  test('good and bad tacks: the cheapest third, and what is dear beyond two of its errors', () => {
+    const {
+      kinds,
+      middle: cost,
+      cheapTo,
+    } = sortTacks([q(6, 2), q(4, 2), q(30, 4), q(5, 2), q(9, 2), q(14, 8), undefined]);
+    // by hand: sorted 4 5 6 9 14 30, middle 7.5; 30 - 7.5 > 8, 14 - 7.5 < 16; a third of six is two
+    expect(cost).toBe(7.5);
+    expect(cheapTo).toBe(5);
+    expect(kinds).toEqual(['other', 'cheap', 'dear', 'cheap', 'other', 'other', 'other']);
+  });
+
+  test('a tack that cost much is drawn otherwise than by colour alone', () => {
+    const boat = series.boats[1];
+    const [dear] = tacksOf(boat);
+    const costs = new Map(tacksOf(boat).map((k) => [k, q(k === dear ? 40 : 8, 3)]));
+    const curves = [
+      ...tackOverlay(boat, { costs }).matchAll(/<path class="tack-curve (\w+)" data-turn="(\d+)"[^>]*>/g),
+    ];
+    const dears = curves.filter(([, kind]) => kind === 'dear');
+    expect(dears.map(([, , k]) => Number(k))).toEqual([dear, dear, dear]);
+    for (const [markup] of dears) expect(markup).toContain('stroke-dasharray');
+    expect(curves.filter(([markup, kind]) => kind !== 'dear' && markup.includes('stroke-dasharray'))).toEqual([]);
+  });
+
+  test('figures of a turn, read off columns made by hand', () => {
+    const n = 80;
+    const made = (value: (i: number) => number): Float64Array => Float64Array.from({ length: n }, (_, i) => value(i));
+    // 4 kn, down to 2 kn at second 34 and back by a tenth of a knot a second; 10 degrees a second from -40 to 45.
+    const knots = (i: number): number => (i < 30 ? 4 : i < 35 ? 4 - 0.5 * (i - 30) : Math.min(4, 2 + 0.1 * (i - 34)));
+    const gamma = made((i) => Math.max(-40, Math.min(45, 10 * (i - 30))));
+    const course = made((i) => 90 - gamma[i]);
+    const columns = {
+      speed: made((i) => knots(i) * KNOT),
+      gamma,
+      ux: made((i) => Math.sin(course[i] * RAD)),
+      uy: made((i) => Math.cos(course[i] * RAD)),
+      heading: made(() => NaN),
+    };
+    const figures = turnFigures(columns, { entry: 26, at: 30, exit: 60 });
+    expect(figures.before).toBeCloseTo(4, 9);
+    expect(figures.lowest).toBeCloseTo(2, 9);
+    expect(figures.back).toBe(22); // 3.8 kn at second 52
+    expect(figures.rate).toBeCloseTo(10, 6);
+    expect(figures.out).toBe(45);
+    const turned = { ...columns, heading: made((i) => 90 - 2 * gamma[i]) };
+    expect(turnFigures(turned, { entry: 26, at: 30, exit: 60 }).rate).toBeCloseTo(20, 6); // the bow where logged
   });
 
   test('clock ticks stand at round times', () => {

@@ -60,7 +60,7 @@ export function polar(result: Result, series: RaceSeries, options: Partial<Polar
     text(sheets[1].box.right, bottom + 18, 'starboard tack ▸', { anchor: 'end', size: 12, italic: true, fill: SOFT }),
     legend(curves, bottom + 38, o.width),
   ];
-  const height = bottom + (curves.length > 0 ? 46 : 26);
+  const height = bottom + (curves.length > 0 ? 64 : 46);
   return picture(o.width, Math.ceil(height), polarLabel(result, curves), body.join(''), { class: 'polar' });
 }
 
@@ -150,7 +150,7 @@ function net(sheet: Sheet): string {
     out.push(
       el('path', { d: curveOf(arc), fill: 'none', stroke: RULE, 'stroke-width': 0.8, 'stroke-dasharray': '1 3' }),
     );
-    if (y > box.bottom - 6) {
+    if (y > box.bottom - 6 && x > box.left + 18 && x < box.right - 18) {
       out.push(
         text(x, box.bottom - 5, `${knots.toFixed(1)} kn`, { size: 10.5, fill: SOFT, anchor: 'middle', extra: EDGE }),
       );
@@ -172,15 +172,14 @@ function along(from: number, to: number, place: (value: number) => [number, numb
 const EDGE = { 'paint-order': 'stroke', stroke: PAPER, 'stroke-width': 3.5 };
 
 /** Equal VMG is a level line: the best of the day. */
-function bestLine(result: Result, { box, vmg, side }: Sheet): string {
+function bestLine(result: Result, { box, vmg }: Sheet): string {
   const best = dayBest(result)?.vmg.value ?? NaN;
   if (!(best > vmg[0] && best < vmg[1])) return '';
   const y = scaleLinear([...vmg], [box.bottom, box.top])(best);
-  const words = text(box.right - 4, y - 4, 'best settled VMG', { size: 11, italic: true, anchor: 'end', extra: EDGE });
-  return (
-    line(box.left, y, box.right, y, INK, { 'stroke-width': 0.9, 'stroke-dasharray': '1.5 3' }) + (side > 0 ? words : '')
-  );
+  return line(box.left, y, box.right, y, INK, BEST);
 }
+
+const BEST = { 'stroke-width': 1, 'stroke-dasharray': '1.5 3' };
 
 type Block = RaceSeries['boats'][number]['blocks'][number];
 
@@ -215,12 +214,13 @@ function curveLine(curve: PolarCurve, all: readonly PolarCurve[], { at }: Sheet)
 /** What the lines are, under the sheets. */
 function legend(curves: readonly PolarCurve[], y: number, width: number): string {
   const [model, reference] = [curves.find(({ kind }) => kind === 'model'), curves.find(({ kind }) => kind !== 'model')];
-  const entry = (x: number, words: string, dash?: string): string =>
-    line(x, y - 4, x + 26, y - 4, INK, { 'stroke-width': 1.8, 'stroke-dasharray': dash }) +
-    text(x + 32, y, words, { size: 11.5 });
+  const entry = (x: number, at: number, words: string, stroke: Readonly<Record<string, string | number>>): string =>
+    line(x, at - 4, x + 26, at - 4, INK, { 'stroke-width': 1.8, ...stroke }) + text(x + 32, at, words, { size: 11.5 });
+  const best = entry(LEFT, curves.length > 0 ? y + 18 : y, 'best settled VMG of the day', BEST);
   return (
-    (model ? entry(LEFT, `boat model in ${toKnots(model.tws).toFixed(1)} kn`) : '') +
-    (reference ? entry(width / 2 + 6, 'reference', '7 4') : '')
+    (model ? entry(LEFT, y, `boat model in ${toKnots(model.tws).toFixed(1)} kn`, {}) : '') +
+    (reference ? entry(width / 2 + 6, y, 'reference', { 'stroke-dasharray': '7 4' }) : '') +
+    best
   );
 }
 

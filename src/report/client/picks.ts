@@ -1,4 +1,4 @@
-import { toKnots } from '../../math/units.js';
+import { turnFigures } from '../tack-figures.js';
 import { byId, make } from './dom.js';
 import { localNumber, type Clock } from './locale.js';
 import { rowAt, type Boat, type Race } from './race.js';
@@ -16,6 +16,10 @@ export function mountPicks(race: Race, store: Store, clock: Clock): void {
     if (now.pick === before.pick) return;
     mark(now.pick);
     panel.replaceChildren(...(now.pick ? figuresOf(race, now.pick, clock) : []));
+    for (const home of document.querySelectorAll<HTMLElement>('.picked-turn')) {
+      const here = now.pick?.turn !== undefined && home.dataset.boat === String(now.pick.boat);
+      home.replaceChildren(...(here ? figuresOf(race, now.pick, clock) : []));
+    }
   });
 }
 
@@ -52,7 +56,7 @@ function mark(pick: Pick | null): void {
 
 function figuresOf(race: Race, pick: Pick, clock: Clock): Node[] {
   const boat = race.boats[pick.boat];
-  const rows = pick.turn !== undefined ? turnFigures(race, boat, pick.turn) : legFigures(boat, pick.leg ?? 0);
+  const rows = pick.turn !== undefined ? turnRows(race, boat, pick.turn) : legFigures(boat, pick.leg ?? 0);
   const span =
     pick.turn !== undefined
       ? boat.header.turns[pick.turn].at
@@ -87,27 +91,21 @@ function legFigures(boat: Boat, index: number): [string, string][] {
   ];
 }
 
-/** What a turn did to speed and VMG, read off the curves. */
-export function turnFigures(race: Race, boat: Boat, index: number): [string, string][] {
+/** What a turn did, read off the columns. */
+function turnRows(race: Race, boat: Boat, index: number): [string, string][] {
   const t = boat.header.turns[index];
-  const speed = (from: number, to: number): number[] => {
-    const out: number[] = [];
-    for (let s = from; s <= to; s += race.step) {
-      const row = rowAt(race, boat, s);
-      if (row >= 0 && Number.isFinite(boat.columns.speed[row])) out.push(toKnots(boat.columns.speed[row]));
-    }
-    return out;
-  };
-  const before = speed(t.entry - 10, t.entry);
-  const during = speed(t.entry, t.exit);
-  const after = speed(t.exit, t.exit + 10);
-  const mean = (v: number[]): number => v.reduce((a, b) => a + b, 0) / v.length;
+  const [entry, at, exit] = [t.entry, t.at, t.exit].map((time) => rowAt(race, boat, time)) as [number, number, number];
+  const known = (value: number, digits: number, unit: string): string =>
+    Number.isFinite(value) ? `${localNumber(value, digits)}${unit}` : '–';
+  const figures = turnFigures(boat.columns, { entry, at, exit }, race.step);
   return [
     ['Onto', t.to],
-    ['Cost', t.loss === null ? '–' : `${localNumber(t.loss, 1)} m`],
-    ['From settled to settled', `${localNumber(t.exit - t.entry, 0)} s`],
-    ['Speed before', `${localNumber(mean(before), 2)} kn`],
-    ['Lowest speed', `${localNumber(Math.min(...during), 2)} kn`],
-    ['Speed after', `${localNumber(mean(after), 2)} kn`],
+    ['Cost', known(t.loss ?? NaN, 1, ' m')],
+    ['From settled to settled', known(t.exit - t.entry, 0, ' s')],
+    ['Speed before', known(figures.before, 2, ' kn')],
+    ['Lowest speed', known(figures.lowest, 2, ' kn')],
+    ['Speed had again after', known(figures.back, 0, ' s')],
+    ['Fastest turning', known(figures.rate, 0, ' °/s')],
+    ['Widest course angle after', known(figures.out, 0, '°')],
   ];
 }

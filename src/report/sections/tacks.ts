@@ -1,10 +1,10 @@
-import type { BoatResult, ManoeuvreResult, Result } from '../../result/result.js';
+import type { BoatResult, ManoeuvreResult, Quantity, Result } from '../../result/result.js';
 import type { BoatSeries, RaceSeries } from '../../result/series.js';
 import { tackOverlay, tacksOf } from '../charts/tack-overlay.js';
-import { toKnots } from '../../math/units.js';
 import { manoeuvresOf, upwindLegs } from '../figures.js';
-import { plain, plural, quantity, secondsOf, time } from '../format.js';
+import { number, plain, plural, quantity, secondsOf, time } from '../format.js';
 import { html, nameOf, type Part, type Safe } from '../html.js';
+import { turnFigures } from '../tack-figures.js';
 import { term } from '../terms.js';
 import { figure, section, table } from './figure.js';
 import { swatch } from './masthead.js';
@@ -26,21 +26,27 @@ function seriesTurn(s: BoatSeries | undefined, m: ManoeuvreResult): number {
 function turnRow(m: ManoeuvreResult, boat: number, s: BoatSeries | undefined): Part[] {
   const k = seriesTurn(s, m);
   const when = time(secondsOf(m.time), 'hms');
+  const figures = s && k >= 0 && m.kind === 'tack' ? turnFigures(s, s.manoeuvres[k]) : null;
+  const told = (value: number | undefined, digits: number): Part => number(value ?? NaN, digits);
   return [
-    k < 0 ? when : html`<button type="button" class="pick" data-boat="${boat}" data-turn="${k}">${when}</button>`,
-    KINDS[m.kind],
-    m.from === m.to ? `on ${m.from}` : `${m.from} to ${m.to}`,
-    plain(m.seconds, 0),
+    k < 0 ? when : html`<button class="pick" data-boat="${boat}" data-turn="${k}">${when}</button>`,
+    `${KINDS[m.kind]} ${m.from === m.to ? `on ${m.from}` : `onto ${m.to}`}`,
     quantity(m.loss_m, 'm', { digits: 1 }),
+    plain(m.seconds, 0),
+    figures ? html`${told(figures.before, 1)} <span class="soft">→</span> ${told(figures.lowest, 1)}` : '–',
+    told(figures?.back, 0),
+    told(figures?.rate, 0),
+    html`${told(figures?.out, 0)}${figures && '°'}`,
   ];
 }
 
-const HEADS = ['Time', 'Turn', 'Tacks', 'Seconds'];
+const HEADS = ['Time', 'Turn'];
+const MORE = ['Seconds', 'Speed → lowest, kn', 'Back after, s', 'Turning, °/s', 'Out at'];
 
 /** Turns on the beats in full view, the rest folded away. */
 function turnTables(boat: BoatResult, index: number, s: BoatSeries | undefined): Safe {
   if (boat.manoeuvres.length === 0) return html`<p>${nameOf(boat.name)}: no turns were found.</p>`;
-  const heads = [...HEADS, term('tackCost', 'Cost')];
+  const heads = [...HEADS, term('tackCost', 'Cost'), ...MORE];
   const beats = upwindLegs(boat).flatMap(({ leg }) => manoeuvresOf(boat, leg));
   const others = boat.manoeuvres.filter((m) => !beats.includes(m));
   const rowsOf = (list: readonly ManoeuvreResult[]): Part[][] => list.map((m) => turnRow(m, index, s));
@@ -57,27 +63,28 @@ function turnTables(boat: BoatResult, index: number, s: BoatSeries | undefined):
   </div>`;
 }
 
-function overlayTable(s: BoatSeries, legs: ReadonlySet<number>): Safe {
-  const offsets = [-10, -5, 0, 5, 10, 15, 20, 30, 40];
-  const vmgAt = (row: number): string => plain(row >= 0 && row < s.n ? toKnots(s.vmg[row]) : NaN, 1);
-  const rows = tacksOf(s, legs).map((k) => {
-    const { at } = s.manoeuvres[k];
-    return [time(s.t0 + at, 'hms'), ...offsets.map((o) => vmgAt(at + o))];
-  });
-  return table('VMG in knots by seconds from head to wind', ['Tack', ...offsets.map((o) => plain(o, 0))], rows);
+/** Metres each turn cost, with the error, by its place in the series. */
+function costsOf(s: BoatSeries, boat: BoatResult | undefined): ReadonlyMap<number, Quantity> {
+  const known = (boat?.manoeuvres ?? []).map((m) => [seriesTurn(s, m), m.loss_m] as const);
+  return new Map(known.filter((pair): pair is [number, Quantity] => pair[0] >= 0 && pair[1] !== null));
 }
 
 function overlayPlate(s: BoatSeries, index: number, boat: BoatResult | undefined): Part {
   const legs = new Set(boat ? upwindLegs(boat).map((l) => l.index) : []);
   if (tacksOf(s, legs).length === 0) return null;
-  return figure({
-    svg: tackOverlay(s, { boat: index, legs }),
+  const plate = figure({
+    svg: tackOverlay(s, { boat: index, legs, costs: costsOf(s, boat) }),
     title: html`${swatch(index)} ${nameOf(s.name)}`,
-    summary:
-      'Tacks on the beats. Whole lines go onto starboard, broken lines onto port; the heavy line is the middle one.',
-    table: overlayTable(s, legs),
+    summary: html`Tacks on the beats, every one at head to wind; the heavy line is the middle one, second by second.
+      Costs within two standard errors of the middle one are not told apart.<span class="only-live">
+        A touch on a line, or on a time in the table, shows that tack alone with its figures.</span
+      >`,
     className: 'plate overlay',
   });
+  return html`<div>
+    ${plate}
+    <div class="picked-turn" data-boat="${index}"></div>
+  </div>`;
 }
 
 /** Every turn with its cost, and all tacks laid over one another. */
@@ -86,6 +93,11 @@ export function tacks(result: Result, series: RaceSeries): Safe {
     'turns',
     'Tacks and turns',
     html`<div class="plates">${series.boats.map((s, i) => overlayPlate(s, i, result.boats[i]))}</div>
-      <div class="plates">${result.boats.map((b, i) => turnTables(b, i, series.boats[i]))}</div>`,
+      <div class="plates turn-tables">${result.boats.map((b, i) => turnTables(b, i, series.boats[i]))}</div>
+      <p class="plate-words">
+        Speed: mean of the ten seconds before, and the lowest in the turn; back after: seconds from head to wind until
+        nineteen twentieths of it are had again; turning: at its fastest over three seconds, by the bow where that was
+        logged; out at: widest course angle in the quarter minute after.
+      </p>`,
   );
 }
