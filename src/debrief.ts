@@ -5,6 +5,7 @@ import type { Result } from './result/result.js';
 import type { RaceSeries } from './result/series.js';
 import { THRESHOLDS, type Thresholds } from './segment/thresholds.js';
 import { receiverDisplacementSe } from './smooth/index.js';
+import { ableSpeeds } from './steps/able-speed.js';
 import { assemble } from './steps/assemble.js';
 import { boatFromText, boatModels, modelOf, type RaceModel } from './steps/boat-models.js';
 import { checkRecording, clockIssues } from './steps/check-sensors.js';
@@ -61,8 +62,9 @@ export async function debrief(race: Race, open: OpenLog, options: DebriefOptions
     (boat) => (seconds) => receiverDisplacementSe(seconds, boat.noise),
   );
   const estimates = wind.sailed.map((one, k) => estimateBoat(one, errors[k], clean.boats[k].track.awa));
+  const able = ableSpeeds(wind.sailed, models);
   const trims = wind.sailed.map((one, k) =>
-    trimBoat(one, estimates[k], clean.boats[k].track, models[k], corrections.boats[k]),
+    trimBoat(one, estimates[k], clean.boats[k].track, models[k], corrections.boats[k], able[k]),
   );
   const judgements = judge({
     sailed: wind.sailed,

@@ -1,7 +1,7 @@
 /**
  * Leeway, by every way the log allows: from the heading, from the masthead angle, from the balance of forces.
  */
-import { achieved } from '../physics/achieved.js';
+import { achieved, type Achieved } from '../physics/achieved.js';
 import type { ForceModel } from '../physics/balance.js';
 import { apparentWind } from '../physics/triangle.js';
 
@@ -36,11 +36,9 @@ export interface LeewayEstimate {
   readonly beatsModel: boolean;
 }
 
-/** What the boat model's leeway is good to as a share of itself: foil slope and rig, common practice, no source. */
-const MODEL_SHARE = 0.12;
-
 const INPUTS = ['speed', 'tws', 'gamma', 'drift', 'mastheadAngle'] as const;
-const BASIS = { heading: 'measured', masthead: 'derived', forces: 'inferred' } as const;
+/** What each way rests on. */
+export const LEEWAY_BASIS = { heading: 'measured', masthead: 'derived', forces: 'inferred' } as const;
 
 /**
  * Leeway of a stretch of steady sailing.
@@ -55,18 +53,20 @@ const BASIS = { heading: 'measured', masthead: 'derived', forces: 'inferred' } a
  * @param model  Boat; null: no forces.
  * @param input  Means, offsets already added. [m/s, deg]
  * @param errors Standard error of each input. [m/s, deg]
+ * @param good   What the model's leeway (foil slope, rig) and speed are good to, as shares of themselves.
  * @returns Leeway [deg], or null where no way is open.
  */
 export function leewayOfSailing(
   model: ForceModel | null,
   input: LeewayInput,
   errors: LeewayInput,
+  good: { readonly leeway: number; readonly speed: number },
 ): LeewayEstimate | null {
   const solved = model ? achieved(model, input) : null;
   const all: readonly { way: LeewayWay; at: (input: LeewayInput) => number; own: number }[] = [
     { way: 'heading', at: byHeading, own: 0 },
     { way: 'masthead', at: byMasthead, own: 0 },
-    { way: 'forces', at: (x) => byForces(model, x), own: MODEL_SHARE * Math.abs(byForces(model, input)) },
+    { way: 'forces', at: (x) => byForces(model, x, good.speed), own: solved ? ownError(solved, good.leeway) : 0 },
   ];
   const ways = all
     .map((one) => ({ ...one, value: one.at(input), slopes: INPUTS.map((key) => reach(one.at, input, errors, key)) }))
@@ -82,7 +82,7 @@ export function leewayOfSailing(
   return {
     value,
     se: Math.hypot(...shared, ...own),
-    basis: BASIS[ways[0].way],
+    basis: LEEWAY_BASIS[ways[0].way],
     ways: ways.map(({ way, value: one, se }, k) => ({ way, value: one, se, weight: weights[k] })),
     beatsModel,
   };
@@ -92,8 +92,25 @@ const byHeading = (x: LeewayInput): number => x.drift;
 
 const byMasthead = (x: LeewayInput): number => apparentWind(x.speed, x.tws, x.gamma).beta - x.mastheadAngle;
 
-const byForces = (model: ForceModel | null, x: LeewayInput): number =>
-  model ? (achieved(model, x).eased?.leeway ?? NaN) : NaN;
+/**
+ * By the forces; of a boat that beats its model by no more than the model is good to, with the sail at its greatest drive.
+ */
+function byForces(model: ForceModel | null, x: LeewayInput, speedShare: number): number {
+  if (!model) return NaN;
+  const { eased, full } = achieved(model, x);
+  if (eased) return eased.leeway;
+  const near = full !== null && achieved(model, { ...x, speed: x.speed * (1 - speedShare) }).eased !== null;
+  return near ? full.leeway : NaN;
+}
+
+/**
+ * The balance takes all that a boat lacks of the model's speed as an eased sail. Where hull, sea or helm took it the sail
+ * drove in full and leeway was more: anywhere between, a uniform spread of which this is the standard deviation. [deg]
+ */
+function ownError({ eased, full }: Achieved, modelShare: number): number {
+  if (!full) return 0;
+  return Math.hypot(modelShare * (eased ?? full).leeway, eased ? (full.leeway - eased.leeway) / Math.sqrt(12) : 0);
+}
 
 /** By how much one standard error of an input moves a result; one-sided where only one side has a result. */
 function reach(

@@ -12,15 +12,16 @@ export interface SheetingData {
   readonly gamma: number;
   /** Leeway where it was measured (heading or masthead), not where it comes from the same model. [deg] */
   readonly leeway?: { readonly value: number; readonly se: number };
-  /** What the model's leeway is good to, as a share; default 0.12, less for a boat whose foils were tuned. */
-  readonly leewayShare?: number;
+  /** What the model's leeway is good to, as a share of itself. */
+  readonly leewayShare: number;
   /** Heel where there is a sensor. [deg] */
   readonly heel?: { readonly value: number; readonly se: number };
   /**
-   * Standard error of the speed, to let the speed speak too. [m/s] For the value shown; never for a ledger, where it
+   * What the model sails to with the best trim, as a share of its own speed, with what that and the speed are good to
+   * (a share, one standard deviation), to let the speed speak too. For the value shown; never for a ledger, where it
    * would explain the whole of a boat's slowness as trim by construction.
    */
-  readonly speedSe?: number;
+  readonly able?: { readonly share: number; readonly se: number };
 }
 
 export interface SheetingPosterior {
@@ -37,10 +38,17 @@ export interface SheetingPosterior {
 
 /** How far boats sail from the model's trim, one standard deviation. [deg] Common practice, no source. */
 const PRIOR_SD = 5;
-/** What the model's own leeway, heel and speed are good to, as a share. Common practice, no source. */
-const MODEL_LEEWAY = 0.12;
+/**
+ * What the model's heel is good to, as a share and in degrees: how flat a crew sails is its choice as long as it can hold
+ * the boat. Common practice, no source.
+ */
 const MODEL_HEEL = 0.25;
-const MODEL_SPEED = 0.03;
+const CREW_HEEL = 5;
+/**
+ * A boat can be slow for many reasons, trim being one: its speed counts with long tails, Student's of so many degrees of
+ * freedom, so that a great slowness does not outvote the leeway. Common practice, no source.
+ */
+const SPEED_FREEDOM = 2;
 /** The grid: so far either side of the prior mean, so fine. [deg] */
 const REACH = 3.5 * PRIOR_SD;
 const STEP = 0.5;
@@ -51,8 +59,8 @@ const NARROWED = 2 / 3;
  * Posterior of the sheeting angle of a stretch of steady sailing.
  *
  * Prior: normal about the model's best trim on that course, 5 degrees, not closer than the boat can sheet. Data: the
- * leeway (and heel) that go with each sheeting angle at the measured speed against those measured; with `speedSe` also
- * the speed the model would sail with it.
+ * leeway (and heel) that go with each sheeting angle at the measured speed against those measured; with `able` also the
+ * speed the model would sail with it.
  *
  * @param model Boat.
  * @param data  What was measured. [m/s, deg]
@@ -91,17 +99,19 @@ function sheetingAt(model: ForceModel, data: SheetingData, loads: ReturnType<typ
 
 /** Sum of squared standardised differences between what goes with a sheeting angle and what was measured. */
 function misfit(model: ForceModel, data: SheetingData, sheeting: number): number {
-  const { speed, tws, gamma, leeway, heel, speedSe, leewayShare = MODEL_LEEWAY } = data;
+  const { speed, tws, gamma, leeway, heel, able, leewayShare } = data;
   let sum = 0;
   if (leeway || heel) {
     const loads = sheetedLoads(model, flowAt(model, speed, tws, gamma), sheeting);
     const there = model.leeway(speed, loads.side, loads.heel);
     if (leeway) sum += standardised(there - leeway.value, leeway.se, leewayShare * there);
-    if (heel) sum += standardised(loads.heel - Math.abs(heel.value), heel.se, MODEL_HEEL * loads.heel + 0.5);
+    if (heel)
+      sum += standardised(loads.heel - Math.abs(heel.value), heel.se, Math.hypot(MODEL_HEEL * loads.heel, CREW_HEEL));
   }
-  if (speedSe !== undefined) {
-    const sailed = sailWithSheeting(model, tws, gamma, sheeting).speed;
-    sum += standardised((sailed > 0 ? sailed : 0) - speed, speedSe, MODEL_SPEED * speed);
+  if (able) {
+    const sailed = able.share * sailWithSheeting(model, tws, gamma, sheeting).speed;
+    const off = standardised((sailed > 0 ? sailed : 0) - speed, 0, able.se * speed);
+    sum += (SPEED_FREEDOM + 1) * Math.log(1 + off / SPEED_FREEDOM);
   }
   return sum;
 }

@@ -19,6 +19,8 @@ export interface Achieved {
   readonly eased: SailingState | null;
   /** The state with the sail sheeted beyond its best to the same drive; null when there is none. */
   readonly oversheeted: SailingState | null;
+  /** The state with the sail at its greatest drive, whether or not it is what the hull needs. */
+  readonly full: SailingState | null;
   /** The model's greatest drive over its resistance at this speed, less one: negative when the boat beats the model. */
   readonly margin: number;
 }
@@ -37,21 +39,21 @@ export interface Achieved {
  *
  * @param model    Boat.
  * @param measured What was seen. Cheap enough (some 10 microseconds) for errors by finite differences.
- * @returns Both states, and how near the model is to its limit. All null and NaN for NaN input.
+ * @returns The states, and how near the model is to its limit. All null and NaN for NaN input.
  */
 export function achieved(model: ForceModel, measured: Measured): Achieved {
   const { speed, tws, gamma } = measured;
-  const nothing = { eased: null, oversheeted: null, margin: NaN };
+  const nothing = { eased: null, oversheeted: null, full: null, margin: NaN };
   if (!(speed > 0 && tws > 0 && gamma >= 0 && gamma <= 180)) return nothing;
   const flow = flowAt(model, speed, tws, gamma);
   const excess = (α: number): number => loadsAt(model, flow, α).excess;
   const best = driveLimit(model, flow);
   const most = loadsAt(model, flow, best);
   const margin = most.excess / most.resistance;
-  if (!(most.excess >= 0)) return { eased: null, oversheeted: null, margin };
   const state = (α: number): SailingState | null =>
     Number.isNaN(α) ? null : stateOf(model, flow, loadsAt(model, flow, α));
+  if (!(most.excess >= 0)) return { ...nothing, full: state(best), margin };
   const eased = root(excess, model.zeroLift, best, { tolerance: 1e-11 });
   const oversheeted = root(excess, best, 90, { tolerance: 1e-11 });
-  return { eased: state(eased), oversheeted: state(oversheeted), margin };
+  return { eased: state(eased), oversheeted: state(oversheeted), full: state(best), margin };
 }

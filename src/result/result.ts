@@ -68,6 +68,8 @@ export interface OptimumResult {
   readonly speed_kn: Q;
   readonly vmg_kn: Q;
   readonly beta_deg: Q;
+  readonly aero_drag_angle_deg?: Q;
+  readonly hydro_drag_angle_deg?: Q;
   readonly leeway_deg: Q;
   readonly sheeting_deg: Q;
 }
@@ -94,7 +96,21 @@ export interface LegResult {
   readonly efficiency: Q;
   readonly share: Q;
   readonly ledger: Ledger | null;
+  readonly trim?: TrimResult | null;
   readonly notes: readonly string[];
+}
+
+/** What leeway and sheeting of a beat rest on. */
+export interface TrimResult {
+  /** Each way leeway was had by, with its weight in the mean. */
+  readonly leeway_ways: readonly {
+    readonly way: 'heading' | 'masthead' | 'forces';
+    readonly leeway_deg: Q;
+    readonly weight: number;
+  }[];
+  /** Sheeting as believed before the log was seen, and after, however little it says. */
+  readonly sheeting_prior_deg: Q;
+  readonly sheeting_posterior_deg: Q;
 }
 
 export interface BoatResult {

@@ -42,6 +42,8 @@ const TACK_SIDE = [
   'hydro_drag_angle_deg',
 ] as const;
 const OPTIMUM = ['gamma_deg', 'speed_kn', 'vmg_kn', 'beta_deg', 'leeway_deg', 'sheeting_deg'] as const;
+/** How the optimum's beta divides: files of others need not say. */
+const OPTIMUM_PARTS = ['aero_drag_angle_deg', 'hydro_drag_angle_deg'] as const;
 const PAIR = ['vmg_difference_kn', 'height_part_kn', 'speed_part_kn', 'gamma_difference_deg', 'gain_m'] as const;
 const CAUSES = ['manoeuvres', 'start', 'high', 'low', 'trim', 'speed', 'overstood', 'stopped', 'shifts'] as const;
 
@@ -75,6 +77,11 @@ function legIn(object: ObjectMaker) {
     ...quantities(['available_m', 'made_m', 'lost_m'] as const, q),
     entries: z.array(object({ cause: z.enum(CAUSES), metres: q })),
   });
+  const way = z.enum(['heading', 'masthead', 'forces']);
+  const trim = object({
+    leeway_ways: z.array(object({ way, leeway_deg: q, weight: z.number() })),
+    ...quantities(['sheeting_prior_deg', 'sheeting_posterior_deg'] as const, q),
+  });
   return object({
     kind: z.enum(['upwind', 'downwind', 'reach']),
     lap: count,
@@ -84,11 +91,12 @@ function legIn(object: ObjectMaker) {
     gybes: count,
     vmg_kn: q,
     steady: steady.nullable(),
-    optimum: object(quantities(OPTIMUM, q)).nullable(),
+    optimum: object({ ...quantities(OPTIMUM, q), ...quantities(OPTIMUM_PARTS, q.optional()) }).nullable(),
     ceiling_vmg_kn: q,
     efficiency: q,
     share: q,
     ledger: ledger.nullable(),
+    trim: trim.nullable().optional(),
     notes: z.array(z.string()),
   });
 }
@@ -111,7 +119,7 @@ function boatIn(object: ObjectMaker) {
     corrections: object({ compass_offset_deg: q, awa_offset_deg: q }),
     manoeuvres: z.array(manoeuvre),
     legs: z.array(legIn(object)),
-    hints: z.array(object({ text: z.string(), metres: q })),
+    hints: z.array(object({ text: z.string(), metres: q })).default([]),
   });
 }
 

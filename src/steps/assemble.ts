@@ -15,9 +15,11 @@ import type {
   Result,
   Steady,
   TackSide,
+  TrimResult,
   Warning,
   WindSource as SourceName,
 } from '../result/result.js';
+import { LEEWAY_BASIS } from '../estimate/leeway.js';
 import type { Figure, SteadyFigures } from '../estimate/steady.js';
 import type { BoatEstimate, LegEstimate } from './estimate-boat.js';
 import type { CleanBoat } from './clean-tracks.js';
@@ -187,6 +189,7 @@ function legResult(estimate: LegEstimate, boat: number, index: number, a: Assemb
     efficiency: quantity(judged.efficiency, 'inferred'),
     share: quantity(judged.share, 'inferred'),
     ledger: judged.ledger && ledgerResult(judged.ledger, reference.kind),
+    trim: trimResult(a.trims[boat].legs[index]?.all ?? null),
     notes: legNotes(estimate, judged, a.trims[boat].legs[index]),
   };
 }
@@ -208,7 +211,13 @@ function legNotes(estimate: LegEstimate, judged: LegJudgement, trim: LegTrim | n
     notes.push('trim: leeway was not measured closely enough to tell it from speed, so its metres stay in speed');
   }
   if (trim && !trim.all.sheeting) notes.push('sheeting: the log says too little of it');
-  if (trim?.all.beatsModel) notes.push('leeway and drag angles: faster than the boat file allows');
+  if (trim?.all.beatsModel) {
+    notes.push(
+      trim.all.aero
+        ? 'leeway and drag angles: a little faster than the boat file allows, taken as driven in full'
+        : 'leeway and drag angles: faster than the boat file allows',
+    );
+  }
   return notes;
 }
 
@@ -218,8 +227,24 @@ function optimumResult(best: Optimum): OptimumResult {
     speed_kn: knotsQuantity(best.speed, 'inferred'),
     vmg_kn: knotsQuantity(best.vmg, 'inferred'),
     beta_deg: quantity(best.beta, 'inferred'),
+    aero_drag_angle_deg: quantity(best.aero, 'inferred'),
+    hydro_drag_angle_deg: quantity(best.hydro, 'inferred'),
     leeway_deg: quantity(best.leeway, 'inferred'),
     sheeting_deg: quantity(best.sheeting, 'inferred'),
+  };
+}
+
+function trimResult(trim: Trim | null): TrimResult | null {
+  if (!trim) return null;
+  const { leeway, posterior } = trim;
+  return {
+    leeway_ways: (leeway?.ways ?? []).map(({ way, value, se, weight }) => ({
+      way,
+      leeway_deg: quantity({ value, se }, LEEWAY_BASIS[way]),
+      weight,
+    })),
+    sheeting_prior_deg: posterior && quantity({ value: posterior.priorMean, se: posterior.priorSd }, 'assumed'),
+    sheeting_posterior_deg: posterior && quantity({ value: posterior.mean, se: posterior.sd }, 'inferred'),
   };
 }
 

@@ -14,9 +14,25 @@ export interface RaceModel {
   readonly model: BoatModel;
   readonly curve: SpeedCurve;
   readonly tuned: boolean;
+  readonly accuracy: ModelAccuracy;
   /** Of the boat as canonical JSON, crew apart. */
   readonly sha256: string;
 }
+
+/** What a model is good to, one standard deviation. */
+export interface ModelAccuracy {
+  /** Speed and leeway as a share of themselves. */
+  readonly speed: number;
+  readonly leeway: number;
+  /** Its best angles. [deg] */
+  readonly angle: number;
+}
+
+/** A built-in boat stands for a type, not for this boat and crew: common practice, no source. */
+const ACCURACY: Readonly<Record<'untuned' | 'tuned', ModelAccuracy>> = {
+  untuned: { speed: 0.08, leeway: 0.12, angle: 2 },
+  tuned: { speed: 0.03, leeway: 0.1, angle: 1 },
+};
 
 /** Models of all boats of a race; boats alike in file and crew share one. */
 export async function boatModels(race: Race, open: OpenLog): Promise<RaceModel[]> {
@@ -62,5 +78,7 @@ export function modelOf(spec: BoatSpec, crewMassKg?: number): RaceModel {
   const model = makeModel(spec, crewMassKg === undefined ? {} : { crewMassKg });
   const hash = createSha256();
   hash.update(new TextEncoder().encode(canonicalBoat(spec)));
-  return { spec, model, curve: speedCurve(model), tuned: !isUntuned(spec.tuning), sha256: hash.digest() };
+  const tuned = !isUntuned(spec.tuning);
+  const accuracy = ACCURACY[tuned ? 'tuned' : 'untuned'];
+  return { spec, model, curve: speedCurve(model), tuned, accuracy, sha256: hash.digest() };
 }

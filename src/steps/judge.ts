@@ -16,6 +16,9 @@ export interface Optimum {
   readonly speed: Figure;
   readonly vmg: Figure;
   readonly beta: Figure;
+  /** Aerodynamic and hydrodynamic drag angles: together beta. */
+  readonly aero: Figure;
+  readonly hydro: Figure;
   readonly leeway: Figure;
   readonly sheeting: Figure;
 }
@@ -138,29 +141,25 @@ function meanTws(one: Sailed, leg: LegEstimate): Figure {
   return { value, se: 0.02 * value, sys: 0.02 * value };
 }
 
-/** A built-in boat stands for a type, not for this boat and crew: common practice, no source. [fraction of its speed] */
-const MODEL_SYS = { untuned: 0.08, tuned: 0.03 };
-/** What that is worth in its angles. [deg] */
-const MODEL_ANGLE_SYS = { untuned: 2, tuned: 1 };
-
 /** The model's best in a wind, with what the wind's error makes of it, by central differences of 2 %. */
 function optimumAt(model: RaceModel, tws: Figure, best: (m: RaceModel['model'], tws: number) => SailingState): Optimum {
   const at = best(model.model, tws.value);
   const low = best(model.model, tws.value * 0.98);
   const high = best(model.model, tws.value * 1.02);
-  const kind = model.tuned ? 'tuned' : 'untuned';
   const figure = (pick: (state: SailingState) => number, own: (value: number) => number): Figure => {
     const slope = (pick(high) - pick(low)) / (0.04 * tws.value);
     const value = pick(at);
     return { value, se: Math.abs(slope) * tws.se, sys: Math.hypot(slope * tws.sys, own(value)) };
   };
-  const angle = (): number => MODEL_ANGLE_SYS[kind];
-  const share = (value: number): number => MODEL_SYS[kind] * value;
+  const angle = (): number => model.accuracy.angle;
+  const share = (value: number): number => model.accuracy.speed * value;
   return {
     gamma: figure((s) => s.gamma, angle),
     speed: figure((s) => s.speed, share),
     vmg: figure((s) => Math.abs(s.vmg), share),
     beta: figure((s) => s.beta, angle),
+    aero: figure((s) => s.aeroDragAngle, angle),
+    hydro: figure((s) => s.hydroDragAngle, angle),
     leeway: figure((s) => s.leeway, angle),
     sheeting: figure((s) => s.sheeting, angle),
   };

@@ -9,6 +9,7 @@ import type { Issue } from '../recording/issues.js';
 import type { Track } from '../recording/track.js';
 import { tackSign } from '../segment/sailing.js';
 import type { RaceModel } from './boat-models.js';
+import type { AbleSpeed } from './able-speed.js';
 import type { BoatEstimate, LegEstimate } from './estimate-boat.js';
 import type { BoatCorrections } from './reconcile-boats.js';
 import type { Sailed } from './sail.js';
@@ -20,7 +21,9 @@ export interface Trim {
   readonly beatsModel: boolean;
   /** The same, by more than the errors of speed and wind. */
   readonly clearlyBeats: boolean;
-  /** Displayed posterior (speed included); null where it did not narrow. */
+  /** Where the boom was (speed included), however little the log says of it; null where the model cannot sail there. */
+  readonly posterior: SheetingPosterior | null;
+  /** The same where the log says enough of it to be shown. */
   readonly sheeting: SheetingPosterior | null;
   readonly incidence: Figure | null;
   readonly aero: Figure | null;
@@ -56,6 +59,7 @@ export function trimBoat(
   track: Track,
   model: RaceModel,
   corrections: BoatCorrections,
+  able: AbleSpeed | null,
 ): BoatTrim {
   const legs = estimate.legs.map((leg) => (leg.all && !Number.isNaN(leg.all.tws.value) ? legTrim(leg) : null));
   const judged = legs.filter((leg) => leg !== null);
@@ -64,7 +68,7 @@ export function trimBoat(
 
   function legTrim(leg: LegEstimate): LegTrim {
     const of = (figures: SteadyFigures, blocks: readonly BlockEstimate[]): Trim =>
-      trimOf(figures, blocks, track, one, model, corrections);
+      trimOf(figures, blocks, track, one, model, corrections, able);
     const on = (tack: string): readonly BlockEstimate[] => leg.blocks.filter((block) => block.tack === tack);
     const all = of(leg.all!, leg.blocks);
     return {
@@ -81,8 +85,9 @@ function trimOf(
   blocks: readonly BlockEstimate[],
   track: Track,
   one: Sailed,
-  { model }: RaceModel,
+  { model, accuracy }: RaceModel,
   corrections: BoatCorrections,
+  able: AbleSpeed | null,
 ): Trim {
   const speed = figures.speed.value;
   const tws = figures.tws.value;
@@ -98,22 +103,26 @@ function trimOf(
     mastheadAngle: Math.hypot(corrections.masthead?.se ?? 0, VANE_NOISE),
   };
   const input = { speed, tws, gamma, drift, mastheadAngle: mast };
-  const leeway = leewayOfSailing(model, input, errors);
+  const leeway = leewayOfSailing(model, input, errors, accuracy);
   const posterior = sheetingPosterior(model, {
     speed,
     tws,
     gamma,
-    speedSe: errors.speed,
+    leewayShare: accuracy.leeway,
+    ...(able ? { able: { share: able.share, se: Math.hypot(able.se, errors.speed / speed) } } : {}),
     ...(measured(leeway) ? { leeway: measured(leeway)! } : {}),
     ...(track.heel ? { heel: { value: meanSize(track.heel, blocks), se: 1 } } : {}),
   });
   const fits = posterior && Math.abs(posterior.mean - posterior.priorMean) < MOST_ASTRAY * posterior.priorSd;
   const sheeting = posterior?.narrowed && fits ? posterior : null;
-  const { eased: state, margin } = achieved(model, { speed, tws, gamma });
+  const { eased, full, margin } = achieved(model, { speed, tws, gamma });
+  const byForces = leeway?.ways.some(({ way }) => way === 'forces');
+  const state = byForces ? (eased ?? full) : null;
   const beta = figures.beta;
   const aero = state ? { value: state.aeroDragAngle, se: MODEL_ANGLE, sys: 0 } : null;
   return {
     leeway,
+    posterior,
     beatsModel: margin < 0,
     clearlyBeats: achieved(model, { speed: speed - 2 * errors.speed, tws: tws + 2 * errors.tws, gamma }).margin < 0,
     sheeting,
@@ -145,11 +154,21 @@ function measured(leeway: LeewayEstimate | null): { value: number; se: number } 
   return { value: ways.reduce((sum, way) => sum + way.value / way.se ** 2, 0) / total, se: Math.sqrt(1 / total) };
 }
 
-function lossOf(figures: SteadyFigures, leeway: LeewayEstimate | null, { model }: RaceModel): LegTrim['loss'] {
+function lossOf(
+  figures: SteadyFigures,
+  leeway: LeewayEstimate | null,
+  { model, accuracy }: RaceModel,
+): LegTrim['loss'] {
   const known = measured(leeway);
   if (!known) return null;
   const { speed, tws, gamma } = figures;
-  const posterior = sheetingPosterior(model, { speed: speed.value, tws: tws.value, gamma: gamma.value, leeway: known });
+  const posterior = sheetingPosterior(model, {
+    speed: speed.value,
+    tws: tws.value,
+    gamma: gamma.value,
+    leeway: known,
+    leewayShare: accuracy.leeway,
+  });
   if (!posterior || posterior.sd >= NARROW) return null;
   return trimLoss(model, tws.value, gamma.value, posterior);
 }

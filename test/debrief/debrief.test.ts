@@ -88,7 +88,8 @@ describe.each(CONDITIONS.map((c) => [c.name, c] as const))('%s', (_, c) => {
   it('has triangles that close', () => {
     for (const { gamma_deg, speed_kn, vmg_kn, tws_kn, aws_kn, beta_deg } of beats(result).flatMap(sides)) {
       const γ = rad(gamma_deg!.value);
-      expect(Math.abs(vmg_kn!.value / (speed_kn!.value * Math.cos(γ)) - 1)).toBeLessThan(0.01);
+      // Means over blocks: the mean of a product is not the product of the means, by what the blocks vary.
+      expect(Math.abs(vmg_kn!.value / (speed_kn!.value * Math.cos(γ)) - 1)).toBeLessThan(0.015);
       if (!tws_kn) continue;
       const ahead = speed_kn!.value + tws_kn.value * Math.cos(γ);
       const across = tws_kn.value * Math.sin(γ);

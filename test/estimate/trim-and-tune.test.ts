@@ -10,6 +10,9 @@ import { bestUpwind } from '../../src/physics/optimum.js';
 const KNOT = 1852 / 3600;
 const dinghy = BUILT_IN_BOATS[0];
 const model = makeModel(dinghy);
+/** What the model's leeway is taken to be good to, as a share. */
+const SHARE = 0.12;
+const GOOD = { leeway: SHARE, speed: 0.02 };
 
 /** Standard normal numbers (Park & Miller 1988; Box & Muller 1958). */
 function normals(seed: number): () => number {
@@ -30,7 +33,7 @@ describe('leeway', () => {
   const errors: LeewayInput = { speed: 0.02, tws: 0.1, gamma: 0.5, drift: 0.3, mastheadAngle: 1 };
 
   it('comes out alike by heading, masthead and forces', () => {
-    const found = leewayOfSailing(model, input, errors)!;
+    const found = leewayOfSailing(model, input, errors, GOOD)!;
     expect(found.ways.map((one) => one.way)).toEqual(['heading', 'masthead', 'forces']);
     for (const { value } of found.ways) expect(value).toBeCloseTo(truth.leeway, 5);
     expect(found.value).toBeCloseTo(truth.leeway, 5);
@@ -39,13 +42,13 @@ describe('leeway', () => {
   });
 
   it('carries its errors: by heading only that of heading and course, whatever the wind', () => {
-    const found = leewayOfSailing(null, { ...input, mastheadAngle: NaN }, errors)!;
+    const found = leewayOfSailing(null, { ...input, mastheadAngle: NaN }, errors, GOOD)!;
     expect(found.ways).toHaveLength(1);
     expect(found.se).toBeCloseTo(errors.drift, 9);
-    const masthead = leewayOfSailing(null, { ...input, drift: NaN }, errors)!;
+    const masthead = leewayOfSailing(null, { ...input, drift: NaN }, errors, GOOD)!;
     expect(masthead.basis).toBe('derived');
     expect(masthead.se).toBeGreaterThan(1);
-    expect(leewayOfSailing(null, { ...input, drift: NaN, mastheadAngle: NaN }, errors)).toBeNull();
+    expect(leewayOfSailing(null, { ...input, drift: NaN, mastheadAngle: NaN }, errors, GOOD)).toBeNull();
   });
 
   it('states the scatter it really has', () => {
@@ -55,7 +58,7 @@ describe('leeway', () => {
       const noisy = Object.fromEntries(
         Object.entries(input).map(([key, value]) => [key, value + errors[key as keyof LeewayInput] * next()]),
       ) as unknown as LeewayInput;
-      const found = leewayOfSailing(null, noisy, errors)!;
+      const found = leewayOfSailing(null, noisy, errors, GOOD)!;
       squares += (found.value - truth.leeway) ** 2;
       stated += found.se ** 2;
     }
@@ -65,16 +68,27 @@ describe('leeway', () => {
 
   it('does without forces for a boat that beats its model, and says so', () => {
     const fast = { ...input, speed: bestSpeed() * 1.03, drift: NaN };
-    const found = leewayOfSailing(model, fast, errors)!;
+    const found = leewayOfSailing(model, fast, errors, GOOD)!;
     expect(found.beatsModel).toBe(true);
     expect(found.ways.map((one) => one.way)).toEqual(['masthead']);
+  });
+
+  it('takes a boat that beats its model by less than the model is good to as driven in full', () => {
+    const only = { ...input, drift: NaN, mastheadAngle: NaN, speed: bestSpeed() * 1.01 };
+    const found = leewayOfSailing(model, only, errors, GOOD)!;
+    const full = sail(model, truth.tws, truth.gamma);
+    expect(found.beatsModel).toBe(true);
+    // Side force hardly changes; leeway goes with one over speed squared.
+    expect(found.value).toBeCloseTo(full.leeway / 1.01 ** 2, 1);
+    expect(found.se).toBeGreaterThan(SHARE * found.value);
   });
 
   const bestSpeed = (): number => sail(model, truth.tws, truth.gamma).speed;
 
   it('by forces alone is moved by a few tenths of a degree by 2 % of speed, 1 degree of course or 5 % of wind', () => {
     const only = { ...input, drift: NaN, mastheadAngle: NaN };
-    const at = (change: Partial<LeewayInput>): number => leewayOfSailing(model, { ...only, ...change }, errors)!.value;
+    const at = (change: Partial<LeewayInput>): number =>
+      leewayOfSailing(model, { ...only, ...change }, errors, GOOD)!.value;
     const here = at({});
     expect(Math.abs(at({ speed: only.speed * 0.98 }) - here)).toBeLessThan(0.4);
     expect(Math.abs(at({ gamma: only.gamma + 1 }) - here)).toBeLessThan(0.4);
@@ -85,7 +99,12 @@ describe('leeway', () => {
 describe('sheeting', () => {
   it('stays its prior without data, and is then not to be shown', () => {
     const best = bestUpwind(model, 8 * KNOT);
-    const found = sheetingPosterior(model, { speed: best.speed, tws: best.tws, gamma: best.gamma })!;
+    const found = sheetingPosterior(model, {
+      speed: best.speed,
+      tws: best.tws,
+      gamma: best.gamma,
+      leewayShare: SHARE,
+    })!;
     expect(found.mean).toBeCloseTo(found.priorMean, 9);
     expect(found.narrowed).toBe(false);
     // Prior about the model's trim, cut off at the centreline.
@@ -95,13 +114,13 @@ describe('sheeting', () => {
   it('finds a boom that was eased, from a well measured leeway', () => {
     const truth = sailWithSheeting(model, 8 * KNOT, 45, 16);
     const { speed, tws, gamma } = truth;
-    const data = { speed, tws, gamma, leeway: { value: truth.leeway, se: 0.05 } };
+    const data = { speed, tws, gamma, leeway: { value: truth.leeway, se: 0.05 }, leewayShare: SHARE };
     expect(sheetingPosterior(model, data)!.narrowed).toBe(false);
     const found = sheetingPosterior(model, { ...data, leewayShare: 0.02 })!;
     expect(found.mean).toBeGreaterThan(found.priorMean + 1);
     expect(Math.abs(found.mean - 16)).toBeLessThan(2.5 * found.sd);
     expect(found.sd).toBeLessThan(found.priorSd);
-    const withSpeed = sheetingPosterior(model, { ...data, leewayShare: 0.02, speedSe: 0.03 })!;
+    const withSpeed = sheetingPosterior(model, { ...data, leewayShare: 0.02, able: { share: 1, se: 0.01 } })!;
     expect(withSpeed.sd).toBeLessThan(found.sd);
     expect(withSpeed.points.reduce((sum, point) => sum + point.weight, 0)).toBeCloseTo(1, 9);
   });

@@ -40,10 +40,17 @@ export const SINGLE_HANDER: BoatKind = {
   leeway40: 4,
 };
 
-/** What a sheeting error does: eased too far loses lift, too tight adds drag and stalls a little. [deg, eased positive] */
-function mistrim(error: number, cl: number, cd: number): [number, number] {
-  if (error >= 0) return [cl * (1 - 0.0026 * error * error), cd * (1 - 0.006 * error)];
-  return [cl * (1 - 0.0009 * error * error), cd * (1 - 0.022 * error)];
+/**
+ * What a sheeting error makes of the lift and drag coefficients of the trimmed sail. Where drive is at its best it does
+ * not change to first order, so the two change together, dD/dL = tan beta: eased, the sail loses lift and the drag that
+ * went with it; hauled in, it gains little lift (it is near its most) and all the drag. Drive loses by second order. A
+ * flattened sail loses as much lift by a degree, works lower on the same parabola, where dD/dL is less in proportion, and
+ * so pays more for being eased. [deg, eased positive; deg; share of its full lift]
+ */
+function mistrim(error: number, beta: number, ease: number, cl: number, cd: number): [number, number] {
+  const slope = 0.02 * error;
+  const tangent = sind(Math.min(60, beta)) / cosd(Math.min(60, beta));
+  return [cl * Math.max(0.05, ease - slope - 0.002 * error * error), Math.max(0.1, cd - tangent * ease * slope * cl)];
 }
 
 function leewayAt(boat: BoatKind, side: number, speed: number): number {
@@ -71,13 +78,16 @@ function forcesAt(boat: BoatKind, tws: number, gamma: number, error: number, spe
   const limit = Math.min(boat.sideLimit, 40 + 70 * speed * speed);
   for (let i = 0; i < 4; i++) {
     const awa = Math.max(0, beta - leeway);
-    const [cl, cd] = mistrim(gamma < 110 ? error : 0, boat.lift(awa), boat.drag(awa));
-    const d = 0.13 + (cd - 0.13) * ease * ease;
+    const cl = boat.lift(awa);
+    const trimmed = 0.13 + (boat.drag(awa) - 0.13) * ease * ease;
     // The sail is flattened until crew and hull hold it: side force at its limit, solved for the lift that is left.
-    const held = (limit / push - d * sind(beta)) / Math.max(1e-6, cl * cosd(beta));
-    ease = cosd(beta) > 0 ? Math.max(0.05, Math.min(1, held)) : 1;
-    side = push * (ease * cl * cosd(beta) + d * sind(beta));
-    drive = push * (ease * cl * sind(beta) - d * cosd(beta));
+    const most = (drag: number): number =>
+      cosd(beta) > 0 ? Math.max(0.05 * cl, (limit / push - drag * sind(beta)) / cosd(beta)) : cl;
+    ease = Math.min(1, most(trimmed) / cl);
+    const [free, d] = mistrim(gamma < 110 ? error : 0, beta, ease, cl, trimmed);
+    const lift = Math.min(free, most(d));
+    side = push * (lift * cosd(beta) + d * sind(beta));
+    drive = push * (lift * sind(beta) - d * cosd(beta));
     leeway = leewayAt(boat, Math.max(0, side), speed);
   }
   const induced = 0.7 * Math.max(0, side) * sind(leeway);
