@@ -5,6 +5,7 @@ import type { SeasonResult } from '../index.js';
 import { forMessages, kindOf, readText, unusable, writeWhole } from './files.js';
 import { readLogbook } from './logbook.js';
 import { addManners } from './options.js';
+import { pagesBeside } from './pages-beside.js';
 import { outColour, print } from './terminal.js';
 
 const EXAMPLE = `
@@ -45,7 +46,8 @@ async function runSeason(folder: string, flags: SeasonFlags): Promise<void> {
   if (html === '-') throw unusable('--out -: only --json goes to standard output.', 'Name a file.');
   const { jsonText } = await resultFiles();
   if (flags.json !== undefined && flags.json !== '-') await writeWhole(flags.json, jsonText(result));
-  if (html !== null) await writeWhole(html, await seasonPage(found));
+  if (html !== null)
+    await writeWhole(html, await seasonPage(found, { pageOf: await pagesBeside(html, folder, results) }));
   if (flags.json === '-') await print(jsonText(result));
   else if (!flags.quiet)
     await print(`${[...summary(result, results.length), `Report: ${forMessages(html!)}`].join('\n')}\n`);

@@ -1,7 +1,19 @@
 import type { Q } from '../result/result.js';
-import { trendChart } from './charts/trend.js';
+import { trendChart, type TrendPoint } from './charts/trend.js';
 import { document } from './document.js';
-import { inline, number, plain, plural, quantity, scaled, suffix, time, type Unit } from './format.js';
+import {
+  inline,
+  isoOf,
+  number,
+  plain,
+  plural,
+  quantity,
+  scaled,
+  suffix,
+  time,
+  timeText,
+  type Unit,
+} from './format.js';
 import { html, nameOf, type Part, type Safe } from './html.js';
 import { figure, section, table } from './sections/figure.js';
 import { termCards } from './terms.js';
@@ -75,15 +87,23 @@ function wordsOf(key: string): Words {
 
 const DAY = 86400;
 
+export interface SeasonPageOptions {
+  /** The page of a race, as a path from this one with `/` between folders; null where none lies beside. */
+  readonly pageOf?: (race: { readonly race: string; readonly time: number }) => string | null;
+}
+
+type Links = NonNullable<SeasonPageOptions['pageOf']>;
+
 /**
  * Every sailor's races as trends.
  *
  * @returns One self-contained HTML document; the same input gives the same bytes.
  */
-export function seasonPage(season: SeasonData): string {
+export function seasonPage(season: SeasonData, options: SeasonPageOptions = {}): string {
   const { sailors } = season.json;
   const origin = Math.min(...season.detail.flatMap((d) => d.races.map((r) => r.time)));
-  const parts = sailors.map((sailor, i) => sailorSection(sailor, season.detail[i], i, origin));
+  const links: Links = options.pageOf ?? (() => null);
+  const parts = sailors.map((sailor, i) => sailorSection(sailor, season.detail[i], i, origin, links));
   const names = sailors.map((s, i) => html`<li><a href="#sailor-${i}">${nameOf(s.name)}</a></li>`);
   const none = sailors.length === 0 && html`<p>The logbook holds no race with an upwind leg yet.</p>`;
   const body = html`<a class="skip" href="#sailor-0">To the first sailor</a>
@@ -111,8 +131,14 @@ function spanOf(season: SeasonData): Part {
   return html`${plural(races, 'race')}, ${time(from, 'day')} to ${time(to, 'day')}.`;
 }
 
-function sailorSection(sailor: SailorTrends, detail: SailorDetail, index: number, origin: number): Safe {
-  const plates = detail.trends.map((t, k) => trendPlate(t, sailor.trends[k], origin));
+function sailorSection(
+  sailor: SailorTrends,
+  detail: SailorDetail,
+  index: number,
+  origin: number,
+  links: Links,
+): Safe {
+  const plates = detail.trends.map((t, k) => trendPlate(t, sailor.trends[k], origin, links));
   const heading = html`${sailor.name}`;
   return html`<section id="sailor-${index}" aria-labelledby="h-sailor-${index}">
     <h2 id="h-sailor-${index}">${nameOf(sailor.name)}</h2>
@@ -170,12 +196,34 @@ function needed(t: TrendWords): Part {
 
 type TrendDetail = SailorDetail['trends'][number];
 
-function trendPlate({ quantity: { key }, trend, races }: TrendDetail, told: TrendWords, origin: number): Part {
-  const { words, unit, times } = wordsOf(key);
-  const points = races.flatMap((r) => {
-    const v = r.values[key];
-    return v ? [{ time: r.time, value: v.value * times, se: v.se * times }] : [];
+/** A race's page as a link: every part of its path encoded. */
+function hrefOf(race: RaceValue, links: Links): string | null {
+  const path = links(race);
+  return path === null ? null : path.split('/').map(encodeURIComponent).join('/');
+}
+
+function pointsOf(races: readonly RaceValue[], key: string, links: Links): TrendPoint[] {
+  const { unit, times } = wordsOf(key);
+  return races.flatMap((race) => {
+    const v = race.values[key];
+    if (!v) return [];
+    const [value, se] = [v.value * times, v.se * times];
+    const error = Number.isFinite(se) ? ` ±${plain(se, 1)}` : '';
+    const wind = Number.isFinite(race.wind) ? `, wind ${plain(race.wind, 0)} kn` : '';
+    const words = `${timeText(isoOf(race.time), 'date')} ${race.race}: ${plain(value, 1)}${error}${suffix(unit)}${wind}`;
+    const href = hrefOf(race, links);
+    return [{ time: race.time, value, se, words, ...(href === null ? {} : { href }) }];
   });
+}
+
+function trendPlate(
+  { quantity: { key }, trend, races }: TrendDetail,
+  told: TrendWords,
+  origin: number,
+  links: Links,
+): Part {
+  const { words, unit, times } = wordsOf(key);
+  const points = pointsOf(races, key, links);
   if (points.length === 0) return null;
   const fit = (t: number): number => (trend.intercept + (trend.slope * (t - origin)) / DAY) * times;
   const shown = told.verdict !== 'nothing shown yet';
@@ -189,18 +237,19 @@ function trendPlate({ quantity: { key }, trend, races }: TrendDetail, told: Tren
     }),
     title: words,
     summary: html`${shown ? 'The line is evidence of a change.' : 'The broken line is no evidence of a change yet.'}
-    Bars are one standard error.${wind}`,
-    table: raceTable(races, key),
+    Bars are one standard error.${wind}${points.some(({ href }) => href !== undefined) && ' A point in a ring opens the page of its race.'}`,
+    table: raceTable(races, key, links),
   });
 }
 
-function raceTable(races: readonly RaceValue[], key: string): Safe {
+function raceTable(races: readonly RaceValue[], key: string, links: Links): Safe {
   const { words, unit, times } = wordsOf(key);
   const rows = races.map((r) => {
     const v = r.values[key];
     const q: Q = v ? { value: v.value, se: Number.isFinite(v.se) ? v.se : null, basis: 'derived' } : null;
+    const href = hrefOf(r, links);
     return [
-      html`${time(r.time, 'date')} ${nameOf(r.race)}`,
+      html`${time(r.time, 'date')} ${href === null ? nameOf(r.race) : html`<a href="${href}">${nameOf(r.race)}</a>`}`,
       q ? inline(q, unit, { times, digits: 1 }) : '–',
       plain(r.wind, 0),
     ];

@@ -26,7 +26,9 @@ const FILES: Readonly<Record<string, string>> = {
   bare: pageOf(bareSample()),
   nowind: pageOf(noWindSpeedSample()),
   hostile: pageOf(renamed(full, HOSTILE)),
-  season: seasonPage(season(inventedSeason({ seed: 5, races: 8, every: 7, sailors: [{ name: 'Corrie' }] }))),
+  season: seasonPage(season(inventedSeason({ seed: 5, races: 8, every: 7, sailors: [{ name: 'Corrie' }] })), {
+    pageOf: ({ race }) => (race === 'Race 2' ? 'full.html' : null),
+  }),
 };
 
 function pageOf({ result, series }: Sample): string {
@@ -364,6 +366,37 @@ describe.skipIf(!browser)('the page in a browser', () => {
     });
     await page.touchscreen.tap(target.x, target.y);
     await expect.poll(async () => Math.abs(Number(await page.locator('#cursor').inputValue()) - boat.t0 - boat.manoeuvres[1].at)).toBeLessThan(8); // prettier-ignore
+    await close();
+  });
+
+  test('season: every race is reached by the keyboard, tells its figures, and opens its page where one lies beside', async () => {
+    const { page, trouble, close } = await open('season');
+    await page.waitForSelector('html.live');
+    const chart = page.locator('svg.trend').first();
+    expect(await chart.locator('.race[tabindex="0"]').count()).toBe(1);
+    await chart.locator('.race').first().focus();
+    expect(await page.locator('#tip').innerText()).toMatch(/Race 1: \d/);
+    await page.keyboard.press('ArrowRight');
+    expect(await page.locator('#tip').innerText()).toMatch(/Race 2: \d/);
+    await chart.locator('.race').nth(4).hover();
+    expect(await page.locator('#tip').innerText()).toMatch(/Race 5: \d/);
+    await page.keyboard.press('Enter');
+    await page.waitForURL(/full\.html$/); // the focus is still on the second race
+    await page.waitForSelector('html.live');
+    expect(trouble).toEqual([]);
+    await close();
+  });
+
+  test('ladder: its tacks are buttons the keyboard reaches', async () => {
+    const { page, trouble, close } = await open('compare');
+    await page.waitForSelector('html.live');
+    const pins = page.locator('svg.ladder').first().locator('.ladder-tack');
+    await pins.first().focus();
+    await page.keyboard.press('ArrowRight');
+    await page.keyboard.press('Enter');
+    await expect.poll(() => page.locator('#cursor').inputValue()).toBe(await pins.nth(1).getAttribute('data-at'));
+    expect(await pins.nth(1).getAttribute('aria-label')).toMatch(/^Tack 2: (Corrie|Linnet) onto (port|starboard)$/);
+    expect(trouble).toEqual([]);
     await close();
   });
 

@@ -27,13 +27,35 @@ describe('the page of a season', () => {
     expect(found.json.sailors[0].trends.some((t) => t.verdict === 'better')).toBe(true);
   });
 
-  test('draws every race of every trend', () => {
-    const dots = found.detail.reduce((s, d) => s + d.trends.reduce((n, t) => n + t.races.length, 0), 0);
-    const drawn = page
-      .split('class="trend"')
-      .slice(1)
-      .map((part) => part.slice(0, part.indexOf('</svg>')));
-    expect(drawn.reduce((s, svg) => s + svg.split('<circle').length - 1, 0)).toBe(dots);
+  /** Races drawn in the pictures of a page, as their markup. */
+  const racesIn = (text: string): string[] =>
+    [...text.matchAll(/<(g|a) class="race"[\s\S]*?<\/\1>/g)].map(([markup]) => markup);
+
+  test('draws every race of every trend, each with its figures in words', () => {
+    const races = found.detail.flatMap((d) => d.trends.flatMap((t) => t.races));
+    const drawn = racesIn(page);
+    expect(drawn).toHaveLength(races.length);
+    const [first] = found.detail[0].trends;
+    const { value } = first.races[0].values[first.quantity.key]!;
+    expect(drawn[0]).toContain(`aria-label="2026-04-04 Race 1: ${(100 * value).toFixed(1)}`);
+    expect(drawn.every((markup) => markup.startsWith('<g ') && markup.includes('tabindex="0"'))).toBe(true);
+  });
+
+  test('a race whose page lies beside opens it, the others do not, and no name breaks out of a link', () => {
+    const pageOf = ({ race }: { race: string }): string | null => {
+      if (race === 'Race 3') return 'third race.html';
+      return race === 'Race 4' ? '"><script>alert(1)</script>.html' : null;
+    };
+    const linked = seasonPage(found, { pageOf });
+    const drawn = racesIn(linked);
+    for (const name of ['Race 3', 'Race 4', 'Race 5']) {
+      const own = drawn.filter((markup) => markup.includes(` ${name}: `));
+      expect(own.length).toBeGreaterThan(1);
+      expect(own.every((markup) => markup.startsWith('<a ') === (name !== 'Race 5'))).toBe(true);
+    }
+    expect(linked).toContain('href="third%20race.html"');
+    expect(linked.match(/<script/g)).toHaveLength(page.match(/<script/g)!.length);
+    expect(linked).toContain('<a href="third%20race.html"><bdi>Race 3</bdi></a>');
   });
 
   test('a line that is no evidence is broken, one that is is whole', () => {

@@ -179,13 +179,18 @@ function short(name: string): string {
 
 /** A disc with the number the tack has in the table. */
 function tackPin(climb: Climb, k: number, sheet: LadderSheet): string {
-  const { boat, place, time } = climb.tacks[k];
+  const { boat, place, time, onto } = climb.tacks[k];
   if (!Number.isFinite(place.rung)) return '';
   const [x, y] = [sheet.x0 + place.across * sheet.scale, sheet.y0 - place.rung * sheet.scale];
   const { colour } = boatPaint(climb.index[boat]);
   return el(
     'g',
-    { class: 'ladder-tack', transform: `translate(${coordinate(x)} ${coordinate(y)})`, 'data-at': time },
+    {
+      class: 'ladder-tack',
+      transform: `translate(${coordinate(x)} ${coordinate(y)})`,
+      'data-at': time,
+      'aria-label': `Tack ${k + 1}: ${climb.names[boat]}${onto ? ` onto ${onto}` : ''}`,
+    },
     boat === 0
       ? el('circle', { r: 7, fill: PAPER, stroke: colour, 'stroke-width': 1.5 })
       : el('rect', { x: -6.5, y: -6.5, width: 13, height: 13, fill: PAPER, stroke: colour, 'stroke-width': 1.5 }),

@@ -1,5 +1,6 @@
 import { scaleLinear } from 'd3-scale';
 import { isoOf, timeText } from '../format.js';
+import { escapeText } from '../html.js';
 import { boatPaint, INK, SOFT } from '../palette.js';
 import { el, leftAxis, line, picture, text } from './svg.js';
 
@@ -10,6 +11,10 @@ export interface TrendPoint {
   readonly value: number;
   /** One standard error; NaN where none is stated. */
   readonly se: number;
+  /** Race and figures in words, for hover and focus. */
+  readonly words: string;
+  /** The race's own page, where it lies beside this one. */
+  readonly href?: string;
 }
 
 export interface TrendOptions {
@@ -39,11 +44,12 @@ export function trendChart(points: readonly TrendPoint[], options: Partial<Trend
     leftAxis(y, 46, o.width - 12, { count: 4 }),
     ...dayTicks(from, to).map((t) => dayTick(x(t), o.height - 28, t)),
     fitted(o, from, to, x, y),
-    ...points.map((p, i) => dotWithError(x(p.time), y(p.value), y(p.value - errors[i]), y(p.value + errors[i]))),
+    ...points.map((p, i) => racePoint(p, x(p.time), y(p.value), y(p.value - errors[i]), y(p.value + errors[i]))),
     text(46, 12, o.title, { size: 12, italic: true }),
   ];
   const label = `${o.title}: ${points.length} races, from ${points[0].value.toFixed(1)} to ${points[points.length - 1].value.toFixed(1)}.`;
-  return picture(o.width, o.height, label, body.join(''), { class: 'trend' });
+  // Its points can be reached one by one, so it is no single image.
+  return picture(o.width, o.height, label, body.join(''), { class: 'trend', role: 'group' });
 }
 
 /** At most five days, evenly spread. */
@@ -67,7 +73,17 @@ function fitted(o: TrendOptions, from: number, to: number, x: Scale, y: Scale): 
   return line(x(from), y(o.fit(from)), x(to), y(o.fit(to)), INK, { 'stroke-width': 1.8, 'stroke-dasharray': dash });
 }
 
-function dotWithError(x: number, y: number, low: number, high: number): string {
+/** A race with its error, in a frame wide enough for a finger; a ring about it where its page lies beside. */
+function racePoint({ words, href }: TrendPoint, x: number, y: number, low: number, high: number): string {
   const { colour } = boatPaint(0);
-  return line(x, low, x, high, SOFT, { 'stroke-width': 1.1 }) + el('circle', { cx: x, cy: y, r: 4, fill: colour });
+  const parts = [
+    el('title', {}, escapeText(words)),
+    line(x, low, x, high, SOFT, { 'stroke-width': 1.1 }),
+    el('rect', { x: x - 9, y: y - 9, width: 18, height: 18, fill: 'transparent' }),
+    href === undefined ? '' : el('circle', { cx: x, cy: y, r: 6.5, fill: 'none', stroke: colour, 'stroke-width': 1 }),
+    el('circle', { class: 'race-dot', cx: x, cy: y, r: 4, fill: colour }),
+  ];
+  return href === undefined
+    ? el('g', { class: 'race', role: 'img', tabindex: 0, 'aria-label': words }, ...parts)
+    : el('a', { class: 'race', href, 'aria-label': `${words}. Opens its page.` }, ...parts);
 }

@@ -1,6 +1,7 @@
 import { boatPaint, CURSOR, PAPER } from '../palette.js';
 import { draw } from './dom.js';
 import { rowAt, type Race } from './race.js';
+import { roving } from './roving.js';
 import type { Store } from './store.js';
 
 /** The ladders brought to life: each boat's rung at the cursor, and what is gained by then. A touch moves the cursor. */
@@ -37,9 +38,28 @@ export function mountLadders(race: Race, store: Store): void {
       const time = timeAt(race, frame, svg, event);
       if (Number.isFinite(time)) store.set({ time });
     };
+    mountPins(svg, store);
     svg.addEventListener('pointerdown', put);
     svg.addEventListener('pointermove', (event) => event.buttons > 0 && put(event));
   }
+}
+
+/** Every tack by the keyboard too: a button that takes the cursor there. */
+function mountPins(svg: SVGSVGElement, store: Store): void {
+  const pins = [...svg.querySelectorAll<SVGGElement>('.ladder-tack')];
+  // An image holds no buttons.
+  svg.setAttribute('role', 'group');
+  for (const pin of pins) {
+    pin.setAttribute('role', 'button');
+    const go = (): void => store.set({ time: Number(pin.dataset.at) });
+    pin.addEventListener('keydown', (event) => {
+      if (event.key !== 'Enter' && event.key !== ' ') return;
+      event.preventDefault();
+      go();
+    });
+    pin.addEventListener('click', go);
+  }
+  roving(pins);
 }
 
 function placeAt(race: Race, frame: Frame, index: number, time: number): Place | null {

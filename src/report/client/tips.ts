@@ -1,6 +1,7 @@
 import { errorSentence } from '../notes.js';
 import { byId } from './dom.js';
 import { localText } from './locale.js';
+import { roving } from './roving.js';
 
 /** Notes on figures and words: on hover, on focus, on a tap. One table is one stop of the tab key, arrows move within. */
 export function mountTips(): void {
@@ -19,7 +20,8 @@ export function mountTips(): void {
     if (!tip.matches(':popover-open')) tip.showPopover();
     place(tip, target);
   };
-  const noted = (event: Event): HTMLElement | null => (event.target as Element).closest<HTMLElement>('.q, .term');
+  const noted = (event: Event): HTMLElement | null =>
+    (event.target as Element).closest<HTMLElement>('.q, .term, .race');
   document.addEventListener('pointerover', (event) => {
     if (event.pointerType !== 'mouse') return;
     const target = noted(event);
@@ -34,6 +36,8 @@ export function mountTips(): void {
   document.addEventListener('click', (event) => {
     const target = noted(event);
     if (!target) return hide();
+    // A race with a page of its own opens it.
+    if (target.matches('a')) return;
     event.preventDefault();
     show(target);
   });
@@ -50,6 +54,7 @@ function prepareFigures(): void {
     word.setAttribute('aria-describedby', word.getAttribute('popovertarget')!);
     word.removeAttribute('popovertarget');
   }
+  for (const chart of document.querySelectorAll('.trend')) roving([...chart.querySelectorAll<SVGElement>('.race')]);
   for (const table of document.querySelectorAll('table')) {
     table.querySelectorAll<HTMLElement>('.q').forEach((figure, i) => (figure.tabIndex = i === 0 ? 0 : -1));
   }
@@ -57,6 +62,11 @@ function prepareFigures(): void {
 
 /** What a figure or a word has to say. The title would come up a second time on hover: it becomes the note. */
 function noteOf(target: HTMLElement): string {
+  const title = target.querySelector(':scope > title');
+  if (title) {
+    target.dataset.note = title.textContent.replace(/\d+\.\d+/g, localText);
+    title.remove();
+  }
   if (target.title) {
     const shown = [...target.querySelectorAll('.q > .n, .u')].map((part) => part.textContent).join('');
     const note = errorSentence(shown, target.title).replace(
