@@ -153,17 +153,31 @@ function withValues(rows: LogRows, placed: Uint32Array | undefined): Uint32Array
   return left.subarray(0, n);
 }
 
+/** Where a row is of another piece than the one before it. A damaged log has pieces by the hundred thousand. */
 function findBreaks(order: Uint32Array, pieces: readonly number[]): number[] {
   if (pieces.length === 0) return [];
   const breaks: number[] = [];
   let from = 0;
   let to = 0;
-  order.forEach((row, i) => {
-    if (row >= from && row < to) return;
-    const next = pieces.findIndex((start) => start > row);
-    from = next === 0 ? 0 : (pieces.at(next < 0 ? -1 : next - 1) ?? 0);
-    to = next < 0 ? Infinity : pieces[next];
+  for (let i = 0; i < order.length; i++) {
+    const row = order[i];
+    if (row >= from && row < to) continue;
+    const next = firstBeyond(pieces, row);
+    from = next === 0 ? 0 : pieces[next - 1];
+    to = next < pieces.length ? pieces[next] : Infinity;
     if (i > 0) breaks.push(i);
-  });
+  }
   return breaks;
+}
+
+/** The first of ascending numbers above a value; their count when there is none. */
+function firstBeyond(ascending: readonly number[], value: number): number {
+  let low = 0;
+  let high = ascending.length;
+  while (low < high) {
+    const middle = (low + high) >>> 1;
+    if (ascending[middle] > value) high = middle;
+    else low = middle + 1;
+  }
+  return low;
 }

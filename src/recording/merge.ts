@@ -54,7 +54,7 @@ function concatenate(parts: readonly Recording[]): Recording {
   let at = 0;
   for (const part of parts) {
     if (at > 0) breaks.push(at);
-    breaks.push(...part.breaks.map((b) => b + at));
+    for (const row of part.breaks) breaks.push(row + at);
     time.set(part.time, at);
     for (const channel of Object.keys(part.channels) as Channel[]) channels[channel]!.set(part.channels[channel]!, at);
     at += part.time.length;

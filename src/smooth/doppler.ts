@@ -28,6 +28,7 @@ const MOMENTS = 4000;
  * @returns Lag; 0 where none shows. [s, 0..8]
  */
 export function dopplerLag(o: Observations, stretches: readonly Stretch[], activity: Activity): number {
+  if (!o.vx.some((v) => v === v)) return 0;
   const moments = chordVelocities(o, stretches, activity);
   if (moments.length < 30) return 0;
   let best = 0;

@@ -245,6 +245,16 @@ const STRIDE = 9;
 /** Time points between two checkpoints: the tape stays below 3 MB whatever the length of the log. */
 const STRETCH = 8192;
 
+const newTape = (): Tape => ({
+  kind: new Uint8Array(3 * STRETCH),
+  dt: new Float64Array(3 * STRETCH),
+  values: new Float64Array(3 * STRETCH * STRIDE),
+  n: 0,
+});
+
+/** One for all stretches, one after the other: a damaged log has a hundred thousand of them. */
+let sharedTape: Tape | null = null;
+
 /** Observations [from, to), what is known of their noise, and the rows to be written. */
 export interface SmoothingJob {
   readonly observations: Observations;
@@ -280,13 +290,7 @@ export function smoothStretch(job: SmoothingJob, out: SmoothedRows): number {
     checkpoints.push({ cursor: { ...cursor }, state: state.slice() });
     forward(job, cursor, state, null);
   }
-  const capacity = 3 * STRETCH;
-  const tape: Tape = {
-    kind: new Uint8Array(capacity),
-    dt: new Float64Array(capacity),
-    values: new Float64Array(capacity * STRIDE),
-    n: 0,
-  };
+  const tape = (sharedTape ??= newTape());
   const adjoint: Adjoint = new Float64Array(12);
   let written = 0;
   for (let i = checkpoints.length - 1; i >= 0; i--) {

@@ -63,7 +63,7 @@ export class Rejections {
     const out = count(JUMP);
     if (out) sentences.push(`${fixes(out.count)} out of reach of the boat, first at ${utc(out.firstTime)}: left out.`);
     if (jumps.length > 0) {
-      const largest = Math.max(...jumps.map(({ metres }) => metres));
+      const largest = jumps.reduce((most, { metres }) => Math.max(most, metres), 0);
       const times = jumps.length === 1 ? 'once' : `${jumps.length} times`;
       sentences.push(
         `The position jumps ${times}, by up to ${largest.toFixed(0)} m, first at ${utc(time[jumps[0].row])}, ` +

@@ -57,7 +57,7 @@ export function smoothTrack(recording: Recording, frame: Frame, options: SmoothO
   if (lag > 0) undoLag(observations, lag, activity);
   const noise = options.noise ?? estimateNoise(observations, near, { step, activity, lag });
   const jumps = gateAll(observations, near, noise, activity, rejections);
-  breaks.push(...jumps.map(({ row }) => row));
+  for (const { row } of jumps) breaks.push(row);
   breaks.sort((p, q) => p - q);
   dropLonely(observations, findStretches(observations, breaks).stretches, rejections);
   const { stretches, gaps } = findStretches(observations, breaks);
@@ -110,7 +110,7 @@ function gateAll(
     for (const row of gated.rejectedVelocity) o.vx[row] = o.vy[row] = NaN;
     rejections.add(JUMP, gated.rejected);
     for (const { from, to } of rejected) rejections.add(JUMP, rowsOf(from, to));
-    kept.push(...jumps);
+    for (const jump of jumps) kept.push(jump);
   }
   return kept;
 }
