@@ -83,17 +83,21 @@ export type * from './season/season-types.js';
 
 /** Races of a logbook as trends per sailor; `sailors` is the content of a `sailors.yaml`, if there is one. */
 export const season = async (
-  results: readonly Result[],
+  results: readonly Result[] | AsyncIterable<Result>,
   sailors?: { readonly file: string; readonly text: string },
 ): Promise<Season> => {
-  const { season: trends } = await import('./season.js');
-  if (!sailors) return trends(results);
+  const { season: trends, seasonOfMany } = await import('./season.js');
+  const options = sailors ? { sailors: await sailorsIn(sailors) } : {};
+  return Symbol.asyncIterator in results ? seasonOfMany(results, options) : trends(results, options);
+};
+
+async function sailorsIn({ file, text }: { readonly file: string; readonly text: string }) {
   const { readWritten } = await import('./files/written.js');
   const { readSailors } = await import('./season/sailors.js');
-  const read = readSailors(readWritten(sailors.text, sailors.file).data);
-  if (read.problem !== null) throw new UserError(`${sailors.file}: ${read.problem}.`, { exitCode: 2 });
-  return trends(results, { sailors: read.sailors });
-};
+  const read = readSailors(readWritten(text, file).data);
+  if (read.problem !== null) throw new UserError(`${file}: ${read.problem}.`, { exitCode: 2 });
+  return read.sailors;
+}
 
 /** The files of the demo race, by name. */
 export const demoFiles = async (): Promise<ReadonlyMap<string, string>> =>

@@ -1,6 +1,6 @@
 import { holm } from './math/holm.js';
 import type { Quantity, Result } from './result/result.js';
-import { compareText, observations } from './season/logbook.js';
+import { compareText, inTime, observations, type Observation } from './season/logbook.js';
 import { ALL_AS_WRITTEN, type Sailors } from './season/sailors.js';
 import { sailorSeason, type QuantityTrend, type SailorSeason } from './season/sailor.js';
 import type { SeasonResult, SeasonTrend, TrendVerdict } from './season/season-types.js';
@@ -31,7 +31,17 @@ const DAYS = 30;
  * @returns The season file and the detail behind it.
  */
 export function season(results: readonly Result[], options: SeasonOptions = {}): Season {
-  const all = observations(results, options.sailors ?? ALL_AS_WRITTEN);
+  return seasonOf(observations(results, options.sailors ?? ALL_AS_WRITTEN));
+}
+
+/** The same of results that come one by one, none of which is kept: a logbook may be large. */
+export async function seasonOfMany(results: AsyncIterable<Result>, options: SeasonOptions = {}): Promise<Season> {
+  const all: Observation[] = [];
+  for await (const result of results) all.push(...observations([result], options.sailors ?? ALL_AS_WRITTEN));
+  return seasonOf(inTime(all));
+}
+
+function seasonOf(all: readonly Observation[]): Season {
   const names = [...new Set(all.map(({ sailor }) => sailor))].sort(compareText);
   const races = new Map(names.map((name) => [name, all.filter(({ sailor }) => sailor === name)]));
   const detail = names.map((name) => sailorSeason(name, races.get(name)!, all[0].time));

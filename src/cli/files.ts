@@ -1,5 +1,5 @@
 import { createHash, randomBytes } from 'node:crypto';
-import { closeSync, createReadStream, fsyncSync, openSync, renameSync, rmSync, writeSync } from 'node:fs';
+import { closeSync, createReadStream, fsyncSync, openSync, readFileSync, renameSync, rmSync, writeSync } from 'node:fs';
 import { mkdir, readFile, realpath, stat } from 'node:fs/promises';
 import { basename, dirname, join, relative, resolve, sep } from 'node:path';
 import { UserError } from '../index.js';
@@ -127,11 +127,25 @@ export function forMessages(path: string): string {
 /** Contents of a small text file. */
 export async function readText(path: string): Promise<string> {
   try {
-    const bytes = await readFile(path);
-    return new TextDecoder(encodingOf(bytes)).decode(bytes);
+    return textOf(await readFile(path));
   } catch (error) {
     throw asUserError(error, forMessages(path));
   }
+}
+
+/** The same without giving way to anything else: thousands of files take far less time so. */
+export function readTextNow(path: string): string {
+  try {
+    return textOf(readFileSync(path));
+  } catch (error) {
+    throw asUserError(error, forMessages(path));
+  }
+}
+
+function textOf(bytes: Buffer): string {
+  const encoding = encodingOf(bytes);
+  // The decoder drops a mark of the byte order; without one there is a shorter way.
+  return encoding === 'utf-8' && bytes[0] !== 0xef ? bytes.toString('utf8') : new TextDecoder(encoding).decode(bytes);
 }
 
 /** By its byte-order mark; some editors write UTF-16. */

@@ -1,9 +1,10 @@
 import { createHash } from 'node:crypto';
 import { readdir, rm, stat } from 'node:fs/promises';
 import { join } from 'node:path';
+import { setImmediate } from 'node:timers/promises';
 import { resultFiles } from '../index.js';
 import type { BoatResult, InputEntry, Result, Warning } from '../index.js';
-import { forMessages, kindOf, makeFolder, readText, TEMPORARY, unusable, writeWhole } from './files.js';
+import { forMessages, kindOf, makeFolder, readText, readTextNow, TEMPORARY, unusable, writeWhole } from './files.js';
 import { withLock } from './lock.js';
 import { raceSlug } from './slug.js';
 import { complain } from './terminal.js';
@@ -11,9 +12,10 @@ import { complain } from './terminal.js';
 /** What came of filing. */
 export interface Filed {
   readonly path: string;
-  /** Of the file in the logbook. */
-  readonly name: string;
+  /** Name of the file in the logbook. */
+  readonly file: string;
   /** What it holds now. */
+  readonly result: Result;
   readonly text: string;
 }
 
@@ -28,16 +30,17 @@ const LEFT_BEHIND = 5 * 60_000;
 export async function fileInLogbook(folder: string, result: Result, day: string | null): Promise<Filed> {
   if ((await kindOf(folder)) === 'file') throw unusable(`${forMessages(folder)}: a file, not a logbook folder.`);
   const { jsonText, readResult } = await resultFiles();
-  const name = logbookName(result, day);
-  const path = join(folder, name);
+  const file = logbookName(result, day);
+  const path = join(folder, file);
   await makeFolder(folder);
   return withLock(folder, async (held) => {
     await sweep(folder);
     const before = (await kindOf(path)) === 'file' ? await readResult(await readText(path)).catch(nothing(path)) : null;
-    const text = jsonText(before === null ? result : merged(before, result));
+    const now = before === null ? result : merged(before, result);
+    const text = jsonText(now);
     if (!held()) throw unusable(`${forMessages(folder)}: this run stood still and lost its turn.`, 'Run it again.');
     await writeWhole(path, text, { syncFolder: true });
-    return { path, name, text };
+    return { path, file, result: now, text };
   });
 }
 
@@ -93,31 +96,36 @@ function byKey<T>(before: readonly T[], now: readonly T[], key: (entry: T) => st
   return [...entries.values()];
 }
 
-/** Results of a logbook, by date and name. What is no result is told of and left out. */
-export async function readLogbook(folder: string): Promise<Result[]> {
+/**
+ * Results of a logbook one by one, by date and name, with the names of their files. What is no result is told of and
+ * left out.
+ */
+export async function* readLogbook(folder: string): AsyncGenerator<{ file: string; result: Result }> {
+  const how = 'Fill a logbook with `legwork debrief race.yaml --logbook logbook`.';
   const kind = await kindOf(folder);
-  if (kind !== 'folder') {
-    throw unusable(
-      kind === null ? `${folder}: there is no such folder.` : `${folder}: a file, not a logbook folder.`,
-      'Fill a logbook with `legwork debrief race.yaml --logbook logbook`.',
-    );
+  if (kind === null) throw unusable(`${folder}: there is no such folder.`, how);
+  if (kind === 'file') throw unusable(`${folder}: a file, not a logbook folder.`, how);
+  let found = 0;
+  for (const [k, file] of (await readdir(folder)).sort().entries()) {
+    // So that an interruption is heard.
+    if (k % 50 === 49) await setImmediate();
+    const result = file.endsWith('.json') && !file.startsWith('.') ? await resultIn(join(folder, file)) : null;
+    if (result === null) continue;
+    found++;
+    yield { file, result };
   }
+  if (found === 0) throw unusable(`${forMessages(folder)}: no result files in it.`, how);
+}
+
+async function resultIn(path: string): Promise<Result | null> {
   const { readResult } = await resultFiles();
-  const results: Result[] = [];
-  for (const name of (await readdir(folder)).sort()) {
-    if (!name.endsWith('.json') || name.startsWith('.')) continue;
-    try {
-      results.push(await readResult(await readText(join(folder, name))));
-    } catch (error) {
-      const { name: kind, message } = error as Error;
-      if (kind !== 'NotAResult' && kind !== 'UserError') throw error;
-      const path = forMessages(join(folder, name));
-      complain(`${message.startsWith(path) ? message : `${path}: ${message}`} It was left out.`);
-    }
+  try {
+    return await readResult(readTextNow(path));
+  } catch (error) {
+    const { name, message } = error as Error;
+    if (name !== 'NotAResult' && name !== 'UserError') throw error;
+    const shown = forMessages(path);
+    complain(`${message.startsWith(shown) ? message : `${shown}: ${message}`} It was left out.`);
+    return null;
   }
-  if (results.length > 0) return results;
-  throw unusable(
-    `${forMessages(folder)}: no result files in it.`,
-    'Fill a logbook with `legwork debrief race.yaml --logbook logbook`.',
-  );
 }

@@ -80,7 +80,7 @@ export class Making {
 
   async add(from: string, filed: Filed, outputs: readonly Output[]): Promise<void> {
     const entry: Made = {
-      file: filed.name,
+      file: filed.file,
       from,
       sha256: digest(filed.text),
       outputs: Object.fromEntries(outputs.map(({ role, bytes }) => [role, digest(bytes)])),

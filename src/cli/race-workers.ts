@@ -1,3 +1,4 @@
+import { existsSync } from 'node:fs';
 import { availableParallelism, totalmem } from 'node:os';
 import { Worker } from 'node:worker_threads';
 import { failureFrom, type PlainFailure } from './failures.js';
@@ -18,8 +19,12 @@ export type Answer = { readonly finished: Finished } | { readonly failure: Plain
 /** Memory a race may need, so that many processors do not ask for more than there is. [bytes] */
 const MEMORY = 1e9;
 
+/** The program of a thread; as built, for from its source alone Node cannot start one. */
+const PROGRAM = new URL('./race-worker.js', import.meta.url);
+
 /** How many races are worked on at a time: one a processor, or as LEGWORK_WORKERS says. Results do not depend on it. */
 export function workerCount(): number {
+  if (!existsSync(PROGRAM)) return 1;
   const { LEGWORK_WORKERS: said } = process.env;
   if (!said) return Math.max(1, Math.min(availableParallelism(), Math.floor(totalmem() / MEMORY)));
   if (/^[1-9]\d{0,2}$/.test(said)) return Number(said);
@@ -69,7 +74,7 @@ export class RaceWorkers {
   }
 
   #hire(): Worker {
-    const thread = new Worker(new URL(`./race-worker${import.meta.url.slice(-3)}`, import.meta.url));
+    const thread = new Worker(PROGRAM);
     const lost = (error: unknown): void => {
       const errand = this.#threads.get(thread);
       if (!this.#threads.delete(thread)) return;

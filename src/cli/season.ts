@@ -1,11 +1,12 @@
 import type { Command } from 'commander';
 import { join } from 'node:path';
 import { resultFiles, season, seasonPage } from '../index.js';
-import type { SeasonResult } from '../index.js';
+import type { Result, SeasonResult } from '../index.js';
 import { forMessages, kindOf, readText, unusable, writeWhole } from './files.js';
 import { readLogbook } from './logbook.js';
 import { addManners } from './options.js';
-import { pagesBeside } from './pages-beside.js';
+import { pagesBeside, racePage } from './pages-beside.js';
+import type { RacePage } from './pages-beside.js';
 import { outColour, print } from './terminal.js';
 
 const EXAMPLE = `
@@ -36,21 +37,27 @@ export function seasonCommand(program: Command): Command {
 }
 
 async function runSeason(folder: string, flags: SeasonFlags): Promise<void> {
-  const results = await readLogbook(folder);
+  let races = 0;
+  const pages: RacePage[] = [];
+  async function* results(): AsyncGenerator<Result> {
+    for await (const filed of readLogbook(folder)) {
+      races++;
+      pages.push(...racePage(filed));
+      yield filed.result;
+    }
+  }
   const sailors = join(folder, 'sailors.yaml');
   const known =
     (await kindOf(sailors)) === 'file' ? { file: forMessages(sailors), text: await readText(sailors) } : undefined;
-  const found = await season(results, known);
+  const found = await season(results(), known);
   const result = found.json;
   const html = flags.out ?? (flags.json === '-' ? null : 'reports/season.html');
   if (html === '-') throw unusable('--out -: only --json goes to standard output.', 'Name a file.');
   const { jsonText } = await resultFiles();
   if (flags.json !== undefined && flags.json !== '-') await writeWhole(flags.json, jsonText(result));
-  if (html !== null)
-    await writeWhole(html, await seasonPage(found, { pageOf: await pagesBeside(html, folder, results) }));
+  if (html !== null) await writeWhole(html, await seasonPage(found, { pageOf: await pagesBeside(html, pages) }));
   if (flags.json === '-') await print(jsonText(result));
-  else if (!flags.quiet)
-    await print(`${[...summary(result, results.length), `Report: ${forMessages(html!)}`].join('\n')}\n`);
+  else if (!flags.quiet) await print(`${[...summary(result, races), `Report: ${forMessages(html!)}`].join('\n')}\n`);
 }
 
 /** Most sailors in the summary; the rest are in the report. */

@@ -30,9 +30,11 @@ export interface Observation {
  * @returns One observation for each boat of each race whose sailor is not hidden.
  */
 export function observations(results: readonly Result[], sailors: Sailors): Observation[] {
-  return results
-    .flatMap((result) => result.boats.flatMap((boat) => observe(result, boat, sailors)))
-    .sort((a, b) => a.time - b.time || compareText(a.race, b.race) || compareText(a.boat, b.boat));
+  return inTime(results.flatMap((result) => result.boats.flatMap((boat) => observe(result, boat, sailors))));
+}
+
+export function inTime(all: readonly Observation[]): Observation[] {
+  return [...all].sort((a, b) => a.time - b.time || compareText(a.race, b.race) || compareText(a.boat, b.boat));
 }
 
 function observe(result: Result, boat: BoatResult, sailors: Sailors): Observation[] {

@@ -4,9 +4,10 @@ import { hostname } from 'node:os';
 import { readdirSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { fileInLogbook, readLogbook } from '../../src/cli/logbook.js';
+import { fileInLogbook } from '../../src/cli/logbook.js';
 import type { Result } from '../../src/result/result.js';
 import { inventedResult } from '../export/invented.js';
+import { resultsIn } from './results-in.js';
 import { buildProgram, drop, dropProgram, ended, filesBelow, folder, helperPath } from './run.js';
 
 const LONG = process.env.LEGWORK_LONG === '1';
@@ -23,7 +24,7 @@ const race = (...boats: string[]): Result => ({
   boats: boats.map((boat) => inventedResult(boat).boats[0]),
 });
 const boatsIn = async (book: string): Promise<string[]> =>
-  (await readLogbook(book)).flatMap(({ boats }) => boats.map(({ name }) => name)).sort();
+  (await resultsIn(book)).flatMap(({ boats }) => boats.map(({ name }) => name)).sort();
 
 describe('one race, filed at once', () => {
   it.each(Array.from({ length: ROUNDS }, (_, k) => k + 1))('by eight processes, a boat each; time %i', async () => {

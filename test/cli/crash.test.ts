@@ -4,11 +4,12 @@ import { readdirSync, readFileSync, utimesSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { pathToFileURL } from 'node:url';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { logbookName, readLogbook } from '../../src/cli/logbook.js';
+import { logbookName } from '../../src/cli/logbook.js';
 import type { Result } from '../../src/result/result.js';
 import { generator } from '../between/two-boats.js';
 import { inventedResult } from '../export/invented.js';
 import { gpxText, inventedBeat, windText } from './invented-beat.js';
+import { resultsIn } from './results-in.js';
 import { buildProgram, drop, dropProgram, ended, filesBelow, folder, helperPath, start } from './run.js';
 
 const LONG = process.env.LEGWORK_LONG === '1';
@@ -73,7 +74,7 @@ describe('filing, killed', () => {
     expect(await file(book, now, { FAULT_KILL: `${stage} ${far}` })).toBe('SIGKILL');
     const isDone = stage === 'folder sync' || (stage === 'rename' && far >= 0.5);
     const boats = isDone ? ['Ann', 'Ben', 'Cy'] : ['Ann', 'Ben'];
-    const read = await readLogbook(book);
+    const read = await resultsIn(book);
     expect(read.map((result) => result.boats.map((boat) => boat.name))).toEqual([['Dee'], boats]);
     expect(visible(book)).toHaveLength(2);
     if (!isDone) expect(readFileSync(join(book, name), 'utf8')).toBe(text(before));
@@ -81,7 +82,7 @@ describe('filing, killed', () => {
     // The next run is not held up and tidies.
     nextDay(book);
     expect(await file(book, now, {})).toBe(null);
-    expect((await readLogbook(book))[1].boats.map((boat) => boat.name)).toEqual(['Ann', 'Ben', 'Cy']);
+    expect((await resultsIn(book))[1].boats.map((boat) => boat.name)).toEqual(['Ann', 'Ben', 'Cy']);
     expect(filesBelow(book)).toEqual(visible(book).sort());
     drop(book);
   });
@@ -129,7 +130,7 @@ describe('the program, killed from outside', () => {
       fell.set(stage, fell.get(stage)! + 1);
       expect([old, renewed]).toContain(readFileSync(join(book, name), 'utf8'));
       expect(visible(book)).toEqual([name]);
-      expect((await readLogbook(book)).map((result) => result.race.name)).toEqual(['Test']);
+      expect((await resultsIn(book)).map((result) => result.race.name)).toEqual(['Test']);
     }
     console.log(
       `Kills fell at\n${[...fell].map(([stage, n]) => `${stage.padEnd(15)} ${'#'.repeat(n)} ${n}`).join('\n')}`,

@@ -1,15 +1,16 @@
 import { readFileSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import fc from 'fast-check';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
 import { writeWhole } from '../../src/cli/files.js';
 import { expandGlob, isGlob } from '../../src/cli/globs.js';
 import { expandInputs } from '../../src/cli/inputs.js';
-import { fileInLogbook, logbookName, merged, readLogbook } from '../../src/cli/logbook.js';
+import { fileInLogbook, logbookName, merged } from '../../src/cli/logbook.js';
 import { addColumns, readWinds } from '../../src/cli/options.js';
 import { raceSlug, slugOf } from '../../src/cli/slug.js';
 import type { Result } from '../../src/result/result.js';
 import { inventedResult } from '../export/invented.js';
+import { resultsIn } from './results-in.js';
 import { drop, filesBelow, folder } from './run.js';
 
 let home: string;
@@ -145,7 +146,7 @@ describe('the logbook', () => {
     await fileInLogbook(book, second, '2026-04-18');
     await fileInLogbook(book, race('Two', '2026-04-25T12:05:00.000Z', 'Ann'), '2026-04-25');
     expect(filesBelow(book)).toHaveLength(2);
-    const [first] = await readLogbook(book);
+    const [first] = await resultsIn(book);
     expect(first.boats.map(({ name, sailor }) => `${name} ${sailor}`)).toEqual(['Ann Ann', 'Ben new', 'Cy new']);
   });
   it('filing the same again changes nothing', () => {
@@ -164,6 +165,30 @@ describe('the logbook', () => {
     writeFileSync(path, newer);
     await expect(fileInLogbook(book, result, '2026-04-18')).rejects.toThrow(/newer/);
     expect(readFileSync(path, 'utf8')).toBe(newer);
+  });
+});
+
+describe('reading a logbook', () => {
+  it('leaves out what cannot be read, and says so', async () => {
+    const whole = (name: string): string =>
+      JSON.stringify({ ...inventedResult(), race: { name, start: null, finish: null } });
+    const book = folder({
+      'b.json': whole('B'),
+      'a.json': `\uFEFF${whole('A')}`,
+      'c.json': whole('C').slice(0, -100),
+      'd.json/a.gpx': '',
+      'e.json': Buffer.from(`\uFEFF${whole('E')}`, 'utf16le'),
+      'f.json': '[]',
+      '.g.json': whole('G'),
+      'sailors.yaml': 'hidden: []',
+    });
+    const said: string[] = [];
+    const spy = vi.spyOn(process.stderr, 'write').mockImplementation((text) => said.push(String(text)) > 0);
+    const names = (await resultsIn(book)).map(({ race }) => race.name);
+    spy.mockRestore();
+    expect(names).toEqual(['A', 'B', 'E']);
+    expect(said.map((line) => /[a-z.]+\.json/.exec(line)?.[0])).toEqual(['c.json', 'd.json', 'f.json']);
+    drop(book);
   });
 });
 

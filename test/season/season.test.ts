@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { season } from '../../src/season.js';
+import { season, seasonOfMany } from '../../src/season.js';
 import type { SeasonTrend } from '../../src/season/season-types.js';
 import { readSailors } from '../../src/season/sailors.js';
 import { generator } from '../between/two-boats.js';
@@ -201,10 +201,14 @@ describe('what joins and what does not', () => {
 });
 
 describe('the season file', () => {
-  it('is the same whatever the order of the results, and has a row for each quantity', () => {
+  it('is the same whatever the order of the results, and has a row for each quantity', async () => {
     const results = inventedSeason({ ...one({ sailors: [{ name: 'Linnet' }, { name: 'Corrie' }] }), seed: 5 });
     const { json } = season(results);
     expect(season([...results].reverse()).json).toEqual(json);
+    async function* oneByOne() {
+      for (const result of [...results].reverse()) yield await Promise.resolve(result);
+    }
+    expect(await seasonOfMany(oneByOne())).toEqual(season(results));
     expect(JSON.parse(JSON.stringify(json))).toEqual(json);
     expect(json.sailors.map(({ name, races }) => [name, races])).toEqual([
       ['Corrie', 12],
