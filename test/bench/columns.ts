@@ -13,12 +13,16 @@ export function columnsOf({ time, channels }: Recording): Columns {
   return { time, lat: channels.lat ?? none, lon: channels.lon ?? none, sog: channels.sog ?? none };
 }
 
-/** How many rows, and the means of the columns to a centimetre (times since the first). */
+/** How many rows, and the means of what the columns hold, to a centimetre (times since the first). */
 export function checksum({ time, lat, lon, sog }: Columns): string {
   const mean = (column: Float64Array, from = 0): number => {
-    let sum = 0;
-    for (const value of column) sum += value - from;
-    return sum / column.length;
+    let [sum, n] = [0, 0];
+    for (const value of column) {
+      if (Number.isNaN(value)) continue;
+      sum += value - from;
+      n++;
+    }
+    return sum / n;
   };
   return sumsText({ n: time.length, time: mean(time, time[0]), lat: mean(lat), lon: mean(lon), sog: mean(sog) });
 }

@@ -3,7 +3,7 @@ import { spawnSync } from 'node:child_process';
 import { existsSync, mkdirSync, statSync } from 'node:fs';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
-import { generateTable, generateTrack } from './generator.js';
+import { generateSentences, generateTable, generateTrack } from './generator.js';
 
 export const ROOT = fileURLToPath(new URL('../../', import.meta.url));
 const FOLDER = join(ROOT, 'node_modules/.cache/bench-data');
@@ -44,6 +44,13 @@ export function table(megabytes: number): string {
   if (kind === 'own') generateTable(csv, megabytes);
   else generate('--kind', 'csv', '--mb', String(megabytes), '--hz', '10', '--out', csv);
   return csv;
+}
+
+/** A log of sentences of about so many megabytes; made once and kept. */
+export function sentences(megabytes: number): string {
+  const nmea = scratch(`own-${megabytes}.nmea`);
+  if (!existsSync(nmea)) generateSentences(nmea, megabytes);
+  return nmea;
 }
 
 function generate(...args: readonly string[]): void {

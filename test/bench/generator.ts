@@ -1,6 +1,6 @@
 /**
  * A day's sailing of stated size, invented, the same for the same size: a boat beating and running in one wind, as a
- * GPX track at 10 Hz, its own apparent wind at 1 Hz, and the track as a table.
+ * GPX track at 10 Hz, its own apparent wind at 1 Hz, the track as a table, and all of it as sentences.
  */
 import { closeSync, openSync, writeFileSync, writeSync } from 'node:fs';
 
@@ -109,4 +109,49 @@ function* rows(): Generator<string> {
 /** The same as a table. */
 export function generateTable(path: string, megabytes: number): void {
   write(path, 'time,lat,lon,sog,cog\n', rows(), megabytes * 1e6);
+}
+
+/** A sentence of IEC 61162-1: the exclusive or of its letters behind it. */
+function sentence(body: string): string {
+  let sum = 0;
+  for (let at = 0; at < body.length; at++) sum ^= body.charCodeAt(at);
+  return `$${body}*${sum.toString(16).toUpperCase().padStart(2, '0')}\r\n`;
+}
+
+/** Degrees and minutes, as sentences write them, of a position north and east. */
+function minutes(degrees: string, digits: number): string {
+  const value = Number(degrees);
+  return String(Math.floor(value)).padStart(digits, '0') + ((value % 1) * 60).toFixed(5).padStart(8, '0');
+}
+
+/** Once a second what a boat's instruments say: fix twice, course, compass, wind, log, depth, satellites. */
+function* sentences(): Generator<string> {
+  let n = 0;
+  for (const moment of moments()) {
+    if (n++ % RATE !== 0) continue;
+    const { iso, lat, lon, speed, course } = moment;
+    const clock = `${iso.slice(11, 19).replaceAll(':', '')}.00`;
+    const day = iso.slice(8, 10) + iso.slice(5, 7) + iso.slice(2, 4);
+    const place = `${minutes(lat, 2)},N,${minutes(lon, 3)},E`;
+    const knots = (speed * 1.943844).toFixed(2);
+    const cog = ((course + 720) % 360).toFixed(1);
+    const [angle, wind] = apparent(moment).split(',');
+    yield [
+      `GPRMC,${clock},A,${place},${knots},${cog},${day},,,A`,
+      `GPGGA,${clock},${place},1,09,0.9,412.3,M,47.0,M,,`,
+      `GPVTG,${cog},T,,M,${knots},N,${(speed * 3.6).toFixed(2)},K,A`,
+      `IIHDG,${cog},,,2.3,E`,
+      `IIMWV,${((Number(angle) + 360) % 360).toFixed(1)},R,${wind},N,A`,
+      `IIVHW,,T,${cog},M,${knots},N,,K`,
+      'IIDPT,007.2,+0.3,',
+      'GPGSV,3,1,11,03,03,111,00,04,15,270,00,06,01,010,00,13,06,292,00',
+    ]
+      .map(sentence)
+      .join('');
+  }
+}
+
+/** The same day, longer, as a log of sentences. */
+export function generateSentences(path: string, megabytes: number): void {
+  write(path, '', sentences(), megabytes * 1e6);
 }

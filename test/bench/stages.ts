@@ -4,8 +4,13 @@ import { createReadStream } from 'node:fs';
 import { basename } from 'node:path';
 import { debrief } from '../../src/debrief.js';
 import type { Race } from '../../src/files/race-types.js';
+import type { Bytes } from '../../src/importers/bytes.js';
 import { importLog } from '../../src/importers/index.js';
+import { readNmea } from '../../src/importers/nmea.js';
+import { LogRows } from '../../src/importers/rows.js';
+import { Tally } from '../../src/importers/tally.js';
 import type { ImportedLog, LogSource } from '../../src/importers/types.js';
+import type { Recording } from '../../src/recording/recording.js';
 import { debriefPage } from '../../src/report/page.js';
 import { jsonText } from '../../src/result/json.js';
 import { THRESHOLDS } from '../../src/segment/thresholds.js';
@@ -31,6 +36,13 @@ export function openFile(path: string): LogSource {
       return { update: (bytes) => void hash.update(bytes), digest: () => hash.digest('hex') };
     },
   };
+}
+
+/** Sentences by the tolerant reader alone. */
+export async function readTolerantly(path: string): Promise<Recording> {
+  const { name, chunks } = openFile(path);
+  const { settled } = await readNmea(chunks as Bytes, 'utf-8', new LogRows(), new Tally(name), {}, false);
+  return settled.recording;
 }
 
 export const read = (path: string): Promise<ImportedLog> => importLog(openFile(path));
