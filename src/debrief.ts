@@ -13,7 +13,7 @@ import { cleanTracks, type CleanTracks } from './steps/clean-tracks.js';
 import { currentOf } from './steps/course.js';
 import { errorModels } from './steps/error-model.js';
 import { estimateBoat, type BoatEstimate } from './steps/estimate-boat.js';
-import { hints } from './steps/hints.js';
+import { boatExcesses, hints } from './steps/hints.js';
 import { judge } from './steps/judge.js';
 import { polarCurves } from './steps/polar-curves.js';
 import { readLogs, type OpenLog, type ReadLogs } from './steps/read-logs.js';
@@ -75,6 +75,9 @@ export async function debrief(race: Race, open: OpenLog, options: DebriefOptions
     windward: course.windward,
     sharedWind: options.shareWind ? (lap) => meanWindOfLap(estimates, lap) : null,
   });
+  const names = race.boats.map((boat) => boat.name);
+  const hintInput = { names, sailed: wind.sailed, estimates, judgements, models, trims };
+  const found = boatExcesses(hintInput);
   const issues: Issue[] = [
     ...logs.issues,
     ...clockIssues(logs),
@@ -97,14 +100,8 @@ export async function debrief(race: Race, open: OpenLog, options: DebriefOptions
     estimates,
     trims,
     judgements,
-    hints: hints({
-      names: race.boats.map((boat) => boat.name),
-      sailed: wind.sailed,
-      estimates,
-      judgements,
-      models,
-      trims,
-    }),
+    excess: found,
+    hints: hints(hintInput, found),
     issues,
   });
   const series: RaceSeries = {

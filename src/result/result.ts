@@ -122,8 +122,21 @@ export interface BoatResult {
   readonly corrections: { readonly compass_offset_deg: Q; readonly awa_offset_deg: Q };
   readonly manoeuvres: readonly ManoeuvreResult[];
   readonly legs: readonly LegResult[];
+  /** What the boat lost more than the day's best boat, or that more than the next; null with one boat. */
+  readonly excess?: ExcessResult | null;
   /** At most three plain sentences, strongest first. */
   readonly hints: readonly Hint[];
+}
+
+/** Metres lost more than another boat, largest first, shifts last. Errors are of the habit, not of the race as sailed. */
+export interface ExcessResult {
+  readonly over: string;
+  readonly causes: readonly {
+    readonly cause: Cause;
+    readonly metres: Q;
+    /** Beyond what chance makes of so many causes: then there is a hint. */
+    readonly stands: boolean;
+  }[];
 }
 
 export interface Hint {

@@ -119,6 +119,12 @@ function boatIn(object: ObjectMaker) {
     corrections: object({ compass_offset_deg: q, awa_offset_deg: q }),
     manoeuvres: z.array(manoeuvre),
     legs: z.array(legIn(object)),
+    excess: object({
+      over: z.string(),
+      causes: z.array(object({ cause: z.enum(CAUSES), metres: q, stands: z.boolean() })),
+    })
+      .nullable()
+      .optional(),
     hints: z.array(object({ text: z.string(), metres: q })).default([]),
   });
 }

@@ -27,6 +27,8 @@ export interface Course {
   readonly leeward: Place | null;
   /** Where the fleet was found to round at the bottom, for the end of the last leg; null = not looked for yet. */
   readonly foundLeeward: Place | null;
+  /** The same at the top, for boats that reach to the mark from beyond the lay line. */
+  readonly foundWindward: Place | null;
 }
 
 /**
@@ -52,7 +54,17 @@ export function findLegs(sailing: Sailing, course: Course, usual: number, thresh
   for (const piece of racingPieces(pieces, sailing, course, thresholds)) {
     legs.push(...legsOf(piece, sailing, angle, course, thresholds));
   }
-  return numbered(legs.filter((leg) => share(sailing, leg) >= SEEN));
+  return numbered(inTurn(legs).filter((leg) => share(sailing, leg) >= SEEN));
+}
+
+/** A leg begins no earlier than the one before it ends. */
+function inTurn(legs: readonly Leg[]): Leg[] {
+  let end = 0;
+  return legs.flatMap((leg) => {
+    const from = Math.max(leg.from, end);
+    end = Math.max(end, leg.to);
+    return from < leg.to ? [{ ...leg, from }] : [];
+  });
 }
 
 /** A leg of which less than this was seen (a gap, an excluded span, the engine) says nothing. */
@@ -229,12 +241,30 @@ function legEnd(piece: Piece, sailing: Sailing, angle: Float64Array, course: Cou
   const mark = piece.rise > 0 ? course.windward : course.leeward;
   if (mark && piece.to < sailing.n - 1) return closest(sailing, piece.to, mark);
   const turned = corner(piece.to, angle, piece.rise > 0 ? 1 : -1);
-  const finish = piece.rise < 0 && course.foundLeeward ? passing(sailing, piece, course.foundLeeward, AT_MARK) : null;
+  if (piece.rise > 0) return reachedFrom(turned, sailing, course.foundWindward) ?? turned;
+  const finish = course.foundLeeward ? passing(sailing, piece, course.foundLeeward, AT_MARK) : null;
   return finish !== null && finish < turned - 10 ? finish : turned;
 }
 
 /** A boat that comes this close to where others rounded has been there. [m] */
 const AT_MARK = 60;
+
+/** A boat that has come so much nearer to the mark since its beat seemed over had not been there yet. [m] */
+const NEARER = 30;
+/** So long a reach to the mark is looked for. [s] */
+const LONGEST_REACH = 90;
+
+/**
+ * A boat that tacks well beyond the lay line reaches to the mark: its way along the wind is over, its leg is not. Row at
+ * which it is there; null where it was there already, or never comes.
+ */
+function reachedFrom(turned: number, sailing: Sailing, mark: Place | null): number | null {
+  if (!mark) return null;
+  const away = (i: number): number => Math.hypot(sailing.x[i] - mark.x, sailing.y[i] - mark.y);
+  let best = turned;
+  for (let i = turned; i < Math.min(sailing.n, turned + LONGEST_REACH); i++) if (away(i) < away(best)) best = i;
+  return away(best) < AT_MARK && away(turned) - away(best) > NEARER ? best : null;
+}
 
 /** Row of a leg's closest approach to a place, if it comes close: the finish of a boat that sails on past it. */
 function passing(sailing: Sailing, piece: RowRange, place: Place, within: number): number | null {

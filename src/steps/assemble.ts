@@ -5,6 +5,7 @@ import { isoTime, knotsQuantity, quantity } from '../result/quantity.js';
 import type {
   Basis,
   BoatResult,
+  ExcessResult,
   Hint,
   InputEntry,
   Ledger,
@@ -27,6 +28,7 @@ import type { FoundWind } from './find-wind.js';
 import type { ReadFile } from './read-logs.js';
 import { CAUSES, type LedgerFigures } from '../estimate/ledger.js';
 import type { RaceModel } from './boat-models.js';
+import type { BoatExcess } from './hints.js';
 import type { Corrections } from './reconcile-boats.js';
 import type { BoatTrim, LegTrim, Trim } from './trim.js';
 import type { Judgement, LegJudgement, Optimum } from './judge.js';
@@ -43,6 +45,7 @@ export interface Assembly {
   readonly models: readonly RaceModel[];
   readonly corrections: Corrections;
   readonly trims: readonly BoatTrim[];
+  readonly excess: readonly (BoatExcess | null)[];
   readonly hints: readonly (readonly Hint[])[];
   readonly judgements: readonly Judgement[];
 }
@@ -160,7 +163,20 @@ function boatResult(boat: CleanBoat, k: number, a: Assembly): BoatResult {
       loss_m: quantity(loss, 'derived'),
     })),
     legs: estimate.legs.map((leg, index) => legResult(leg, k, index, a)),
+    excess: excessResult(a.excess[k], a.race),
     hints: a.hints[k],
+  };
+}
+
+function excessResult(found: BoatExcess | null, race: Race): ExcessResult | null {
+  if (!found) return null;
+  return {
+    over: race.boats[found.other].name,
+    causes: found.excesses.map(({ cause, metres, se, sys, stands }) => ({
+      cause,
+      metres: quantity({ value: metres, se, sys }, 'inferred'),
+      stands,
+    })),
   };
 }
 

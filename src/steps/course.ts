@@ -24,7 +24,11 @@ export function coursePlaces(race: Race, frame: Frame): CoursePlaces {
 }
 
 /** What the race file says of the course, in rows of one boat's track. */
-export function courseFor(race: Race, places: CoursePlaces, track: Track): Omit<Course, 'foundLeeward'> {
+export function courseFor(
+  race: Race,
+  places: CoursePlaces,
+  track: Track,
+): Omit<Course, 'foundLeeward' | 'foundWindward'> {
   const row = (time: number | null): number | null => (time === null ? null : time - track.t0);
   return {
     gun: row(race.start),

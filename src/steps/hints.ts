@@ -18,22 +18,30 @@ export interface HintInput {
 /** At most so many hints a boat: more are not read before the next race. */
 const MOST = 3;
 
-/**
- * Hints: what each boat lost more than the day's best boat, and that boat more than the next best, where it stands
- * beyond chance; and a leeway measured well away from the best. None with one boat and nothing measured.
- */
-export function hints(input: HintInput): (readonly Hint[])[] {
-  const { sailed, models, names } = input;
-  const best = bestBoat(sailed, models);
-  return names.map((_, k) => {
-    const found: Hint[] = [];
+/** A boat's excesses over another, by its index. */
+export interface BoatExcess {
+  readonly other: number;
+  readonly excesses: readonly Excess[];
+}
+
+/** What each boat lost more than the day's best boat, and that boat more than the next best; null with one boat. */
+export function boatExcesses(input: HintInput): (BoatExcess | null)[] {
+  const best = bestBoat(input.sailed, input.models);
+  return input.names.map((_, k) => {
     const other = best < 0 ? -1 : k === best ? nextBest(input, best) : best;
-    if (other >= 0) {
-      const stands = excesses(costsOf(input, k), costsOf(input, other)).filter((excess) => excess.stands);
-      found.push(...stands.map((excess) => excessHint(excess, input, k, other)));
-    }
-    found.push(...leewayHint(input, k));
-    return found.slice(0, MOST);
+    return other < 0 ? null : { other, excesses: excesses(costsOf(input, k), costsOf(input, other)) };
+  });
+}
+
+/**
+ * Hints: the excesses that stand beyond chance; and a leeway measured well away from the best. None with one boat and
+ * nothing measured.
+ */
+export function hints(input: HintInput, found: readonly (BoatExcess | null)[]): (readonly Hint[])[] {
+  return found.map((one, k) => {
+    const stands = (one?.excesses ?? []).filter((excess) => excess.stands);
+    const told = stands.map((excess) => excessHint(excess, input, k, one!.other));
+    return [...told, ...leewayHint(input, k)].slice(0, MOST);
   });
 }
 

@@ -3,7 +3,7 @@ import { median } from '../math/median.js';
 import { logLawFactor } from '../physics/air.js';
 import type { Issue } from '../recording/issues.js';
 import type { Track } from '../recording/track.js';
-import type { Place } from '../segment/legs.js';
+import type { Course, Place } from '../segment/legs.js';
 import type { Thresholds } from '../segment/thresholds.js';
 import type { WindAtBoat } from '../wind/field.js';
 import type { CleanTracks } from './clean-tracks.js';
@@ -52,18 +52,22 @@ export function sailAll(
   const course = coursePlaces(race, clean.frame);
   const current = currentOf(race) ?? foundCurrent(corrections);
   const excluded = tracks.map((track, k) => excludedRows(track, race.exclude, engine.masks[k]));
-  const sailIn = (boat: number, at: WindAtBoat, foundLeeward: Place | null): Sailed =>
+  const sailIn = (boat: number, at: WindAtBoat, found: FoundMarks): Sailed =>
     sail(
       tracks[boat],
       at,
       current,
-      (track) => ({ ...courseFor(race, course, track), foundLeeward }),
+      (track) => ({ ...courseFor(race, course, track), ...found }),
       excluded[boat],
       thresholds,
     );
-  const wind = findWind(tracks, sources, (boat, at) => sailIn(boat, at, null), corrections?.station ?? null);
-  const bottom = course.leeward ? null : leewardOf(wind.sailed);
-  const sailed = bottom ? wind.atBoats.map((at, boat) => sailIn(boat, at, bottom)) : wind.sailed;
+  const wind = findWind(tracks, sources, (boat, at) => sailIn(boat, at, NOT_LOOKED_FOR), corrections?.station ?? null);
+  const found = {
+    foundLeeward: course.leeward ? null : rounded(wind.sailed, 'downwind'),
+    foundWindward: course.windward ? null : rounded(wind.sailed, 'upwind'),
+  };
+  const looked = found.foundLeeward ?? found.foundWindward;
+  const sailed = looked ? wind.atBoats.map((at, boat) => sailIn(boat, at, found)) : wind.sailed;
   const sailors = clean.boats.map(({ track, logs: { reference, trackFiles } }) => ({
     name: reference.name,
     file: trackFiles[0] ?? '',
@@ -72,6 +76,9 @@ export function sailAll(
   const gaps = windGaps(sailors, sources, wind.atBoats);
   return { wind: { ...wind, sailed }, course, handUsed, issues: [...windIssues, ...engine.issues, ...gaps] };
 }
+
+type FoundMarks = Pick<Course, 'foundLeeward' | 'foundWindward'>;
+const NOT_LOOKED_FOR: FoundMarks = { foundLeeward: null, foundWindward: null };
 
 function foundCurrent(corrections: Corrections | null): CurrentAt | null {
   const current = corrections?.current;
@@ -88,14 +95,41 @@ function excludedRows(track: Track, spans: Race['exclude'], engine: Uint8Array):
   });
 }
 
-/** Where the boats rounded at the bottom: the middle of the ends of all downwind legs that a beat follows. */
-function leewardOf(sailed: readonly Sailed[]): Place | null {
-  const ends = sailed.flatMap((one) =>
-    one.legs.slice(0, -1).flatMap((leg, k) => {
-      const rounds = leg.kind === 'downwind' && one.legs[k + 1].kind === 'upwind';
-      return rounds ? [{ x: one.sailing.x[leg.to], y: one.sailing.y[leg.to] }] : [];
+/** A rounding further from a place than this was not there, however far. [m] */
+const NOT_THERE = 200;
+/** A mark is looked for so long before and after a leg's end. [s] */
+const AROUND = 90;
+/** A boat that came this close has rounded there. [m] */
+const ROUNDED = 40;
+
+/**
+ * Where the boats rounded: of the ends of all legs of a kind that another kind follows, the place that all those boats
+ * together came closest to about then; in the middle of their closest points. null where no boat rounded.
+ */
+function rounded(sailed: readonly Sailed[], kind: 'upwind' | 'downwind'): Place | null {
+  const ends = sailed.flatMap(({ legs, sailing }) =>
+    legs.slice(0, -1).flatMap((leg, k) => {
+      const rounds = leg.kind === kind && (legs[k + 1].kind === 'upwind') !== (kind === 'upwind');
+      return rounds && Number.isFinite(sailing.x[leg.to]) ? [{ sailing, row: leg.to }] : [];
     }),
   );
-  const place = { x: median(ends.map((end) => end.x)), y: median(ends.map((end) => end.y)) };
-  return Number.isNaN(place.x) ? null : place;
+  const passed = ends.map(({ sailing, row }) => {
+    const mark = { x: sailing.x[row], y: sailing.y[row] };
+    return ends.map((end) => closestTo(mark, end.sailing, end.row));
+  });
+  const sums = passed.map((near) => near.reduce((sum, { away }) => sum + Math.min(away, NOT_THERE), 0));
+  const best = passed.at(sums.indexOf(Math.min(...sums)));
+  if (!best) return null;
+  const there = best.filter(({ away }) => away <= ROUNDED);
+  return { x: median(there.map(({ x }) => x)), y: median(there.map(({ y }) => y)) };
+}
+
+/** The point of a track closest to a place about a row. */
+function closestTo(place: Place, { x, y, n }: Sailed['sailing'], row: number): Place & { readonly away: number } {
+  let best = { x: NaN, y: NaN, away: Infinity };
+  for (let i = Math.max(0, row - AROUND); i < Math.min(n, row + AROUND); i++) {
+    const away = Math.hypot(x[i] - place.x, y[i] - place.y);
+    if (away < best.away) best = { x: x[i], y: y[i], away };
+  }
+  return best;
 }

@@ -1,17 +1,17 @@
 /**
- * Hints against planted faults: the first hint of the boat that has the fault names it; of clean pairs at most one in ten
+ * Planted faults: the cause has the largest excess over the other boat, and the first hint names it; of clean pairs at most one in ten
  * is told anything. Short: six races each, so one miss more than the share is let pass; with LEGWORK_LONG=1 thirty
  * others.
  */
 import { describe, expect, it } from 'vitest';
 import { debrief } from '../../src/debrief.js';
-import type { Result } from '../../src/result/result.js';
+import type { BoatResult, Cause, Result } from '../../src/result/result.js';
 import { pointing, signed, sind } from './generator/directions.js';
 import { condition, generateRace, type Condition, type Faults, type Truth } from './generator/index.js';
 import { trueExcess } from './planted.js';
 
 const LONG = process.env['LEGWORK_LONG'] === '1';
-const SEEDS = Array.from({ length: LONG ? 30 : 6 }, (_, k) => (LONG ? 101 : 1) + k);
+const SEEDS = Array.from({ length: LONG ? 30 : 6 }, (_, k) => (LONG ? 301 : 1) + k);
 type LogChunks = ReturnType<ReturnType<typeof generateRace>['open']>['chunks'];
 const CALM = { skill: 0, events: false } as const;
 
@@ -44,52 +44,89 @@ function beyondLayLine({ boats: [boat], windward }: Truth): number {
 interface Planted {
   readonly name: string;
   readonly faults: Faults;
+  readonly cause: Cause;
   readonly words: RegExp;
   /** Whether the race gave the fault room: a boat that a shift brought to the mark never came to overstand it. */
   readonly came: (truth: Truth) => boolean;
-  /** Least share of the races in which it came. */
-  readonly share: number;
+  /** Least share of the races in which it came that a hint names it: told only beyond some 2.5 se, for so many are looked at. */
+  readonly told: number;
 }
 
 const always = (): boolean => true;
 const PLANTED: readonly Planted[] = [
-  { name: 'pinching 5 degrees', faults: { pinch: 5 }, words: /above the best course angle/, came: always, share: 0.9 },
-  // Largest in every race, and beyond two standard errors in 9 of 10 or more; told only beyond some 2.5, for so many are looked at.
-  { name: '3 % slow', faults: { slow: 0.03 }, words: /^Slower at the same angle/, came: always, share: 0.8 },
-  { name: 'tacks of twice the cost', faults: { tackCost: 2 }, words: /^Dearer tacks/, came: always, share: 0.7 },
+  {
+    name: 'pinching 5 degrees',
+    faults: { pinch: 5 },
+    cause: 'high',
+    words: /above the best course angle/,
+    came: always,
+    told: 0.9,
+  },
+  {
+    name: '3 % slow',
+    faults: { slow: 0.03 },
+    cause: 'speed',
+    words: /^Slower at the same angle/,
+    came: always,
+    told: 0.8,
+  },
+  {
+    name: 'tacks of twice the cost',
+    faults: { tackCost: 2 },
+    cause: 'manoeuvres',
+    words: /^Dearer tacks/,
+    came: always,
+    told: 0.8,
+  },
   {
     name: 'overstanding by 60 m',
     faults: { overstand: 60 },
+    cause: 'overstood',
     words: /beyond the lay line/,
     came: (truth) => beyondLayLine(truth) > 50 && trueExcess(truth).overstood > 20,
-    // Where the other boat stood on by a shift as well, or a later header made good the loss, nothing is told.
-    share: 0.5,
+    told: 0.8,
   },
   {
     name: 'the headed tack',
     faults: { headed: true },
+    cause: 'shifts',
     words: /^Shifts/,
-    came: (truth) => trueExcess(truth).shifts > 120,
-    share: 0.8,
+    came: always,
+    told: 0.7,
   },
 ];
 
-describe.each(PLANTED)('$name', ({ faults, words, came, share }) => {
-  it('is what the first hint names', async () => {
+/** Whether a cause has the largest excess (shifts apart), beyond two standard errors. */
+function leads({ excess }: BoatResult, cause: Cause): boolean {
+  const of = excess!.causes.find((one) => one.cause === cause)!.metres!;
+  const first = cause === 'shifts' || excess!.causes[0].cause === cause;
+  return first && of.se !== null && of.value > 2 * of.se;
+}
+
+const SHARE = 0.9;
+
+describe.each(PLANTED)('$name', ({ faults, cause, words, came, told }) => {
+  it('has the largest excess, beyond 2 se, in nine of ten; and is what the first hint names', async () => {
     let n = 0;
+    const behind: string[] = [];
     const missed: string[] = [];
     for (const seed of SEEDS) {
       const { result, truth } = await sailed({ faults, station: 'away' }, seed);
       if (!came(truth)) continue;
       n++;
       const [boat] = result.boats;
-      const told = boat.hints.map(({ text }) => text);
+      const texts = boat.hints.map(({ text }) => text);
+      const excess = boat.excess!.causes.map((one) => `${one.cause} ${one.metres!.value.toFixed(0)}`).join(' ');
+      if (!leads(boat, cause)) behind.push(`${seed}: ${excess}`);
       // Shifts come last: no habit of the boat, but what the day had for it.
-      const named = faults.headed ? told.some((text) => words.test(text)) : words.test(told[0] ?? '');
-      if (!named) missed.push(`${seed}: ${told.join(' / ')}`);
+      const named = faults.headed ? texts.some((text) => words.test(text)) : words.test(texts[0] ?? '');
+      if (!named) missed.push(`${seed}: ${texts.join(' / ')}`);
     }
     expect(n).toBeGreaterThan(SEEDS.length / 3);
-    expect(missed.length, missed.join('\n')).toBeLessThanOrEqual(1 + Math.floor((1 - share) * n));
+    // Of few races one more may fail than of many.
+    const slack = LONG ? 0 : 1;
+    expect(behind.length, behind.join('\n')).toBeLessThanOrEqual(slack + Math.floor((1 - SHARE) * n + 1e-9));
+    expect(missed.length, missed.join('\n')).toBeLessThanOrEqual(slack + Math.floor((1 - told) * n + 1e-9));
   }, 300_000);
 });
 

@@ -13,6 +13,7 @@ const OPEN: Course = {
   windward: null,
   leeward: null,
   foundLeeward: null,
+  foundWindward: null,
 };
 
 function legsOf(score: string, course: Partial<Course> = {}, options: Noise = {}): readonly Leg[] {

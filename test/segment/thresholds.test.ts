@@ -104,7 +104,7 @@ describe('thresholds over invented races', () => {
       const legs = (thresholds: Thresholds): number => {
         const { usual } = findManoeuvres(sailing, thresholds);
         const course = { gun: gun - sailing.t0, finish: finish - sailing.t0, runs: [], windward: null, leeward: null };
-        const found = findLegs(sailing, { ...course, foundLeeward: null }, usual, thresholds);
+        const found = findLegs(sailing, { ...course, foundLeeward: null, foundWindward: null }, usual, thresholds);
         return found.filter((leg) => leg.kind === 'upwind').length;
       };
       expect(legs(moved(name, factor))).toBe(legs(THRESHOLDS));
