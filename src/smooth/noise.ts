@@ -137,8 +137,9 @@ export function estimateNoise(
   const pieces = samplePieces(observations, stretches);
   const hasDoppler = observations.vx.some((v) => v === v);
   const names: Parameter[] = hasDoppler ? ['accel', 'white', 'drift', 'doppler'] : ['accel', 'white', 'drift'];
-  const score = (p: Parameters) =>
-    pieces.reduce((sum, piece) => sum + logLikelihood(observations, piece, toNoise(p), activity), logPrior(p, names));
+  const score = once((p) =>
+    pieces.reduce((sum, piece) => sum + logLikelihood(observations, piece, toNoise(p), activity), logPrior(p, names)),
+  );
   let best: Parameters = {
     accel: PRIOR.accel.value,
     white: PRIOR.white.value,
@@ -173,6 +174,17 @@ function meanSpeed(o: Observations, { from, to }: Stretch): number {
   while (first < last && o.x[first] !== o.x[first]) first++;
   while (last > first && o.x[last] !== o.x[last]) last--;
   return Math.hypot(o.x[last] - o.x[first], o.y[last] - o.y[first]) / (o.time[last] - o.time[first]);
+}
+
+/** A score that is worked out once for each place: a search comes back to where it was. */
+function once(score: (p: Parameters) => number): (p: Parameters) => number {
+  const known = new Map<string, number>();
+  return (p) => {
+    const key = `${p.accel} ${p.white} ${p.drift} ${p.doppler}`;
+    let value = known.get(key);
+    if (value === undefined) known.set(key, (value = score(p)));
+    return value;
+  };
 }
 
 function climb(

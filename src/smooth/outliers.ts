@@ -123,17 +123,23 @@ const STANDS_ALONE = 1.5;
  */
 export function spikeRows(o: Observations, { from, to }: Stretch): number[] {
   const spikes: number[] = [];
-  let [before, row] = [-1, nextFix(o, from, to)];
-  let [offBefore, off] = [0, 0];
+  let before = -1;
+  let row = nextFix(o, from, to);
+  let next = nextFix(o, row + 1, to);
+  let offBefore = 0;
+  let off = 0;
   while (row < to) {
-    const next = nextFix(o, row + 1, to);
     const after = nextFix(o, next + 1, to);
     const offNext = after < to ? offChord(o, row, next, after) : 0;
     const alone = off > STANDS_ALONE * Math.max(offBefore, offNext);
     if (before >= 0 && next < to && alone && off > turnLimit(o, before, row, next) && isPlausible(o, before, next)) {
       spikes.push(row);
     }
-    [before, row, offBefore, off] = [row, next, off, offNext];
+    before = row;
+    row = next;
+    next = after;
+    offBefore = off;
+    off = offNext;
   }
   return spikes;
 }
