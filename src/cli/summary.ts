@@ -50,7 +50,7 @@ function titleLines(result: Result, job: PlainJob): string[] {
   return [outColour.bold(titleOf(result, job)), wind];
 }
 
-const HEAD = ['boat', 'beat', 'start', 'min', 'tacks', 'angle °', 'speed kn', 'VMG kn', 'of best', 'lost m'];
+const HEAD = ['boat', 'beat', 'start', 'min', 'tacks', 'angle °', 'speed kn', 'VMG kn', 'of model', 'lost m'];
 
 /** Beats of all boats, one line each. */
 function legTable(result: Result, zone: string | null): string[] {

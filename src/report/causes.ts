@@ -17,7 +17,7 @@ export const CAUSE_MEANING: Readonly<Record<Cause, string>> = {
   manoeuvres: 'Tacks, other turns and the recovery after them.',
   start: 'From the gun or the leeward turn until settled, and the last seconds at the windward mark.',
   high: 'Sailed nearer the wind than the reference’s best angle.',
-  low: 'Sailed wider than the reference’s best angle.',
+  low: 'Sailed wider than the reference’s best angle; the reach into the mark after a lift is in it.',
   trim: 'What the inferred sheeting angle accounts for, where leeway was measured.',
   speed:
     'Slower than the reference at the angle sailed: waves, weight, gear, steering, and what the boat model does not know.',

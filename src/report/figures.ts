@@ -104,30 +104,6 @@ export function causeTotals(boat: BoatResult): CauseTotal[] {
   });
 }
 
-/** What cost most, shifts apart; only what cost anything. */
-export function largestLosses(boat: BoatResult, count: number): CauseTotal[] {
-  return causeTotals(boat)
-    .filter(({ cause, metres }) => cause !== 'shifts' && metres.value >= 0.5)
-    .sort((a, b) => b.metres.value - a.metres.value)
-    .slice(0, count);
-}
-
-/** The smallest figure for the same cause among the other boats: what it can cost on this day. */
-export function leastOfOthers(
-  result: Result,
-  boat: BoatResult,
-  cause: Cause,
-): { name: string; metres: Quantity } | null {
-  let least: { name: string; metres: Quantity } | null = null;
-  for (const other of result.boats) {
-    if (other === boat) continue;
-    const entry = causeTotals(other).find((c) => c.cause === cause);
-    if (entry && (!least || entry.metres.value < least.metres.value))
-      least = { name: other.name, metres: entry.metres };
-  }
-  return least;
-}
-
 export function manoeuvresOf(boat: BoatResult, leg: LegResult): ManoeuvreResult[] {
   const from = secondsOf(leg.start);
   const to = secondsOf(leg.end);

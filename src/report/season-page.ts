@@ -1,19 +1,7 @@
 import type { Q } from '../result/result.js';
 import { trendChart, type TrendPoint } from './charts/trend.js';
 import { document } from './document.js';
-import {
-  inline,
-  isoOf,
-  number,
-  plain,
-  plural,
-  quantity,
-  scaled,
-  suffix,
-  time,
-  timeText,
-  type Unit,
-} from './format.js';
+import { inline, isoOf, number, plain, plural, quantity, scaled, suffix, time, timeText, type Unit } from './format.js';
 import { html, nameOf, type Part, type Safe } from './html.js';
 import { figure, section, table } from './sections/figure.js';
 import { termCards } from './terms.js';
@@ -131,13 +119,7 @@ function spanOf(season: SeasonData): Part {
   return html`${plural(races, 'race')}, ${time(from, 'day')} to ${time(to, 'day')}.`;
 }
 
-function sailorSection(
-  sailor: SailorTrends,
-  detail: SailorDetail,
-  index: number,
-  origin: number,
-  links: Links,
-): Safe {
+function sailorSection(sailor: SailorTrends, detail: SailorDetail, index: number, origin: number, links: Links): Safe {
   const plates = detail.trends.map((t, k) => trendPlate(t, sailor.trends[k], origin, links));
   const heading = html`${sailor.name}`;
   return html`<section id="sailor-${index}" aria-labelledby="h-sailor-${index}">
@@ -237,7 +219,8 @@ function trendPlate(
     }),
     title: words,
     summary: html`${shown ? 'The line is evidence of a change.' : 'The broken line is no evidence of a change yet.'}
-    Bars are one standard error.${wind}${points.some(({ href }) => href !== undefined) && ' A point in a ring opens the page of its race.'}`,
+    Bars are one standard
+    error.${wind}${points.some(({ href }) => href !== undefined) && ' A point in a ring opens the page of its race.'}`,
     table: raceTable(races, key, links),
   });
 }

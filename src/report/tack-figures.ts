@@ -70,8 +70,7 @@ function backAfter(speed: Float64Array, at: number, before: number, step: number
 
 /** By the bow where it was logged, else by the course. */
 function fastest({ ux, uy, heading }: TurnColumns, at: number, step: number): number {
-  const direction = (i: number): number =>
-    Number.isFinite(heading[i]) ? heading[i] : DEG * Math.atan2(ux[i], uy[i]);
+  const direction = (i: number): number => (Number.isFinite(heading[i]) ? heading[i] : DEG * Math.atan2(ux[i], uy[i]));
   const half = Math.max(1, Math.round(1.5 / step));
   const reach = Math.round(8 / step);
   let most = NaN;

@@ -1,16 +1,8 @@
 import { readFileSync } from 'node:fs';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
-import {
-  dayBest,
-  difference,
-  largestLosses,
-  settledMean,
-  tackCost,
-  timeMean,
-  total,
-  upwindLegs,
-} from '../../src/report/figures.js';
+import { dayBest, difference, settledMean, tackCost, timeMean, total, upwindLegs } from '../../src/report/figures.js';
+import { findingsOf } from '../../src/report/findings.js';
 import { duration, errorNote, inline, plain, quantity, signed } from '../../src/report/format.js';
 import { html } from '../../src/report/html.js';
 import { sanitizeJson } from '../../src/report/json.js';
@@ -23,7 +15,8 @@ import {
   stretches,
   type ColumnName,
 } from '../../src/report/payload.js';
-import type { Quantity } from '../../src/result/result.js';
+import { debriefPage } from '../../src/report/page.js';
+import type { BoatResult, Cause, Quantity } from '../../src/result/result.js';
 import { buildClient, GENERATED } from './build-client.js';
 import { sample } from './sample.js';
 
@@ -127,9 +120,51 @@ describe('sums and differences', () => {
   });
 
   test('findings leave shifts out and fall in size', () => {
-    const losses = largestLosses(result.boats[1], 3);
-    expect(losses.map((l) => l.cause)).not.toContain('shifts');
-    expect(losses.map((l) => l.metres.value)).toEqual([...losses.map((l) => l.metres.value)].sort((a, b) => b - a));
+    const found = findingsOf(result.boats[1], 3);
+    expect(found.some(({ causes }) => causes.has('shifts'))).toBe(false);
+    const metres = found.map((one) => one.metres.value);
+    expect(metres).toEqual([...metres].sort((a, b) => b - a));
+  });
+
+  /** A boat with one beat and such a ledger. */
+  function boatWith(entries: Partial<Record<Cause, number>>): BoatResult {
+    const [boat] = result.boats;
+    const [leg] = boat.legs;
+    const made = Object.entries(entries).map(([cause, metres]) => ({ cause: cause as Cause, metres: q(metres, 3) }));
+    return { ...boat, legs: [{ ...leg, ledger: { ...leg.ledger!, entries: made } }] };
+  }
+
+  test('an angle that speed has paid for is no finding by itself: they are told together, with their parts', () => {
+    const low = boatWith({ manoeuvres: 20, high: 0, low: 77, trim: 0, speed: -71, shifts: -40 });
+    const found = findingsOf(low, 3);
+    expect(found.map(({ words }) => words)).toEqual(['Tacks and turns', 'Angle and speed together']);
+    expect(found[1].metres).toEqual({ value: 6, se: 6, basis: 'derived' }); // four errors of 3 in quadrature
+    expect(found[1].parts.map(({ cause, metres }) => [cause, metres.value])).toEqual([['low', 77], ['speed', -71]]); // prettier-ignore
+    const page = debriefPage({ ...result, boats: [low, result.boats[1]] }, series);
+    expect(page).toMatch(
+      /Angle and speed together<\/span>.*?sailing low <span class="n">77<\/span>, speed for the angle <span class="n">−71/,
+    );
+  });
+
+  test('an angle that nothing paid for stays a finding of its own', () => {
+    const found = findingsOf(boatWith({ manoeuvres: 20, high: 35, low: 0, speed: 8 }), 3);
+    expect(found.map(({ words }) => words)).toEqual(['Sailing high', 'Tacks and turns', 'Speed for the angle']);
+  });
+
+  test('nobody is told apart whom the error does not tell apart', () => {
+    const [a, b] = result.boats;
+    const at = (boat: BoatResult, vmg: number): BoatResult => ({
+      ...boat,
+      legs: boat.legs.map((leg) => ({ ...leg, vmg_kn: q(vmg, 0.05), steady: leg.steady && { ...leg.steady, vmg_kn: q(vmg, 0.05) } })),
+    }); // prettier-ignore
+    const leadOf = (first: number, second: number): string => {
+      const page = debriefPage({ ...result, boats: [at(a, first), at(b, second)] }, series);
+      return page.slice(page.indexOf('<dl class="lead"'), page.indexOf('</dl>'));
+    };
+    expect(leadOf(3.5, 3.48)).toContain('no difference shown');
+    expect(leadOf(3.5, 3.48)).not.toContain('<b><bdi>Corrie</bdi></b> by <span class="nb"><span class="n">0.02');
+    expect(leadOf(3.9, 3.48)).toContain('<b><bdi>Corrie</bdi></b> by <span class="nb"><span class="n">0.42');
+    expect(leadOf(3.48, 3.9)).toContain('<b><bdi>Linnet</bdi></b> by <span class="nb"><span class="n">0.42');
   });
 
   test('the cost of a tack is the mean over the tacks of that leg', () => {

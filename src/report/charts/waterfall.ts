@@ -2,8 +2,9 @@ import { scaleLinear } from 'd3-scale';
 import { plain } from '../format.js';
 import { CAUSE_WORDS } from '../causes.js';
 import type { CauseTotal } from '../figures.js';
+import { ANGLE_AND_SPEED } from '../findings.js';
 import { GAIN, INK, LOSS, SOFT } from '../palette.js';
-import { el, footAxis, line, numberText, picture, text } from './svg.js';
+import { coordinate, el, footAxis, line, numberText, picture, text } from './svg.js';
 
 export interface WaterfallData {
   readonly boat: string;
@@ -49,17 +50,47 @@ export function waterfall(data: WaterfallData, options: Partial<WaterfallOptions
   const reach = o.reach ?? waterfallReach([data]);
   const low = o.floor ?? waterfallFloor([data]);
   const x = scaleLinear([low, reach], [LEFT, o.width - RIGHT]);
-  const rows = parts.steps.length + 1 + (parts.shifts ? 1 : 0);
+  const together = togetherStep(parts.steps);
+  const after = together ? parts.steps.indexOf(together.last) + 1 : parts.steps.length;
+  const rowOf = (i: number): number => (i + (i >= after && together ? 1 : 0)) * o.rowHeight;
+  const rows = parts.steps.length + 1 + (together ? 1 : 0) + (parts.shifts ? 1 : 0);
   const foot = rows * o.rowHeight + (parts.shifts ? 16 : 8);
   const body = [
     line(x(0), 4, x(0), foot, SOFT, { 'stroke-width': 0.9 }),
-    ...parts.steps.map((s, i) => stepRow(s, i * o.rowHeight, o, x)),
-    totalRow(parts.lost, parts.steps.length * o.rowHeight, o, x),
-    parts.shifts ? shiftRow(parts.shifts, (parts.steps.length + 1) * o.rowHeight + 8, o, x) : '',
+    ...parts.steps.map((s, i) => stepRow(s, rowOf(i), o, x)),
+    together ? togetherRow(together, after * o.rowHeight, o, x) : '',
+    totalRow(parts.lost, rowOf(parts.steps.length), o, x),
+    parts.shifts ? shiftRow(parts.shifts, rowOf(parts.steps.length) + o.rowHeight + 8, o, x) : '',
     footAxis(x, foot, { count: 5 }),
     text(o.width, foot + 18, 'metres', { size: 11, italic: true, fill: SOFT, anchor: 'end' }),
   ];
   return picture(o.width, foot + 26, waterfallLabel(data), body.join(''), { class: 'waterfall' });
+}
+
+/** From where angle and speed begin to where they end. */
+interface Together {
+  readonly from: number;
+  readonly to: number;
+  readonly last: Step;
+}
+
+/** Angle and speed as one, where both came to something: they stand next to one another in the ledger. */
+export function togetherStep(all: readonly Step[]): Together | null {
+  const trade = all.filter(({ entry }) => ANGLE_AND_SPEED.has(entry.cause));
+  const telling = trade.filter(({ entry }) => Math.abs(entry.metres.value) >= 0.5);
+  if (telling.length < 2) return null;
+  const last = trade[trade.length - 1];
+  return { from: trade[0].from, to: last.to, last };
+}
+
+function togetherRow({ from, to }: Together, top: number, o: WaterfallOptions, x: X): string {
+  const middle = top + o.rowHeight / 2;
+  return [
+    text(LEFT - 10, middle + 3, 'angle and speed together', { anchor: 'end', size: 11.5, italic: true, fill: SOFT }),
+    el('path', { d: `M${coordinate(x(from))} ${middle - 5}V${middle}H${coordinate(x(to))}V${middle - 5}`, fill: 'none', stroke: INK, 'stroke-width': 1.2 }),
+    line(x(to), middle, x(to), middle + o.rowHeight - 7, SOFT, { 'stroke-width': 0.7, 'stroke-dasharray': '1.5 2' }),
+    numberText(o.width - RIGHT + 44, middle + 4, to - from, 0, { anchor: 'end', size: 11.5, italic: true, fill: SOFT }),
+  ].join(''); // prettier-ignore
 }
 
 export function waterfallFloor(all: readonly WaterfallData[]): number {

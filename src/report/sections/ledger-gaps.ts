@@ -1,5 +1,7 @@
 import type { BoatResult } from '../../result/result.js';
 import { CAUSE_MEANING, CAUSE_WORDS } from '../causes.js';
+import { total } from '../figures.js';
+import { ANGLE_AND_SPEED, TOGETHER_MEANING, TOGETHER_WORDS } from '../findings.js';
 import { inline, quantity } from '../format.js';
 import { html, nameOf, type Part, type Safe } from '../html.js';
 import { ledgerGaps, type LedgerGap } from '../ledger-gaps.js';
@@ -24,7 +26,7 @@ export function ledgerGapTable(first: BoatResult, second: BoatResult): Part {
       html`Where ${nameOf(names[0])} lost more than ${nameOf(names[1])}, metres (below zero: less)`,
       ['', ...gaps.laps.map((lap) => `Lap ${lap}`), ...(several ? ['Together'] : [])],
       [
-        ...gaps.causes.map(row),
+        ...withTogether(gaps.causes, row, cells),
         [html`<b>Before shifts</b>`, ...cells(gaps.before)],
         ...(gaps.shifts ? [row(gaps.shifts)] : []),
       ],
@@ -32,6 +34,24 @@ export function ledgerGapTable(first: BoatResult, second: BoatResult): Part {
     )}
     ${saidOf(gaps.causes, names)}
   </div>`;
+}
+
+/** The causes, and after the last of angle and speed their sum. */
+function withTogether(
+  causes: readonly LedgerGap[],
+  row: (gap: LedgerGap) => Part[],
+  cells: (gap: Pick<LedgerGap, 'laps' | 'together'>) => Part[],
+): Part[][] {
+  const rows = causes.map(row);
+  const trade = causes.filter(({ cause }) => ANGLE_AND_SPEED.has(cause));
+  if (trade.length < 2) return rows;
+  const laps = trade[0].laps.map((_, k) => total(trade.map((gap) => gap.laps[k]).filter((q) => q !== null)));
+  const sum = { laps, together: total(trade.map(({ together }) => together).filter((q) => q !== null)) };
+  rows.splice(causes.indexOf(trade[trade.length - 1]) + 1, 0, [
+    html`<i title="${TOGETHER_MEANING}">${TOGETHER_WORDS}</i>`,
+    ...cells(sum),
+  ]);
+  return rows;
 }
 
 /** What is more than chance, largest first. */

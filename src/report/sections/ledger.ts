@@ -1,7 +1,8 @@
-import type { BoatResult, Result } from '../../result/result.js';
+import type { BoatResult, Cause, LegResult, Q, Result } from '../../result/result.js';
 import { waterfall, waterfallFloor, waterfallReach } from '../charts/waterfall.js';
 import { CAUSE_MEANING, CAUSE_WORDS, REFERENCE_WORDS } from '../causes.js';
 import { causeTotals, total, upwindLegs } from '../figures.js';
+import { ANGLE_AND_SPEED, TOGETHER_MEANING, TOGETHER_WORDS } from '../findings.js';
 import { inline, quantity } from '../format.js';
 import { html, nameOf, type Part, type Safe } from '../html.js';
 import { term } from '../terms.js';
@@ -12,11 +13,22 @@ import { whyNoLedger } from './verdict.js';
 function ledgerTable(boat: BoatResult): Safe {
   const legs = upwindLegs(boat).filter(({ leg }) => leg.ledger);
   const causes = causeTotals(boat);
-  const rows = causes.map(({ cause, metres }) => [
+  const entryOf = (leg: LegResult, cause: Cause): Q =>
+    leg.ledger!.entries.find((e) => e.cause === cause)?.metres ?? null;
+  const rows = causes.map(({ cause, metres }): Part[] => [
     html`<span title="${CAUSE_MEANING[cause]}">${CAUSE_WORDS[cause]}</span>`,
-    ...legs.map(({ leg }) => quantity(leg.ledger!.entries.find((e) => e.cause === cause)?.metres ?? null, 'm')),
+    ...legs.map(({ leg }) => quantity(entryOf(leg, cause), 'm')),
     quantity(metres, 'm'),
   ]);
+  const trade = causes.filter(({ cause }) => ANGLE_AND_SPEED.has(cause));
+  if (trade.length > 1) {
+    const sums = legs.map(({ leg }) => total(trade.map(({ cause }) => entryOf(leg, cause)).filter((q) => q !== null)));
+    const row = [...sums, total(trade.map(({ metres }) => metres))].map((q) => quantity(q, 'm'));
+    rows.splice(causes.indexOf(trade[trade.length - 1]) + 1, 0, [
+      html`<i title="${TOGETHER_MEANING}">${TOGETHER_WORDS}</i>`,
+      ...row,
+    ]);
+  }
   const sums: Part[][] = (['lost_m', 'available_m', 'made_m'] as const).map((key) => [
     { lost_m: 'Lost in all', available_m: 'Available', made_m: 'Made good' }[key],
     ...legs.map(({ leg }) => quantity(leg.ledger![key], 'm')),

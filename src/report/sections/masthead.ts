@@ -54,15 +54,5 @@ export function masthead(result: Result, series: RaceSeries, kind: string): Safe
       ${time(from, 'day')}, ${time(from, 'hm')} to ${time(to, 'hm')} <span id="zone-words">UTC</span>.${gun}
       ${windLine(result)}
     </p>
-    <ul class="boats">
-      ${result.boats.map(
-        (boat, i) =>
-          html`<li>
-            ${swatch(i)}
-            <b>${nameOf(boat.name)}</b
-            >${boat.sailor !== boat.name && html` <span class="soft">${nameOf(boat.sailor)}</span>`}
-          </li>`,
-      )}
-    </ul>
   </header>`;
 }

@@ -1,20 +1,12 @@
 import type { BoatResult, Hint, Quantity, Result } from '../../result/result.js';
-import { CAUSE_MEANING, CAUSE_WORDS, REFERENCE_WORDS } from '../causes.js';
-import {
-  beyondError,
-  dayBest,
-  difference,
-  efficiencyMean,
-  largestLosses,
-  leastOfOthers,
-  settledMean,
-  upwindLegs,
-  type DayBest,
-} from '../figures.js';
+import { CAUSE_WORDS } from '../causes.js';
+import { beyondError, dayBest, difference, efficiencyMean, settledMean, upwindLegs, type DayBest } from '../figures.js';
+import { findingsOf, leastOfOthers, type Finding } from '../findings.js';
 import { inline, number, plural, quantity } from '../format.js';
 import { el } from '../charts/svg.js';
 import { html, nameOf, trusted, type Part, type Safe } from '../html.js';
 import { term } from '../terms.js';
+import { lead } from './lead.js';
 import { swatch } from './masthead.js';
 import { section } from './figure.js';
 
@@ -23,21 +15,27 @@ function against(boat: BoatResult, vmg: Quantity, best: DayBest): Safe {
   const where = own ? html`her own lap ${best.leg.lap}` : html`${nameOf(best.boat.name)}, lap ${best.leg.lap}`;
   if (own && upwindLegs(boat).length === 1) return html`This is ${term('dayBest', 'the day’s best')}.`;
   const gap = difference(vmg, best.vmg)!;
+  const digits = digitsThatTell(gap);
   const dayBestWords = html`${term('dayBest')} (${where}: ${inline(best.vmg, 'kn')})`;
-  const amount = inline({ ...gap, value: Math.abs(gap.value) }, 'kn');
+  const amount = inline({ ...gap, value: Math.abs(gap.value) }, 'kn', { digits });
   if (!beyondError(gap))
-    return html`No difference beyond the error from ${dayBestWords}: ${inline(gap, 'kn', { sign: true })}.`;
+    return html`No difference beyond the error from ${dayBestWords}: ${inline(gap, 'kn', { sign: true, digits })}.`;
   return html`${amount} ${gap.value < 0 ? 'below' : 'above'} ${dayBestWords}.`;
+}
+
+/** One figure more where the usual two, rounded, would say otherwise of twice the error than the values do. */
+function digitsThatTell({ value, se }: Quantity): number {
+  const rounded = (x: number): number => Math.round(100 * Math.abs(x)) / 100;
+  const told = rounded(value) > 2 * rounded(se ?? 0);
+  return told === beyondError({ value, se, basis: 'derived' }) ? 2 : 3;
 }
 
 function modelLine(boat: BoatResult): Part {
   const share = efficiencyMean(boat);
   if (!share) return null;
-  const model = boat.model.tuned
-    ? html`the tuned ${boat.model.boat} model`
-    : html`the ${boat.model.boat} model, which is not tuned to this boat`;
   return html`<p class="second">
-    ${inline(share, 'percent', { times: 100 })} of the ${term('optimum')}, by ${model}.
+    ${inline(share, 'percent', { times: 100 })} of the ${term('optimum')} (${boat.model.boat},
+    ${boat.model.tuned ? 'tuned' : 'not tuned'}).
   </p>`;
 }
 
@@ -60,30 +58,41 @@ function bar(share: number): Safe {
 
 /** The three largest items of the ledger, shifts apart, each beside the least of the other boats. */
 function findings(result: Result, boat: BoatResult): Safe {
-  const losses = largestLosses(boat, 3);
+  const found = findingsOf(boat, 3);
   const ledger = upwindLegs(boat).find(({ leg }) => leg.ledger)?.leg.ledger;
-  if (losses.length === 0 || !ledger) return html`<p class="second">No ledger of metres: ${whyNoLedger(boat)}.</p>`;
-  const most = losses[0].metres.value;
-  const rows = losses.map(({ cause, metres }) => {
-    const other = leastOfOthers(result, boat, cause);
-    const excess = other && difference(metres, other.metres);
-    const note =
-      other &&
-      html` <span class="soft"
-        >${nameOf(other.name)}
-        ${number(other.metres.value, 0)}${beyondError(excess) ? '' : '; not apart beyond the error'}</span
-      >`;
-    return html`<li>
-      ${bar(metres.value / most)}<span class="what" title="${CAUSE_MEANING[cause]}">${CAUSE_WORDS[cause]}</span>
-      <span class="metres">${quantity(metres, 'm')}</span>${note}
-    </li>`;
-  });
+  if (found.length === 0 || !ledger) return html`<p class="second">No ledger of metres: ${whyNoLedger(boat)}.</p>`;
+  const most = found[0].metres.value;
+  const rows = found.map(
+    (one) =>
+      html`<li>
+        ${bar(one.metres.value / most)}<span class="what" title="${one.meaning}">${one.words}</span>
+        <span class="metres">${quantity(one.metres, 'm')}</span>${noteOf(result, boat, one)}
+      </li>`,
+  );
   return html`<p class="lead-in">
-      Where the metres went, ${plural(upwindLegs(boat).length, 'beat')}, against ${REFERENCE_WORDS[ledger.reference]}:
+      Where the metres went, ${plural(upwindLegs(boat).length, 'beat')}, against the
+      ${term('reference', REFERENCE_SHORT[ledger.reference])}:
     </p>
     <ol class="findings">
       ${rows}
     </ol>`;
+}
+
+const REFERENCE_SHORT = { model: 'boat model', best: 'day’s best sailing', file: 'boat file given' } as const;
+
+/** What it is made of, and the same of the other boat that lost least by it. */
+function noteOf(result: Result, boat: BoatResult, { causes, metres, parts }: Finding): Part {
+  const other = leastOfOthers(result, boat, causes);
+  const excess = other && difference(metres, other.metres);
+  const made = parts.map(
+    ({ cause, metres: { value } }, k) => html`${k > 0 && ', '}${CAUSE_WORDS[cause].toLowerCase()} ${number(value, 0)}`,
+  );
+  if (parts.length === 0 && !other) return null;
+  return html` <span class="soft"
+    >${made}${parts.length > 0 && other && '. '}${other && html`${nameOf(other.name)} ${number(other.metres.value, 0)}`}${
+      other && !beyondError(excess) && '; not apart beyond the error'
+    }</span
+  >`;
 }
 
 export function whyNoLedger(boat: BoatResult): string {
@@ -106,14 +115,20 @@ function hints(boat: BoatResult): Part {
     </ul>`;
 }
 
+function sailorOf({ name, sailor }: BoatResult): Part {
+  return sailor !== name && html` <span class="soft">${nameOf(sailor)}</span>`;
+}
+
 function boatVerdict(result: Result, boat: BoatResult, index: number, best: DayBest | null): Safe {
   const vmg = settledMean(boat, 'vmg_kn');
   const figure = vmg
-    ? html`<p class="figure">${quantity(vmg, 'kn')} <span class="what">${term('settled')} ${term('vmg')}</span></p>
-        ${best && html`<p class="first">${against(boat, vmg, best)}</p>`}`
+    ? html`${best && html`<p class="first">${against(boat, vmg, best)}</p>`}`
     : html`<p class="first">No settled ${term('vmg')} to windward: ${whyNoLedger(boat)}.</p>`;
   return html`<article class="verdict">
-    <h3>${swatch(index)} ${nameOf(boat.name)}</h3>
+    <div class="verdict-head">
+      <h3>${swatch(index)} ${nameOf(boat.name)}${sailorOf(boat)}</h3>
+      ${vmg && html`<p class="figure">${quantity(vmg, 'kn')} <span class="what">${term('settled')} ${term('vmg')}</span></p>`}
+    </div>
     ${figure}${angleLine(boat)}${modelLine(boat)}${findings(result, boat)}${hints(boat)}
   </article>`;
 }
@@ -125,7 +140,8 @@ export function verdicts(result: Result): Safe {
   return section(
     'verdict',
     'The short of it',
-    html`<div class="verdicts">${cards}</div>
+    html`${lead(result)}
+      <div class="verdicts">${cards}</div>
       <p class="small">
         ${term('standardError', 'Every ±')} is one standard error. Remarks are hints to test on the water, not
         instructions.
