@@ -42,15 +42,16 @@ export interface Stepping {
   readonly habit: number;
 }
 
-/** Rows that hold a position. */
-export function fixRows(observations: Observations): Int32Array {
+/**
+ * Rows that hold a position.
+ *
+ * @param room As long as the log; what is returned lies in it, so that a long log is not asked for memory again.
+ */
+export function fixRows(observations: Observations, room: Int32Array): Int32Array {
   const { x } = observations;
-  let n = 0;
-  for (let i = 0; i < x.length; i++) if (x[i] === x[i]) n++;
-  const rows = new Int32Array(n);
   let k = 0;
-  for (let i = 0; i < x.length; i++) if (x[i] === x[i]) rows[k++] = i;
-  return rows;
+  for (let i = 0; i < x.length; i++) if (x[i] === x[i]) room[k++] = i;
+  return room.subarray(0, k);
 }
 
 /** How the fixes follow each other. */
@@ -73,12 +74,14 @@ export function stepping(time: Float64Array, rows: Int32Array): Stepping {
  *
  * @param observations Positions; NaN where none.
  * @param breaks       Rows at which a new piece begins.
+ * @param room         As long as the log, to work in.
  */
 export function findStretches(
   observations: Observations,
   breaks: readonly number[],
+  room: Int32Array,
 ): { stretches: Stretch[]; gaps: Gap[]; step: Stepping } {
-  const rows = fixRows(observations);
+  const rows = fixRows(observations, room);
   const step = stepping(observations.time, rows);
   const limit = Math.min(LONGEST_HOLE, Math.max(SHORTEST_GAP, GAP_STEPS * step.median));
   const stretches: Stretch[] = [];

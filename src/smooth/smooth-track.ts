@@ -49,9 +49,10 @@ export function smoothTrack(recording: Recording, frame: Frame, options: SmoothO
   const rejections = new Rejections(observations);
   rejections.add(STALE, staleRows(observations));
   const breaks = [...recording.breaks];
-  const near = dropFar(observations, findStretches(observations, breaks).stretches, rejections);
+  const room = new Int32Array(recording.time.length);
+  const near = dropFar(observations, findStretches(observations, breaks, room).stretches, rejections);
   for (const stretch of near) rejections.add(JUMP, spikeRows(observations, stretch));
-  const step = stepping(observations.time, fixRows(observations)).median;
+  const step = stepping(observations.time, fixRows(observations, room)).median;
   const activity = activityOf(observations, near, step);
   const lag = options.noise?.dopplerLag ?? dopplerLag(observations, near, activity);
   if (lag > 0) undoLag(observations, lag, activity);
@@ -59,8 +60,10 @@ export function smoothTrack(recording: Recording, frame: Frame, options: SmoothO
   const jumps = gateAll(observations, near, noise, activity, rejections);
   for (const { row } of jumps) breaks.push(row);
   breaks.sort((p, q) => p - q);
-  dropLonely(observations, findStretches(observations, breaks).stretches, rejections);
-  const { stretches, gaps } = findStretches(observations, breaks);
+  const found = findStretches(observations, breaks, room);
+  const { stretches, gaps } = dropLonely(observations, found.stretches, rejections)
+    ? findStretches(observations, breaks, room)
+    : found;
   const track = attachInstruments(smoothAll(recording.name, observations, stretches, noise, activity), recording);
   return {
     track,
@@ -125,10 +128,11 @@ function countFixes(o: Observations, { from, to }: Stretch): number {
   return n;
 }
 
-function dropLonely(o: Observations, stretches: readonly Stretch[], rejections: Rejections): void {
-  for (const stretch of stretches) {
-    if (countFixes(o, stretch) < FEWEST_FIXES) rejections.add(LONELY, rowsOf(stretch.from, stretch.to));
-  }
+/** Takes out the fixes of stretches too short for a velocity; returns whether there were any. */
+function dropLonely(o: Observations, stretches: readonly Stretch[], rejections: Rejections): boolean {
+  const lonely = stretches.filter((stretch) => countFixes(o, stretch) < FEWEST_FIXES);
+  for (const { from, to } of lonely) rejections.add(LONELY, rowsOf(from, to));
+  return lonely.length > 0;
 }
 
 /** Keeps the part of the log that holds most fixes where it spans more than a week. */
