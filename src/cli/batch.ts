@@ -120,6 +120,7 @@ class Batch {
   async #begin(step: Step): Promise<Outcome> {
     if ('error' in step) return step;
     const { job, places, several, from } = step;
+    if (several) this.#progress.say(this.#bar());
     try {
       const filed = from === null ? null : await (await this.#made()).unchanged(from, job, places);
       if (filed) return { ...step, filed };

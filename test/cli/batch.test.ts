@@ -1,12 +1,13 @@
 /** Several races in one run: worked on at once, told in order; what has not changed is not worked on again. */
-import { readFileSync, rmSync } from 'node:fs';
+import { spawn } from 'node:child_process';
+import { existsSync, readFileSync, rmSync } from 'node:fs';
 import { join } from 'node:path';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { failureFrom, plainFailure } from '../../src/cli/failures.js';
 import { inOrder } from '../../src/cli/in-order.js';
 import { UserError } from '../../src/recording/issues.js';
 import { gpxText, inventedBeat, windText } from './invented-beat.js';
-import { buildProgram, drop, dropProgram, ended, filesBelow, fill, folder, run, start } from './run.js';
+import { buildProgram, drop, dropProgram, ended, filesBelow, fill, folder, helperPath, run, start } from './run.js';
 
 const LONG = process.env.LEGWORK_LONG === '1';
 
@@ -74,6 +75,21 @@ describe('several races', () => {
     expect(alone.out.trim().split('\n')).toHaveLength(names.length);
     expect(alone.err).toMatch(/elsewhere\.csv/);
     for (const other of together) expect(other).toEqual(alone);
+  });
+
+  const SCRIPT = '/usr/bin/script';
+  it.skipIf(!existsSync(SCRIPT) || process.platform !== 'linux')('on a terminal, how far they are', async () => {
+    const cwd = folder({ ...LOGS, 'spring/1.yaml': RACE, 'spring/2.yaml': RACE.replace('One', 'Two') });
+    const command = [process.execPath, helperPath('legwork'), 'debrief', 'spring'].join(' ');
+    const env = { ...process.env, TERM: 'xterm' };
+    delete (env as NodeJS.ProcessEnv).CI;
+    const child = spawn(SCRIPT, ['-qec', command, '/dev/null'], { cwd, env, stdio: 'pipe' });
+    child.stdin.end();
+    const { code, out } = await ended(child);
+    expect(code).toBe(0);
+    for (const n of [0, 1, 2]) expect(out).toMatch(new RegExp(`\\[[#.]{20}\\] ${n} of 2 races`));
+    expect(out.trimEnd().split('\r').at(-1)!.endsWith('2K')).toBe(true);
+    drop(cwd);
   });
 
   it('a number of workers that is none is refused', async () => {

@@ -1,5 +1,6 @@
 /** Killed at any moment a run leaves the logbook whole: every file in it the old result or the new one. */
 import { spawn } from 'node:child_process';
+import type { ChildProcess } from 'node:child_process';
 import { readdirSync, readFileSync, utimesSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { pathToFileURL } from 'node:url';
@@ -94,14 +95,25 @@ describe('the program, killed from outside', () => {
   const STAGES = ['not started', 'starting', 'reading logs', 'report written', 'lock'];
   STAGES.push('open', 'write', 'flush', 'rename', 'folder sync', 'filed', 'done');
 
-  it('at whatever moment, the steps of filing stretched so that some fall on each', async () => {
+  /** Steps of filing are stretched by this, so that kills fall on each. [ms] */
+  const SLOW = 200;
+  /** Stages from the lock to the flush of the folder. */
+  const FILING = STAGES.indexOf('filed') - STAGES.indexOf('lock');
+
+  const stageIn = (note: string): string => readFileSync(note, 'utf8').trim();
+
+  async function filing(child: ChildProcess, note: string): Promise<void> {
+    while (child.exitCode === null && stageIn(note) !== 'lock') await new Promise((resolve) => setTimeout(resolve, 5));
+  }
+
+  it('at whatever moment', async () => {
     const cwd = folder({ 'race.yaml': RACE, 'ann.gpx': gpxText(inventedBeat()), 'wind.csv': windText() });
     const book = join(cwd, 'book');
     const env = {
       NODE_OPTIONS: `--import ${pathToFileURL(helperPath('kill-at')).href}`,
       FAULT_FOLDER: book,
       FAULT_NOTE: join(cwd, 'note'),
-      FAULT_SLOW: '200',
+      FAULT_SLOW: String(SLOW),
     };
     const debrief = () => start(['debrief', '--logbook', 'book', '--quiet'], { cwd, env });
     const began = performance.now();
@@ -123,10 +135,12 @@ describe('the program, killed from outside', () => {
       writeFileSync(env.FAULT_NOTE, 'not started');
       const child = debrief();
       const end = ended(child);
-      const bell = setTimeout(() => child.kill('SIGKILL'), random() * whole);
+      // Every other one while it files.
+      if (k % 2 === 1) await filing(child, env.FAULT_NOTE);
+      const bell = setTimeout(() => child.kill('SIGKILL'), random() * (k % 2 === 1 ? 1.5 * FILING * SLOW : whole));
       const { code } = await end;
       clearTimeout(bell);
-      const stage = code === 0 ? 'done' : readFileSync(env.FAULT_NOTE, 'utf8');
+      const stage = code === 0 ? 'done' : stageIn(env.FAULT_NOTE);
       fell.set(stage, fell.get(stage)! + 1);
       expect([old, renewed]).toContain(readFileSync(join(book, name), 'utf8'));
       expect(visible(book)).toEqual([name]);
