@@ -118,7 +118,10 @@ export type TimeStyle = 'day' | 'date' | 'hm' | 'hms';
 /** A time, in UTC until the reader's browser puts it in the race's zone. */
 export function time(seconds: number, style: TimeStyle): Safe {
   const iso = isoOf(seconds);
-  return html`<time datetime="${iso.replace('.000', '')}" data-t="${style}">${timeText(iso, style)}</time>`;
+  const stamp = iso.replace('.000', '');
+  // To the second is the usual way and goes without saying.
+  if (style === 'hms') return html`<time datetime="${stamp}">${timeText(iso, style)}</time>`;
+  return html`<time datetime="${stamp}" data-t="${style}">${timeText(iso, style)}</time>`;
 }
 
 /** The same as text for pictures. */

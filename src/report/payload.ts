@@ -48,7 +48,7 @@ export interface Payload {
 
 /** More rows than this a boat, or of all boats, are thinned for display. */
 export const MOST_ROWS = 20000;
-export const MOST_ROWS_IN_ALL = 60000;
+export const MOST_ROWS_IN_ALL = 30000;
 
 export function encodePayload(series: RaceSeries): Payload {
   const longest = Math.max(1, ...series.boats.map((b) => b.n));

@@ -62,13 +62,13 @@ async function open(name: string, options: BrowserContextOptions = {}): Promise<
   return { page, trouble, close: () => context.close() };
 }
 
-/** Puts the cursor to a time and waits until the page has followed. */
+/** Puts the cursor to a time and waits until all of the page has followed, what is off the screen too. */
 async function scrubTo(page: Page, time: number): Promise<void> {
   await page.evaluate((t) => {
     const cursor = document.getElementById('cursor') as HTMLInputElement;
     cursor.value = String(t);
     cursor.dispatchEvent(new Event('input', { bubbles: true }));
-    return new Promise((done) => requestAnimationFrame(() => requestAnimationFrame(done)));
+    return new Promise((done) => requestAnimationFrame(() => requestAnimationFrame(() => setTimeout(done, 200))));
   }, time);
 }
 

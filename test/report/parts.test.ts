@@ -217,7 +217,7 @@ describe('the series in the page', () => {
     expect(payload.boats[0].rows).toBeLessThanOrEqual(MOST_ROWS);
     expect(columns.x[100]).toBeCloseTo(100 * payload.step, 6);
     const fleet = encodePayload({ ...series, boats: Array.from({ length: 20 }, () => ({ ...boat, n: 7200 })) });
-    expect(fleet.step).toBe(3); // 144,000 rows, by hand
+    expect(fleet.step).toBe(5); // 144,000 rows, by hand
     expect(fleet.boats.reduce((sum, one) => sum + one.rows, 0)).toBeLessThanOrEqual(MOST_ROWS_IN_ALL);
   });
 

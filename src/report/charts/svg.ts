@@ -7,10 +7,10 @@ import { simplify } from './simplify.js';
 
 export type Attributes = Readonly<Record<string, string | number | undefined>>;
 
-/** Numbers in drawings: three decimals at most, no negative zero. */
+/** Numbers in drawings: hundredths, no negative zero. */
 export function coordinate(value: number): string {
   if (!Number.isFinite(value)) return '0';
-  const rounded = Math.round(value * 1000) / 1000;
+  const rounded = Math.round(value * 100) / 100;
   return String(rounded === 0 ? 0 : rounded);
 }
 
@@ -36,15 +36,16 @@ export interface TextOptions {
 
 /** A line of text; the words are escaped here. */
 export function text(x: number, y: number, words: string, options: TextOptions = {}): string {
-  const { anchor = 'start', size = 12, fill = INK, weight, italic, extra = {} } = options;
+  const { anchor, size = 12, fill, weight, italic, extra = {} } = options;
   return el(
     'text',
     {
       x,
       y,
-      'text-anchor': anchor,
+      'text-anchor': anchor === 'start' ? undefined : anchor,
       'font-size': size,
-      fill,
+      // Ink is the picture's own.
+      fill: fill === INK ? undefined : fill,
       'font-weight': weight,
       'font-style': italic ? 'italic' : undefined,
       ...extra,
@@ -116,6 +117,7 @@ export function picture(width: number, height: number, label: string, body: stri
       role: 'img',
       'aria-label': label,
       'font-family': 'inherit',
+      fill: INK,
       ...extra,
     },
     body,
@@ -147,11 +149,11 @@ function short(tenths: number): string {
   return String(tenths / 10).replace(/^(-?)0\./, '$1.');
 }
 
-/** A curve drawn with no more points than keep it within a third of a pixel of them all. */
+/** A curve drawn with no more points than keep it within half a pixel of them all. */
 export function curveOf(points: readonly (readonly [number, number])[]): string {
   const xs = Float64Array.from(points, ([x]) => x);
   const ys = Float64Array.from(points, ([, y]) => y);
-  return simplify(xs, ys, 0, xs.length, 0.35)
+  return simplify(xs, ys, 0, xs.length, 0.5)
     .map((rows) => pathOf(rows.map((i) => [xs[i], ys[i]])))
     .join('');
 }

@@ -141,9 +141,10 @@ function panelOf(
   const low = Math.max(panel.low, Math.min(0, ...values));
   const y = scaleLinear([low, 1.05 * Math.max(1, ...values)], [foot - 2, top + HEAD + 4]);
   const order: readonly Kind[] = ['other', 'cheap', 'dear'];
-  const drawn = order.flatMap((kind) =>
-    tacks.flatMap((k, i) => (kinds[i] === kind ? [curve(k, curves[i], kind, x, y)] : [])),
-  );
+  const drawn = order.map((kind) => {
+    const of = tacks.flatMap((k, i) => (kinds[i] === kind ? [curve(k, curves[i], kind, x, y)] : []));
+    return of.length > 0 ? el('g', { fill: 'none', ...STROKES[kind] }, ...of) : '';
+  });
   return [
     leftAxis(y, LEFT, o.width - 12, { count: 4 }),
     line(x(0), top + HEAD, x(0), foot, SOFT, { 'stroke-width': 1 }),
@@ -174,7 +175,7 @@ function pointsOf(panel: Panel, boat: BoatSeries, turn: ManoeuvreSpan, o: TackOv
 
 function curve(k: number, points: readonly Point[], kind: Kind, x: Scale, y: Scale): string {
   const d = curveOf(points.map(([t, v]) => [x(t), y(v)]));
-  return el('path', { class: `tack-curve ${kind}`, 'data-turn': k, d, fill: 'none', ...STROKES[kind] });
+  return el('path', { class: `tack-curve ${kind}`, 'data-turn': k, d });
 }
 
 /** Median of all tacks second by second. */

@@ -39,7 +39,7 @@ export interface SeriesOptions {
   readonly pointsInAll: number;
 }
 
-export const SERIES_DEFAULTS: SeriesOptions = { width: 720, height: 132, points: 360, pointsInAll: 1440 };
+export const SERIES_DEFAULTS: SeriesOptions = { width: 720, height: 132, points: 360, pointsInAll: 960 };
 
 const MARGIN = { left: 46, right: 12, top: 22, bottom: 24 };
 

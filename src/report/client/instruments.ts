@@ -66,7 +66,7 @@ export function mountInstruments(race: Race, store: Store): void {
     for (const { key, boat, cell } of cells) write(cell, wordsFor(race, key, boat, readings[boat], time));
     triangles.forEach((t, i) => t.show(readings[i]));
     gap.textContent = gapWords(race, readings);
-  });
+  }, home);
 }
 
 function known(race: Race, index: number, line: Line): boolean {

@@ -33,7 +33,7 @@ export function mountLadders(race: Race, store: Store): void {
       const on = time >= frame.span[0] && time <= frame.span[1];
       if (on) live.replaceChildren(...marks(race, frame, time));
       else if (live.firstChild) live.replaceChildren();
-    });
+    }, svg);
     const put = (event: PointerEvent): void => {
       const time = timeAt(race, frame, svg, event);
       if (Number.isFinite(time)) store.set({ time });

@@ -65,10 +65,11 @@ export function write(element: Element, text: string): void {
 /** Rewrites every number and time on the page in place. */
 export function localise(root: ParentNode, clock: Clock): void {
   for (const element of root.querySelectorAll('.n')) write(element, localText(element.textContent));
-  for (const element of root.querySelectorAll('[data-t]')) {
+  for (const element of root.querySelectorAll('time, [data-ms]')) {
     const given = element.getAttribute('data-ms');
     const seconds = (given === null ? Date.parse(element.getAttribute('datetime') ?? '') : Number(given)) / 1000;
-    if (Number.isFinite(seconds)) write(element, clock.write(seconds, element.getAttribute('data-t') as TimeStyle));
+    if (Number.isFinite(seconds))
+      write(element, clock.write(seconds, (element.getAttribute('data-t') ?? 'hms') as TimeStyle));
   }
   const words = document.getElementById('zone-words');
   if (words)

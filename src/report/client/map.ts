@@ -43,7 +43,7 @@ export function mountMap(race: Race, store: Store, wind: number): void {
   store.listen((now, before) => {
     if (now.pick !== before.pick) showPick(map, now);
     drawLive(map, now.time);
-  });
+  }, svg);
 }
 
 /** Places of one boat or all between two times, and the marks when the whole race is meant. */

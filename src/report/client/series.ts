@@ -73,14 +73,14 @@ export function mountSeries(race: Race, store: Store, clock: Clock): void {
   matchMedia('(prefers-color-scheme: dark)').addEventListener('change', () =>
     living.forEach(({ plot }) => plot.redraw()),
   );
-  let inView: readonly [number, number] | null = null;
-  store.listen((now) => {
-    for (const l of living) {
-      if (now.window !== inView) l.plot.setScale('x', { min: now.window[0], max: now.window[1] });
-      follow(l, race, now.time);
-    }
-    inView = now.window;
-  });
+  for (const one of living) {
+    let inView: readonly [number, number] | null = null;
+    store.listen(({ time, window }) => {
+      if (window !== inView) one.plot.setScale('x', { min: window[0], max: window[1] });
+      inView = window;
+      follow(one, race, time);
+    }, one.plot.root);
+  }
 }
 
 function commonTimes(race: Race): number[] {

@@ -16,20 +16,48 @@ type Listener = (now: Moment, before: Moment) => void;
 export interface Store {
   readonly now: () => Moment;
   readonly set: (change: Partial<Moment>) => void;
-  readonly listen: (listener: Listener) => void;
+  /** Told at every frame; a listener with a place on the page only while that is near the screen, else a little later. */
+  readonly listen: (listener: Listener, place?: Element) => void;
 }
+
+interface Told {
+  readonly listener: Listener;
+  near: boolean;
+  /** What it was last told. */
+  last: Moment;
+}
+
+/** Off the screen things follow when nothing has moved for so long. [ms] */
+const LATER = 120;
 
 /** Listeners are called once a frame at most, so that a fast finger costs no more than a slow one. */
 export function createStore(from: number, to: number, window: readonly [number, number]): Store {
   let now: Moment = { time: Math.min(window[1], window[0] + 60), window, pick: null };
-  let told: Moment = now;
   let waiting = false;
-  const listeners: Listener[] = [];
-  const tell = (): void => {
+  let later = 0;
+  const all: Told[] = [];
+  const places = new Map<Element, Told>();
+  const tell = (one: Told): void => {
+    if (one.last === now) return;
+    const before = one.last;
+    one.last = now;
+    one.listener(now, before);
+  };
+  const sight = new IntersectionObserver(
+    (seen) => {
+      for (const { target, isIntersecting } of seen) {
+        const one = places.get(target)!;
+        one.near = isIntersecting;
+        if (isIntersecting) tell(one);
+      }
+    },
+    { rootMargin: '25%' },
+  );
+  const frame = (): void => {
     waiting = false;
-    const before = told;
-    told = now;
-    for (const listener of listeners) listener(now, before);
+    for (const one of all) if (one.near) tell(one);
+    clearTimeout(later);
+    later = setTimeout(() => all.forEach(tell), LATER);
   };
   return {
     now: () => now,
@@ -38,10 +66,15 @@ export function createStore(from: number, to: number, window: readonly [number, 
       now = { ...now, time: Math.max(from, Math.min(to, now.time)) };
       if (waiting) return;
       waiting = true;
-      requestAnimationFrame(tell);
+      requestAnimationFrame(frame);
     },
-    listen: (listener) => {
-      listeners.push(listener);
+    listen: (listener, place) => {
+      const one: Told = { listener, near: true, last: now };
+      all.push(one);
+      if (place) {
+        places.set(place, one);
+        sight.observe(place);
+      }
       listener(now, now);
     },
   };

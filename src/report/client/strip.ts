@@ -28,7 +28,7 @@ export function mountStrips(race: Race, store: Store): void {
     ),
     ...strips.map((s) => s.element),
   );
-  store.listen(({ time, window }) => strips.forEach((s) => s.show(time, window)));
+  store.listen(({ time, window }) => strips.forEach((s) => s.show(time, window)), home);
 }
 
 interface Strip {

@@ -24,7 +24,7 @@ function modelMean(boat: BoatResult, key: 'gamma_deg' | 'beta_deg'): Q {
 }
 
 /** Half minutes listed one by one at most; of more, the means of legs and tacks are given. */
-const MOST_LISTED = 240;
+const MOST_LISTED = 120;
 
 function blockTable(series: RaceSeries): Safe {
   const rows = series.boats.flatMap((b) =>

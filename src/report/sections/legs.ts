@@ -94,14 +94,17 @@ function countRow(legs: readonly NumberedLeg[], bestLeg: LegResult | null): Safe
   </tr>`;
 }
 
-function boatTable(boat: BoatResult, index: number, best: DayBest | null): Safe {
+/** More boats than this have the day's best once, in its own table, not beside every boat's. */
+const MOST_BESIDE = 3;
+
+function boatTable(boat: BoatResult, index: number, best: DayBest | null, boats: number): Safe {
   const legs = upwindLegs(boat);
   if (legs.length === 0)
     return html`<div class="leg-sheet">
       <h3>${swatch(index)} ${nameOf(boat.name)}</h3>
       <p>No upwind leg was found.</p>
     </div>`;
-  const showBest = best !== null && !(best.boat === boat && legs.length === 1);
+  const showBest = best !== null && boats <= MOST_BESIDE && !(best.boat === boat && legs.length === 1);
   const rows = rowsFor(best).filter((row) => legs.some(({ leg }) => row.get(leg, boat)));
   const body = rows.map((row) => {
     const cells = legs.map(
@@ -201,6 +204,6 @@ export function legs(result: Result): Safe {
   return section(
     'legs',
     'Leg by leg',
-    html`<div class="leg-sheets">${result.boats.map((boat, i) => boatTable(boat, i, best))}</div>`,
+    html`<div class="leg-sheets">${result.boats.map((boat, i) => boatTable(boat, i, best, result.boats.length))}</div>`,
   );
 }

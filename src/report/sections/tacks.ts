@@ -26,38 +26,45 @@ function seriesTurn(s: BoatSeries | undefined, m: ManoeuvreResult): number {
 function turnRow(m: ManoeuvreResult, boat: number, s: BoatSeries | undefined): Part[] {
   const k = seriesTurn(s, m);
   const when = time(secondsOf(m.time), 'hms');
-  const figures = s && k >= 0 && m.kind === 'tack' ? turnFigures(s, s.manoeuvres[k]) : null;
-  const told = (value: number | undefined, digits: number): Part => number(value ?? NaN, digits);
   return [
     k < 0 ? when : html`<button class="pick" data-boat="${boat}" data-turn="${k}">${when}</button>`,
     `${KINDS[m.kind]} ${m.from === m.to ? `on ${m.from}` : `onto ${m.to}`}`,
     quantity(m.loss_m, 'm', { digits: 1 }),
     plain(m.seconds, 0),
-    figures ? html`${told(figures.before, 1)} <span class="soft">→</span> ${told(figures.lowest, 1)}` : '–',
-    told(figures?.back, 0),
-    told(figures?.rate, 0),
-    html`${told(figures?.out, 0)}${figures && '°'}`,
   ];
 }
 
-const HEADS = ['Time', 'Turn'];
-const MORE = ['Seconds', 'Speed → lowest, kn', 'Back after, s', 'Turning, °/s', 'Out at'];
+/** What it did to the boat; of tacks only. */
+function figureCells(m: ManoeuvreResult, s: BoatSeries | undefined): Part[] {
+  const k = seriesTurn(s, m);
+  if (!s || k < 0 || m.kind !== 'tack') return MORE.map(() => '–');
+  const { before, lowest, back, rate, out } = turnFigures(s, s.manoeuvres[k]);
+  return [
+    html`${number(before, 1)} <span class="soft">→</span> ${number(lowest, 1)}`,
+    plain(back, 0),
+    plain(rate, 0),
+    `${plain(out, 0)}°`,
+  ];
+}
+
+const MORE = ['Speed → lowest, kn', 'Back after, s', 'Turning, °/s', 'Out at'];
 
 /** Turns on the beats in full view, the rest folded away. */
 function turnTables(boat: BoatResult, index: number, s: BoatSeries | undefined): Safe {
   if (boat.manoeuvres.length === 0) return html`<p>${nameOf(boat.name)}: no turns were found.</p>`;
-  const heads = [...HEADS, term('tackCost', 'Cost'), ...MORE];
+  const heads = ['Time', 'Turn', term('tackCost', 'Cost'), 'Seconds'];
   const beats = upwindLegs(boat).flatMap(({ leg }) => manoeuvresOf(boat, leg));
   const others = boat.manoeuvres.filter((m) => !beats.includes(m));
-  const rowsOf = (list: readonly ManoeuvreResult[]): Part[][] => list.map((m) => turnRow(m, index, s));
   const caption = html`${swatch(index)} ${nameOf(boat.name)}, on the beats`;
+  const full = beats.map((m) => [...turnRow(m, index, s), ...figureCells(m, s)]);
+  const brief = others.map((m) => turnRow(m, index, s));
   return html`<div>
-    ${beats.length > 0 && table(caption, heads, rowsOf(beats), 'plain turns')}
+    ${beats.length > 0 && table(caption, [...heads, ...MORE], full, 'plain turns')}
     ${
       others.length > 0 &&
       html`<details class="figures">
         <summary>${plural(others.length, 'other turn')}</summary>
-        ${table(html`${nameOf(boat.name)}, elsewhere`, heads, rowsOf(others), 'plain turns')}
+        ${table(html`${nameOf(boat.name)}, elsewhere`, heads, brief, 'plain turns')}
       </details>`
     }
   </div>`;
