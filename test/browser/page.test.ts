@@ -7,6 +7,7 @@ import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { eastOf, northOf, turn } from '../../src/math/angles.js';
 import { toKnots } from '../../src/math/units.js';
 import { comparePage, debriefPage } from '../../src/report/page.js';
+import { encodePayload, stretches } from '../../src/report/payload.js';
 import { seasonPage } from '../../src/report/season-page.js';
 import { season } from '../../src/season.js';
 import { sampleLadders } from '../report/sample-ladders.js';
@@ -26,6 +27,8 @@ const FILES: Readonly<Record<string, string>> = {
   bare: pageOf(bareSample()),
   nowind: pageOf(noWindSpeedSample()),
   hostile: pageOf(renamed(full, HOSTILE)),
+  'hostile-compare': hostileCompare(),
+  'hostile-season': seasonPage(season(inventedSeason({ seed: 5, races: 4, every: 7, sailors: [{ name: HOSTILE }] }))),
   season: seasonPage(season(inventedSeason({ seed: 5, races: 8, every: 7, sailors: [{ name: 'Corrie' }] })), {
     pageOf: ({ race }) => (race === 'Race 2' ? 'full.html' : null),
   }),
@@ -33,6 +36,11 @@ const FILES: Readonly<Record<string, string>> = {
 
 function pageOf({ result, series }: Sample): string {
   return debriefPage(result, series);
+}
+
+function hostileCompare(): string {
+  const bad = renamed(full, HOSTILE);
+  return comparePage(bad.result, bad.series, sampleLadders(bad));
 }
 
 interface Opened {
@@ -107,6 +115,18 @@ describe.skipIf(!browser)('the page in a browser', () => {
     expect(trouble).toEqual([]);
     await close();
   });
+
+  test.each(['hostile-compare', 'hostile-season'])(
+    '%s: nothing of a name is run or becomes an element',
+    async (name) => {
+      const { page, trouble, close } = await open(name);
+      await page.waitForSelector('html.live');
+      expect(await page.locator('img').count()).toBe(0);
+      expect(await page.locator('bdi', { hasText: HOSTILE }).count()).toBeGreaterThan(1);
+      expect(trouble).toEqual([]);
+      await close();
+    },
+  );
 
   test('the numbers at the cursor are those of the series, at five times', async () => {
     const { page, close } = await open('full');
@@ -240,6 +260,121 @@ describe.skipIf(!browser)('the page in a browser', () => {
     await close();
   });
 
+  test('steps go to settled stretches, shifts, legs and by ten seconds, on and back', async () => {
+    const { page, close } = await open('full');
+    await page.locator('#chart').scrollIntoViewIfNeeded();
+    const { boats } = encodePayload(full.series);
+    const at: Readonly<Record<string, number[]>> = {
+      settled: boats.flatMap((b) => b.settled.map(([from]) => from)),
+      shift: boats[0].shifts.map((s) => s.at),
+      leg: boats.flatMap((b) => b.legs.map((l) => l.from)),
+    };
+    const middle = boats[0].t0 + 900;
+    const cursor = async (): Promise<number> => Number(await page.locator('#cursor').inputValue());
+    for (const [stride, moments] of Object.entries(at)) {
+      await page.locator('#stride').selectOption(stride);
+      await scrubTo(page, middle);
+      await page.locator('#on').click();
+      await expect.poll(cursor).toBe(Math.min(...moments.filter((m) => m > middle)));
+      await scrubTo(page, middle);
+      await page.locator('#back').click();
+      await expect.poll(cursor).toBe(Math.max(...moments.filter((m) => m < middle)));
+    }
+    await page.locator('#stride').selectOption('ten');
+    await scrubTo(page, middle);
+    await page.locator('#on').click();
+    await expect.poll(cursor).toBe(middle + 10);
+    await close();
+  });
+
+  test('a settled stretch is picked on the strip or at the cursor, and tells its own means', async () => {
+    const { page, trouble, close } = await open('full');
+    await page.waitForSelector('html.live');
+    const boat = full.series.boats[0];
+    const [from, to] = stretches(boat.settled)[2];
+    const told = async (words: string): Promise<number> =>
+      read(await page.locator('#picked tr', { hasText: words }).locator('td').first().innerText());
+    const mean = (column: Float64Array): number =>
+      column.slice(from, to).reduce((sum, v) => sum + Math.abs(v), 0) / (to - from);
+    await page.locator('.spell[data-boat="0"][data-spell="2"]').click();
+    await expect.poll(() => page.locator('#picked caption').innerText()).toContain('settled stretch');
+    expect(await told('VMG')).toBeCloseTo(toKnots(mean(boat.vmg)), 1);
+    expect(Math.abs((await told('Course angle')) - mean(boat.gamma))).toBeLessThan(0.11);
+    expect(await told('Seconds')).toBe(to - from);
+    expect(await page.locator('.spell.picked').count()).toBe(1);
+    await page.locator('.map-tools button', { hasText: 'This stretch' }).click();
+    await expect.poll(() => page.locator('#picked table').count()).toBe(0); // the same again lets it go
+    expect(trouble).toEqual([]);
+    await close();
+  });
+
+  test('the map zooms and moves, and a drag across the curves looks closer', async () => {
+    const { page, close } = await open('full');
+    await page.waitForSelector('html.live');
+    const world = async (): Promise<number[]> =>
+      (await page.locator('#map .world').getAttribute('transform'))!.match(/-?[\d.]+/g)!.map(Number);
+    const scaleOf = (m: readonly number[]): number => Math.hypot(m[0], m[1]);
+    const before = await world();
+    await page.locator('.map-frame').focus();
+    await page.keyboard.press('+');
+    const zoomed = await world();
+    expect(scaleOf(zoomed) / scaleOf(before)).toBeCloseTo(1.4, 1);
+    await page.keyboard.press('ArrowLeft');
+    const moved = await world();
+    expect(scaleOf(moved)).toBeCloseTo(scaleOf(zoomed), 6);
+    expect(Math.hypot(moved[4] - zoomed[4], moved[5] - zoomed[5])).toBeCloseTo(60, 0);
+    const curve = page.locator('.live-panel .u-over').first();
+    await curve.scrollIntoViewIfNeeded();
+    const box = (await curve.boundingBox())!;
+    const first = page.locator('.strip').first();
+    const width = async (): Promise<number> => Number((await first.getAttribute('viewBox'))!.split(' ')[2]);
+    const wide = await width();
+    await page.mouse.move(box.x + 0.25 * box.width, box.y + 40);
+    await page.mouse.down();
+    await page.mouse.move(box.x + 0.5 * box.width, box.y + 40, { steps: 4 });
+    await page.mouse.up();
+    await expect.poll(async () => Math.round((100 * (await width())) / wide)).toBe(25);
+    await close();
+  });
+
+  test('at 200 % zoom nothing is cut off and the bars leave room to read', async () => {
+    for (const name of ['full', 'compare', 'season']) {
+      const { page, close } = await open(name, { viewport: { width: 640, height: 450 }, deviceScaleFactor: 2 });
+      await page.waitForSelector('html.live');
+      expect(await page.evaluate(() => document.documentElement.scrollWidth)).toBe(640);
+      if (name !== 'season') {
+        await page.evaluate(() => document.getElementById('chart')!.scrollIntoView());
+        await page.waitForFunction(() => !document.getElementById('scrub')!.hidden);
+        const inside = await page.evaluate(() => {
+          const controls = [...document.querySelectorAll('#scrub button, #scrub select, #scrub input, #clock')];
+          return controls.every((c) => {
+            const box = c.getBoundingClientRect();
+            return box.width > 0 && box.left >= 0 && box.right <= window.innerWidth && box.bottom <= window.innerHeight;
+          });
+        });
+        expect(inside).toBe(true);
+        const covered = await page.evaluate(
+          () => document.getElementById('scrub')!.offsetHeight + document.querySelector('nav')!.offsetHeight,
+        );
+        expect(covered).toBeLessThan(0.4 * 450);
+      }
+      await close();
+    }
+  });
+
+  test('reduced motion is heeded: nothing moves by itself, and jumps are jumps', async () => {
+    for (const [reducedMotion, behaviour] of [
+      ['reduce', 'auto'],
+      ['no-preference', 'smooth'],
+    ] as const) {
+      const { page, close } = await open('full', { reducedMotion });
+      await page.waitForSelector('html.live');
+      expect(await page.evaluate(() => getComputedStyle(document.documentElement).scrollBehavior)).toBe(behaviour);
+      expect(await page.evaluate(() => document.getAnimations().length)).toBe(0);
+      await close();
+    }
+  });
+
   test('the keyboard reaches words, figures, legs, chart and cursor, and always shows where it is', async () => {
     const { page, close } = await open('full');
     const met = new Set<string>();
@@ -341,6 +476,19 @@ describe.skipIf(!browser)('the page in a browser', () => {
     await close();
   });
 
+  test('without a script a comparison and a season stand as well', async () => {
+    for (const [name, picture] of [
+      ['compare', 'svg.ladder'],
+      ['season', 'svg.trend'],
+    ] as const) {
+      const { page, trouble, close } = await open(name, { javaScriptEnabled: false });
+      expect(await page.locator(picture).first().isVisible()).toBe(true);
+      expect(await page.locator('main table').first().isVisible()).toBe(true);
+      expect(trouble).toEqual([]);
+      await close();
+    }
+  });
+
   test('numbers follow the reader, times follow the race', async () => {
     const { page, close } = await open('full', { locale: 'de-DE', timezoneId: 'Pacific/Auckland' });
     await page.waitForSelector('html.live');
@@ -431,7 +579,7 @@ describe.skipIf(!browser)('the page in a browser', () => {
     await leg.click();
     await expect.poll(() => leg.getAttribute('aria-pressed')).toBe('true');
     expect(await page.locator('#picked caption').innerText()).toContain('lap 2');
-    expect(await page.locator('.leg-path.dim').count()).toBe(6); // of two boats' four legs each, one number stays
+    await expect.poll(() => page.locator('.leg-path.dim').count()).toBe(6); // of two boats' four legs each, one number stays
     await leg.click();
     await expect.poll(() => page.locator('.leg-path.dim').count()).toBe(0);
     await close();

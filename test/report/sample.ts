@@ -339,6 +339,8 @@ function legResult(s: BoatSeries, span: LegSpan, sim: Sim): LegResult {
       speed_kn: q(best / Math.cos(43.6 * RAD) / KNOT, 0.08, 'inferred'),
       vmg_kn: q(best / KNOT, 0.06, 'inferred', 0.1),
       beta_deg: q(29.2, 0.8, 'inferred'),
+      aero_drag_angle_deg: q(13.1, 0.5, 'inferred'),
+      hydro_drag_angle_deg: q(16.1, 0.6, 'inferred'),
       leeway_deg: q(3.4, 0.3, 'inferred'),
       sheeting_deg: q(7.6, 1.4, 'inferred'),
     },
@@ -346,6 +348,14 @@ function legResult(s: BoatSeries, span: LegSpan, sim: Sim): LegResult {
     efficiency: steady && q(steady.vmg_kn!.value / (best / KNOT), 0.015, 'inferred', 0.04),
     share: steady && q((mean(s.vmg, rows) / best) * 1, 0.01, 'inferred', 0.03),
     ledger: kind === 'upwind' ? ledgerOf(s, span, best) : null,
+    trim: steady && {
+      leeway_ways: [
+        { way: 'heading', leeway_deg: q(3.6, 0.4, 'measured'), weight: 0.8 },
+        { way: 'forces', leeway_deg: q(4.1, 0.9, 'inferred'), weight: 0.2 },
+      ],
+      sheeting_prior_deg: q(7.6, 4, 'assumed'),
+      sheeting_posterior_deg: q(8.4, 2.6, 'inferred'),
+    },
     notes: kind === 'upwind' ? ['Trim is kept within speed: sheeting has not narrowed enough to be told apart.'] : [],
   };
 }
@@ -463,6 +473,7 @@ export function bareSample(): Sample {
       efficiency: null,
       share: null,
       ledger: null,
+      trim: null,
       notes: ['wind speed unknown'],
     })),
   }));
@@ -493,7 +504,7 @@ export function noWindSpeedSample(): Sample {
     legs: boat.legs.map((leg) => ({
       ...leg,
       steady: leg.steady && { ...unknown(leg.steady), port: leg.steady.port && unknown(leg.steady.port), starboard: leg.steady.starboard && unknown(leg.steady.starboard) },
-      optimum: null, ceiling_vmg_kn: null, efficiency: null, share: null, ledger: null, notes: ['wind speed unknown'],
+      optimum: null, ceiling_vmg_kn: null, efficiency: null, share: null, ledger: null, trim: null, notes: ['wind speed unknown'],
     })),
   })); // prettier-ignore
   const blank = (n: number): Float64Array => new Float64Array(n).fill(NaN);

@@ -4,6 +4,7 @@ import { barLength, toPlane, toSheet, worldTransform, fitView, type MapView, typ
 import { button, draw } from './dom.js';
 import { mountGestures } from './gestures.js';
 import type { Boat, Race } from './race.js';
+import { choose, spellAt } from './picks.js';
 import { rowAt } from './race.js';
 import { readingAt } from './reading.js';
 import type { Moment, Store } from './store.js';
@@ -82,6 +83,10 @@ function mountTools(map: Living, tools: HTMLElement): void {
       fit();
     }),
     turn,
+    button('This stretch', 'The settled stretch at the cursor alone, with its figures', () => {
+      const pick = spellAt(map.race, map.store.now().time);
+      if (pick) choose(map.race, map.store, pick);
+    }),
   );
   map.svg.closest<HTMLElement>('.map-frame')!.addEventListener('keydown', (event) => panKey(map, event, zoom));
 }

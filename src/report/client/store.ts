@@ -3,6 +3,8 @@ export interface Pick {
   readonly boat: number;
   readonly leg?: number;
   readonly turn?: number;
+  /** Settled stretch. */
+  readonly spell?: number;
 }
 
 export interface Moment {

@@ -24,7 +24,7 @@ export function mountStrips(race: Race, store: Store): void {
     make(
       'p',
       { class: 'plate-words' },
-      'Starboard tack above the line, port below, full where settled; notches are turns. The curve is metres behind the reference since each beat began; shifts are not in it.',
+      'Starboard tack above the line, port below, full where settled (a touch picks that stretch); notches are turns. The curve is metres behind the reference since each beat began; shifts are not in it.',
     ),
     ...strips.map((s) => s.element),
   );
@@ -50,7 +50,13 @@ function createStrip(race: Race, boat: Boat, store: Store): Strip {
     'aria-label': `Running account of ${boat.name}`,
   });
   body.append(...bands(race, boat, x), ...lossCurve(race, boat, x));
-  body.addEventListener('pointerdown', (event) => put(event, body, store));
+  let pressed = NaN;
+  body.addEventListener('pointerdown', (event) => {
+    pressed = event.clientX;
+    put(event, body, store);
+  });
+  // A finger drawn along the strip moves the cursor and picks nothing.
+  body.addEventListener('click', (event) => Math.abs(event.clientX - pressed) > 6 && event.stopPropagation());
   body.addEventListener('pointermove', (event) => event.buttons > 0 && put(event, body, store));
   const element = make(
     'div',
@@ -89,11 +95,14 @@ function bands(race: Race, boat: Boat, x: (t: number) => number): SVGElement[] {
       'vector-effect': 'non-scaling-stroke',
     }),
   ];
-  for (const [from, to] of boat.header.settled) {
+  for (const [spell, [from, to]] of boat.header.settled.entries()) {
     const row = rowAt(race, boat, Math.floor((from + to) / 2));
     const starboard = row >= 0 && boat.columns.gamma[row] > 0;
     out.push(
       draw('rect', {
+        class: 'spell',
+        'data-boat': boat.index,
+        'data-spell': spell,
         x: x(from),
         y: starboard ? LANE : middle,
         width: Math.max(0.5, x(to) - x(from)),

@@ -17,7 +17,7 @@ import { REFERENCE_WORDS } from '../causes.js';
 import { term } from '../terms.js';
 import { figure, section, table } from './figure.js';
 
-function modelMean(boat: BoatResult, key: 'gamma_deg' | 'beta_deg'): Q {
+function modelMean(boat: BoatResult, key: 'beta_deg' | 'aero_drag_angle_deg' | 'hydro_drag_angle_deg'): Q {
   return timeMean(
     upwindLegs(boat).map(({ leg }) => ({ q: leg.optimum?.[key] ?? null, seconds: leg.steady?.seconds ?? 1 })),
   );
@@ -164,7 +164,12 @@ function dragPlate(result: Result): Part {
       hydro: settledMean(boat, 'hydro_drag_angle_deg'),
       beta: settledMean(boat, 'beta_deg'),
     };
-    const model = { name: 'model’s optimum', aero: null, hydro: null, beta: modelMean(boat, 'beta_deg') };
+    const model = {
+      name: 'model’s optimum',
+      aero: modelMean(boat, 'aero_drag_angle_deg'),
+      hydro: modelMean(boat, 'hydro_drag_angle_deg'),
+      beta: modelMean(boat, 'beta_deg'),
+    };
     return [achieved, model].filter((r) => r.beta);
   });
   if (rows.length === 0) return null;
@@ -179,6 +184,39 @@ function dragPlate(result: Result): Part {
       rows.map((r) => [nameOf(r.name), quantity(r.aero, 'deg'), quantity(r.hydro, 'deg'), quantity(r.beta, 'deg')]),
     ),
   });
+}
+
+const WAYS = { heading: 'by heading', masthead: 'by masthead angle', forces: 'by balance of forces' } as const;
+
+/** What leeway and sheeting of each beat rest on: every way with its weight, and sheeting before and after the log. */
+function trimTable(result: Result): Part {
+  const beats = result.boats.flatMap((boat) =>
+    upwindLegs(boat).flatMap(({ leg }) => (leg.trim ? [{ boat, leg, trim: leg.trim }] : [])),
+  );
+  if (beats.length === 0) return null;
+  const ways = (['heading', 'masthead', 'forces'] as const).filter((way) =>
+    beats.some(({ trim }) => trim.leeway_ways.some((one) => one.way === way)),
+  );
+  const rows = beats.map(({ boat, leg, trim }): Part[] => [
+    html`${nameOf(boat.name)}, lap ${leg.lap}`,
+    ...ways.map((way): Part => {
+      const one = trim.leeway_ways.find((found) => found.way === way);
+      return one ? html`${quantity(one.leeway_deg, 'deg')} (${plain(100 * one.weight, 0)}&nbsp;%)` : '–';
+    }),
+    quantity(leg.steady?.leeway_deg ?? null, 'deg'),
+    quantity(leg.optimum?.leeway_deg ?? null, 'deg'),
+    quantity(trim.sheeting_prior_deg, 'deg'),
+    quantity(trim.sheeting_posterior_deg, 'deg'),
+  ]);
+  return html`<details class="figures">
+    <summary>What leeway and sheeting rest on</summary>
+    ${table(
+      'Leeway by each way, with its weight; sheeting angle as the model would trim, and with what the log says',
+      ['', ...ways.map((way) => `Leeway ${WAYS[way]}`), 'Together', 'Model’s best', 'Sheeting before', 'and after'],
+      rows,
+    )}
+    <p class="plate-words">Where after differs little from before, the log says little of the sheeting.</p>
+  </details>`;
 }
 
 function tackPlates(result: Result): Part {
@@ -232,5 +270,10 @@ export function angles(result: Result, series: RaceSeries): Safe {
     tackPlates(result),
     windPlate(series),
   ];
-  return section('angles', 'Angles, speeds, wind', html`<div class="plates">${plates}</div>`);
+  return section(
+    'angles',
+    'Angles, speeds, wind',
+    html`<div class="plates">${plates}</div>
+      ${trimTable(result)}`,
+  );
 }
