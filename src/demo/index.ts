@@ -40,24 +40,24 @@ const MILLING = [
 
 const CORRIE: Sailor = {
   seed: 11,
-  angle: 41,
-  speed: 0.945,
-  shift: 4.5,
-  hold: 50,
+  angle: 40,
+  speed: 0.93,
+  shift: 4,
+  hold: 70,
   atGun: onCourse(30, -4),
-  before: [...MILLING, [24, 41]],
+  before: [...MILLING, [24, 40]],
   beats: [{ badTack: 2 }, { blind: [300, 600], overstand: 55 }],
 };
 
 const LINNET: Sailor = {
   seed: 29,
   angle: 45,
-  speed: 0.945,
-  shift: 3,
-  hold: 85,
+  speed: 0.955,
+  shift: 4,
+  hold: 70,
   atGun: onCourse(-25, -7),
   before: [...MILLING, [24, 45]],
-  beats: [{}, { blind: [60, 330] }],
+  beats: [{}, {}],
 };
 
 const RACE_FILE = (finish: string): string => `race: Ferrow Lake spring series, race 2

@@ -172,21 +172,29 @@ function ratesFound(
   const speed = of('speed');
   const offBest = (pieces: readonly LedgerPiece[]): number => mean(pieces.map((p) => p.block.gamma - p.offer.gamma));
   const vmg = mean(a.map(({ offer }) => offer.vmg));
-  const lower = offBest(a) - offBest(b);
-  const q = (Math.abs(offBest(a) ** 2 - offBest(b) ** 2) / 2) * BEND * vmg * seconds;
+  const [offMine, offTheirs] = [offBest(a), offBest(b)];
+  const further = Math.abs(offMine) >= Math.abs(offTheirs) ? offMine : offTheirs;
+  const q = (Math.abs(offMine ** 2 - offTheirs ** 2) / 2) * BEND * vmg * seconds;
   const share = q > 0 ? q ** 2 / (q ** 2 + (ALIKE * vmg * seconds) ** 2) : 0;
   const curve = q * Math.sqrt(1 - share);
-  const angle = of(lower < 0 ? 'high' : 'low');
-  const moved = Math.max(share * speed.metres, -Math.max(0, angle.metres));
+  // What the curve is wrong by lies where the one further off sailed, whichever of the two that is.
+  const angle = of(further < 0 ? 'high' : 'low');
+  const moved = toward(share * speed.metres, angle.metres);
   const kept = { ...speed, metres: speed.metres - moved, se: (1 - share) * speed.se, curve, madeByCurve: true };
   const more = {
     ...angle,
     metres: angle.metres + moved,
     se: Math.hypot(angle.se, share * speed.se),
     curve,
+    madeByCurve: true,
     fromSpeed: moved,
   };
-  return [more, of(lower < 0 ? 'low' : 'high'), kept];
+  return [more, of(further < 0 ? 'low' : 'high'), kept];
+}
+
+/** A part of speed is moved to an angle's cost up to what takes that cost away. */
+function toward(part: number, cost: number): number {
+  return part * cost < 0 && Math.abs(part) > Math.abs(cost) ? -cost : part;
 }
 
 function windOf({ mismatch }: ErrorModel, other: ErrorModel): WindErrors {

@@ -64,14 +64,22 @@ export function judge(input: JudgeInput): Judgement[] {
   });
 }
 
-/** Settled VMG over the model's best in the same wind, block by block: the median. NaN without known wind. */
-function settledShare(one: Sailed, model: RaceModel): number {
-  return median(one.blocks.map((block) => block.vmg / model.curve.bestVmg(block.tws)));
-}
+/**
+ * Between a dinghy's light winds and its strong ones the best speed made good goes with the wind to a power of 1 to 0.3:
+ * common practice, no source. A power law, so that an error in the scale of the wind speed does not change who is best.
+ */
+const WIND_POWER = 0.6;
 
-/** Index of the boat with the best settled VMG of the day for its wind; -1 when none has settled sailing in known wind. */
+/**
+ * Index of the boat with the best settled VMG of the day for its wind and kind: the median of its blocks, brought to the
+ * middle wind of the race. -1 when none has settled sailing in known wind.
+ */
 export function bestBoat(sailed: readonly Sailed[], models: readonly RaceModel[]): number {
-  const shares = sailed.map((one, k) => settledShare(one, models[k]));
+  const wind = median(sailed.flatMap((one) => one.blocks.map(({ tws }) => tws)));
+  const shares = sailed.map(
+    ({ blocks }, k) =>
+      median(blocks.map(({ vmg, tws }) => vmg * (wind / tws) ** WIND_POWER)) / models[k].curve.bestVmg(wind),
+  );
   let best = -1;
   shares.forEach((share, k) => {
     if (!Number.isNaN(share) && (best < 0 || share > shares[best])) best = k;

@@ -169,14 +169,15 @@ describe('the ledgers behind them', () => {
     return [...right].map(([key, value]) => Math.abs(moved.get(key)! - value));
   }
 
-  it('are hardly moved, boat less boat, by 5 % of wind speed: nine in ten by less than a metre, none by two', async () => {
+  it('are hardly moved, boat less boat, by 5 % of wind speed: nineteen in twenty by less than a metre, none by two', async () => {
+    const seeds = Array.from({ length: LONG ? 24 : 4 }, (_, k) => 1 + k);
     const moves: number[] = [];
-    for (const seed of [1, 2, 3, 4]) moves.push(...(await movedBy(seed)));
-    expect(moves).toHaveLength(4 * 18);
-    expect(moves.filter((by) => by > 1).length).toBeLessThanOrEqual(7);
+    for (const seed of seeds) moves.push(...(await movedBy(seed)));
+    expect(moves).toHaveLength(18 * seeds.length);
+    expect(moves.filter((by) => by > 1).length / moves.length).toBeLessThanOrEqual(LONG ? 0.05 : 0.06);
     expect(Math.max(...moves)).toBeLessThan(2);
     expect(Math.max(...moves)).toBeGreaterThan(0.001);
-  }, 60_000);
+  }, 120_000);
 
   it('sum to what was lost, to a millimetre', async () => {
     const { result } = await sailed({ faults: { overstand: 60 }, station: 'away' }, 2);

@@ -51,11 +51,11 @@ describe('its files', () => {
     );
     expect(digests).toMatchInlineSnapshot(`
       [
-        "race.yaml c5556eb42deff793",
-        "corrie.gpx 8d567e13507d462a",
-        "corrie-mast.csv d023997f3b0f5d1a",
-        "linnet.csv 29b8303f22f77482",
-        "committee.csv 70ee196eedfb139d",
+        "race.yaml 525e0ffd42d6b6f1",
+        "corrie.gpx f0a01d5efc085838",
+        "corrie-mast.csv abe88bfa3a157d32",
+        "linnet.csv 3f87ea72117dd9e6",
+        "committee.csv 4ce020e2ad6bfec2",
       ]
     `);
     expect(demoFiles()).toEqual(files);
