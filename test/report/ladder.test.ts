@@ -152,8 +152,8 @@ describe('the page of a comparison', () => {
     ];
     const fleet = comparePage(race, columns, all);
     expect(fleet.length - comparePage(race, columns).length).toBeLessThan(300_000);
-    expect(fleet.match(/class="ladder"/g)).toHaveLength(8); // four pairs of two beats
-    expect(fleet.match(/<bdi>Boat \d<\/bdi> on <bdi>Boat \d<\/bdi>/g)).toHaveLength(17); // 21 pairs less four
+    expect(fleet.match(/class="ladder"/g)).toHaveLength(6); // three pairs of two beats
+    expect(fleet.match(/<bdi>Boat \d<\/bdi> on <bdi>Boat \d<\/bdi>/g)).toHaveLength(18); // 21 pairs less three
   });
 });
 

@@ -1,5 +1,6 @@
 import { describe, expect, test } from 'vitest';
 import { comparePage, debriefPage } from '../../src/report/page.js';
+import { sampleLadders } from './sample-ladders.js';
 import { bareSample, noWindSpeedSample, renamed, sample } from './sample.js';
 
 const HOSTILE = '</script><img src=x onerror=alert(1)>';
@@ -14,6 +15,21 @@ describe('the page as a string', () => {
   test('a page of two boats stays far below the size a phone can take', () => {
     const { result, series } = sample();
     expect(debriefPage(result, series).length).toBeLessThan(1_500_000);
+  });
+
+  test('a comparison of eight boats does too: every pair has a row, a few are shown in full', () => {
+    const { result, series } = sample();
+    const names = Array.from({ length: 8 }, (_, k) => `Boat ${k}`);
+    const boats = names.map((name, k) => ({ ...result.boats[k % 2], name }));
+    const columns = { ...series, boats: names.map((name, k) => ({ ...series.boats[k % 2], name })) };
+    const pairs = names.flatMap((a, i) => names.slice(i + 1).map((b) => ({ ...result.pairs![0], boats: [a, b] as const, faster: null }))); // prettier-ignore
+    const ladders = pairs.map((pair) => ({ boats: pair.boats, legs: sampleLadders({ result, series })[0].legs }));
+    const page = comparePage({ ...result, boats, pairs }, columns, ladders);
+    expect(page.length).toBeLessThan(1_500_000);
+    expect(page.match(/<bdi>Boat \d<\/bdi> less <bdi>Boat \d<\/bdi><\/th>/g)).toHaveLength(28);
+    expect(page.match(/<div class="pair">/g)).toHaveLength(3);
+    expect(page).not.toContain('<dl class="lead"');
+    expect(page).toContain('At a glance');
   });
 
   test('a hostile name never becomes markup, in either page', () => {

@@ -12,7 +12,7 @@ import { ledgerGapTable } from './ledger-gaps.js';
 import { swatch } from './masthead.js';
 
 /** Beats drawn at most, whole pairs: a fleet has more pairs than a page can carry. The others get a row of figures. */
-const MOST_DRAWN = 8;
+const MOST_DRAWN = 6;
 /** Share of a beat on one side that is told as being on that side. */
 const CLEARLY = 0.6;
 

@@ -60,8 +60,9 @@ function pairPlate(pair: PairResult): Safe {
   </div>`;
 }
 
-/** Pairs shown in full at most: all there are among four boats. Of a fleet every pair has a row. */
+/** Pairs shown in full at most: all there are among four boats. Of a fleet every pair has a row, and a few follow. */
 const MOST_IN_FULL = 6;
+const OF_A_FLEET = 3;
 
 /** Every pair of a fleet in a row. */
 function fleetTable(all: readonly PairResult[]): Safe {
@@ -99,6 +100,6 @@ export function pairs(result: Result): Part {
   const all = result.pairs ?? [];
   if (all.length === 0) return null;
   const fleet = all.length > MOST_IN_FULL;
-  const shown = fleet ? all.slice(0, MOST_IN_FULL) : all;
+  const shown = fleet ? all.slice(0, OF_A_FLEET) : all;
   return section('pairs', 'Side by side', html`${fleet && fleetTable(all)}${shown.map(pairPlate)}`);
 }
