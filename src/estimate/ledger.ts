@@ -350,7 +350,8 @@ function elasticity(reference: Reference, tws: number): number {
 
 /**
  * Errors of the entries. A direction error turns made-good on both tacks in opposite ways, which shows in speed and
- * shifts; a wind speed error scales what was available, which shows in speed; the receiver shows where it was.
+ * shifts; a wind speed error scales what was available, which shows in speed; the receiver shows where it was. An anchored
+ * reference is moved with the scale of the wind, so that this drops out; in its place comes the error of the anchor.
  */
 function withErrors(
   input: LedgerInput,
@@ -373,7 +374,8 @@ function withErrors(
   const swing = correlatedError(blocks, centred, { ...errors.mismatch.direction, slow: 0 });
   const receiver = Math.SQRT2 * errors.displacementSe(leg.to - leg.from);
   const sysDirection = Math.abs(imbalance) * errors.sysDirection;
-  const sysWind = sum(offered) * scale * errors.sysSpeed;
+  const sysWind = reference.kind === 'best' ? 0 : sum(offered) * scale * errors.sysSpeed;
+  const offer = Math.hypot(windSpeed * scale, available * reference.levelSe);
   const windows = leg.to - leg.from - total;
   const speedRate = total > 0 ? (Math.hypot(direction, windSpeed) / total) * windows : 0;
   const vmg = available / (leg.to - leg.from);
@@ -383,20 +385,16 @@ function withErrors(
   const angleRate = Math.abs(entries.high) + Math.abs(entries.low);
   const angle = Math.min(angleRate, Math.hypot(direction, 0.2 * angleRate));
   return {
-    available: figure(available, windSpeed * scale, sysWind),
+    available: figure(available, offer, sysWind),
     made: figure(made, Math.hypot(receiver, errors.leastGamma * RAD * Math.abs(sum(cross)))),
-    lost: figure(available - made, Math.hypot(receiver, windSpeed * scale), sysWind),
+    lost: figure(available - made, Math.hypot(receiver, offer), sysWind),
     entries: {
       manoeuvres: figure(entries.manoeuvres, tacks),
       start: figure(entries.start, ends),
       high: figure(entries.high, angle, sysDirection),
       low: figure(entries.low, angle, sysDirection),
       trim: trimMetres(input),
-      speed: figure(
-        entries.speed,
-        Math.hypot(direction, windSpeed * scale, receiver),
-        Math.hypot(sysDirection, sysWind),
-      ),
+      speed: figure(entries.speed, Math.hypot(direction, offer, receiver), Math.hypot(sysDirection, sysWind)),
       overstood: figure(entries.overstood, Math.hypot(receiver, 0.2 * entries.overstood)),
       stopped: figure(entries.stopped, receiver),
       shifts: figure(entries.shifts, Math.max(swing * scale, straying(blocks, errors, leg), receiver)),

@@ -9,6 +9,8 @@ export interface Reference {
   readonly speed: (gamma: number, tws: number) => number;
   readonly bestVmg: (tws: number) => number;
   readonly bestGamma: (tws: number) => number;
+  /** Standard error of the level it was anchored at, as a share of its speeds; 0 for a model as it stands. */
+  readonly levelSe: number;
 }
 
 /** The model as it stands. */
@@ -18,6 +20,7 @@ export function modelReference(curve: SpeedCurve, kind: 'model' | 'file' = 'mode
     speed: (gamma, tws) => curve.speed(gamma, tws),
     bestVmg: (tws) => curve.bestVmg(tws),
     bestGamma: (tws) => curve.bestGamma(tws),
+    levelSe: 0,
   };
 }
 
@@ -26,6 +29,8 @@ export interface Anchor {
   readonly scale: number;
   /** [deg] */
   readonly turn: number;
+  /** Standard error of the VMG it was had from, as a share. */
+  readonly se: number;
 }
 
 /**
@@ -36,17 +41,18 @@ export interface Anchor {
  * A turned curve's best is not the model's best turned: D is set so that the turned curve's best is the achieved angle.
  *
  * @param gamma, speed, tws Settled medians of the boat with the day's best settled VMG. [deg], [m/s], [m/s]
+ * @param se Standard error of that VMG, as a share of it.
  */
-export function anchorAt(curve: SpeedCurve, gamma: number, speed: number, tws: number): Anchor {
+export function anchorAt(curve: SpeedCurve, gamma: number, speed: number, tws: number, se: number): Anchor {
   const turn = turnFor(curve, gamma, tws);
-  return { scale: speed / curve.speed(gamma - turn, tws), turn };
+  return { scale: speed / curve.speed(gamma - turn, tws), turn, se };
 }
 
 /** Winds between which the anchored best is drawn straight. [m/s] */
 const WIND_STEP = 0.05;
 
 /** The model moved by an anchor. */
-export function anchoredReference(curve: SpeedCurve, { scale, turn }: Anchor): Reference {
+export function anchoredReference(curve: SpeedCurve, { scale, turn, se }: Anchor): Reference {
   const at = (gamma: number, tws: number): number => scale * curve.speed(gamma - turn, tws);
   const found = new Map<number, Best>();
   const best = (step: number): Best => {
@@ -69,6 +75,7 @@ export function anchoredReference(curve: SpeedCurve, { scale, turn }: Anchor): R
     speed: at,
     bestVmg: (tws) => between(tws, (one) => one.vmg),
     bestGamma: (tws) => between(tws, (one) => one.gamma),
+    levelSe: se,
   };
 }
 

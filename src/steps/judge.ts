@@ -87,7 +87,16 @@ export function bestBoat(sailed: readonly Sailed[], models: readonly RaceModel[]
   return best;
 }
 
-function anchorOfBest({ sailed, models }: JudgeInput): Anchor | null {
+/** A median is less sure than a mean by this: normal scatter. */
+const MEDIAN = Math.sqrt(Math.PI / 2);
+
+/** Standard error of a boat's settled VMG of the day, as a share of it. */
+function settledSe({ legs }: BoatEstimate): number {
+  const shares = legs.flatMap(({ all }) => (all ? [all.vmg.se / all.vmg.value] : []));
+  return (MEDIAN * Math.hypot(...shares)) / shares.length;
+}
+
+function anchorOfBest({ sailed, models, estimates }: JudgeInput): Anchor | null {
   const best = bestBoat(sailed, models);
   if (best < 0) return null;
   const { blocks } = sailed[best];
@@ -97,6 +106,7 @@ function anchorOfBest({ sailed, models }: JudgeInput): Anchor | null {
     of((b) => b.gamma),
     of((b) => b.speed),
     of((b) => b.tws),
+    settledSe(estimates[best]),
   );
   return Number.isFinite(anchor.scale) && anchor.scale > 0 ? anchor : null;
 }

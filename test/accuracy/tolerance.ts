@@ -80,6 +80,14 @@ export const GATES: readonly Gate[] = [
       { quantity: 'vmg %', mean: 1.9, honest: true },
       // Does not know the wind; left: the seconds chosen. (0.46)
       { quantity: 'speed %', mean: 1 },
+      // By the forces; left: the foils' and the sail's other laws. (0.39)
+      { quantity: 'leeway', mean: 0.7, honest: true },
+      // VMG over the same model's best in the true wind. (0.01)
+      { quantity: 'efficiency', mean: 0.02, honest: true },
+      // Ledger; left: where a turn's window begins and ends, a shift in it. (10.8 m of a leg's five or six tacks)
+      { quantity: 'manoeuvres m', mean: 16, honest: true },
+      // Ledger; left: the station's wander taken across the course. (9.8)
+      { quantity: 'shifts m', mean: 16, honest: true },
     ],
   },
   {
