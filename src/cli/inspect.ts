@@ -106,7 +106,7 @@ function fileText(file: InspectFile): string {
 function columnLines(columns: InspectFile['columns']): string[] {
   if (columns.length === 0) return [];
   const rows = columns.map(({ header, means, unit }) => [header, means ?? '(not used)', unit ?? '']);
-  const widths = [0, 1].map((i) => Math.max(...rows.map((row) => row[i].length)));
+  const widths = [0, 1].map((i) => rows.reduce((most, row) => Math.max(most, row[i].length), 0));
   return rows.map(([header, means, unit]) =>
     `    ${header.padEnd(widths[0])}  ${means.padEnd(widths[1])}  ${unit}`.trimEnd(),
   );
@@ -114,7 +114,7 @@ function columnLines(columns: InspectFile['columns']): string[] {
 
 function gapLines({ gaps }: InspectFile): string[] {
   if (gaps.length === 0) return ['  no gaps'];
-  const longest = Math.max(...gaps.map(({ seconds }) => seconds));
+  const longest = gaps.reduce((most, { seconds }) => Math.max(most, seconds), 0);
   const shown = gaps.slice(0, 5).map(({ from, seconds }) => `${from.slice(11, 19)} ${duration(seconds)}`);
   const more = gaps.length > shown.length ? ', ...' : '';
   return [

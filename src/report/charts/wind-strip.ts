@@ -25,7 +25,7 @@ export function windStrip(boat: BoatSeries, shifts: readonly Shift[], options: P
   const mean = circularMean(boat.twd.subarray(first, last)).mean;
   const smooth = smoothedWind(boat.twd);
   const swings = Array.from(boat.twd, (d) => turn(mean, d));
-  const reach = Math.max(6, ...swings.slice(first, last).filter(Number.isFinite).map(Math.abs));
+  const reach = swings.slice(first, last).reduce((most, swing) => Math.max(most, Math.abs(swing) || 0), 6);
   const x = scaleLinear([from, Math.max(to, from + 1)], [44, o.width - 10]);
   const y = scaleLinear([-reach, reach], [o.height - 26, 22]);
   const step = Math.max(1, Math.ceil((last - first) / 500));
