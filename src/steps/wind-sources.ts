@@ -104,21 +104,16 @@ function withoutDeadCups(recording: Recording, file: string): { recording: Recor
 /** A wind log: a moving boat's apparent wind is made true by its own motion, anything else is a station. */
 function logSource(log: WindLog, frame: Frame, heightFactor: (height: number) => number): WindSource | null {
   const { reference, recording } = log;
+  const { accuracyDir, accuracySpeed, offset, heightM } = reference;
+  const mounted = { accuracyDir, accuracySpeed, offset, factor: heightM === undefined ? 1 : heightFactor(heightM) };
   const moving = !!recording.channels.awa && countFixes(recording) > 0;
   if (moving) {
     const { track } = smoothTrack(recording, frame, { file: reference.file });
-    const source = onBoardSource(track, reference.file, -1);
+    const source = onBoardSource(track, reference.file, -1, mounted);
     if (source) return source;
   }
-  return stationSource(recording, {
-    file: reference.file,
-    place: reference.at ? toPlane(frame, reference.at.lat, reference.at.lon) : loggedPlace(log, frame),
-    accuracyDir: reference.accuracyDir,
-    accuracySpeed: reference.accuracySpeed,
-    offset: reference.offset,
-    factor: reference.heightM === undefined ? 1 : heightFactor(reference.heightM),
-    clockS: 0,
-  });
+  const place = reference.at ? toPlane(frame, reference.at.lat, reference.at.lon) : loggedPlace(log, frame);
+  return stationSource(recording, { ...mounted, file: reference.file, place, clockS: 0 });
 }
 
 /** Place a station logged itself, second by second; null when it has none. */

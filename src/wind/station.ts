@@ -2,6 +2,7 @@ import { directionOf, eastOf, northOf, wrap360 } from '../math/angles.js';
 import { median } from '../math/median.js';
 import type { Recording } from '../recording/recording.js';
 import { channelValues } from '../recording/recording.js';
+import type { Mounting } from './on-board.js';
 import { windSums, type SensorPlace, type WindSource } from './source.js';
 
 /** Readings further apart than this many median steps, and than this time, leave a gap. [s] */
@@ -10,15 +11,9 @@ const HOLE_SECONDS = 90;
 /** A station averages at least this long: less is turbulence that never reaches the boat. [s] */
 export const STATION_WINDOW = 20;
 
-export interface StationOptions {
+export interface StationOptions extends Mounting {
   readonly file: string;
   readonly place: SensorPlace;
-  readonly accuracyDir: number;
-  readonly accuracySpeed: number;
-  /** Added to its direction. [deg] */
-  readonly offset: number;
-  /** Multiplies its speed: from its height to the rig's. */
-  readonly factor: number;
   /** Added to its clock. [s] */
   readonly clockS: number;
 }
