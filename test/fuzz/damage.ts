@@ -118,8 +118,10 @@ const highBytes: Damage = (bytes, draw) => {
   for (let k = 0; k < 5 && out.length > 0; k++) out[below(draw, out.length)] = 128 + below(draw, 128);
   return out;
 };
+/** Archives hold the time they were made: always the same one. */
+const PACKED = { level: 1, mtime: new Date(2026, 3, 18) } as const;
 const packed: Damage = (bytes, draw) => {
-  const out = draw() < 0.5 ? gzipSync(bytes, { level: 1 }) : zipSync({ 'log.gpx': [bytes, { level: 1 }] });
+  const out = draw() < 0.5 ? gzipSync(bytes, { level: 1, mtime: 1776470400 }) : zipSync({ 'log.gpx': [bytes, PACKED] });
   return draw() < 0.6 ? flip(draw() < 0.5 ? out.subarray(0, at(out, draw)) : out, draw, []) : out;
 };
 const nested: Damage = (bytes, draw) => {
