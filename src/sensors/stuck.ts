@@ -49,15 +49,12 @@ export interface Run {
   readonly value: number;
 }
 
-/** Runs of equal readings of a column; NaN rows are stepped over. */
-export function runsOf(time: Float64Array, column: Float64Array): Run[] {
-  const runs: Run[] = [];
+/** Runs of equal readings of a column, one after another: most logs have one a reading. NaN rows are stepped over. */
+export function* runsOf(time: Float64Array, column: Float64Array): Generator<Run> {
   let first = -1;
   let last = -1;
   let readings = 0;
-  const close = () => {
-    if (first >= 0) runs.push({ first, last, readings, seconds: time[last] - time[first], value: column[first] });
-  };
+  const run = (): Run => ({ first, last, readings, seconds: time[last] - time[first], value: column[first] });
   for (let i = 0; i < column.length; i++) {
     const value = column[i];
     if (Number.isNaN(value)) continue;
@@ -66,12 +63,19 @@ export function runsOf(time: Float64Array, column: Float64Array): Run[] {
       readings++;
       continue;
     }
-    close();
+    if (first >= 0) yield run();
     first = last = i;
     readings = 1;
   }
-  close();
-  return runs;
+  if (first >= 0) yield run();
+}
+
+/** Puts a run among the longest, longest first, in order of time among equals; the shortest of too many goes. */
+function keepLongest(longest: Run[], run: Run): void {
+  const place = longest.findIndex((other) => other.readings < run.readings);
+  if (place >= 0) longest.splice(place, 0, run);
+  else longest.push(run);
+  if (longest.length > MOST_FREEZES + 1) longest.pop();
 }
 
 /**
@@ -83,17 +87,23 @@ export function runsOf(time: Float64Array, column: Float64Array): Run[] {
  * @returns The freezes, longest first.
  */
 export function findFreezes(time: Float64Array, column: Float64Array): Run[] {
-  const runs = runsOf(time, column);
-  if (runs.length < 3) return [];
-  const longest = [...runs].sort((a, b) => b.readings - a.readings).slice(0, MOST_FREEZES + 1);
+  const longest: Run[] = [];
+  let runs = 0;
+  let readings = 0;
+  for (const run of runsOf(time, column)) {
+    runs++;
+    readings += run.readings;
+    keepLongest(longest, run);
+  }
+  if (runs < 3) return [];
   let count = 0;
   for (let k = 0; k + 1 < longest.length; k++) {
     if (longest[k].readings >= STANDS_OUT * longest[k + 1].readings) count = k + 1;
   }
-  const steps = runs.reduce((sum, run) => sum + run.readings, 0) - 1;
+  const steps = readings - 1;
   const frozen = longest.slice(0, count);
   const inside = frozen.reduce((sum, run) => sum + run.readings - 1, 0);
-  const changes = runs.length - 1;
+  const changes = runs - 1;
   const repeats = steps - changes - inside;
   const p = (repeats + 1) / (repeats + changes + 2);
   return frozen.filter(
@@ -175,8 +185,8 @@ function around(column: Float64Array, run: Run): number {
 }
 
 function neverChanges(time: Float64Array, column: Float64Array): boolean {
-  const runs = runsOf(time, column);
-  return runs.length === 1 && runs[0].readings >= CONSTANT_READINGS && runs[0].seconds >= CONSTANT_SECONDS;
+  const [run, another] = runsOf(time, column);
+  return !!run && !another && run.readings >= CONSTANT_READINGS && run.seconds >= CONSTANT_SECONDS;
 }
 
 /** Channels that are worthless because the cups do not turn: the speed, and a true wind derived from it. */

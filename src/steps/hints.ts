@@ -40,7 +40,7 @@ export function boatExcesses(input: HintInput): (BoatExcess | null)[] {
 export function hints(input: HintInput, found: readonly (BoatExcess | null)[]): (readonly Hint[])[] {
   return found.map((one, k) => {
     const stands = (one?.excesses ?? []).filter((excess) => excess.stands);
-    const told = stands.map((excess) => excessHint(excess, input, k, one!.other));
+    const told = stands.map((excess) => excessHint(excess, one!, input, k));
     return [...told, ...leewayHint(input, k)].slice(0, MOST);
   });
 }
@@ -58,16 +58,16 @@ function costsOf({ judgements, estimates }: HintInput, boat: number): BoatCosts 
   return { beats, errors: estimates[boat].errors };
 }
 
-function excessHint(excess: Excess, input: HintInput, boat: number, other: number): Hint {
+function excessHint(excess: Excess, { other, excesses: all }: BoatExcess, input: HintInput, boat: number): Hint {
   const { cause, metres, se, sys } = excess;
   const name = input.names[other];
   const more = `about ${metres.toFixed(0)} m more lost than ${name}, ±${Math.max(1, se).toFixed(0)}`;
   const text = ((): string => {
     switch (cause) {
       case 'high':
-        return `Sailed${angleWords(input, boat, 'above')} the best course angle: ${more}${bentWords(excess)}. Try a little lower and faster.`;
+        return `Sailed${angleWords(input, boat, 'above')} the best course angle: ${more}${bentWords(excess)}${backWords(all)}. Try a little lower and faster.`;
       case 'low':
-        return `Sailed${angleWords(input, boat, 'below')} the best course angle: ${more}${bentWords(excess)}. Try a little higher.`;
+        return `Sailed${angleWords(input, boat, 'below')} the best course angle: ${more}${bentWords(excess)}${backWords(all)}. Try a little higher.`;
       case 'speed':
         return `Slower at the same angle: ${more}. Speed or trim, the log cannot tell.`;
       case 'trim':
@@ -87,10 +87,19 @@ function excessHint(excess: Excess, input: HintInput, boat: number, other: numbe
   return { text, metres: { value: metres, se, ...(sys > 0 ? { sys } : {}), basis: 'inferred' } };
 }
 
+/** Two lengths of a dinghy. [m] */
+const WORTH_A_WORD = 8;
+
 /** What of it the ledgers show under speed, where that is worth a word. */
 function bentWords({ fromSpeed, metres }: Excess): string {
-  if (fromSpeed < Math.max(8, 0.25 * metres)) return '';
+  if (fromSpeed < Math.max(WORTH_A_WORD, 0.25 * metres)) return '';
   return `, ${fromSpeed.toFixed(0)} m of them shown under speed in the ledger, as the boat file may make too little of such an angle`;
+}
+
+/** What a boat off the best angle made good of it by more speed than the curve has there. */
+function backWords(all: readonly Excess[]): string {
+  const speed = all.find(({ cause }) => cause === 'speed')?.metres ?? 0;
+  return speed < -WORTH_A_WORD ? `, ${(-speed).toFixed(0)} m of it won back by speed` : '';
 }
 
 /** How far beyond the lay line, at the worst. */

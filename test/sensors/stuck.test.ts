@@ -25,7 +25,7 @@ function log(channels: Partial<Record<Channel, Float64Array>>, step = 1): Record
 describe('runsOf', () => {
   it('counts equal readings and steps over missing ones', () => {
     const column = Float64Array.of(1, 1, NaN, 1, 2, NaN, NaN, 3, 3);
-    expect(runsOf(clock(9), column)).toEqual([
+    expect([...runsOf(clock(9), column)]).toEqual([
       { first: 0, last: 3, readings: 3, seconds: 3, value: 1 },
       { first: 4, last: 4, readings: 1, seconds: 0, value: 2 },
       { first: 7, last: 8, readings: 2, seconds: 1, value: 3 },
