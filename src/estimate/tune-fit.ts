@@ -77,15 +77,16 @@ export function fitTuning(boat: BoatSpec, blocks: readonly TuneBlock[], options:
   if (used.length < LEAST_BLOCKS || spells < LEAST_SPELLS) return null;
   const reasons = new Map<TuneName, string>();
   let free = [...NAMES];
-  let { fit } = settled(boat, used, free, options);
+  let { fit, sigma } = settled(boat, used, free, options);
   const all = fit;
   for (;;) {
     const bad = undetermined(free, fit);
     if (!bad) break;
     reasons.set(bad.name, bad.reason);
+    const before = fit.parameters.filter((_, i) => free[i] !== bad.name);
     free = free.filter((name) => name !== bad.name);
     if (free.length === 0) break;
-    ({ fit } = settled(boat, used, free, options));
+    ({ fit, sigma } = settled(boat, used, free, options, { sigma, parameters: before }));
   }
   const tuning = free.length > 0 ? tuningOf(boat, free, fit.parameters) : boat.tuning;
   return {
@@ -142,21 +143,28 @@ function tuningOf(boat: BoatSpec, free: readonly TuneName[], logs: ArrayLike<num
   return tuning;
 }
 
-/** Fits, takes the spread of each kind of residual from the fit, and fits again. */
+interface Settled {
+  readonly fit: Fit;
+  /** Spread of each kind of residual. */
+  readonly sigma: readonly number[];
+}
+
+/** Fits, takes the spread of each kind of residual from the fit, and fits again; from an earlier fit where there is one. */
 function settled(
   boat: BoatSpec,
   blocks: readonly TuneBlock[],
   free: readonly TuneName[],
   options: ModelOptions,
-): { fit: Fit } {
-  let sigma: readonly number[] = FIRST_SIGMA;
-  let fit = fitWith(boat, blocks, free, options, sigma);
-  for (let round = 0; round < 2; round++) {
+  from?: { readonly sigma: readonly number[]; readonly parameters: Float64Array },
+): Settled {
+  let sigma = from?.sigma ?? FIRST_SIGMA;
+  let fit = fitWith(boat, blocks, free, options, sigma, from?.parameters);
+  for (let round = from ? 1 : 0; round < 2; round++) {
     const spread = spreads(fit.residuals, sigma);
     sigma = spread.map((value, k) => (value > 0 ? Math.max(value, LEAST_SIGMA[k]) : FIRST_SIGMA[k]));
     fit = fitWith(boat, blocks, free, options, sigma, fit.parameters);
   }
-  return { fit };
+  return { fit, sigma };
 }
 
 function fitWith(

@@ -1,7 +1,7 @@
 /**
- * Planted faults: the cause has the largest excess over the other boat, and the first hint names it; of clean pairs at most one in ten
- * is told anything. Short: six races each, so one miss more than the share is let pass; with LEGWORK_LONG=1 thirty
- * others.
+ * Planted faults: the cause has the largest excess over the other boat, and the first hint names it; of clean pairs at
+ * most one in ten is told anything. Short: six races each, so one miss more than the share is let pass; with
+ * LEGWORK_LONG=1 thirty others.
  */
 import { describe, expect, it } from 'vitest';
 import { debrief } from '../../src/debrief.js';

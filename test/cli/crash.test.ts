@@ -130,7 +130,7 @@ describe('the program, killed from outside', () => {
 
     const random = generator(7);
     const fell = new Map(STAGES.map((stage) => [stage, 0]));
-    for (let k = 0; k < (LONG ? 50 : 5); k++) {
+    for (let k = 0; k < (LONG ? 50 : 3); k++) {
       writeFileSync(join(book, name), old);
       writeFileSync(env.FAULT_NOTE, 'not started');
       const child = debrief();

@@ -8,6 +8,7 @@ import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { gpxText, inventedBeat, windText } from './invented-beat.js';
 import { buildProgram, drop, dropProgram, ended, filesBelow, fill, folder, run, start } from './run.js';
 
+const LONG = process.env['LEGWORK_LONG'] === '1';
 const TRACK = gpxText(inventedBeat());
 const raceFile = (more = ''): string =>
   `race: Test\nzone: UTC\nboat: single-hander\nwind: [{ file: wind.csv, height_m: 3 }]\nboats: [{ name: Ann, track: ann.gpx }]\n${more}`;
@@ -51,7 +52,7 @@ describe('signals while the program works', () => {
     ['SIGTERM', 143],
     ['SIGHUP', 129],
   ] as const)('%s leaves all or nothing of every file, whenever it comes', async (signal, expected) => {
-    for (const wait of [300, 700, 1100, 1500]) {
+    for (const wait of LONG ? [100, 300, 500, 700, 900, 1100, 1300, 1500] : [300, 900]) {
       const cwd = folder({ 'race.yaml': raceFile(), 'ann.gpx': TRACK, 'wind.csv': windText() });
       const child = start(['debrief', '--json', 'r.json', '--csv', 't'], { cwd });
       const end = ended(child);
@@ -208,9 +209,8 @@ function expectTheBeat({ gamma_deg, speed_kn }: Means): void {
 describe('places', () => {
   const perDegree = (lat: number): number => Math.cos((46.9 * Math.PI) / 180) / Math.cos((lat * Math.PI) / 180);
   it.each([
-    ['across the date line', -17, 180],
+    ['across the date line, south', -17, 180],
     ['at latitude 80', 80, 20],
-    ['in the southern hemisphere', -45, 170],
     ['across 0, 0', 0, 0],
   ])('%s', async (_, lat, lon) => {
     const track = moved((fix) => ({
