@@ -16,6 +16,7 @@ import { checksum, columnsOf, meanSpeed, sumsText } from './columns.js';
 import { ROOT, scratch, sentences, table, track, whichGenerator } from './data.js';
 import { inTurn, measure, runCommand, SAYS_COST, type Cost, type Measured } from './measure.js';
 import { bestByGrid, gpxBySaxes, TABLE_BY_PANDAS, tableByPapaparse } from './rivals.js';
+import { reportRows, reportText } from './report.js';
 import { read, readTolerantly, stages } from './stages.js';
 
 const PROGRAM = join(ROOT, 'dist/cli/legwork.js');
@@ -324,11 +325,14 @@ async function main(): Promise<void> {
   say(tableText(['growth', 'size', '', 's', 'cpu s', 'cpu µs/fix', 'MB', ''], grownCells));
   const { start, each: fix, worst } = straightLine(grown);
   say(`cpu = ${digits(start)} s + ${digits(fix * 1e6)} µs a fix, off by at most ${digits(100 * worst, 0)} %`);
+  const pages = await reportRows();
+  say();
+  say(pages.length > 0 ? reportText(pages) : 'skipped: no browser is present');
   say(`load ${load()}`);
   if (flags.json)
     writeFileSync(
       flags.json,
-      `${JSON.stringify({ node: process.version, load: load(), rows, stages: each, growth: grown }, null, 2)}\n`,
+      `${JSON.stringify({ node: process.version, load: load(), rows, stages: each, growth: grown, pages }, null, 2)}\n`,
     );
   const verdicts = [...rows.map(verdict), ...grown.map(({ megabytes, cost }) => memoryVerdict(megabytes, cost))];
   const missed = verdicts.some((one) => one.endsWith('missed'));

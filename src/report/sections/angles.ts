@@ -11,6 +11,7 @@ import { dayBest, settledMean, timeMean, upwindLegs } from '../figures.js';
 import { number, plain, quantity, time, withUnit } from '../format.js';
 import { html, nameOf, type Part, type Safe } from '../html.js';
 import { shiftsOf } from '../shifts.js';
+import { isTaken, liftedShare } from '../shifts-taken.js';
 import { RAD } from '../../math/angles.js';
 import { toKnots } from '../../math/units.js';
 import { REFERENCE_WORDS } from '../causes.js';
@@ -242,20 +243,52 @@ function tackPlates(result: Result): Part {
   return [plate('vmg_kn', 'VMG', 'kn', 'kn'), plate('gamma_deg', 'course angle', 'deg', '°')];
 }
 
-function windPlate(series: RaceSeries): Part {
+/** For each shift and boat, the share of its beat to the next shift on the tack that is lifted; NaN: no beat. */
+function takenShares(
+  result: Result,
+  series: RaceSeries,
+  times: readonly number[],
+  veers: readonly number[],
+): number[][] {
+  const end = racingSpan(series)[1];
+  return times.map((at, k) =>
+    series.boats.map((boat, b) => {
+      const beats = boat.legs.filter((leg) => result.boats[b].legs.at(leg.index)?.kind === 'upwind');
+      return liftedShare(boat, beats, [at, times.at(k + 1) ?? end], veers[k]);
+    }),
+  );
+}
+
+function windPlate(result: Result, series: RaceSeries): Part {
   const boat = series.boats.find((b) => b.twd.some(Number.isFinite));
   if (!boat) return null;
   const [from, to] = racingSpan(series);
   const shifts = shiftsOf(boat.twd).filter((s) => boat.t0 + s.row >= from && boat.t0 + s.row <= to);
+  const shares = takenShares(
+    result,
+    series,
+    shifts.map((s) => boat.t0 + s.row),
+    shifts.map((s) => s.by),
+  );
+  const counts = series.boats.map((b, k) => {
+    const told = shares.map((row) => isTaken(row[k])).filter((taken) => taken !== null);
+    return html`${k > 0 ? ', ' : ''}${nameOf(b.name)} ${told.filter(Boolean).length} of ${told.length}`;
+  });
   return figure({
     svg: windStrip(boat, shifts, { span: [from, to] }),
     title: 'The wind over the race',
     summary: html`The thin line is the wind at ${nameOf(boat.name)} each second, the heavy one its mean over a minute.
-    Marks: the minute’s mean has moved five degrees since the last mark.`,
+    Marks: the minute’s mean has moved five degrees since the last mark. Shifts taken on the beats, that is most of the
+    time to the next on the tack it lifted: ${counts}.`,
     table: table(
-      'Shifts',
-      ['Time', 'Wind from °', 'Moved by °'],
-      shifts.map((s) => [time(boat.t0 + s.row, 'hms'), plain(s.twd, 0), plain(s.by, 0)]),
+      'Shifts, and the share of the beat to the next one on the lifted tack',
+      ['Time', 'Wind from °', 'Moved by °', ...series.boats.map((b) => nameOf(b.name))],
+      shifts.map((s, k) => [
+        time(boat.t0 + s.row, 'hms'),
+        plain(s.twd, 0),
+        plain(s.by, 0),
+        ...shares[k].map((share) => (Number.isNaN(share) ? '' : withUnit(100 * share, 'percent'))),
+      ]),
     ),
   });
 }
@@ -268,7 +301,7 @@ export function angles(result: Result, series: RaceSeries): Safe {
     distributionPlate(result, series),
     dragPlate(result),
     tackPlates(result),
-    windPlate(series),
+    windPlate(result, series),
   ];
   return section(
     'angles',
