@@ -1,13 +1,15 @@
 import { clockCorrections, type ClockCorrection } from './between/common-clock.js';
-import type { BetweenBoat } from './between/boat.js';
+import type { BetweenBoat, BowAngle, TrimForces, TrimSources } from './between/boat.js';
 import { ladder, type LadderLeg } from './between/ladder.js';
 import { comparePairs, pairsOf, type PairComparison } from './between/pairs.js';
 import { debrief, type Debrief, type DebriefOptions } from './debrief.js';
+import { trimForces } from './estimate/trim-forces.js';
 import type { BoatReference, LogReference, Race } from './files/race-types.js';
 import type { LogSource } from './importers/types.js';
 import { UserError } from './recording/issues.js';
-import type { BoatResult, Warning } from './result/result.js';
+import type { BoatResult, Q, Warning } from './result/result.js';
 import type { BoatSeries, MarkPlace } from './result/series.js';
+import { boatModels } from './steps/boat-models.js';
 
 export interface CompareOptions extends DebriefOptions {
   /** Names of the boats to compare, all when left out. */
@@ -66,10 +68,14 @@ async function onTime(
   options: DebriefOptions,
 ): Promise<Debrief & { boats: BetweenBoat[]; warnings: Warning[] }> {
   const warnings: Warning[] = [];
+  const forces = await forcesOf(race, open);
   for (let round = 0, right = race; ; round++) {
     const { result, series } = await debrief(right, open, options);
     const marks = race.runs.length > 0 ? [] : series.marks;
-    const boats = series.boats.map((boat, k) => betweenBoat(boat, result.boats[k], marks));
+    const boats = series.boats.map((boat, k) => ({
+      ...betweenBoat(boat, result.boats[k], marks),
+      trim: trimSources(boat, result.boats[k], forces[k]),
+    }));
     const corrections = round < MOST_ROUNDS ? clockCorrections(boats) : [];
     if (corrections.length === 0) return { result, series, boats, warnings };
     warnings.push(...corrections.map(clockWarning));
@@ -109,6 +115,24 @@ export function betweenBoat(series: BoatSeries, result: BoatResult, marks: reado
       return leg.kind === 'upwind' ? [{ lap: leg.lap, from, to }] : [];
     }),
     manoeuvres: series.manoeuvres.map(({ kind, entry, at, exit }) => ({ kind, from: entry, at, to: exit })),
+  };
+}
+
+async function forcesOf(race: Race, open: (file: string) => LogSource): Promise<TrimForces[]> {
+  const models = await boatModels(race, open);
+  return models.map(({ model, accuracy, sha256 }, k) =>
+    trimForces(model, accuracy, `${sha256} ${race.boats[k].crewMassKg ?? ''}`),
+  );
+}
+
+/** The instruments of a boat that the debrief found its leeway by, and its boat file. */
+function trimSources({ heading, awa }: BoatSeries, { corrections, legs }: BoatResult, forces: TrimForces): TrimSources {
+  const ways = new Set(legs.flatMap(({ trim }) => (trim?.leeway_ways ?? []).map(({ way }) => way)));
+  const bowAngle = (angle: Float64Array, offset: Q): BowAngle => ({ angle, offsetSe: offset?.se ?? 0 });
+  return {
+    forces,
+    ...(ways.has('heading') && { heading: bowAngle(heading, corrections.compass_offset_deg) }),
+    ...(ways.has('masthead') && awa && { masthead: bowAngle(awa, corrections.awa_offset_deg) }),
   };
 }
 

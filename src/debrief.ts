@@ -108,7 +108,10 @@ export async function debrief(race: Race, open: OpenLog, options: DebriefOptions
     frame: clean.frame,
     zone: race.zone,
     marks: placesOf(race.marks, course, wind.sailed, clean.frame),
-    boats: clean.boats.map((boat, k) => boatSeries(boat.track, wind.sailed[k], estimates[k])),
+    boats: clean.boats.map(({ track }, k) => ({
+      ...boatSeries(track, wind.sailed[k], estimates[k]),
+      ...(track.awa && { awa: track.awa }),
+    })),
     polars: polarCurves(models, judgements, wind.sailed),
   };
   return { result, series };

@@ -1,5 +1,6 @@
 import { DEG } from '../math/angles.js';
 import { rowAt, type BetweenBoat, type UpwindLeg } from './boat.js';
+import { meanKnown, trimMeans, type TrimMeans } from './trim-means.js';
 import { sharedDirection, WindSum, type UnitVector } from './shared-wind.js';
 
 /** Blocks of settled sailing that two boats share: same second, same tack, close by. */
@@ -44,6 +45,8 @@ export interface PairBlock {
   readonly gain: number;
   /** Mean distance between the boats. [m] */
   readonly distance: number;
+  /** What the leeway of each boat can be told from. */
+  readonly trim: readonly [TrimMeans, TrimMeans];
 }
 
 interface Stretch {
@@ -157,6 +160,7 @@ function measureBlock(
   const a = againstWind(sum.x1, sum.y1, wind);
   const b = againstWind(sum.x2, sum.y2, otherWind);
   const along = meanWind ?? wind;
+  const tws = blockWind(first, second, stretch, from, to, options);
   return {
     lap: stretch.lap,
     time: first.t0 + stretch.rowFirst + from,
@@ -165,7 +169,26 @@ function measureBlock(
     ...splitDifference(a, b),
     gain: seconds * ((sum.x1 - sum.x2) * along.east + (sum.y1 - sum.y2) * along.north),
     distance: sum.distance,
+    trim: [
+      trimMeans(first, stretch.rowFirst + from, seconds, { speed: a.v, gamma: DEG * a.γ, tws: tws[0] }),
+      trimMeans(second, stretch.rowSecond + from, seconds, { speed: b.v, gamma: DEG * b.γ, tws: tws[1] }),
+    ],
   };
+}
+
+/** Wind speed each boat is measured in, like the direction: the mean of what both have, or each its own. [m/s] */
+function blockWind(
+  first: BetweenBoat,
+  second: BetweenBoat,
+  { rowFirst, rowSecond }: Stretch,
+  from: number,
+  to: number,
+  { wind }: PairingOptions,
+): [number, number] {
+  const own = [meanKnown(first.tws, rowFirst + from, to - from), meanKnown(second.tws, rowSecond + from, to - from)];
+  const known = own.filter((speed) => !Number.isNaN(speed));
+  const shared = known.reduce((sum, speed) => sum + speed, 0) / known.length;
+  return wind === 'shared' ? [shared, shared] : [own[0], own[1]];
 }
 
 interface SpeedAndAngle {

@@ -4,7 +4,8 @@ import { pairBlocks, PAIRING, type PairBlock, type PairingOptions } from './bloc
 import type { BetweenBoat } from './boat.js';
 import { LEAST_BLOCKS, samplingMean, type SamplingMean } from './sampling.js';
 import { meanWindByLap } from './mean-wind.js';
-import { chancesOf, VERDICT_LEVEL, type PairChances } from './verdicts.js';
+import { compareTrim, leewayMean, measured, sheetingMean, type TrimComparison, type TrimMean } from './trim.js';
+import { chancesOf, trimChancesOf, VERDICT_LEVEL, type PairChances, type TrimChances } from './verdicts.js';
 
 /** Two boats against each other on what they sailed settled, on the same tack and close by. */
 
@@ -19,6 +20,7 @@ export interface PairComparison {
   /** Metres gained to windward of the mean wind in the shared blocks. */
   readonly gain: number;
   readonly seconds: number;
+  readonly trim: TrimComparison;
 }
 
 /**
@@ -39,10 +41,13 @@ export function comparePair(
 ): PairComparison {
   const all = { ...PAIRING, ...options };
   const blocks = pairBlocks(first, second, meanWindByLap(first, second, all.shift), all);
-  return { boats: [first.name, second.name], blocks, ...summarise(blocks) };
+  const trim = compareTrim(first, second, blocks);
+  return { boats: [first.name, second.name], blocks, ...summarise(blocks), trim };
 }
 
-function summarise(blocks: readonly PairBlock[]): Omit<PairComparison, 'boats' | 'blocks'> {
+type Summary = Omit<PairComparison, 'boats' | 'trim'>;
+
+function summarise(blocks: readonly PairBlock[]): Omit<Summary, 'blocks'> {
   const seconds = blocks.map((block) => block.seconds);
   const of = (key: 'vmg' | 'height' | 'speed' | 'gamma'): SamplingMean =>
     samplingMean(
@@ -74,7 +79,13 @@ export function comparePairs(
   const { only, ...pairing } = options;
   const comparisons = pairsOf(boats, only).map(([first, second]) => comparePair(first, second, pairing));
   const chances = chancesOf(comparisons);
-  const results = comparisons.map((pair, k) => pairResult(pair, chances[k]));
+  const trims = trimChancesOf(
+    comparisons.map(({ trim, blocks }) => ({
+      leeway: leewayMean(trim.leeway, blocks)?.p ?? NaN,
+      sheeting: sheetingMean(trim.sheeting, blocks)?.p ?? NaN,
+    })),
+  );
+  const results = comparisons.map((pair, k) => pairResult(pair, { ...chances[k], ...trims[k] }));
   return { results, comparisons };
 }
 
@@ -84,24 +95,32 @@ export function pairsOf(boats: readonly BetweenBoat[], only?: readonly string[])
   return wanted.flatMap((first, i) => wanted.slice(i + 1).map((second): [BetweenBoat, BetweenBoat] => [first, second]));
 }
 
-function pairResult(pair: PairComparison, p: PairChances): PairResult {
-  const winner = (mean: SamplingMean, chance: number, level: number): string | null =>
-    chance <= level ? pair.boats[mean.value > 0 ? 0 : 1] : null;
+function pairResult(pair: PairComparison, p: PairChances & TrimChances): PairResult {
+  const winner = (value: number, chance: number, level: number): string | null =>
+    chance <= level ? pair.boats[value > 0 ? 0 : 1] : null;
+  const trim = trimFigures(pair, pair.blocks);
+  const more = (q: Quantity | null, kind: keyof TrimChances): string | null =>
+    q && winner(q.value, p[kind], VERDICT_LEVEL[kind]);
   return {
     boats: pair.boats,
     ...figures(pair),
+    ...trim,
     settled_s: pair.seconds,
-    faster: winner(pair.vmg, p.vmg, VERDICT_LEVEL.vmg),
-    higher: winner(pair.height, p.height, VERDICT_LEVEL.height),
-    quicker: winner(pair.speed, p.speed, VERDICT_LEVEL.speed),
-    legs: legResults(pair.blocks),
+    faster: winner(pair.vmg.value, p.vmg, VERDICT_LEVEL.vmg),
+    higher: winner(pair.height.value, p.height, VERDICT_LEVEL.height),
+    quicker: winner(pair.speed.value, p.speed, VERDICT_LEVEL.speed),
+    more_leeway: more(trim.leeway_difference_deg, 'leeway'),
+    sheeted_wider: more(trim.sheeting_difference_deg, 'sheeting'),
+    leeway_ways: waysOf(pair),
+    legs: legResults(pair),
     notes: notes(pair),
   };
 }
 
-type Figures = Omit<PairLeg, 'lap'>;
+type TrimKeys = 'leeway_difference_deg' | 'sheeting_difference_deg';
+type Figures = Omit<PairLeg, 'lap' | TrimKeys>;
 
-function figures(pair: Omit<PairComparison, 'boats'>): Figures {
+function figures(pair: Summary): Figures {
   return {
     vmg_difference_kn: knots(pair.vmg),
     height_part_kn: knots(pair.height),
@@ -112,11 +131,40 @@ function figures(pair: Omit<PairComparison, 'boats'>): Figures {
   };
 }
 
-function legResults(blocks: readonly PairBlock[]): PairLeg[] {
-  const laps = [...new Set(blocks.map((block) => block.lap))].sort((a, b) => a - b);
+/** Leeway and sheeting over some of the blocks of a pair. */
+function trimFigures({ trim, blocks }: PairComparison, of: readonly PairBlock[]): Record<TrimKeys, Quantity | null> {
+  const wanted = (block: PairBlock): boolean => of.includes(block);
+  const told = (mean: TrimMean | null, basis: Quantity['basis']): Quantity | null => {
+    const q = mean && quantity(mean.mean.value, mean.mean.se);
+    return q && { ...q, sys: mean.sys, basis };
+  };
+  const way = trim.leeway.ways[0]?.way ?? 'forces';
+  return {
+    leeway_difference_deg: told(leewayMean(trim.leeway, blocks, wanted), LEEWAY_BASIS[way]),
+    sheeting_difference_deg: told(sheetingMean(trim.sheeting, blocks, wanted), 'inferred'),
+  };
+}
+
+const LEEWAY_BASIS = { heading: 'measured', masthead: 'derived', forces: 'inferred' } as const;
+
+/** The difference in leeway by each way, as the leg of a boat has it. */
+function waysOf({ trim, blocks }: PairComparison): NonNullable<PairResult['leeway_ways']> {
+  return trim.leeway.ways.map((way) => {
+    const { mean, sys } = leewayMean({ ways: [{ ...way, weight: 1 }], values: way.values, reason: '' }, blocks)!;
+    const q = quantity(mean.value, mean.se);
+    return {
+      way: way.way,
+      leeway_difference_deg: q && { ...q, sys, basis: LEEWAY_BASIS[way.way] },
+      weight: way.weight,
+    };
+  });
+}
+
+function legResults(pair: PairComparison): PairLeg[] {
+  const laps = [...new Set(pair.blocks.map((block) => block.lap))].sort((a, b) => a - b);
   return laps.map((lap) => {
-    const own = blocks.filter((block) => block.lap === lap);
-    return { lap, ...figures({ blocks: own, ...summarise(own) }) };
+    const own = pair.blocks.filter((block) => block.lap === lap);
+    return { lap, ...figures({ blocks: own, ...summarise(own) }), ...trimFigures(pair, own) };
   });
 }
 
@@ -129,9 +177,16 @@ function quantity(value: number, se: number): Quantity | null {
   return { value, se: Number.isFinite(se) ? se : null, basis: 'derived' };
 }
 
-function notes(pair: PairComparison): string[] {
-  const n = pair.blocks.length;
+function notes({ blocks, trim }: PairComparison): string[] {
+  const n = blocks.length;
   if (n === 0) return ['never settled on the same tack within reach of each other: nothing to compare'];
-  if (n < LEAST_BLOCKS) return [`only ${n} blocks sailed together: too few for a verdict (${LEAST_BLOCKS} needed)`];
-  return [];
+  const few = n < LEAST_BLOCKS;
+  return [
+    ...(few ? [`only ${n} blocks sailed together: too few for a verdict (${LEAST_BLOCKS} needed)`] : []),
+    ...(trim.leeway.reason ? [`leeway: not determined: ${trim.leeway.reason}`] : []),
+    ...(trim.sheeting.reason ? [`sheeting: not determined: ${trim.sheeting.reason}`] : []),
+    ...(trim.leeway.ways.length > 0 && !measured(trim.leeway.ways)
+      ? ['leeway: by the forces alone, from the speeds and angles above: no evidence beyond them, and no verdict']
+      : []),
+  ];
 }

@@ -7,8 +7,8 @@ import type { SamplingMean } from './sampling.js';
 
 /** When a difference is called one. */
 
-/** Chance of a false verdict: on speed made good; on height and on speed apart, which are read beside it. */
-export const VERDICT_LEVEL = { vmg: 0.05, height: 0.02, speed: 0.02 } as const;
+/** Chance of a false verdict: on speed made good; on height, speed, leeway and sheeting, which are read beside it. */
+export const VERDICT_LEVEL = { vmg: 0.05, height: 0.02, speed: 0.02, leeway: 0.02, sheeting: 0.02 } as const;
 
 /** P-values to be held against `VERDICT_LEVEL`; NaN: too few blocks for a verdict. */
 export interface PairChances {
@@ -37,6 +37,21 @@ export function chancesOf(comparisons: readonly PairComparison[]): PairChances[]
     const [vmg, height, speed] = KINDS.map((kind, row) => adjusted[row * comparisons.length + k] / scale(kind));
     return { vmg, height, speed };
   });
+}
+
+/**
+ * The same for leeway and sheeting. They are a family of their own: they say where a difference may come from, not who
+ * made more to windward, and take nothing of the power of that.
+ */
+export function trimChancesOf(pairs: readonly { readonly leeway: number; readonly sheeting: number }[]): TrimChances[] {
+  if (pairs.length < 2) return pairs.map(({ leeway, sheeting }) => ({ leeway, sheeting }));
+  const adjusted = holm([...pairs.map(({ leeway }) => leeway), ...pairs.map(({ sheeting }) => sheeting)]);
+  return pairs.map((_, k) => ({ leeway: adjusted[k], sheeting: adjusted[pairs.length + k] }));
+}
+
+export interface TrimChances {
+  readonly leeway: number;
+  readonly sheeting: number;
 }
 
 function fleetChances(comparisons: readonly PairComparison[], kind: (typeof KINDS)[number]): number[] {

@@ -151,6 +151,9 @@ export interface PairLeg {
   readonly speed_part_kn: Q;
   readonly gamma_difference_deg: Q;
   readonly gain_m: Q;
+  /** Over the same blocks; left out by earlier programs. `sys`: offsets, what is left of compass and vane, the boat file. */
+  readonly leeway_difference_deg?: Q;
+  readonly sheeting_difference_deg?: Q;
   readonly blocks: number;
 }
 
@@ -161,11 +164,22 @@ export interface PairResult {
   readonly speed_part_kn: Q;
   readonly gamma_difference_deg: Q;
   readonly gain_m: Q;
+  readonly leeway_difference_deg?: Q;
+  readonly sheeting_difference_deg?: Q;
   readonly blocks: number;
   readonly settled_s: number;
   readonly faster: string | null;
   readonly higher: string | null;
   readonly quicker: string | null;
+  /** Who made more leeway, and whose boom was farther out, beyond chance and what the instruments are good to. */
+  readonly more_leeway?: string | null;
+  readonly sheeted_wider?: string | null;
+  /** Each way the difference in leeway was had by, with its weight in the mean. */
+  readonly leeway_ways?: readonly {
+    readonly way: 'heading' | 'masthead' | 'forces';
+    readonly leeway_difference_deg: Q;
+    readonly weight: number;
+  }[];
   readonly legs: readonly PairLeg[];
   readonly notes: readonly string[];
 }

@@ -45,6 +45,9 @@ const OPTIMUM = ['gamma_deg', 'speed_kn', 'vmg_kn', 'beta_deg', 'leeway_deg', 's
 /** How the optimum's beta divides: files of others need not say. */
 const OPTIMUM_PARTS = ['aero_drag_angle_deg', 'hydro_drag_angle_deg'] as const;
 const PAIR = ['vmg_difference_kn', 'height_part_kn', 'speed_part_kn', 'gamma_difference_deg', 'gain_m'] as const;
+/** Files of earlier programs do not say. */
+const PAIR_TRIM = ['leeway_difference_deg', 'sheeting_difference_deg'] as const;
+const LEEWAY_WAYS = ['heading', 'masthead', 'forces'] as const;
 const CAUSES = ['manoeuvres', 'start', 'high', 'low', 'trim', 'speed', 'overstood', 'stopped', 'shifts'] as const;
 
 function inputShape(object: ObjectMaker) {
@@ -77,7 +80,7 @@ function legIn(object: ObjectMaker) {
     ...quantities(['available_m', 'made_m', 'lost_m'] as const, q),
     entries: z.array(object({ cause: z.enum(CAUSES), metres: q })),
   });
-  const way = z.enum(['heading', 'masthead', 'forces']);
+  const way = z.enum(LEEWAY_WAYS);
   const trim = object({
     leeway_ways: z.array(object({ way, leeway_deg: q, weight: z.number() })),
     ...quantities(['sheeting_prior_deg', 'sheeting_posterior_deg'] as const, q),
@@ -131,7 +134,8 @@ function boatIn(object: ObjectMaker) {
 
 function pairIn(object: ObjectMaker) {
   const q = quantityIn(object);
-  const parts = { ...quantities(PAIR, q), blocks: count };
+  const parts = { ...quantities(PAIR, q), ...quantities(PAIR_TRIM, q.optional()), blocks: count };
+  const way = object({ way: z.enum(LEEWAY_WAYS), leeway_difference_deg: q, weight: z.number() });
   const name = z.string().nullable();
   return object({
     boats: z.tuple([z.string(), z.string()]),
@@ -140,6 +144,9 @@ function pairIn(object: ObjectMaker) {
     faster: name,
     higher: name,
     quicker: name,
+    more_leeway: name.optional(),
+    sheeted_wider: name.optional(),
+    leeway_ways: z.array(way).optional(),
     legs: z.array(object({ lap: count, ...parts })),
     notes: z.array(z.string()),
   });

@@ -32,6 +32,8 @@ export interface BoatSeries {
   readonly aws: Float64Array;
   /** True heading where logged (corrected), else all NaN. [deg] */
   readonly heading: Float64Array;
+  /** Apparent wind off the bow where logged (corrected), positive starboard; left out where it is not. [deg] */
+  readonly awa?: Float64Array;
   /** 1 while settled close-hauled sailing. */
   readonly settled: Uint8Array;
   readonly legs: readonly LegSpan[];

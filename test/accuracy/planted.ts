@@ -19,6 +19,7 @@ export const SHOWS_IN: Readonly<Record<keyof Faults, readonly Cause[]>> = {
   overstand: ['overstood', 'low'],
   headed: ['shifts'],
   sheeting: ['trim', 'speed'],
+  leeway: ['trim', 'speed'],
 };
 
 const BLOCK_S = 30;

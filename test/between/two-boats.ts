@@ -9,6 +9,8 @@ export interface BoatTruth {
   readonly speed?: number;
   /** Degrees sailed higher (at the speed of the lower course times `heightCosts`). */
   readonly higher?: number;
+  /** Added to the usual leeway. [deg] */
+  readonly leeway?: number;
 }
 
 export interface Beat {
@@ -25,6 +27,8 @@ export interface Beat {
   readonly together?: boolean;
   /** Memory of the slow wander of each helm's target, 90 s when left out: it is elsewhere in 4 minutes. [s] */
   readonly memory?: number;
+  /** Each boat carries a compass and a vane, their offsets put right but for 0.3 degrees of standard deviation. */
+  readonly instruments?: boolean;
 }
 
 const RAD = Math.PI / 180;
@@ -87,8 +91,41 @@ export function sailBeat(beat: Beat): BetweenBoat[] {
     const local = localWind(random, n, common, like);
     const sailed = sail(random, n, truth, local, plan, lag, beat.memory ?? 90);
     const clock = beat.clock?.[index] ?? 0;
-    return record(random, n, sailed, common, station, index * (beat.apart ?? 20), `Boat ${index + 1}`, clock);
+    const boat = record(random, n, sailed, common, station, index * (beat.apart ?? 20), `Boat ${index + 1}`, clock);
+    if (!beat.instruments) return boat;
+    // Its own dice, so that the sailing is the same with and without.
+    return { ...boat, trim: onBoard(generator(1000 * beat.seed + index), sailed, local, truth.leeway ?? 0) };
   });
+}
+
+/** Standard deviation of what is left of an offset. [deg] */
+const OFFSET = 0.3;
+const LEEWAY = 4;
+
+/** What compass and vane make of it: leeway that wanders, offsets that stay, a compass and a vane that are a little off. */
+function onBoard(
+  random: () => number,
+  sailed: Sailed,
+  wind: WindSeries,
+  more: number,
+): NonNullable<BetweenBoat['trim']> {
+  const n = sailed.ux.length;
+  const leeway = wander(random, n, 0.5, 20).map((value) => LEEWAY + more + value);
+  const [compass, vane] = [OFFSET * normal(random), OFFSET * normal(random)];
+  const [deviation, upwash] = [0.2 * normal(random), 0.4 * normal(random)];
+  const heading = new Float64Array(n);
+  const awa = new Float64Array(n);
+  for (let i = 0; i < n; i++) {
+    const [east, north] = [sailed.ux[i], sailed.uy[i]];
+    const course = Math.atan2(east, north) / RAD;
+    const bow = course + sailed.tack[i] * leeway[i];
+    const from = wind.twd[i] * RAD;
+    const speed = WIND + wind.tws[i];
+    const apparent = Math.atan2(speed * Math.sin(from) + east, speed * Math.cos(from) + north) / RAD;
+    heading[i] = (bow + compass + sailed.tack[i] * deviation + 1.5 * normal(random) + 720) % 360;
+    awa[i] = ((apparent - bow + vane + sailed.tack[i] * upwash + 2 * normal(random) + 900) % 360) - 180;
+  }
+  return { heading: { angle: heading, offsetSe: OFFSET }, masthead: { angle: awa, offsetSe: OFFSET } };
 }
 
 interface WindSeries {

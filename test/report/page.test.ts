@@ -32,6 +32,23 @@ describe('the page as a string', () => {
     expect(page).toContain('At a glance');
   });
 
+  test('a pair has leeway and sheeting beside its VMG, said as something to test; files that lack them have no row', () => {
+    const { result, series } = sample();
+    const page = comparePage(result, series);
+    expect(page).toMatch(/Leeway<\/button> <small>by heading<\/small>/);
+    expect(page).toContain('<span class="none">not determined</span>');
+    expect(page).toContain('something to test side by side');
+    // Sampling error and what the instruments are good to, together: 0.3 and 0.28.
+    expect(page).toMatch(/−1\.6<\/span><span class="u">°<\/span> <small class="pm">±<span class="n">0\.4/);
+    const { leeway_difference_deg, sheeting_difference_deg, more_leeway, sheeted_wider, ...old } = result.pairs![0];
+    expect([leeway_difference_deg, sheeting_difference_deg, more_leeway, sheeted_wider]).not.toContain(undefined);
+    const before = comparePage({ ...result, pairs: [old] }, series);
+    expect(before).not.toContain('not determined');
+    expect(before).not.toContain('something to test side by side');
+    const even = { ...result.pairs![0], more_leeway: null, sheeted_wider: null };
+    expect(comparePage({ ...result, pairs: [even] }, series)).not.toContain('something to test side by side');
+  });
+
   test('a hostile name never becomes markup, in either page', () => {
     const { result, series } = renamed(sample(), HOSTILE);
     for (const page of [debriefPage(result, series), comparePage(result, series)]) {

@@ -420,9 +420,12 @@ function pairOf(a: BoatResult, b: BoatResult): PairResult {
     speed_part_kn: q(d + 0.09, 0.05),
     gamma_difference_deg: q(3.4, 0.5),
     gain_m: q(38, 3),
+    leeway_difference_deg: q(-1.6, 0.3, 'measured', 0.28),
+    sheeting_difference_deg: lap === 1 ? q(6.2, 1.2, 'inferred', 1.9) : null,
     blocks: 9,
   });
-  return { boats: [a.name, b.name], ...part(1), settled_s: 540, gain_m: q(74, 5), blocks: 18, faster: a.name, higher: b.name, quicker: a.name, legs: [part(1), part(2)], notes: [] };
+  const ways: PairResult['leeway_ways'] = [{ way: 'heading', leeway_difference_deg: q(-1.6, 0.3, 'measured', 0.28), weight: 1 }];
+  return { boats: [a.name, b.name], ...part(1), settled_s: 540, gain_m: q(74, 5), blocks: 18, faster: a.name, higher: b.name, quicker: a.name, more_leeway: b.name, sheeted_wider: a.name, leeway_ways: ways, legs: [part(1), part(2)], notes: [] };
 } // prettier-ignore
 
 export interface Sample {

@@ -1,4 +1,4 @@
-import type { PairLeg, PairResult, Result } from '../../result/result.js';
+import type { PairLeg, PairResult, Q, Result } from '../../result/result.js';
 import { pairBars } from '../charts/pair-bars.js';
 import { duration, inline, plural, quantity } from '../format.js';
 import { html, nameOf, type Part, type Safe } from '../html.js';
@@ -18,6 +18,52 @@ function verdictOf(pair: PairResult): Safe {
   return html`<p class="first">${parts}</p>`;
 }
 
+/** What leeway and sheeting say beside it: never what to do, only what to try. */
+function trimWords(pair: PairResult): Part {
+  const { more_leeway, sheeted_wider } = pair;
+  if (!more_leeway && !sheeted_wider) return null;
+  const [first, second] = pair.boats;
+  const other = (name: string): string => (name === first ? second : first);
+  const size = (q: Q | undefined): Part => q && inline(whole({ ...q, value: Math.abs(q.value) })!, 'deg');
+  return html`<p>
+    ${
+      more_leeway &&
+      html`${nameOf(more_leeway)} slid ${size(pair.leeway_difference_deg)} more to leeward than
+      ${nameOf(other(more_leeway))}.`
+    }
+    ${
+      sheeted_wider &&
+      html`The boom of ${nameOf(sheeted_wider)} seems to have been ${size(pair.sheeting_difference_deg)} farther out
+      than that of ${nameOf(other(sheeted_wider))}.`
+    }
+    That may be a cause of the difference or only go with it: something to test side by side, one change at a time, not
+    a setting to copy.
+  </p>`;
+}
+
+/** With one error for all there is to it: sampling, and what the instruments and the boat file are good to. */
+function whole(q: Q): Q {
+  return q && { value: q.value, se: q.se === null ? null : Math.hypot(q.se, q.sys ?? 0), basis: q.basis };
+}
+
+const WAYS = { heading: 'heading', masthead: 'masthead angle', forces: 'forces' } as const;
+
+/** Rows of leeway and sheeting; none in files of earlier programs. */
+function trimRows(pair: PairResult, row: (words: Part, get: (p: PairLeg | PairResult) => Part) => Part[]): Part[][] {
+  if (pair.leeway_difference_deg === undefined) return [];
+  const ways = (pair.leeway_ways ?? []).map(({ way }) => WAYS[way]).join(' and ');
+  const shown = (q: Q | undefined): Part =>
+    q ? quantity(whole(q), 'deg', { sign: true }) : html`<span class="none">not determined</span>`;
+  return [
+    row(html`${term('leeway', 'Leeway')}${ways && html` <small>by ${ways}</small>`}`, (p) =>
+      shown(p.leeway_difference_deg),
+    ),
+    row(html`${term('sheeting', 'Sheeting')}${pair.sheeting_difference_deg && html` <small>by leeway</small>`}`, (p) =>
+      shown(p.sheeting_difference_deg),
+    ),
+  ];
+}
+
 function pairPlate(pair: PairResult): Safe {
   const [first, second] = pair.boats;
   const d = pair.vmg_difference_kn;
@@ -28,6 +74,7 @@ function pairPlate(pair: PairResult): Safe {
     row('by height', (p) => quantity(p.height_part_kn, 'kn', { sign: true })),
     row('by speed', (p) => quantity(p.speed_part_kn, 'kn', { sign: true })),
     row('Course angle', (p) => quantity(p.gamma_difference_deg, 'deg', { sign: true })),
+    ...trimRows(pair, row),
     row('Gained', (p) => quantity(p.gain_m, 'm', { sign: true })),
     row('Stretches', (p) => p.blocks),
   ];
@@ -54,7 +101,7 @@ function pairPlate(pair: PairResult): Safe {
     <div>
       ${verdictOf(pair)}
       <p>${amount}</p>
-      ${table('Differences, first less second', heads, rows)} ${pair.notes.length > 0 && notes}
+      ${trimWords(pair)} ${table('Differences, first less second', heads, rows)} ${pair.notes.length > 0 && notes}
     </div>
     ${plate}
   </div>`;

@@ -13,6 +13,8 @@ export interface Faults {
   readonly headed?: boolean;
   /** Habitual sheeting error, eased positive. [deg] */
   readonly sheeting?: number;
+  /** Foils that hold less: leeway is this many times the usual, speed as ever. */
+  readonly leeway?: number;
 }
 
 export interface Condition {

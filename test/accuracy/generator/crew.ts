@@ -40,9 +40,10 @@ export function drawCrew(condition: Condition, index: number, name: string, chan
   const slow = swing(chance, 13, 20);
   const long = swing(chance, 4.5, 6);
   const short = swing(chance, 3, 4.2);
+  const performance = performanceOf(SINGLE_HANDER, sheeting);
   return {
     name,
-    performance: performanceOf(SINGLE_HANDER, sheeting),
+    performance: { ...performance, leeway: (tws, gamma) => (faults.leeway ?? 1) * performance.leeway(tws, gamma) },
     clean: performanceOf(SINGLE_HANDER, 0),
     faults,
     angle: faults.pinch === undefined ? spread * chance.between(-1.5, 2.5) : -faults.pinch,
