@@ -14,6 +14,6 @@ if (first === '--version' || first === '-V') {
   });
   process.stdout.write(`${version}\n`);
 } else {
-  const { main } = await import('./main.js');
-  await main(process.argv.slice(2));
+  const { load } = await import('./load.js');
+  await load().main(process.argv.slice(2));
 }

@@ -116,7 +116,7 @@ function programDigest(): string {
   const root = fileURLToPath(new URL('..', import.meta.url));
   const hash = createHash('sha256');
   const names = readdirSync(root, { recursive: true }) as string[];
-  for (const name of names.filter((file) => /(?<!\.d)\.[jt]s$/.test(file)).sort()) {
+  for (const name of names.filter((file) => /(?<!\.d)\.(c?js|ts)$/.test(file)).sort()) {
     hash.update(`${name}\n`).update(readFileSync(join(root, name)));
   }
   return (program = hash.digest('hex'));

@@ -1,4 +1,3 @@
-/** The program of a worker thread: races come in, what came of each goes out. */
 import { parentPort } from 'node:worker_threads';
 import { plainFailure } from './failures.js';
 import { jobOf } from './races.js';
@@ -20,9 +19,12 @@ async function answerTo({ task, flags, job, places }: Order): Promise<Answer> {
   }
 }
 
-parentPort!.on('message', (order: Order) => {
-  void answerTo(order).then((answer) => {
-    const outputs = 'finished' in answer ? answer.finished.outputs : [];
-    parentPort!.postMessage(answer, [...new Set(outputs.map(({ bytes }) => bytes.buffer as ArrayBuffer))]);
+/** What a worker thread does: races come in, what came of each goes out. */
+export function workAsThread(): void {
+  parentPort!.on('message', (order: Order) => {
+    void answerTo(order).then((answer) => {
+      const outputs = 'finished' in answer ? answer.finished.outputs : [];
+      parentPort!.postMessage(answer, [...new Set(outputs.map(({ bytes }) => bytes.buffer as ArrayBuffer))]);
+    });
   });
-});
+}

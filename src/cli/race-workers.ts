@@ -20,7 +20,7 @@ export type Answer = { readonly finished: Finished } | { readonly failure: Plain
 const MEMORY = 1e9;
 
 /** The program of a thread; as built, for from its source alone Node cannot start one. */
-const PROGRAM = new URL('./race-worker.js', import.meta.url);
+const PROGRAM = new URL('./thread.js', import.meta.url);
 
 /** How many races are worked on at a time: one a processor, or as LEGWORK_WORKERS says. Results do not depend on it. */
 export function workerCount(): number {

@@ -5,31 +5,30 @@ import { tmpdir } from 'node:os';
 import { dirname, join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import * as esbuild from 'esbuild';
+import { bundleProgram, keepCompiled } from '../../.config/bundle.js';
 
 /** Root of the project. */
 export const ROOT = fileURLToPath(new URL('../../', import.meta.url));
 
 /**
  * The program as one would install it, put together once for a test file: what is tested does not change under the
- * test, and starts as fast as the built one. Packages are found from inside node_modules.
+ * test. The few packages that are not in it are found from inside node_modules.
  */
 async function build(helpers: readonly string[]): Promise<string> {
   const place = join(ROOT, 'node_modules/.cache', `legwork-${process.pid}-${Date.now()}`);
+  const program = join(place, 'dist/cli');
+  await bundleProgram(program);
+  copyFileSync(join(ROOT, 'package.json'), join(place, 'package.json'));
+  keepCompiled(program);
   await esbuild.build({
-    entryPoints: {
-      legwork: join(ROOT, 'src/cli/legwork.ts'),
-      'race-worker': join(ROOT, 'src/cli/race-worker.ts'),
-      ...Object.fromEntries(helpers.map((name) => [name, join(ROOT, 'test/cli', `${name}.ts`)])),
-    },
-    outdir: join(place, 'dist/cli'),
+    entryPoints: helpers.map((name) => join(ROOT, 'test/cli', `${name}.ts`)),
+    outdir: program,
     bundle: true,
-    splitting: true,
     format: 'esm',
     platform: 'node',
     packages: 'external',
     logLevel: 'silent',
   });
-  copyFileSync(join(ROOT, 'package.json'), join(place, 'package.json'));
   return place;
 }
 
@@ -38,8 +37,10 @@ let place: string | undefined;
 export async function buildProgram(...helpers: string[]): Promise<void> {
   place = await build(helpers);
 }
+/** Where a file of the program lies. */
+export const programPath = (file: string): string => join(place!, 'dist/cli', file);
 /** Where a helper lies that `buildProgram` was given. */
-export const helperPath = (name: string): string => join(place!, 'dist/cli', `${name}.js`);
+export const helperPath = (name: string): string => programPath(`${name}.js`);
 /** For `afterAll`. */
 export function dropProgram(): void {
   if (place) drop(place);

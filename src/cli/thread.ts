@@ -1,0 +1,4 @@
+/** The program of a worker thread. */
+import { load } from './load.js';
+
+await load().workAsThread();
