@@ -375,7 +375,8 @@ function withErrors(
   const receiver = Math.SQRT2 * errors.displacementSe(leg.to - leg.from);
   const sysDirection = Math.abs(imbalance) * errors.sysDirection;
   const sysWind = reference.kind === 'best' ? 0 : sum(offered) * scale * errors.sysSpeed;
-  const offer = Math.hypot(windSpeed * scale, available * reference.levelSe);
+  const wind = sum(blocks.map((b) => b.seconds * b.tws)) / total;
+  const offer = Math.hypot(windSpeed * scale, available * (wind > 0 ? reference.levelSe(wind) : 0));
   const windows = leg.to - leg.from - total;
   const speedRate = total > 0 ? (Math.hypot(direction, windSpeed) / total) * windows : 0;
   const vmg = available / (leg.to - leg.from);

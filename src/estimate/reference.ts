@@ -1,4 +1,5 @@
 import type { SpeedCurve } from '../physics/speed-curve.js';
+import { evenedLevel, type Tilt } from './wind-response.js';
 
 const RAD = Math.PI / 180;
 
@@ -9,8 +10,8 @@ export interface Reference {
   readonly speed: (gamma: number, tws: number) => number;
   readonly bestVmg: (tws: number) => number;
   readonly bestGamma: (tws: number) => number;
-  /** Standard error of the level it was anchored at, as a share of its speeds; 0 for a model as it stands. */
-  readonly levelSe: number;
+  /** Standard error of its speeds in a wind [m/s] as it was anchored, as a share of them; 0 for a model as it stands. */
+  readonly levelSe: (tws: number) => number;
 }
 
 /** The model as it stands. */
@@ -20,15 +21,18 @@ export function modelReference(curve: SpeedCurve, kind: 'model' | 'file' = 'mode
     speed: (gamma, tws) => curve.speed(gamma, tws),
     bestVmg: (tws) => curve.bestVmg(tws),
     bestGamma: (tws) => curve.bestGamma(tws),
-    levelSe: 0,
+    levelSe: () => 0,
   };
 }
 
-/** How a model is moved to what was sailed: its speeds times `scale`, its angles lower by `turn`. */
+/** How a model is moved to what was sailed. */
 export interface Anchor {
+  /** Its speeds, evened over the wind, are multiplied by this and its angles lower by this [deg]. */
   readonly scale: number;
-  /** [deg] */
   readonly turn: number;
+  /** Wind it was had in [m/s], and the power of W / tws by which its speeds grow more with the wind. */
+  readonly tws: number;
+  readonly tilt: Tilt;
   /** Standard error of the VMG it was had from, as a share. */
   readonly se: number;
 }
@@ -36,8 +40,9 @@ export interface Anchor {
 /**
  * Anchor that puts the model's best point where the day's best boat settled:
  *
- *     v(gamma, W) = k v_model(gamma - D, W)
+ *     v(gamma, W) = k (W / W_0)^t e(W) v_model(gamma - D, W)
  *
+ * where e evens the model over the wind and t, 0 here, is had from the fleet ({@link tiltOf}).
  * A turned curve's best is not the model's best turned: D is set so that the turned curve's best is the achieved angle.
  *
  * @param gamma, speed, tws Settled medians of the boat with the day's best settled VMG. [deg], [m/s], [m/s]
@@ -45,15 +50,18 @@ export interface Anchor {
  */
 export function anchorAt(curve: SpeedCurve, gamma: number, speed: number, tws: number, se: number): Anchor {
   const turn = turnFor(curve, gamma, tws);
-  return { scale: speed / curve.speed(gamma - turn, tws), turn, se };
+  const scale = speed / (evenedLevel(curve)(tws) * curve.speed(gamma - turn, tws));
+  return { scale, turn, tws, tilt: { power: 0, se: 0 }, se };
 }
 
 /** Winds between which the anchored best is drawn straight. [m/s] */
 const WIND_STEP = 0.05;
 
 /** The model moved by an anchor. */
-export function anchoredReference(curve: SpeedCurve, { scale, turn, se }: Anchor): Reference {
-  const at = (gamma: number, tws: number): number => scale * curve.speed(gamma - turn, tws);
+export function anchoredReference(curve: SpeedCurve, { scale, turn, tws: middle, tilt, se }: Anchor): Reference {
+  const level = evenedLevel(curve);
+  const at = (gamma: number, tws: number): number =>
+    scale * (tws / middle) ** tilt.power * level(tws) * curve.speed(gamma - turn, tws);
   const found = new Map<number, Best>();
   const best = (step: number): Best => {
     let one = found.get(step);
@@ -75,7 +83,7 @@ export function anchoredReference(curve: SpeedCurve, { scale, turn, se }: Anchor
     speed: at,
     bestVmg: (tws) => between(tws, (one) => one.vmg),
     bestGamma: (tws) => between(tws, (one) => one.gamma),
-    levelSe: se,
+    levelSe: (tws) => Math.hypot(se, tilt.se * Math.log(tws / middle)),
   };
 }
 

@@ -2,6 +2,7 @@ import { legLedger, type LedgerFigures } from '../estimate/ledger.js';
 import { overstoodStretches, type Overstood } from '../estimate/overstanding.js';
 import { anchorAt, anchoredReference, modelReference, type Anchor, type Reference } from '../estimate/reference.js';
 import type { Figure } from '../estimate/steady.js';
+import { tiltOf, type WindPoint } from '../estimate/wind-response.js';
 import { median } from '../math/median.js';
 import type { SailingState } from '../physics/balance.js';
 import { bestDownwind, bestUpwind } from '../physics/optimum.js';
@@ -108,7 +109,23 @@ function anchorOfBest({ sailed, models, estimates }: JudgeInput): Anchor | null 
     of((b) => b.tws),
     settledSe(estimates[best]),
   );
-  return Number.isFinite(anchor.scale) && anchor.scale > 0 ? anchor : null;
+  if (!(Number.isFinite(anchor.scale) && anchor.scale > 0)) return null;
+  return { ...anchor, tilt: tiltOf(windPoints(anchor, sailed, models)) };
+}
+
+/** Settled blocks of each boat on each tack beside the anchored reference of its kind. */
+function windPoints(anchor: Anchor, sailed: readonly Sailed[], models: readonly RaceModel[]): WindPoint[][] {
+  return sailed.flatMap(({ blocks }, k) => {
+    const reference = anchoredReference(models[k].curve, anchor);
+    return (['port', 'starboard'] as const).map((tack) =>
+      blocks
+        .filter((block) => block.tack === tack)
+        .map(({ tws, speed, gamma }) => ({
+          wind: Math.log(tws / anchor.tws),
+          excess: Math.log(speed / reference.speed(gamma, tws)),
+        })),
+    );
+  });
 }
 
 const NOTHING: LegJudgement = { optimum: null, efficiency: null, share: null, ledger: null };

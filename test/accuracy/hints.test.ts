@@ -169,15 +169,16 @@ describe('the ledgers behind them', () => {
     return [...right].map(([key, value]) => Math.abs(moved.get(key)! - value));
   }
 
-  it('are hardly moved, boat less boat, by 5 % of wind speed: nineteen in twenty by less than a metre, none by two', async () => {
-    const seeds = Array.from({ length: LONG ? 24 : 4 }, (_, k) => 1 + k);
+  it('are hardly moved, boat less boat, by 5 % of wind speed: by less than a metre', async () => {
+    const seeds = Array.from({ length: LONG ? 60 : 4 }, (_, k) => 1 + k);
     const moves: number[] = [];
     for (const seed of seeds) moves.push(...(await movedBy(seed)));
     expect(moves).toHaveLength(18 * seeds.length);
-    expect(moves.filter((by) => by > 1).length / moves.length).toBeLessThanOrEqual(LONG ? 0.05 : 0.06);
-    expect(Math.max(...moves)).toBeLessThan(2);
+    // A wind just where the model's boat is overpowered may move one of several hundred a little further.
+    expect(moves.filter((by) => by > 1).length).toBeLessThanOrEqual(LONG ? 3 : 0);
+    expect(Math.max(...moves)).toBeLessThan(LONG ? 1.25 : 1);
     expect(Math.max(...moves)).toBeGreaterThan(0.001);
-  }, 120_000);
+  }, 240_000);
 
   it('sum to what was lost, to a millimetre', async () => {
     const { result } = await sailed({ faults: { overstand: 60 }, station: 'away' }, 2);
