@@ -1,5 +1,15 @@
 import { createHash, randomBytes } from 'node:crypto';
-import { closeSync, createReadStream, fsyncSync, openSync, readFileSync, renameSync, rmSync, writeSync } from 'node:fs';
+import {
+  closeSync,
+  createReadStream,
+  fsyncSync,
+  openSync,
+  readFileSync,
+  readSync,
+  renameSync,
+  rmSync,
+  writeSync,
+} from 'node:fs';
 import { mkdir, readFile, realpath, stat } from 'node:fs/promises';
 import { basename, dirname, join, relative, resolve, sep } from 'node:path';
 import { UserError } from '../index.js';
@@ -203,19 +213,52 @@ async function* inputChunks(most?: number): AsyncGenerator<Uint8Array> {
   yield most === undefined ? bytes : bytes.subarray(0, most);
 }
 
-async function* fileChunks(
-  name: string,
-  path: string,
-  { most, onBytes }: { most?: number; onBytes?: (n: number) => void },
-): AsyncGenerator<Uint8Array> {
-  const stream = createReadStream(path, { highWaterMark: 1 << 18, ...(most === undefined ? {} : { end: most - 1 }) });
+/** Read at a time. [bytes] */
+const CHUNK = 1 << 18;
+/** Between two looks at what else is to be done (an interruption, say). [bytes] */
+const BREATH = 1 << 24;
+
+interface ChunkOptions {
+  readonly most?: number;
+  readonly onBytes?: (n: number) => void;
+}
+
+/** A plain file is read into one and the same buffer; what is none (a pipe, a device) comes when it comes. */
+async function* fileChunks(name: string, path: string, options: ChunkOptions): AsyncGenerator<Uint8Array> {
+  const { most = Infinity, onBytes } = options;
   try {
-    for await (const chunk of stream) {
-      onBytes?.((chunk as Buffer).length);
-      yield chunk as Buffer;
+    const chunks = (await stat(path)).isFile() ? plainChunks(path, most) : streamChunks(path, most);
+    for await (const chunk of chunks) {
+      onBytes?.(chunk.length);
+      yield chunk;
     }
   } catch (error) {
     throw asUserError(error, name);
+  }
+}
+
+async function* plainChunks(path: string, most: number): AsyncGenerator<Uint8Array> {
+  const handle = openSync(path, 'r');
+  try {
+    const buffer = new Uint8Array(CHUNK);
+    for (let at = 0, breath = BREATH; at < most;) {
+      const read = readSync(handle, buffer, 0, Math.min(CHUNK, most - at), null);
+      if (read === 0) return;
+      yield buffer.subarray(0, read);
+      at += read;
+      if (at < breath) continue;
+      breath = at + BREATH;
+      await new Promise(setImmediate);
+    }
+  } finally {
+    closeSync(handle);
+  }
+}
+
+async function* streamChunks(path: string, most: number): AsyncGenerator<Uint8Array> {
+  const stream = createReadStream(path, { highWaterMark: CHUNK, ...(most === Infinity ? {} : { end: most - 1 }) });
+  try {
+    for await (const chunk of stream) yield chunk as Buffer;
   } finally {
     stream.destroy();
   }

@@ -18,14 +18,18 @@ export type Bytes = AsyncIterable<Uint8Array>;
 export async function* hashed(source: LogSource, hash: StreamHash): Bytes {
   for await (const chunk of source.chunks) {
     for (let at = 0; at < chunk.length; at += PIECE) {
-      const piece = chunk.subarray(at, at + PIECE);
+      // Some hosts' arrays have a `slice` that copies nothing.
+      const piece = new Uint8Array(chunk.buffer, chunk.byteOffset + at, Math.min(PIECE, chunk.length - at));
       hash.update(piece);
       yield piece;
     }
   }
 }
 
-/** The beginning of a stream (at least `size` bytes, if it has as many), and the whole stream again. */
+/**
+ * The beginning of a stream (at least `size` bytes, if it has as many), and the whole stream again. A piece is done
+ * with when the next is asked for: what is held longer is copied.
+ */
 export async function peek(bytes: Bytes, size: number): Promise<{ head: Uint8Array; all: Bytes }> {
   const iterator = bytes[Symbol.asyncIterator]();
   const held: Uint8Array[] = [];
@@ -33,8 +37,8 @@ export async function peek(bytes: Bytes, size: number): Promise<{ head: Uint8Arr
   while (length < size) {
     const next = await iterator.next();
     if (next.done) break;
-    held.push(next.value);
     length += next.value.length;
+    held.push(length < size ? next.value.slice() : next.value);
   }
   const head = join(held, length);
   return { head, all: chain(head, iterator) };
@@ -123,7 +127,8 @@ async function* inflated(
   for await (const chunk of bytes) {
     for (let at = 0; at < chunk.length && !broken; at += 4096) {
       given += Math.min(4096, chunk.length - at);
-      broken = !pushed(inflater, chunk.subarray(at, at + 4096), false, tally);
+      // The inflater holds on to what it has not yet used.
+      broken = !pushed(inflater, chunk.slice(at, at + 4096), false, tally);
       const done = ready;
       ready = [];
       for (const piece of done) yield piece;

@@ -5,6 +5,7 @@ import type { Channel, Recording } from '../recording/recording.js';
 /** A log as it comes: a name for messages (never an absolute path) and its bytes in order. Browser-safe: no files. */
 export interface LogSource {
   readonly name: string;
+  /** A chunk is done with when the next is asked for: its memory may hold that one then. */
   readonly chunks: AsyncIterable<Uint8Array> | Iterable<Uint8Array>;
   /** A faster SHA-256 where the host has one; ours by default. */
   readonly createHash?: () => StreamHash;

@@ -14,7 +14,7 @@ const { FAULT_FOLDER = '', FAULT_NOTE, FAULT_KILL = '', FAULT_SLOW = '0' } = pro
 const FOLDER = resolve(FAULT_FOLDER);
 const [KILL, FAR] = [FAULT_KILL.replace(/ [\d.]+$/, ''), Number(FAULT_KILL.split(' ').at(-1))];
 
-const { openSync, writeSync, fsyncSync, renameSync, writeFileSync, createReadStream } = fs;
+const { openSync, writeSync, fsyncSync, renameSync, writeFileSync, readSync } = fs;
 const bell = new Int32Array(new SharedArrayBuffer(4));
 const rest = (ms: number): void => void Atomics.wait(bell, 0, 0, ms);
 
@@ -74,9 +74,9 @@ Object.assign(fs, {
     if (within(path)) return pass('lock', () => writeFileSync(path, ...more));
     writeFileSync(path, ...more);
   },
-  createReadStream: (...args: Parameters<typeof createReadStream>) => {
+  readSync: (...args: Parameters<typeof readSync>) => {
     note('reading logs');
-    return createReadStream(...args);
+    return readSync(...args);
   },
 });
 syncBuiltinESMExports();

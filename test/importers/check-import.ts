@@ -5,9 +5,15 @@ import { expect } from 'vitest';
 import { importLog } from '../../src/importers/index.js';
 import type { ImportedLog, ImportOptions } from '../../src/importers/types.js';
 
-/** Pieces of one size, as a slow disk or a pipe would hand them over. */
+/** Pieces of one size in one and the same memory, as the command reads a file. */
 export function* pieces(bytes: Uint8Array, size = 1 << 16): Generator<Uint8Array> {
-  for (let at = 0; at < bytes.length; at += size) yield bytes.subarray(at, at + size);
+  const memory = Buffer.alloc(size);
+  for (let at = 0; at < bytes.length; at += size) {
+    const part = bytes.subarray(at, at + size);
+    memory.set(part);
+    yield memory.subarray(0, part.length);
+    memory.fill(0x2a);
+  }
 }
 
 export async function importBytes(bytes: Uint8Array, options: ImportOptions = {}, name = 'log'): Promise<ImportedLog> {
