@@ -5,7 +5,6 @@ import type { Result } from './result/result.js';
 import type { RaceSeries } from './result/series.js';
 import { THRESHOLDS, type Thresholds } from './segment/thresholds.js';
 import { receiverDisplacementSe } from './smooth/index.js';
-import { ableSpeeds } from './steps/able-speed.js';
 import { assemble } from './steps/assemble.js';
 import { boatFromText, boatModels, modelOf, type RaceModel } from './steps/boat-models.js';
 import { checkRecording, clockIssues } from './steps/check-sensors.js';
@@ -20,7 +19,8 @@ import { readLogs, type OpenLog, type ReadLogs } from './steps/read-logs.js';
 import { correctTracks, reconcileBoats, type Corrections } from './steps/reconcile-boats.js';
 import { sailAll, type SailedRace, type SailOptions } from './steps/sail-all.js';
 import { boatSeries, placesOf } from './steps/series.js';
-import { trimBoat, trimIssues } from './steps/trim.js';
+import { trimFleet } from './steps/trim-fleet.js';
+import { trimIssues } from './steps/trim.js';
 
 export interface DebriefOptions {
   /** Version of the program, for the result. */
@@ -62,10 +62,7 @@ export async function debrief(race: Race, open: OpenLog, options: DebriefOptions
     (boat) => (seconds) => receiverDisplacementSe(seconds, boat.noise),
   );
   const estimates = wind.sailed.map((one, k) => estimateBoat(one, errors[k], clean.boats[k].track.awa));
-  const able = ableSpeeds(wind.sailed, models);
-  const trims = wind.sailed.map((one, k) =>
-    trimBoat(one, estimates[k], clean.boats[k].track, models[k], corrections.boats[k], able[k]),
-  );
+  const trims = trimFleet(wind.sailed, estimates, clean, models, corrections);
   const judgements = judge({
     sailed: wind.sailed,
     estimates,

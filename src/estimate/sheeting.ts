@@ -12,8 +12,8 @@ export interface SheetingData {
   readonly gamma: number;
   /** Leeway where it was measured (heading or masthead), not where it comes from the same model. [deg] */
   readonly leeway?: { readonly value: number; readonly se: number };
-  /** What the model's leeway is good to, as a share of itself. */
-  readonly leewayShare: number;
+  /** What a boat of this kind has of the model's leeway on the day, and what that is good to: shares of the model's. */
+  readonly leewayLevel: { readonly share: number; readonly se: number };
   /** Heel where there is a sensor. [deg] */
   readonly heel?: { readonly value: number; readonly se: number };
   /**
@@ -99,12 +99,12 @@ function sheetingAt(model: ForceModel, data: SheetingData, loads: ReturnType<typ
 
 /** Sum of squared standardised differences between what goes with a sheeting angle and what was measured. */
 function misfit(model: ForceModel, data: SheetingData, sheeting: number): number {
-  const { speed, tws, gamma, leeway, heel, able, leewayShare } = data;
+  const { speed, tws, gamma, leeway, heel, able, leewayLevel } = data;
   let sum = 0;
   if (leeway || heel) {
     const loads = sheetedLoads(model, flowAt(model, speed, tws, gamma), sheeting);
-    const there = model.leeway(speed, loads.side, loads.heel);
-    if (leeway) sum += standardised(there - leeway.value, leeway.se, leewayShare * there);
+    const there = leewayLevel.share * model.leeway(speed, loads.side, loads.heel);
+    if (leeway) sum += standardised(there - leeway.value, leeway.se, leewayLevel.se * there);
     if (heel)
       sum += standardised(loads.heel - Math.abs(heel.value), heel.se, Math.hypot(MODEL_HEEL * loads.heel, CREW_HEEL));
   }

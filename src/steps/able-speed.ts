@@ -3,10 +3,9 @@ import type { RaceModel } from './boat-models.js';
 import { bestBoat } from './judge.js';
 import type { Sailed } from './sail.js';
 
-/** What a boat trimmed as the model would sails to, as a share of the model's speed. */
-export interface AbleSpeed {
+/** What a boat trimmed as the model would does, as a share of the model's; `se` one standard deviation of `share`. */
+export interface Level {
   readonly share: number;
-  /** One standard deviation, of `share`. */
   readonly se: number;
 }
 
@@ -18,7 +17,7 @@ const BEST_BOAT = 0.02;
  * the level: what the model, the wind log and the sea take from all then drops out. That boat's own speed tells nothing
  * of its trim (null). A boat alone has only the model, which is good to what its file is.
  */
-export function ableSpeeds(sailed: readonly Sailed[], models: readonly RaceModel[]): (AbleSpeed | null)[] {
+export function ableSpeeds(sailed: readonly Sailed[], models: readonly RaceModel[]): (Level | null)[] {
   if (sailed.length === 1) return [{ share: 1, se: models[0].accuracy.speed }];
   const best = bestBoat(sailed, models);
   if (best < 0) return sailed.map(() => null);

@@ -59,18 +59,13 @@ beforeAll(async () => {
   ({ boatFile } = await tune(jobs));
 }, 120_000);
 
-const BUILT_IN = [
-  { kind: 'built-in', fault: 6, share: 0.9 },
-  // In light air the built-in boat's own error of leeway (12 %) hides a boom hauled to the centreline now and then.
-  { kind: 'built-in', fault: -6, share: 0.75 },
-];
-const TUNED = [
-  { kind: 'tuned', fault: 6, share: 0.9 },
-  { kind: 'tuned', fault: -6, share: 0.9 },
-];
-describe.each(LONG ? [...BUILT_IN, ...TUNED] : TUNED)(
+const FAULTS = [6, -6].flatMap((fault) => [
+  { kind: 'built-in', fault },
+  { kind: 'tuned', fault },
+]);
+describe.each(LONG ? FAULTS : FAULTS.filter(({ kind, fault }) => kind === 'tuned' || fault < 0))(
   '$kind boat, leeway measured, boom $fault degrees too far out',
-  ({ kind, fault, share }) => {
+  ({ kind, fault }) => {
     it('moves the sheeting posterior that way', async () => {
       const moves: number[] = [];
       for (const seed of SEEDS) {
@@ -83,9 +78,7 @@ describe.each(LONG ? [...BUILT_IN, ...TUNED] : TUNED)(
         moves.push((await of({ faults: { sheeting: fault } })) - (await of({})));
       }
       const right = moves.filter((by) => by * fault > 0).length;
-      expect(right, moves.map((by) => by.toFixed(1)).join(' ')).toBeGreaterThanOrEqual(
-        Math.floor(share * SEEDS.length),
-      );
+      expect(right, moves.map((by) => by.toFixed(1)).join(' ')).toBeGreaterThanOrEqual(0.9 * SEEDS.length);
     }, 300_000);
   },
 );

@@ -103,7 +103,7 @@ describe('sheeting', () => {
       speed: best.speed,
       tws: best.tws,
       gamma: best.gamma,
-      leewayShare: SHARE,
+      leewayLevel: { share: 1, se: SHARE },
     })!;
     expect(found.mean).toBeCloseTo(found.priorMean, 9);
     expect(found.narrowed).toBe(false);
@@ -114,13 +114,17 @@ describe('sheeting', () => {
   it('finds a boom that was eased, from a well measured leeway', () => {
     const truth = sailWithSheeting(model, 8 * KNOT, 45, 16);
     const { speed, tws, gamma } = truth;
-    const data = { speed, tws, gamma, leeway: { value: truth.leeway, se: 0.05 }, leewayShare: SHARE };
+    const data = { speed, tws, gamma, leeway: { value: truth.leeway, se: 0.05 }, leewayLevel: { share: 1, se: SHARE } };
     expect(sheetingPosterior(model, data)!.narrowed).toBe(false);
-    const found = sheetingPosterior(model, { ...data, leewayShare: 0.02 })!;
+    const found = sheetingPosterior(model, { ...data, leewayLevel: { share: 1, se: 0.02 } })!;
     expect(found.mean).toBeGreaterThan(found.priorMean + 1);
     expect(Math.abs(found.mean - 16)).toBeLessThan(2.5 * found.sd);
     expect(found.sd).toBeLessThan(found.priorSd);
-    const withSpeed = sheetingPosterior(model, { ...data, leewayShare: 0.02, able: { share: 1, se: 0.01 } })!;
+    const withSpeed = sheetingPosterior(model, {
+      ...data,
+      leewayLevel: { share: 1, se: 0.02 },
+      able: { share: 1, se: 0.01 },
+    })!;
     expect(withSpeed.sd).toBeLessThan(found.sd);
     expect(withSpeed.points.reduce((sum, point) => sum + point.weight, 0)).toBeCloseTo(1, 9);
   });
