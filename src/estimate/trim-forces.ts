@@ -33,7 +33,7 @@ export function trimForces(
       return model.leeway(speed, loads.side, loads.heel);
     },
     sheetingPrior: (state): SheetingPrior | null => {
-      const before = sheetingPosterior(model, { ...state, leewayShare: good.leeway });
+      const before = sheetingPosterior(model, { ...state, leewayLevel: { share: 1, se: good.leeway } });
       return before && { mean: before.priorMean, sd: before.priorSd, points: before.points };
     },
   };
