@@ -6,6 +6,7 @@ import { resultFiles } from '../index.js';
 import type { BoatResult, InputEntry, Result, Warning } from '../index.js';
 import { forMessages, kindOf, makeFolder, readText, readTextNow, TEMPORARY, unusable, writeWhole } from './files.js';
 import { withLock } from './lock.js';
+import { resultReader } from './many-files.js';
 import { raceSlug } from './slug.js';
 import { complain } from './terminal.js';
 
@@ -106,10 +107,11 @@ export async function* readLogbook(folder: string): AsyncGenerator<{ file: strin
   if (kind === null) throw unusable(`${folder}: there is no such folder.`, how);
   if (kind === 'file') throw unusable(`${folder}: a file, not a logbook folder.`, how);
   let found = 0;
+  const read = resultReader();
   for (const [k, file] of (await readdir(folder)).sort().entries()) {
     // So that an interruption is heard.
     if (k % 50 === 49) await setImmediate();
-    const result = file.endsWith('.json') && !file.startsWith('.') ? await resultIn(join(folder, file)) : null;
+    const result = file.endsWith('.json') && !file.startsWith('.') ? await resultIn(join(folder, file), read) : null;
     if (result === null) continue;
     found++;
     yield { file, result };
@@ -117,10 +119,10 @@ export async function* readLogbook(folder: string): AsyncGenerator<{ file: strin
   if (found === 0) throw unusable(`${forMessages(folder)}: no result files in it.`, how);
 }
 
-async function resultIn(path: string): Promise<Result | null> {
-  const { readResult } = await resultFiles();
+async function resultIn(path: string, read: (path: string) => unknown): Promise<Result | null> {
+  const { readResult, seasonResult } = await resultFiles();
   try {
-    return await readResult(readTextNow(path));
+    return (await seasonResult(read(path))) ?? (await readResult(readTextNow(path)));
   } catch (error) {
     const { name, message } = error as Error;
     if (name !== 'NotAResult' && name !== 'UserError') throw error;

@@ -113,7 +113,7 @@ export function inline(q: Quantity, unit: Unit, options: QuantityOptions = {}): 
   return html`<span class="nb">${number(shown.value, digits, sign)}${pm}${SUFFIX[unit]}</span>`;
 }
 
-export type TimeStyle = 'day' | 'date' | 'hm' | 'hms';
+export type TimeStyle = 'day' | 'date' | 'ymd' | 'month' | 'hm' | 'hms';
 
 /** A time, in UTC until the reader's browser puts it in the race's zone. */
 export function time(seconds: number, style: TimeStyle): Safe {
@@ -126,7 +126,8 @@ export function time(seconds: number, style: TimeStyle): Safe {
 
 /** The same as text for pictures. */
 export function timeText(iso: string, style: TimeStyle): string {
-  if (style === 'day' || style === 'date') return iso.slice(0, 10);
+  if (style === 'day' || style === 'date' || style === 'ymd') return iso.slice(0, 10);
+  if (style === 'month') return iso.slice(0, 7);
   return style === 'hm' ? iso.slice(11, 16) : iso.slice(11, 19);
 }
 

@@ -18,6 +18,13 @@ const ENTITIES: Readonly<Record<string, string>> = {
 
 /** Text for use between tags and inside quoted attributes. Control characters that no document may hold are dropped. */
 export function escapeText(text: string): string {
+  return TELLING.test(text) ? escaped(text) : text;
+}
+
+/** Most texts hold nothing of the kind. */
+const TELLING = /[\u0000-\u0008\u000b\u000c\u000e-\u001f&<>"']/;
+
+function escaped(text: string): string {
   return text.replace(/[\u0000-\u0008\u000b\u000c\u000e-\u001f]/g, '').replace(/[&<>"']/g, (c) => ENTITIES[c]);
 }
 
@@ -31,9 +38,21 @@ function render(part: Part): string {
 
 /** Tagged template: the literal pieces are markup, everything in `${}` is text unless it came from `html`. */
 export function html(pieces: TemplateStringsArray, ...parts: readonly Part[]): Safe {
-  let out = folded(pieces[0]);
-  for (let i = 0; i < parts.length; i++) out += render(parts[i]) + folded(pieces[i + 1]);
+  const literals = foldedOnce(pieces);
+  let out = literals[0];
+  for (let i = 0; i < parts.length; i++) out += render(parts[i]) + literals[i + 1];
   return { safe: out };
+}
+
+/** The literals of each template, folded when it is first used: there is one array a place in the source. */
+const known = new WeakMap<TemplateStringsArray, readonly string[]>();
+
+function foldedOnce(pieces: TemplateStringsArray): readonly string[] {
+  const before = known.get(pieces);
+  if (before) return before;
+  const now = pieces.map(folded);
+  known.set(pieces, now);
+  return now;
 }
 
 /** Line breaks of the source mean no more in markup than one space. */

@@ -1,86 +1,19 @@
-import type { Q } from '../result/result.js';
-import { trendChart, type TrendPoint } from './charts/trend.js';
 import { document } from './document.js';
-import { inline, isoOf, number, plain, plural, quantity, scaled, suffix, time, timeText, type Unit } from './format.js';
+import { inline, number, plural, quantity, scaled, time } from './format.js';
 import { html, nameOf, type Part, type Safe } from './html.js';
-import { figure, section, table } from './sections/figure.js';
+import { QUANTITIES, wordsOf } from './season-data.js';
+import type { GroupData, Links, SailorDetail, SailorTrends, SeasonData, TrendWords } from './season-data.js';
+import { raceTable } from './season-races.js';
+import { trendPlate } from './season-trends.js';
+import { section, table } from './sections/figure.js';
 import { termCards } from './terms.js';
 
-/** What the page of a season draws from: trends with the races behind them. */
-export interface SeasonData {
-  readonly json: { readonly sailors: readonly SailorTrends[] };
-  readonly detail: readonly SailorDetail[];
-}
-
-interface SailorTrends {
-  readonly name: string;
-  readonly races: number;
-  readonly trends: readonly TrendWords[];
-}
-
-interface TrendWords {
-  readonly quantity: string;
-  readonly slope_per_30_days: Q;
-  readonly p: number;
-  readonly verdict: 'better' | 'worse' | 'nothing shown yet';
-  readonly races_needed: number | null;
-}
-
-interface RaceValue {
-  readonly race: string;
-  /** UTC seconds. */
-  readonly time: number;
-  readonly wind: number;
-  readonly values: Readonly<Record<string, { readonly value: number; readonly se: number } | undefined>>;
-}
-
-interface SailorDetail {
-  readonly name: string;
-  readonly races: readonly RaceValue[];
-  readonly trends: readonly {
-    readonly quantity: { readonly key: string };
-    readonly trend: { readonly slope: number; readonly intercept: number; readonly wind: string };
-    readonly races: readonly RaceValue[];
-  }[];
-  readonly byWind: readonly GroupData[];
-  readonly byBoat: readonly GroupData[];
-  readonly byCrewMass: readonly GroupData[];
-  readonly notes: readonly string[];
-}
-
-interface GroupData {
-  readonly name: string;
-  readonly races: number;
-  readonly means: Readonly<Record<string, { readonly value: number; readonly se: number | null } | undefined>>;
-}
-
-interface Words {
-  readonly words: string;
-  readonly unit: Unit;
-  readonly times: number;
-}
-
-const QUANTITIES: Readonly<Record<string, Words>> = {
-  share: { words: 'Share of the metres there were', unit: 'percent', times: 100 },
-  efficiency: { words: 'Settled VMG against the model’s optimum', unit: 'percent', times: 100 },
-  settled_vmg: { words: 'Settled VMG against the reference', unit: 'percent', times: 100 },
-  tack_cost_m: { words: 'Cost of a tack', unit: 'm', times: 1 },
-  leeway_off_best_deg: { words: 'Leeway off the model’s best', unit: 'deg', times: 1 },
-  sheeting_off_best_deg: { words: 'Sheeting off the model’s best', unit: 'deg', times: 1 },
-};
-
-function wordsOf(key: string): Words {
-  return QUANTITIES[key] ?? { words: key, unit: 'count', times: 1 };
-}
-
-const DAY = 86400;
+export type { SeasonData } from './season-data.js';
 
 export interface SeasonPageOptions {
   /** The page of a race, as a path from this one with `/` between folders; null where none lies beside. */
   readonly pageOf?: (race: { readonly race: string; readonly time: number }) => string | null;
 }
-
-type Links = NonNullable<SeasonPageOptions['pageOf']>;
 
 /**
  * Every sailor's races as trends.
@@ -89,8 +22,8 @@ type Links = NonNullable<SeasonPageOptions['pageOf']>;
  */
 export function seasonPage(season: SeasonData, options: SeasonPageOptions = {}): string {
   const { sailors } = season.json;
-  const origin = Math.min(...season.detail.flatMap((d) => d.races.map((r) => r.time)));
-  const links: Links = options.pageOf ?? (() => null);
+  const { from: origin } = timesOf(season);
+  const links = linksTo(options.pageOf);
   const parts = sailors.map((sailor, i) => sailorSection(sailor, season.detail[i], i, origin, links));
   const names = sailors.map((s, i) => html`<li><a href="#sailor-${i}">${nameOf(s.name)}</a></li>`);
   const none = sailors.length === 0 && html`<p>The logbook holds no race with an upwind leg yet.</p>`;
@@ -111,11 +44,26 @@ export function seasonPage(season: SeasonData, options: SeasonPageOptions = {}):
   return document({ title: 'Season', body, data: {} });
 }
 
+function linksTo(pageOf: SeasonPageOptions['pageOf']): Links {
+  return (race) => pageOf?.(race)?.split('/').map(encodeURIComponent).join('/') ?? null;
+}
+
+/** First and last race of all. */
+function timesOf(season: SeasonData): { from: number; to: number } {
+  let [from, to] = [Infinity, -Infinity];
+  for (const { races } of season.detail) {
+    for (const { time: at } of races) {
+      from = Math.min(from, at);
+      to = Math.max(to, at);
+    }
+  }
+  return { from, to };
+}
+
 function spanOf(season: SeasonData): Part {
-  const times = season.detail.flatMap((d) => d.races.map((r) => r.time));
-  if (times.length === 0) return null;
+  const { from, to } = timesOf(season);
+  if (from > to) return null;
   const races = new Set(season.detail.flatMap((d) => d.races.map((r) => `${r.time} ${r.race}`))).size;
-  const [from, to] = [Math.min(...times), Math.max(...times)];
   return html`${plural(races, 'race')}, ${time(from, 'day')} to ${time(to, 'day')}.`;
 }
 
@@ -136,6 +84,7 @@ function sailorSection(sailor: SailorTrends, detail: SailorDetail, index: number
     ${groupTable('By wind', detail.byWind)}${detail.byBoat.length > 1 && groupTable('By boat', detail.byBoat)}${
       detail.byCrewMass.length > 1 && groupTable('By crew weight', detail.byCrewMass)
     }
+    ${raceTable(detail.races, links)}
   </section>`;
 }
 
@@ -174,70 +123,6 @@ function trendTable(sailor: SailorTrends, name: Part): Safe {
 function needed(t: TrendWords): Part {
   if (t.verdict !== 'nothing shown yet') return '–';
   return t.races_needed === null ? 'none in sight would show it' : `about ${t.races_needed} more like these`;
-}
-
-type TrendDetail = SailorDetail['trends'][number];
-
-/** A race's page as a link: every part of its path encoded. */
-function hrefOf(race: RaceValue, links: Links): string | null {
-  const path = links(race);
-  return path === null ? null : path.split('/').map(encodeURIComponent).join('/');
-}
-
-function pointsOf(races: readonly RaceValue[], key: string, links: Links): TrendPoint[] {
-  const { unit, times } = wordsOf(key);
-  return races.flatMap((race) => {
-    const v = race.values[key];
-    if (!v) return [];
-    const [value, se] = [v.value * times, v.se * times];
-    const error = Number.isFinite(se) ? ` ±${plain(se, 1)}` : '';
-    const wind = Number.isFinite(race.wind) ? `, wind ${plain(race.wind, 0)} kn` : '';
-    const words = `${timeText(isoOf(race.time), 'date')} ${race.race}: ${plain(value, 1)}${error}${suffix(unit)}${wind}`;
-    const href = hrefOf(race, links);
-    return [{ time: race.time, value, se, words, ...(href === null ? {} : { href }) }];
-  });
-}
-
-function trendPlate(
-  { quantity: { key }, trend, races }: TrendDetail,
-  told: TrendWords,
-  origin: number,
-  links: Links,
-): Part {
-  const { words, unit, times } = wordsOf(key);
-  const points = pointsOf(races, key, links);
-  if (points.length === 0) return null;
-  const fit = (t: number): number => (trend.intercept + (trend.slope * (t - origin)) / DAY) * times;
-  const shown = told.verdict !== 'nothing shown yet';
-  const wind =
-    trend.wind === 'allowed for' ? ' The wind of each race is allowed for in the trend, not in the dots.' : '';
-  return figure({
-    svg: trendChart(points, {
-      title: `${words}, ${suffix(unit).trim()}`,
-      fit: points.length > 1 && Number.isFinite(trend.slope) ? fit : null,
-      shown,
-    }),
-    title: words,
-    summary: html`${shown ? 'The line is evidence of a change.' : 'The broken line is no evidence of a change yet.'}
-    Bars are one standard
-    error.${wind}${points.some(({ href }) => href !== undefined) && ' A point in a ring opens the page of its race.'}`,
-    table: raceTable(races, key, links),
-  });
-}
-
-function raceTable(races: readonly RaceValue[], key: string, links: Links): Safe {
-  const { words, unit, times } = wordsOf(key);
-  const rows = races.map((r) => {
-    const v = r.values[key];
-    const q: Q = v ? { value: v.value, se: Number.isFinite(v.se) ? v.se : null, basis: 'derived' } : null;
-    const href = hrefOf(r, links);
-    return [
-      html`${time(r.time, 'date')} ${href === null ? nameOf(r.race) : html`<a href="${href}">${nameOf(r.race)}</a>`}`,
-      q ? inline(q, unit, { times, digits: 1 }) : '–',
-      plain(r.wind, 0),
-    ];
-  });
-  return table(words, ['Race', 'Value', 'Wind kn'], rows);
 }
 
 function groupTable(caption: string, groups: readonly GroupData[]): Part {

@@ -29,6 +29,16 @@ export async function readResult(text: string): Promise<Result> {
   throw new NotAResult(`is damaged at \`${issue.path.join('.')}\`: ${issue.message}.`);
 }
 
+/**
+ * The same of what has been parsed already, for a season: only what a season reads is looked at.
+ *
+ * @returns null where something is wrong; `readResult` says what.
+ */
+export async function seasonResult(data: unknown): Promise<Result | null> {
+  const { seasonResultSchema } = await import('./schema.js');
+  return seasonResultSchema.safeParse(data).success ? (data as Result) : null;
+}
+
 function parsed(text: string): Record<string, unknown> {
   try {
     const data: unknown = JSON.parse(text.replace(/^\uFEFF/, ''));

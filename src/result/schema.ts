@@ -181,6 +181,39 @@ export const resultSchema = resultIn(strict).meta({ title: 'Legwork result file'
 /** The result file as readers take it: unknown keys pass. */
 export const openResultSchema = resultIn(open);
 
+/** Of a result file what a season reads: a logbook may hold thousands. */
+export const seasonResultSchema = seasonResult();
+
+function seasonResult() {
+  const q = z.object({ value: z.number(), se: z.number().nonnegative().nullable() }).nullable();
+  const steady = z.object({
+    seconds: z.number().nonnegative(),
+    ...quantities(['vmg_kn', 'tws_kn', 'leeway_deg', 'sheeting_deg'] as const, q),
+  });
+  const leg = z.object({
+    kind: z.enum(['upwind', 'downwind', 'reach']),
+    ...quantities(['start', 'end'] as const, z.string()),
+    steady: steady.nullable(),
+    optimum: z.object(quantities(['leeway_deg', 'sheeting_deg'] as const, q)).nullable(),
+    ...quantities(['efficiency', 'share'] as const, q),
+    ledger: z.object({ reference: z.string(), ...quantities(['available_m', 'made_m'] as const, q) }).nullable(),
+  });
+  const boat = z.object({
+    ...quantities(['name', 'sailor'] as const, z.string()),
+    crew_mass_kg: z.number().positive().optional(),
+    model: z.object({ boat: z.string(), sha256: z.string() }),
+    manoeuvres: z.array(z.object({ kind: z.string(), loss_m: q })),
+    legs: z.array(leg),
+  });
+  return z.object({
+    format: z.literal('legwork-result'),
+    version: z.literal(1),
+    race: z.object({ name: z.string(), start: z.string().nullable() }),
+    wind: z.object({ tws_kn: q }),
+    boats: z.array(boat),
+  });
+}
+
 const column = strict({ header: z.string(), means: z.string().nullable(), unit: z.string().nullable() });
 const stretch = strict({ from: time, to: time, what: z.string() });
 

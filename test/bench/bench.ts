@@ -17,6 +17,7 @@ import { ROOT, scratch, sentences, table, track, whichGenerator } from './data.j
 import { inTurn, measure, runCommand, SAYS_COST, type Cost, type Measured } from './measure.js';
 import { bestByGrid, gpxBySaxes, TABLE_BY_PANDAS, tableByPapaparse } from './rivals.js';
 import { reportRows, reportText } from './report.js';
+import { seasonRows, seasonText, seasonVerdict } from './season.js';
 import { read, readTolerantly, stages } from './stages.js';
 
 const PROGRAM = join(ROOT, 'dist/cli/legwork.js');
@@ -328,13 +329,19 @@ async function main(): Promise<void> {
   const pages = await reportRows();
   say();
   say(pages.length > 0 ? reportText(pages) : 'skipped: no browser is present');
+  const seasons = await seasonRows(ROUNDS);
+  say(seasonText(seasons));
   say(`load ${load()}`);
   if (flags.json)
     writeFileSync(
       flags.json,
-      `${JSON.stringify({ node: process.version, load: load(), rows, stages: each, growth: grown, pages }, null, 2)}\n`,
+      `${JSON.stringify({ node: process.version, load: load(), rows, stages: each, growth: grown, pages, seasons }, null, 2)}\n`,
     );
-  const verdicts = [...rows.map(verdict), ...grown.map(({ megabytes, cost }) => memoryVerdict(megabytes, cost))];
+  const verdicts = [
+    ...rows.map(verdict),
+    ...grown.map(({ megabytes, cost }) => memoryVerdict(megabytes, cost)),
+    seasonVerdict(seasons),
+  ];
   const missed = verdicts.some((one) => one.endsWith('missed'));
   const failed = verdicts.includes('DIFFERS') || (flags.check && missed);
   process.exitCode = failed ? 1 : 0;

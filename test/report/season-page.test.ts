@@ -58,6 +58,35 @@ describe('the page of a season', () => {
     expect(linked).toContain('<a href="third%20race.html"><bdi>Race 3</bdi></a>');
   });
 
+  test('of hundreds of races draws neighbours as one, says so, and keeps every race in a table', () => {
+    const many = season(inventedSeason({ seed: 4, races: 300, every: 3, sailors: [{ name: 'Corrie' }] }));
+    const long = seasonPage(many, { pageOf: ({ race }) => `${race}.html` });
+    const drawn = racesIn(long);
+    expect(drawn).toHaveLength(many.detail[0].trends.length * 100);
+    const { quantity, races } = many.detail[0].trends[0];
+    const mean = races.slice(0, 3).reduce((sum, { values }) => sum + values[quantity.key]!.value / 3, 0);
+    expect(drawn[0]).toContain(`aria-label="2026-04-04 to 2026-04-10, 3 races: ${(100 * mean).toFixed(1)} ±`);
+    expect(long.split('Each dot is the mean of 3 races in a row.')).toHaveLength(many.detail[0].trends.length + 1);
+    for (const { race } of races) expect(long).toContain(`"><bdi>${race}</bdi></a></th>`);
+    // Beyond a year the days of the foot are told by month and year.
+    expect(long).toMatch(/data-t="month">2026-04</);
+    expect(page).not.toContain('data-t="month"');
+  });
+
+  test('every race has its row, with all its figures, whether it joined a trend or not', () => {
+    const sailors = [{ name: 'Corrie', model: (race: number) => (race < 3 ? 'b' : 'a').repeat(64) }];
+    const two = season(inventedSeason({ seed: 4, races: 9, every: 7, sailors }));
+    const table = seasonPage(two).split('<summary>Every race</summary>')[1];
+    expect(two.detail[0].trends[0].races).toHaveLength(6);
+    for (const { race, values, wind } of two.detail[0].races) {
+      const row = table.slice(table.indexOf(`<bdi>${race}</bdi>`)).split('</tr>')[0];
+      for (const [key, value] of Object.entries(values)) {
+        expect(row).toContain(`<span class="n">${((/_m$|_deg$/.test(key) ? 1 : 100) * value.value).toFixed(1)}</span>`);
+      }
+      expect(row).toContain(`<span class="n">${wind.toFixed(0)}</span>`);
+    }
+  });
+
   test('a line that is no evidence is broken, one that is is whole', () => {
     const plates = page.split('<figure').slice(1);
     for (const plate of plates) {

@@ -25,6 +25,8 @@ export interface TrendOptions {
   readonly fit: ((time: number) => number) | null;
   /** Whether the line is evidence: drawn whole, else broken. */
   readonly shown: boolean;
+  /** Races behind the points, where a point stands for several. */
+  readonly races?: number;
 }
 
 export const TREND_DEFAULTS: TrendOptions = { width: 460, height: 200, title: '', fit: null, shown: false };
@@ -42,15 +44,17 @@ export function trendChart(points: readonly TrendPoint[], options: Partial<Trend
   const y = scaleLinear([low - slack, high + slack], [o.height - 28, 24]);
   const body = [
     leftAxis(y, 46, o.width - 12, { count: 4 }),
-    ...dayTicks(from, to).map((t) => dayTick(x(t), o.height - 28, t)),
+    ...dayTicks(from, to).map((t) => dayTick(x(t), o.height - 28, t, to - from > YEAR)),
     fitted(o, from, to, x, y),
     ...points.map((p, i) => racePoint(p, x(p.time), y(p.value), y(p.value - errors[i]), y(p.value + errors[i]))),
     text(46, 12, o.title, { size: 12, italic: true }),
   ];
-  const label = `${o.title}: ${points.length} races, from ${points[0].value.toFixed(1)} to ${points[points.length - 1].value.toFixed(1)}.`;
+  const label = `${o.title}: ${o.races ?? points.length} races, from ${points[0].value.toFixed(1)} to ${points[points.length - 1].value.toFixed(1)}.`;
   // Its points can be reached one by one, so it is no single image.
   return picture(o.width, o.height, label, body.join(''), { class: 'trend', role: 'group' });
 }
+
+const YEAR = 330 * 86400;
 
 /** At most five days, evenly spread. */
 function dayTicks(from: number, to: number): number[] {
@@ -59,9 +63,10 @@ function dayTicks(from: number, to: number): number[] {
   return Array.from({ length: count + 1 }, (_, k) => from + ((to - from) * k) / count);
 }
 
-function dayTick(x: number, y: number, seconds: number): string {
-  const words = timeText(isoOf(seconds), 'day').slice(5);
-  const extra = { 'data-ms': String(seconds * 1000), 'data-t': 'date' };
+/** A day; where the days go beyond a year, its month and year. */
+function dayTick(x: number, y: number, seconds: number, years: boolean): string {
+  const words = years ? timeText(isoOf(seconds), 'month') : timeText(isoOf(seconds), 'day').slice(5);
+  const extra = { 'data-ms': String(seconds * 1000), 'data-t': years ? 'month' : 'date' };
   return line(x, y, x, y + 4, SOFT) + text(x, y + 17, words, { anchor: 'middle', size: 11, fill: SOFT, extra });
 }
 

@@ -22,11 +22,13 @@ export function localText(text: string): string {
   return text.startsWith('+') ? `+${written}` : written;
 }
 
-export type TimeStyle = 'day' | 'date' | 'hm' | 'hms';
+export type TimeStyle = 'day' | 'date' | 'ymd' | 'month' | 'hm' | 'hms';
 
 const OPTIONS: Readonly<Record<TimeStyle, Intl.DateTimeFormatOptions>> = {
   day: { weekday: 'long', day: 'numeric', month: 'long', year: 'numeric' },
   date: { day: 'numeric', month: 'short' },
+  ymd: { day: 'numeric', month: 'short', year: 'numeric' },
+  month: { month: 'short', year: 'numeric' },
   hm: { hour: '2-digit', minute: '2-digit', hourCycle: 'h23' },
   hms: { hour: '2-digit', minute: '2-digit', second: '2-digit', hourCycle: 'h23' },
 };
