@@ -130,7 +130,7 @@ class Batch {
         return { ...step, finished };
       }
       this.#progress.say(`${job.race.name}: working`);
-      return { ...step, finished: await workOn(this.#task, jobOf(job, this.#progress), places) };
+      return { ...step, finished: await workOn(this.#task, jobOf(job, this.#progress, this.#count - 1), places) };
     } catch (error) {
       return { error };
     }

@@ -20,11 +20,11 @@ export type Answer = { readonly finished: Finished } | { readonly failure: Plain
 const MEMORY = 1e9;
 
 /** The program of a thread; as built, for from its source alone Node cannot start one. */
-const PROGRAM = new URL('./thread.js', import.meta.url);
+export const THREAD = new URL('./thread.js', import.meta.url);
 
-/** How many races are worked on at a time: one a processor, or as LEGWORK_WORKERS says. Results do not depend on it. */
+/** How many races, or logs of one race, are worked on at a time: one a processor, or as LEGWORK_WORKERS says. Results do not depend on it. */
 export function workerCount(): number {
-  if (!existsSync(PROGRAM)) return 1;
+  if (!existsSync(THREAD)) return 1;
   const { LEGWORK_WORKERS: said } = process.env;
   if (!said) return Math.max(1, Math.min(availableParallelism(), Math.floor(totalmem() / MEMORY)));
   if (/^[1-9]\d{0,2}$/.test(said)) return Number(said);
@@ -74,7 +74,7 @@ export class RaceWorkers {
   }
 
   #hire(): Worker {
-    const thread = new Worker(PROGRAM);
+    const thread = new Worker(THREAD);
     const lost = (error: unknown): void => {
       const errand = this.#threads.get(thread);
       if (!this.#threads.delete(thread)) return;

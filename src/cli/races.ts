@@ -4,6 +4,8 @@ import type { ImportOptions, Issue, LogGlance, LogSource, Overrides, Race, RaceD
 import { forMessages, kindOf, logSource, readText, standardInput, STDIN_NAME, unusable } from './files.js';
 import { nearestName } from './inputs.js';
 import type { Source } from './inputs.js';
+import { THREAD } from './race-workers.js';
+import { bigLogs, ReadAhead } from './read-ahead.js';
 import type { Progress } from './terminal.js';
 
 /** A race put together: plain data, that may go to another thread. */
@@ -19,6 +21,8 @@ export interface PlainJob {
 /** A race ready to be worked on. */
 export interface Job extends PlainJob {
   readonly open: (file: string) => LogSource;
+  /** To be called once it has been worked on, or has failed. */
+  readonly close: () => Promise<void>;
 }
 
 /** Where the files of a race lie, by the names results show; a name that is not among them counts from the folder. */
@@ -94,17 +98,25 @@ async function prepare(plain: RaceDraft, names: FileNames, options: RaceOptions)
   };
 }
 
-/** With its logs at hand. */
-export function jobOf(plain: PlainJob, progress: Progress): Job {
+/**
+ * With its logs at hand.
+ *
+ * @param helpers Threads that may read big logs beside this one.
+ */
+export function jobOf(plain: PlainJob, progress: Progress, helpers = 0): Job {
+  const pathOf = (file: string): string => pathIn(plain.files, file);
+  const logs = helpers > 0 ? bigLogs(plain.race, pathOf) : [];
+  const ahead = logs.length > 0 ? new ReadAhead(logs, helpers, THREAD) : null;
   const open = (file: string): LogSource => {
     let read = 0;
     const onBytes = (bytes: number): void => {
       read += bytes;
       progress.say(`reading ${file}: ${(read / 1e6).toFixed(1)} MB`);
     };
-    return logSource(file, pathIn(plain.files, file), { onBytes });
+    const source = logSource(file, pathOf(file), { onBytes });
+    return ahead ? { ...source, elsewhere: (options) => ahead.take(file, options) } : source;
   };
-  return { ...plain, open };
+  return { ...plain, open, close: async () => ahead?.close() };
 }
 
 const pathIn = ({ folder, paths }: Whereabouts, name: string): string => paths.get(name) ?? resolve(folder, name);

@@ -36,9 +36,16 @@ export interface Finished {
   readonly outputs: readonly Output[];
 }
 
-/** Works on one race and makes all that is to be written. */
+/** Works on one race and makes all that is to be written; the job is closed then. */
 export async function workOn(task: Task, job: Job, places: Places): Promise<Finished> {
-  const { result: bare, series, page } = await task.work(job).catch(withZoneHint(job));
+  const {
+    result: bare,
+    series,
+    page,
+  } = await task
+    .work(job)
+    .catch(withZoneHint(job))
+    .finally(() => job.close());
   const result = withIssues(bare, job);
   return { result, outputs: await makeOutputs(places, result, series, () => page(result)) };
 }

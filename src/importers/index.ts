@@ -28,6 +28,8 @@ interface ReadLog {
  * @throws UserError (exit code 2) when nothing of it can be used, with what it is and what to do.
  */
 export async function importLog(source: LogSource, options: ImportOptions = {}): Promise<ImportedLog> {
+  const elsewhere = source.elsewhere?.(options);
+  if (elsewhere) return elsewhere;
   const tally = new Tally(source.name);
   const hash = (source.createHash ?? createSha256)();
   const bytes = await unwrapped(hashed(source, hash), tally);

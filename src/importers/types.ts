@@ -9,6 +9,8 @@ export interface LogSource {
   readonly chunks: AsyncIterable<Uint8Array> | Iterable<Uint8Array>;
   /** A faster SHA-256 where the host has one; ours by default. */
   readonly createHash?: () => StreamHash;
+  /** What comes of reading the log, where the host reads it in another way to the same end; null: it does not. */
+  readonly elsewhere?: (options: ImportOptions) => Promise<ImportedLog> | null;
 }
 
 /** What the reader of a log may have to be told. */
