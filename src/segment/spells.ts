@@ -71,7 +71,7 @@ export function divideBeat(
   mark(leg.from, startedAt(sailing, leg, usual, thresholds), LABEL.start);
   mark(leg.to - thresholds.rounding, leg.to, LABEL.rounding);
   markFetching(sailing, leg, manoeuvres, own, thresholds, labels);
-  markWindows(leg, manoeuvres, mark);
+  markWindows(leg, manoeuvres, labels, mark);
   for (let i = leg.from; i < leg.to; i++) if (Number.isNaN(sailing.gamma[i])) labels[i - leg.from] = LABEL.gap;
   const spells = spellsOf(sailing, leg, labels, thresholds);
   return { labels, spells, blocks: cutBlocks(spells, thresholds) };
@@ -79,11 +79,25 @@ export function divideBeat(
 
 type Mark = (from: number, to: number, label: Label) => void;
 
-/** Windows of manoeuvres; a rounding-up at the very beginning of the leg belongs to the start. */
-function markWindows(leg: Leg, manoeuvres: readonly Manoeuvre[], mark: Mark): void {
-  for (const manoeuvre of manoeuvres) {
+/** A turn that begins or ends so near a stop is part of it: falling off into it, heading up out of it. [s] */
+const AT_STOP = 5;
+
+/** Whether a turn begins or ends at a stop of the leg, and is no tack. */
+function isOfStop({ kind, entry, exit }: Manoeuvre, leg: Leg, labels: Uint8Array): boolean {
+  if (kind === 'tack' || kind === 'gybe') return false;
+  const at = (row: number): number => Math.min(labels.length, Math.max(0, Math.round(row) - leg.from));
+  return labels.subarray(at(entry - AT_STOP), at(exit + AT_STOP)).includes(LABEL.stopped);
+}
+
+/**
+ * Windows of manoeuvres; a rounding-up at the very beginning of the leg belongs to the start, a turn into a stop or out of
+ * it to the stop: a boat blown over falls off before and heads up after, and the whole is what it cost.
+ */
+function markWindows(leg: Leg, manoeuvres: readonly Manoeuvre[], labels: Uint8Array, mark: Mark): void {
+  const stops = manoeuvres.map((manoeuvre) => isOfStop(manoeuvre, leg, labels));
+  for (const [k, manoeuvre] of manoeuvres.entries()) {
     if (manoeuvre.exit <= leg.from || manoeuvre.entry >= leg.to) continue;
-    if (manoeuvre.kind === 'full-turn') {
+    if (manoeuvre.kind === 'full-turn' || stops[k]) {
       mark(Math.max(leg.from, manoeuvre.entry), Math.min(leg.to, manoeuvre.exit), LABEL.stopped);
       continue;
     }

@@ -1,5 +1,10 @@
 /** True metres to windward that turns and shifts cost, from the noise-free second-by-second truth. */
-import type { TrueBoat, TrueLeg, TrueTurn } from './generator/index.js';
+import { performanceOf, SINGLE_HANDER } from './generator/boat.js';
+import { cosd } from './generator/directions.js';
+import { PHASES, type TrueBoat, type TrueLeg, type TrueTurn } from './generator/index.js';
+
+const CLEAN = performanceOf(SINGLE_HANDER, 0);
+const FETCH = PHASES.indexOf('fetch');
 
 /** Seconds on each side of a turn in which settled sailing says what would have been sailed instead. */
 const NEAR_S = 90;
@@ -22,12 +27,21 @@ function usualVmg(boat: TrueBoat, from: number, to: number): number {
   return Number.isNaN(after) ? before : 0.5 * (before + after);
 }
 
-function lossOver(boat: TrueBoat, from: number, to: number): number {
+function lossOver(boat: TrueBoat, from: number, to: number, fetching: boolean): number {
   const usual = usualVmg(boat, from, to);
   if (Number.isNaN(usual)) return NaN;
   let sum = 0;
-  for (let i = from; i < to; i++) sum += usual - boat.vmg[i];
+  for (let i = from; i < to; i++)
+    sum += (fetching && boat.phase[i] === FETCH ? usualFetching(boat, i) : usual) - boat.vmg[i];
   return sum;
+}
+
+/** What a boat makes good that fetches the mark at its course angle: what it loses by that angle is overstood, not the turn's. [m/s] */
+function usualFetching(boat: TrueBoat, i: number): number {
+  const gamma = Math.abs(boat.gamma[i]);
+  const best = CLEAN.bestUp(boat.tws[i]);
+  const made = (angle: number): number => CLEAN.speed(boat.tws[i], angle) * cosd(angle);
+  return (boat.bestVmg[i] * made(gamma)) / made(best);
 }
 
 /** Metres one turn cost, from 3 s before it until its recovery, 3 s before the next, or the mark. [m, positive lost] */
@@ -35,7 +49,7 @@ export function trueTackLoss(boat: TrueBoat, turn: TrueTurn): number {
   const next = boat.turns.find((other) => other.start >= turn.end);
   const leg = boat.legs.find((l) => turn.time >= l.start && turn.time < l.end);
   const to = Math.min(turn.settled, next ? next.start - 3 : Infinity, leg ? leg.end : Infinity);
-  return lossOver(boat, Math.round(turn.start - 3 - boat.t0), Math.round(to - boat.t0));
+  return lossOver(boat, Math.round(turn.start - 3 - boat.t0), Math.round(to - boat.t0), false);
 }
 
 /** Metres all tacks of a leg cost; turns that follow before recovery share one window. [m, positive lost] */
@@ -49,7 +63,7 @@ export function trueManoeuvreLoss(boat: TrueBoat, leg: TrueLeg): number {
     if (last && from <= last[1]) last[1] = Math.max(last[1], to);
     else windows.push([from, to]);
   }
-  return windows.reduce((sum, [from, to]) => sum + (lossOver(boat, from, to) || 0), 0);
+  return windows.reduce((sum, [from, to]) => sum + (lossOver(boat, from, to, true) || 0), 0);
 }
 
 /** Metres along the wind of the moment less metres along the leg's mean wind. [m, negative: the lifted tack was sailed] */

@@ -152,6 +152,14 @@ describe('settled sailing', () => {
     for (const { from, to } of rows.spells) expect(to <= 60 || from >= 110).toBe(true);
   });
 
+  it('counts falling off into a stop and heading up out of it as the stop, a tack elsewhere not', () => {
+    const { rows, list } = divided(`P90 B14 i30 B14 P90 t S90 ${DOWN} ${BEAT}`);
+    expect(list.map(({ kind }) => kind)).toEqual(expect.arrayContaining(['bear-away', 'round-up', 'tack']));
+    expect(count(rows.labels, LABEL.stopped)).toBeGreaterThanOrEqual(55);
+    const [tack] = list.filter(({ kind }) => kind === 'tack');
+    expect(count(rows.labels, LABEL.manoeuvre)).toBeLessThanOrEqual(Math.ceil(tack.exit - tack.entry) + 1);
+  });
+
   it('leaves out a full turn as a stop', () => {
     const { rows } = divided(`P90 f P90 t S90 ${DOWN} ${BEAT}`);
     expect(count(rows.labels, LABEL.stopped)).toBeGreaterThanOrEqual(30);
