@@ -1,4 +1,4 @@
-import { cholesky, type Matrix } from '../math/least-squares.js';
+import { choleskyInPlace } from '../math/cholesky.js';
 import type { MismatchPart } from './mismatch.js';
 
 /** What a settled block lost by one cause, and how an error of the wind shows in it. */
@@ -61,12 +61,14 @@ export function rateDifference(first: readonly Rate[], second: readonly Rate[], 
   const rates = [...first, ...second];
   const boats = rates.map((_, k) => (k < first.length ? 1 : 0));
   const windPart = windCovariance(rates, boats, wind);
+  const ownPart = ownCovariances(rates, boats);
+  const unit = sizeOf(rates);
+  const room = new Float64Array(rates.length * (rates.length + SIDES));
   let best: Fit | null = null;
   for (const keeping of KEEPINGS) {
-    const own = ownCovariance(rates, boats, keeping);
-    const unit = sizeOf(rates);
+    const own = ownPart(keeping);
     for (const scale of WIND_SCALES) {
-      const fit = fitAt(rates, boats, own, windPart, scale / unit);
+      const fit = fitAt(rates, boats, own, windPart, scale / unit, room);
       if (fit && (!best || fit.likelihood > best.likelihood)) best = fit;
     }
   }
@@ -79,19 +81,31 @@ function sizeOf(rates: readonly Rate[]): number {
   return Math.max(1e-12, rates.reduce((sum, rate) => sum + (rate.value - mean) ** 2, 0) / rates.length);
 }
 
-type Square = Float64Array[];
+/** A symmetric matrix: rows of n numbers one after another, of which only the lower triangle is used. */
+type Square = Float64Array;
 
 function square(n: number, at: (k: number, l: number) => number): Square {
-  return Array.from({ length: n }, (_, k) => Float64Array.from({ length: k + 1 }, (_, l) => at(k, l)));
+  const all = new Float64Array(n * n);
+  for (let k = 0; k < n; k++) for (let l = 0; l <= k; l++) all[k * n + l] = at(k, l);
+  return all;
 }
 
-function ownCovariance(rates: readonly Rate[], boats: readonly number[], keeping: number): Square {
-  return square(rates.length, (k, l) => {
-    if (boats[k] !== boats[l]) return 0;
-    const length = BLOCK / Math.sqrt(rates[k].seconds * rates[l].seconds);
-    const alike = keeping ** Math.round(Math.abs(rates[k].time - rates[l].time) / BLOCK);
-    return alike * length;
-  });
+/** The own part by what is kept from block to block. */
+function ownCovariances(rates: readonly Rate[], boats: readonly number[]): (keeping: number) => Square {
+  const n = rates.length;
+  const length = square(n, (k, l) =>
+    boats[k] === boats[l] ? BLOCK / Math.sqrt(rates[k].seconds * rates[l].seconds) : 0,
+  );
+  const apart = square(n, (k, l) => Math.round(Math.abs(rates[k].time - rates[l].time) / BLOCK));
+  return (keeping) => {
+    const powers = new Map<number, number>();
+    const alike = (blocks: number): number => {
+      let power = powers.get(blocks);
+      if (power === undefined) powers.set(blocks, (power = keeping ** blocks));
+      return power;
+    };
+    return square(n, (k, l) => (boats[k] === boats[l] ? alike(apart[k * n + l]) * length[k * n + l] : 0));
+  };
 }
 
 function windCovariance(rates: readonly Rate[], boats: readonly number[], wind: WindErrors): Square {
@@ -115,45 +129,53 @@ interface Fit {
   readonly likelihood: number;
 }
 
-/** Generalised least squares and restricted likelihood at one mixture of own and wind part. */
-function fitAt(rates: readonly Rate[], boats: readonly number[], own: Square, wind: Square, scale: number): Fit | null {
+/** Right-hand sides: one, the boat, the rates. */
+const SIDES = 3;
+
+/**
+ * Generalised least squares and restricted likelihood at one mixture of own and wind part.
+ *
+ * @param room For the work: the matrix and below it the right-hand sides.
+ */
+function fitAt(
+  rates: readonly Rate[],
+  boats: readonly number[],
+  own: Square,
+  wind: Square,
+  scale: number,
+  room: Float64Array,
+): Fit | null {
   const n = rates.length;
-  const factor = cholesky(own.map((row, k) => row.map((value, l) => value + scale * wind[k][l])));
-  if (!factor) return null;
-  const white = (column: (k: number) => number): Float64Array =>
-    solveLower(
-      factor,
-      Float64Array.from({ length: n }, (_, k) => column(k)),
-    );
-  const one = white(() => 1);
-  const boat = white((k) => boats[k]);
-  const value = white((k) => rates[k].value);
+  for (let k = 0; k < n; k++) {
+    for (let at = k * n; at <= k * n + k; at++) room[at] = own[at] + scale * wind[at];
+    room[n * n + k] = 1;
+    room[n * n + n + k] = boats[k];
+    room[n * n + 2 * n + k] = rates[k].value;
+  }
+  if (!choleskyInPlace(room, n, n + SIDES)) return null;
+  const [one, boat, value] = [0, 1, 2].map((side) => room.subarray(n * n + side * n, n * n + (side + 1) * n));
   const [a, b, c] = [dot(one, one), dot(one, boat), dot(boat, boat)];
   const [p, q] = [dot(one, value), dot(boat, value)];
   const determinant = a * c - b * b;
   if (!(determinant > 0)) return null;
   const mean = (c * p - b * q) / determinant;
   const difference = (a * q - b * p) / determinant;
-  const left = value.reduce((sum, v, k) => sum + (v - mean * one[k] - difference * boat[k]) ** 2, 0);
+  let left = 0;
+  let logarithm = 0;
+  for (let k = 0; k < n; k++) {
+    left += (value[k] - mean * one[k] - difference * boat[k]) ** 2;
+    logarithm += Math.log(room[k * n + k]);
+  }
   const variance = Math.max(1e-12, left / (n - 2));
-  const logarithm = 2 * factor.reduce((sum, row, k) => sum + Math.log(row[k]), 0);
   return {
     difference,
     se: Math.sqrt((variance * a) / determinant),
-    likelihood: -0.5 * ((n - 2) * Math.log(variance) + logarithm + Math.log(determinant)),
+    likelihood: -0.5 * ((n - 2) * Math.log(variance) + 2 * logarithm + Math.log(determinant)),
   };
 }
 
-/** Solution x of L x = right. */
-function solveLower(lower: Matrix, right: Float64Array): Float64Array {
-  const x = Float64Array.from(right);
-  for (let i = 0; i < x.length; i++) {
-    for (let k = 0; k < i; k++) x[i] -= lower[i][k] * x[k];
-    x[i] /= lower[i][i];
-  }
-  return x;
-}
-
 function dot(a: Float64Array, b: Float64Array): number {
-  return a.reduce((sum, value, k) => sum + value * b[k], 0);
+  let sum = 0;
+  for (let k = 0; k < a.length; k++) sum += a[k] * b[k];
+  return sum;
 }
