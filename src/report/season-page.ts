@@ -4,7 +4,7 @@ import { html, nameOf, type Part, type Safe } from './html.js';
 import { QUANTITIES, wordsOf } from './season-data.js';
 import type { GroupData, Links, SailorDetail, SailorTrends, SeasonData, TrendWords } from './season-data.js';
 import { raceTable } from './season-races.js';
-import { trendPlate } from './season-trends.js';
+import { readingOf, trendPlate } from './season-trends.js';
 import { section, table } from './sections/figure.js';
 import { termCards } from './terms.js';
 
@@ -80,6 +80,7 @@ function sailorSection(sailor: SailorTrends, detail: SailorDetail, index: number
         ${detail.notes.map((n) => html`<li>${n}.</li>`)}
       </ul>`
     }
+    ${detail.trends.length > 0 && readingOf(detail, links)}
     <div class="plates">${plates}</div>
     ${groupTable('By wind', detail.byWind)}${detail.byBoat.length > 1 && groupTable('By boat', detail.byBoat)}${
       detail.byCrewMass.length > 1 && groupTable('By crew weight', detail.byCrewMass)
@@ -111,13 +112,14 @@ function trendTable(sailor: SailorTrends, name: Part): Safe {
     const { words, unit, times } = wordsOf(t.quantity);
     return [
       words,
-      quantity(t.slope_per_30_days, unit, { times, sign: true, digits: 1 }),
       html`<b>${t.verdict}</b>`,
+      quantity(t.slope_per_30_days, unit, { times, sign: true, digits: 1 }),
       needed(t),
-      number(t.p, 3),
+      t.p < 0.001 ? html`&lt; ${number(0.001, 3)}` : number(t.p, 3),
     ];
   });
-  return table(html`Trends of ${name}`, ['', 'Change in 30 days', 'Verdict', 'Races still needed', 'p'], rows);
+  const heads = ['', 'Verdict', 'Change in 30 days', 'Races still needed', 'p'];
+  return table(html`Trends of ${name}`, heads, rows, 'plain trends');
 }
 
 function needed(t: TrendWords): Part {

@@ -19,7 +19,7 @@ export function raceTable(races: readonly RaceValue[], links: Links): Part {
   ]);
   return html`<details class="figures">
     <summary>Every race</summary>
-    ${table('Joined in the trends or not; ± one standard error', ['Race', 'Wind, kn', ...heads], rows, 'plain groups')}
+    ${table('Joined in the trends or not; ± one standard error', ['Race', 'Wind, kn', ...heads], rows, 'plain groups races')}
   </details>`;
 }
 

@@ -1,5 +1,5 @@
 import { trendChart, type TrendPoint } from './charts/trend.js';
-import { isoOf, plain, suffix, timeText } from './format.js';
+import { isoOf, plain, suffix, timeText, type Unit } from './format.js';
 import { html, type Part } from './html.js';
 import { wordsOf, type Links, type RaceValue, type SailorDetail, type TrendWords } from './season-data.js';
 import { figure } from './sections/figure.js';
@@ -11,6 +11,16 @@ type TrendDetail = SailorDetail['trends'][number];
 const DAY = 86400;
 /** More dots than this are a smear: then neighbours in time are drawn as one, at their mean. */
 const MOST_DOTS = 120;
+
+/** What a scale counts in, in words: a lone sign would be lost. */
+const SCALE: Readonly<Record<Unit, string>> = {
+  percent: 'per cent',
+  m: 'metres',
+  deg: 'degrees',
+  kn: 'knots',
+  s: 'seconds',
+  count: '',
+};
 
 /** The picture of a trend with its words; null where no race has a figure. */
 export function trendPlate(
@@ -30,18 +40,29 @@ export function trendPlate(
   return figure({
     svg: trendChart(points, {
       title: `${words}, ${suffix(unit).trim()}`,
+      unit: SCALE[unit],
       fit: drawn ? fit : null,
       shown,
       races: known.length,
     }),
     title: words,
     summary: html`${shown ? 'The line is evidence of a change.' : 'The broken line is no evidence of a change yet.'}
-    ${
-      size > 1 ? `Each dot is the mean of ${size} races in a row.` : 'Bars are one standard error.'
-    }${size > 1 && ' Bars are one standard error, by their spread.'}${
-      trend.wind === 'allowed for' && ' The wind of each race is allowed for in the trend, not in the dots.'
-    }${points.some(({ href }) => href !== undefined) && ' A point in a ring opens the page of its race.'}`,
+    ${size > 1 && `Each dot is the mean of ${size} races in a row.`}`,
   });
+}
+
+/** How the pictures of a sailor are read, said once. */
+export function readingOf({ trends, races }: SailorDetail, links: Links): Part {
+  const wind = trends.filter(({ trend }) => trend.wind === 'allowed for').length;
+  const together = trends.some((one) => one.races.length > MOST_DOTS);
+  return html`<p class="small">
+    Bars are one standard error${together && ', by the spread of the races where a dot stands for several'}.
+    ${
+      wind > 0 &&
+      `The wind of each race is allowed for in ${wind === trends.length ? 'the trends' : 'most trends'}, not in the dots.`
+    }
+    ${!together && races.some((race) => links(race) !== null) && 'A point in a ring opens the page of its race.'}
+  </p>`;
 }
 
 /** Neighbours in time, so many each, the last perhaps fewer. */

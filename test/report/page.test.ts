@@ -35,8 +35,7 @@ describe('the page as a string', () => {
   test('a pair has leeway and sheeting beside its VMG, said as something to test; files that lack them have no row', () => {
     const { result, series } = sample();
     const page = comparePage(result, series);
-    expect(page).toMatch(/Leeway<\/button> <small>by heading<\/small>/);
-    expect(page).toContain('<span class="none">not determined</span>');
+    expect(page).toContain('leeway: by heading; its ± counts what these are good to');
     expect(page).toContain('something to test side by side');
     // Sampling error and what the instruments are good to, together: 0.3 and 0.28.
     expect(page).toMatch(/−1\.6<\/span><span class="u">°<\/span> <small class="pm">±<span class="n">0\.4/);
@@ -47,6 +46,8 @@ describe('the page as a string', () => {
     expect(before).not.toContain('something to test side by side');
     const even = { ...result.pairs![0], more_leeway: null, sheeted_wider: null };
     expect(comparePage({ ...result, pairs: [even] }, series)).not.toContain('something to test side by side');
+    const bare = { ...result.pairs![0], sheeting_difference_deg: null, sheeted_wider: null };
+    expect(comparePage({ ...result, pairs: [bare] }, series)).toContain('<span class="none">not determined</span>');
   });
 
   test('a hostile name never becomes markup, in either page', () => {

@@ -21,6 +21,8 @@ export interface TrendOptions {
   readonly width: number;
   readonly height: number;
   readonly title: string;
+  /** What stands above the scale; the title when left out. */
+  readonly unit?: string;
   /** Value of the fitted line at a time; null where there is none. */
   readonly fit: ((time: number) => number) | null;
   /** Whether the line is evidence: drawn whole, else broken. */
@@ -47,7 +49,7 @@ export function trendChart(points: readonly TrendPoint[], options: Partial<Trend
     ...dayTicks(from, to).map((t) => dayTick(x(t), o.height - 28, t, to - from > YEAR)),
     fitted(o, from, to, x, y),
     ...points.map((p, i) => racePoint(p, x(p.time), y(p.value), y(p.value - errors[i]), y(p.value + errors[i]))),
-    text(46, 12, o.title, { size: 12, italic: true }),
+    text(46, 12, o.unit ?? o.title, { size: 12, italic: true }),
   ];
   const label = `${o.title}: ${o.races ?? points.length} races, from ${points[0].value.toFixed(1)} to ${points[points.length - 1].value.toFixed(1)}.`;
   // Its points can be reached one by one, so it is no single image.

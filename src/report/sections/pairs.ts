@@ -48,27 +48,39 @@ function whole(q: Q): Q {
 
 const WAYS = { heading: 'heading', masthead: 'masthead angle', forces: 'forces' } as const;
 
+type Row = (words: Part, get: (p: PairLeg | PairResult) => Part) => Part[];
+
 /** Rows of leeway and sheeting; none in files of earlier programs. */
-function trimRows(pair: PairResult, row: (words: Part, get: (p: PairLeg | PairResult) => Part) => Part[]): Part[][] {
+function trimRows(pair: PairResult, row: Row): Part[][] {
   if (pair.leeway_difference_deg === undefined) return [];
-  const ways = (pair.leeway_ways ?? []).map(({ way }) => WAYS[way]).join(' and ');
-  const shown = (q: Q | undefined): Part =>
-    q ? quantity(whole(q), 'deg', { sign: true }) : html`<span class="none">not determined</span>`;
+  const cell =
+    (key: 'leeway_difference_deg' | 'sheeting_difference_deg') =>
+    (p: PairLeg | PairResult): Part => {
+      const q = p[key];
+      if (q) return quantity(whole(q), 'deg', { sign: true });
+      return html`<span class="none">${p === pair ? 'not determined' : '–'}</span>`;
+    };
   return [
-    row(html`${term('leeway', 'Leeway')}${ways && html` <small>by ${ways}</small>`}`, (p) =>
-      shown(p.leeway_difference_deg),
-    ),
-    row(html`${term('sheeting', 'Sheeting')}${pair.sheeting_difference_deg && html` <small>by leeway</small>`}`, (p) =>
-      shown(p.sheeting_difference_deg),
-    ),
+    row(term('leeway', 'Leeway'), cell('leeway_difference_deg')),
+    row(term('sheeting', 'Sheeting'), cell('sheeting_difference_deg')),
+  ];
+}
+
+/** What leeway and sheeting rest on, beside the notes of the result. */
+function basisNotes({ leeway_difference_deg, sheeting_difference_deg, leeway_ways = [] }: PairResult): string[] {
+  const ways = leeway_ways.map(({ way }) => WAYS[way]);
+  if (!leeway_difference_deg || leeway_ways.every(({ way }) => way === 'forces')) return [];
+  return [
+    `leeway: by ${ways.join(' and ')}; its ± counts what these are good to`,
+    ...(sheeting_difference_deg ? ['sheeting: by what the boat file makes of that leeway'] : []),
   ];
 }
 
 function pairPlate(pair: PairResult): Safe {
   const [first, second] = pair.boats;
   const d = pair.vmg_difference_kn;
-  const columns = [...pair.legs, pair];
-  const row = (words: Part, get: (p: PairLeg | PairResult) => Part): Part[] => [words, ...columns.map(get)];
+  const columns = [pair, ...pair.legs];
+  const row: Row = (words, get) => [words, ...columns.map(get)];
   const rows = [
     row('VMG', (p) => quantity(p.vmg_difference_kn, 'kn', { sign: true })),
     row('by height', (p) => quantity(p.height_part_kn, 'kn', { sign: true })),
@@ -82,7 +94,7 @@ function pairPlate(pair: PairResult): Safe {
     d &&
     html`${nameOf(first)} less ${nameOf(second)}: ${inline(d, 'kn', { sign: true })} of ${term('vmg')}, over
     ${plural(pair.blocks, 'pair')} of stretches sailed side by side on one tack (${duration(pair.settled_s)} minutes).`;
-  const heads = ['', ...pair.legs.map((l) => `Lap ${l.lap}`), 'Together'];
+  const heads = ['', 'Together', ...pair.legs.map((l) => `Lap ${l.lap}`)];
   const bars = [
     { name: 'VMG', value: d },
     { name: 'by height', value: pair.height_part_kn },
@@ -94,14 +106,15 @@ function pairPlate(pair: PairResult): Safe {
     summary: html`Bars are two standard errors here. ${term('height', 'Height')} and ${term('quickness', 'speed')} add
     up to the whole.`,
   });
+  const told = [...basisNotes(pair), ...pair.notes];
   const notes = html`<ul class="notes">
-    ${pair.notes.map((n) => html`<li>${n}</li>`)}
+    ${told.map((n) => html`<li>${n}</li>`)}
   </ul>`;
   return html`<div class="pair">
     <div>
       ${verdictOf(pair)}
       <p>${amount}</p>
-      ${trimWords(pair)} ${table('Differences, first less second', heads, rows)} ${pair.notes.length > 0 && notes}
+      ${trimWords(pair)} ${table('Differences, first less second', heads, rows)} ${told.length > 0 && notes}
     </div>
     ${plate}
   </div>`;
