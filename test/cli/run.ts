@@ -1,28 +1,25 @@
 import { spawn } from 'node:child_process';
 import type { ChildProcess } from 'node:child_process';
-import { copyFileSync, mkdirSync, mkdtempSync, readdirSync, rmSync, writeFileSync } from 'node:fs';
+import { cpSync, mkdirSync, mkdtempSync, readdirSync, rmSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { dirname, join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import * as esbuild from 'esbuild';
-import { bundleProgram, keepCompiled } from '../../.config/bundle.js';
+import { builtOnce } from './built-once.js';
 
 /** Root of the project. */
 export const ROOT = fileURLToPath(new URL('../../', import.meta.url));
 
 /**
- * The program as one would install it, put together once for a test file: what is tested does not change under the
- * test. The few packages that are not in it are found from inside node_modules.
+ * The program as one would install it, a copy for a test file: what is tested does not change under the test. The few
+ * packages that are not in it are found from inside node_modules.
  */
 async function build(helpers: readonly string[]): Promise<string> {
-  const place = join(ROOT, 'node_modules/.cache', `legwork-${process.pid}-${Date.now()}`);
-  const program = join(place, 'dist/cli');
-  await bundleProgram(program);
-  copyFileSync(join(ROOT, 'package.json'), join(place, 'package.json'));
-  keepCompiled(program);
+  const place = join(CACHE, `legwork-${process.pid}-${Date.now()}`);
+  cpSync(await builtOnce(CACHE), place, { recursive: true });
   await esbuild.build({
     entryPoints: helpers.map((name) => join(ROOT, 'test/cli', `${name}.ts`)),
-    outdir: program,
+    outdir: join(place, 'dist/cli'),
     bundle: true,
     format: 'esm',
     platform: 'node',
@@ -31,6 +28,8 @@ async function build(helpers: readonly string[]): Promise<string> {
   });
   return place;
 }
+
+const CACHE = join(ROOT, 'node_modules/.cache');
 
 let place: string | undefined;
 /** For `beforeAll`. `helpers`: programs of test/cli that are put together with it, by name. */
