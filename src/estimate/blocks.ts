@@ -1,4 +1,5 @@
 import { circularMean, directionOf, turn, wrap360 } from '../math/angles.js';
+import { lengthOf } from '../math/length.js';
 import { apparentWind } from '../physics/triangle.js';
 import type { Sailing, Tack } from '../segment/sailing.js';
 import type { Block } from '../segment/spells.js';
@@ -41,7 +42,7 @@ export function estimateBlock(sailing: Sailing, tws: Float64Array, block: Block,
   const course = directionOf(ux, uy);
   const twd = circularMean(sailing.twd.subarray(from, to)).mean;
   const wind = mean(tws, from, to);
-  const speed = Math.hypot(ux, uy);
+  const speed = lengthOf(ux, uy);
   const gamma = Math.abs(turn(course, twd));
   const { beta, aws } = Number.isNaN(wind) ? { beta: NaN, aws: NaN } : apparentWind(speed, wind, gamma);
   return {

@@ -15,6 +15,7 @@
  */
 import { directionOf, eastOf, northOf, wrap180 } from '../math/angles.js';
 import { fitLeastSquares, type Fit } from '../math/least-squares.js';
+import { lengthOf } from '../math/length.js';
 import { KNOT } from '../math/units.js';
 
 /** Vector means over some 20 s of steady sailing; NaN = not logged. */
@@ -225,8 +226,8 @@ function misfit(block: ReconcileBlock, v: Values): [number, number, number, numb
   return [
     wrap180(block.heading + v.compass - bow),
     wrap180(block.mastheadAngle + v.masthead + seen - directionOf(ax, ay)),
-    block.apparentSpeed - Math.hypot(ax, ay),
-    block.waterSpeed - Math.hypot(east, north),
+    block.apparentSpeed - lengthOf(ax, ay),
+    block.waterSpeed - lengthOf(east, north),
   ];
 }
 

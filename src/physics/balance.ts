@@ -8,6 +8,7 @@
  * Nested one-dimensional solves: incidence inside, speed outside. Where several speeds balance, the fastest counts.
  */
 import { DEG, RAD } from '../math/angles.js';
+import { lengthOf } from '../math/length.js';
 import { root, rootBetween } from '../math/solve.js';
 import { dragAngle } from './drag-angles.js';
 import type { LiftDrag } from './rig.js';
@@ -114,7 +115,7 @@ export function flowAt(model: ForceModel, speed: number, tws: number, gamma: num
   const γ = RAD * gamma;
   const across = tws * Math.sin(γ);
   const along = speed + tws * Math.cos(γ);
-  const aws = Math.hypot(across, along);
+  const aws = lengthOf(across, along);
   const push = 0.5 * model.airDensity * model.area * aws * aws;
   const beta = DEG * Math.atan2(across, along);
   const upright = model.upright(speed, tws);

@@ -1,4 +1,5 @@
 import { circularMean, directionOf, eastOf, northOf } from '../math/angles.js';
+import { lengthOf } from '../math/length.js';
 import { median } from '../math/median.js';
 import { findStates, steeringAngle } from './point-of-sail.js';
 import type { RowRange, Sailing } from './sailing.js';
@@ -217,7 +218,7 @@ function closest(sailing: Sailing, row: number, mark: Place): number {
   let best = row;
   let least = Infinity;
   for (let i = Math.max(0, row - 90); i < Math.min(sailing.n, row + 90); i++) {
-    const distance = Math.hypot(sailing.x[i] - mark.x, sailing.y[i] - mark.y);
+    const distance = lengthOf(sailing.x[i] - mark.x, sailing.y[i] - mark.y);
     if (distance < least) {
       least = distance;
       best = i;
@@ -260,7 +261,7 @@ const LONGEST_REACH = 90;
  */
 function reachedFrom(turned: number, sailing: Sailing, mark: Place | null): number | null {
   if (!mark) return null;
-  const away = (i: number): number => Math.hypot(sailing.x[i] - mark.x, sailing.y[i] - mark.y);
+  const away = (i: number): number => lengthOf(sailing.x[i] - mark.x, sailing.y[i] - mark.y);
   let best = turned;
   for (let i = turned; i < Math.min(sailing.n, turned + LONGEST_REACH); i++) if (away(i) < away(best)) best = i;
   return away(best) < AT_MARK && away(turned) - away(best) > NEARER ? best : null;
@@ -271,7 +272,7 @@ function passing(sailing: Sailing, piece: RowRange, place: Place, within: number
   let best = -1;
   let least = within;
   for (let i = piece.from; i < piece.to; i++) {
-    const distance = Math.hypot(sailing.x[i] - place.x, sailing.y[i] - place.y);
+    const distance = lengthOf(sailing.x[i] - place.x, sailing.y[i] - place.y);
     if (distance < least) {
       least = distance;
       best = i;

@@ -1,4 +1,5 @@
 import { directionOf, turn } from '../math/angles.js';
+import { lengthOf } from '../math/length.js';
 
 /** One boat's sailing on a 1 Hz grid, as segmentation sees it. NaN = not known at that second. */
 export interface Sailing {
@@ -35,7 +36,7 @@ export function makeSailing(parts: {
   const speed = new Float64Array(n);
   const gamma = new Float64Array(n);
   for (let i = 0; i < n; i++) {
-    speed[i] = Math.hypot(parts.ux[i], parts.uy[i]);
+    speed[i] = lengthOf(parts.ux[i], parts.uy[i]);
     gamma[i] = turn(directionOf(parts.ux[i], parts.uy[i]), parts.twd[i]);
   }
   const { t0, x, y, ux, uy, twd, heading } = parts;

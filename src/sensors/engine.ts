@@ -4,6 +4,7 @@
  */
 
 import { circularMean, directionOf, eastOf, northOf, turn } from '../math/angles.js';
+import { lengthOf } from '../math/length.js';
 import type { Issue } from '../recording/issues.js';
 import type { Track } from '../recording/track.js';
 
@@ -63,7 +64,7 @@ export interface EngineFinding {
  */
 export function findEngine(track: Track, wind?: WindRows, file?: string): EngineFinding {
   const mask = new Uint8Array(track.n);
-  const speed = Float64Array.from(track.vx, (v, i) => Math.hypot(v, track.vy[i]));
+  const speed = Float64Array.from(track.vx, (v, i) => lengthOf(v, track.vy[i]));
   const hasWind = wind !== undefined || track.awa !== undefined;
   if (track.awa) markPinched(mask, speed, track.awa, PINCHED_APPARENT);
   if (wind) {
@@ -180,8 +181,8 @@ function markAlone(mask: Uint8Array, track: Track, speed: Float64Array): void {
     const along = directionOf(mean(track.vx, from, to), mean(track.vy, from, to));
     for (let i = from; i < to; i += 60) {
       const [east, north] = [mean(track.vx, i, i + 60), mean(track.vy, i, i + 60)];
-      if (!(Math.hypot(east, north) > MOVING)) break;
-      speeds.push(Math.hypot(east, north));
+      if (!(lengthOf(east, north) > MOVING)) break;
+      speeds.push(lengthOf(east, north));
       courses.push(turn(along, directionOf(east, north)));
     }
     if (speeds.length < ALONE_SECONDS / 60 || !(mean(speed, from, to) > MOVING)) continue;

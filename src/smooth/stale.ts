@@ -1,3 +1,4 @@
+import { lengthOf } from '../math/length.js';
 import type { Observations } from './kalman.js';
 
 /**
@@ -80,14 +81,14 @@ function saysItMoves(o: Observations, run: Run, resolution: number): boolean {
   for (let i = run.first + 1; i <= run.last; i++) {
     if (o.x[i] !== o.x[i]) continue;
     // A row without a velocity (too slow for a course) counts as standing.
-    if (o.vx[i] === o.vx[i]) gone += Math.hypot(o.vx[i], o.vy[i]) * (o.time[i] - o.time[last]);
+    if (o.vx[i] === o.vx[i]) gone += lengthOf(o.vx[i], o.vy[i]) * (o.time[i] - o.time[last]);
     last = i;
   }
   return gone > GONE + LEAP_RESOLUTIONS * resolution;
 }
 
 function distance(o: Observations, a: number, b: number): number {
-  return Math.hypot(o.x[b] - o.x[a], o.y[b] - o.y[a]);
+  return lengthOf(o.x[b] - o.x[a], o.y[b] - o.y[a]);
 }
 
 /** Speed from the first fix of one run to the first of the next; 0 where there is none. [m/s] */

@@ -1,4 +1,5 @@
 import { directionOf, eastOf, northOf } from '../math/angles.js';
+import { lengthOf } from '../math/length.js';
 import { placeOf, readWind, type WindSource } from './source.js';
 
 /** A source as corrected: what is added to its direction, and how much later it is than the boats. */
@@ -111,7 +112,7 @@ export function readAt(
   const delay = (place ? 0 : lag) + (carry > 0 ? carry * travelTime(source, offset, here.time, dx, dy) : 0);
   const window = Math.min(LONGEST_WINDOW, Math.max(source.window, Math.abs(delay) / 3));
   const { direction, speed } = readWind(source, here.time - delay, window);
-  return { direction: direction + offset, speed, distance: place ? Math.hypot(dx, dy) : NaN };
+  return { direction: direction + offset, speed, distance: place ? lengthOf(dx, dy) : NaN };
 }
 
 /** Seconds the wind takes to be carried over a displacement, negative upwind; 0 in a calm. */

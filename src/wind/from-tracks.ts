@@ -1,4 +1,5 @@
 import { angleBetween, circularMean, directionOf, eastOf, northOf, turn, wrap360 } from '../math/angles.js';
+import { lengthOf } from '../math/length.js';
 import { median } from '../math/median.js';
 import type { Track } from '../recording/track.js';
 import { windSums, type WindSource } from './source.js';
@@ -25,7 +26,7 @@ const TURN_SECONDS = 25;
 function courseTurns(track: Track): CourseTurn[] {
   const n = track.n;
   const course = Float64Array.from(track.vx, (vx, i) => directionOf(vx, track.vy[i]));
-  const speed = Float64Array.from(track.vx, (vx, i) => Math.hypot(vx, track.vy[i]));
+  const speed = Float64Array.from(track.vx, (vx, i) => lengthOf(vx, track.vy[i]));
   const usual = median(Array.from(speed).filter((s) => s > 0.7));
   const steady = new Float64Array(n).fill(NaN);
   for (let i = 0; i + STEADY_SECONDS <= n; i++) {

@@ -1,4 +1,5 @@
 import { directionOf, eastOf, northOf } from '../math/angles.js';
+import { lengthOf } from '../math/length.js';
 import type { Track } from '../recording/track.js';
 import { windSums, type WindSource } from './source.js';
 
@@ -55,7 +56,7 @@ export function onBoardSource(
     const north = aws[i] * northOf(from) - track.vy[i];
     if (Number.isNaN(east)) continue;
     direction[i] = directionOf(east, north);
-    speed[i] = mounted.factor * Math.hypot(east, north);
+    speed[i] = mounted.factor * lengthOf(east, north);
     any = true;
   }
   if (!any) return null;

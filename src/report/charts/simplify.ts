@@ -1,3 +1,5 @@
+import { lengthOf } from '../../math/length.js';
+
 /**
  * Rows of a track that are enough to draw it: the line through them stays within `tolerance` of every row left out.
  * Rows that are not finite are left out; a run is never joined across them.
@@ -43,7 +45,7 @@ function farthest(x: Float64Array, y: Float64Array, a: number, b: number): { at:
   let best = { at: a, distance: -1 };
   for (let i = a + 1; i < b; i++) {
     const along = square > 0 ? Math.max(0, Math.min(1, ((x[i] - x[a]) * dx + (y[i] - y[a]) * dy) / square)) : 0;
-    const distance = Math.hypot(x[i] - x[a] - along * dx, y[i] - y[a] - along * dy);
+    const distance = lengthOf(x[i] - x[a] - along * dx, y[i] - y[a] - along * dy);
     if (distance > best.distance) best = { at: i, distance };
   }
   return best;
