@@ -35,7 +35,7 @@ describe('the page as a string', () => {
   test('a pair has leeway and sheeting beside its VMG, said as something to test; files that lack them have no row', () => {
     const { result, series } = sample();
     const page = comparePage(result, series);
-    expect(page).toContain('leeway: by heading; its ± counts what these are good to');
+    expect(page).toContain('leeway: by heading, its ± with what that is good to');
     expect(page).toContain('something to test side by side');
     // Sampling error and what the instruments are good to, together: 0.3 and 0.28.
     expect(page).toMatch(/−1\.6<\/span><span class="u">°<\/span> <small class="pm">±<span class="n">0\.4/);

@@ -70,10 +70,8 @@ function trimRows(pair: PairResult, row: Row): Part[][] {
 function basisNotes({ leeway_difference_deg, sheeting_difference_deg, leeway_ways = [] }: PairResult): string[] {
   const ways = leeway_ways.map(({ way }) => WAYS[way]);
   if (!leeway_difference_deg || leeway_ways.every(({ way }) => way === 'forces')) return [];
-  return [
-    `leeway: by ${ways.join(' and ')}; its ± counts what these are good to`,
-    ...(sheeting_difference_deg ? ['sheeting: by what the boat file makes of that leeway'] : []),
-  ];
+  const sheeting = sheeting_difference_deg ? '; sheeting: by what the boat file makes of it' : '';
+  return [`leeway: by ${ways.join(' and ')}, its ± with what that is good to${sheeting}`];
 }
 
 function pairPlate(pair: PairResult): Safe {
@@ -114,9 +112,9 @@ function pairPlate(pair: PairResult): Safe {
     <div>
       ${verdictOf(pair)}
       <p>${amount}</p>
-      ${trimWords(pair)} ${table('Differences, first less second', heads, rows)} ${told.length > 0 && notes}
+      ${table('Differences, first less second', heads, rows)}
     </div>
-    ${plate}
+    <div>${plate}${trimWords(pair)}${told.length > 0 && notes}</div>
   </div>`;
 }
 
