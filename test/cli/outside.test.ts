@@ -314,12 +314,4 @@ describe('the demo', () => {
     expect(filesBelow(cwd)).toEqual(['there/race.yaml']);
     drop(cwd);
   });
-  it('may be run twice', async () => {
-    const cwd = folder();
-    expect((await run(['demo'], { cwd })).code).toBe(0);
-    const first = filesBelow(cwd).map((file) => readFileSync(join(cwd, file)));
-    expect((await run(['demo'], { cwd })).code).toBe(0);
-    expect(filesBelow(cwd).map((file) => readFileSync(join(cwd, file)))).toEqual(first);
-    drop(cwd);
-  });
 });

@@ -5,19 +5,38 @@ import type { InspectResult } from '../../src/inspect.js';
 import type { OptimumTable } from '../../src/physics/optimum.js';
 import type { Result } from '../../src/result/result.js';
 import { inspectSchema, optimumSchema, resultSchema } from '../../src/result/schema.js';
+import { gpxText, inventedBeat, windText } from './invented-beat.js';
 import { buildProgram, drop, dropProgram, filesBelow, fill, folder, run } from './run.js';
 
-/** The demo race once, with everything it can write; then what came of it is looked at. */
+/**
+ * The demo race, with everything it can write; then what came of it is looked at. What any race shows is shown by a beat
+ * of one boat, which takes a fraction of the time.
+ */
 let home: string;
 let demo: string;
 let summary: string;
+let twice: readonly (readonly Buffer[])[];
+
+const SMALL = `race: Small
+zone: UTC
+boat: single-hander
+wind: [{ file: wind.csv, height_m: 3 }]
+boats: [{ name: Ann, track: ann.gpx }]
+`;
 
 beforeAll(async () => {
   await buildProgram();
-  home = folder();
+  home = folder({
+    'small/race.yaml': SMALL,
+    'small/ann.gpx': gpxText(inventedBeat()),
+    'small/wind.csv': windText(),
+  });
   demo = join(home, 'legwork-demo');
-  const made = await run(['demo'], { cwd: home });
-  expect(made).toMatchObject({ code: 0, err: '' });
+  const made = async (): Promise<Buffer[]> => {
+    expect(await run(['demo'], { cwd: home })).toMatchObject({ code: 0, err: '' });
+    return filesBelow(demo).map((file) => readFileSync(join(demo, file)));
+  };
+  twice = [await made(), await made()];
   const ran = await run(['debrief', '--json', 'r.json', '--logbook', 'book'], { cwd: demo });
   expect(ran).toMatchObject({ code: 0, err: '' });
   summary = ran.out;
@@ -34,6 +53,11 @@ function texts(value: unknown): string[] {
   if (typeof value === 'string') return [value];
   return value !== null && typeof value === 'object' ? Object.values(value).flatMap(texts) : [];
 }
+
+it('the demo may be made twice', () => {
+  expect(twice[0].length).toBeGreaterThan(5);
+  expect(twice[1]).toEqual(twice[0]);
+});
 
 describe('a result', () => {
   it('is what the strict schema says, nothing more', () => {
@@ -59,12 +83,13 @@ describe('a result', () => {
     expect(texts(json('r.json')).filter((text) => isAbsolute(text) || text.includes(home))).toEqual([]);
   });
   it('names none either where the race file does', async () => {
-    const text = readFileSync(join(demo, 'race.yaml'), 'utf8');
-    const absolute = text
-      .replace('single-hander', join(demo, 'mine.yaml'))
-      .replace('corrie.gpx', join(demo, 'corrie.gpx'));
-    fill(demo, { 'absolute.yaml': absolute, 'mine.yaml': 'boat: Mine\nlike: two-person\n' });
-    const { code, out } = await run(['debrief', 'absolute.yaml', '--json', '-'], { cwd: demo });
+    const small = join(home, 'small');
+    const absolute = SMALL.replace('single-hander', join(small, 'mine.yaml')).replace(
+      'ann.gpx',
+      join(small, 'ann.gpx'),
+    );
+    fill(small, { 'absolute.yaml': absolute, 'mine.yaml': 'boat: Mine\nlike: two-person\n' });
+    const { code, out } = await run(['debrief', 'absolute.yaml', '--json', '-'], { cwd: small });
     expect(code).toBe(0);
     expect(texts(JSON.parse(out)).filter((text) => text.includes(home))).toEqual([]);
     expect((JSON.parse(out) as Result).boats[0].model.boat).toBe('mine.yaml');
@@ -136,9 +161,11 @@ describe('the summary', () => {
     expect((await ask({ NO_COLOR: '1', FORCE_COLOR: '1' })).out).not.toContain('\u001b');
   });
   it('is not there with --quiet', async () => {
-    const ran = await run(['debrief', '--quiet', '--json', 'again.json'], { cwd: demo });
+    const small = join(home, 'small');
+    expect((await run(['debrief', '--json', 'loud.json'], { cwd: small })).out).toContain('Small');
+    const ran = await run(['debrief', '--quiet', '--json', 'quiet.json'], { cwd: small });
     expect(ran).toEqual({ code: 0, out: '', err: '' });
-    expect(readFileSync(join(demo, 'again.json'))).toEqual(readFileSync(join(demo, 'r.json')));
+    expect(readFileSync(join(small, 'quiet.json'))).toEqual(readFileSync(join(small, 'loud.json')));
   });
 });
 
@@ -189,14 +216,22 @@ describe('tune', () => {
     expect({ code, err }).toEqual({ code: 0, err: '' });
     expect(out).toContain('Boat file: single-hander-tuned.yaml');
     expect(filesBelow(join(demo, 'reports'))).toContain('single-hander-tune.html');
-    const again = await run(['tune'], { cwd: demo });
-    expect(again.code).toBe(2);
-    expect(again.err).toMatch(/single-hander-tuned\.yaml: is there already[\s\S]*--force/);
-    const forced = await run(['tune', '--force', '--boat-out', 'single-hander-tuned.yaml', '--quiet'], { cwd: demo });
+    const first = readFileSync(join(demo, 'single-hander-tuned.yaml'));
+    // By another race, under the name it would have; and at once where the name is given.
+    const race = join('..', 'small', 'race.yaml');
+    const named = ['--boat-out', 'single-hander-tuned.yaml'];
+    for (const more of [[], named]) {
+      const again = await run(['tune', race, ...more], { cwd: demo });
+      expect(again.code).toBe(2);
+      expect(again.err).toMatch(/single-hander-tuned\.yaml: is there already[\s\S]*--force/);
+    }
+    expect(readFileSync(join(demo, 'single-hander-tuned.yaml'))).toEqual(first);
+    const forced = await run(['tune', race, '--force', ...named, '--quiet'], { cwd: demo });
     expect(forced).toEqual({ code: 0, out: '', err: '' });
-    const tuned = await run(['debrief', '--boat', 'single-hander-tuned.yaml', '--json', '-'], { cwd: demo });
+    expect(readFileSync(join(demo, 'single-hander-tuned.yaml'))).not.toEqual(first);
+    const tuned = await run(['debrief', race, '--boat', 'single-hander-tuned.yaml', '--json', '-'], { cwd: demo });
     const { boats } = JSON.parse(tuned.out) as Result;
-    expect(boats.map(({ model }) => model.tuned)).toEqual([true, true]);
+    expect(boats.map(({ model }) => model.tuned)).toEqual([true]);
     expect(boats[0].model.boat).toBe('single-hander-tuned.yaml');
   });
 });
