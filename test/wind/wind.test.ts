@@ -244,9 +244,19 @@ describe('lag', () => {
       expect(estimateLag(carried.source, carried.blocks)!.carry).toBe(1);
       const placed = (source: WindSource): WindSource => ({ ...source, place: { x: 0, y: 0 } });
       const here = steered(seed, 0, true);
-      expect(estimateCarry(placed(here.source), here.blocks)).toBe(1);
+      expect(Math.abs(estimateCarry(placed(here.source), here.blocks) - 1)).toBeLessThan(0.1);
       const atOnce = steered(seed, 0, false);
       expect(estimateCarry(placed(atOnce.source), atOnce.blocks)).toBeLessThanOrEqual(0.25);
+    }
+  });
+
+  it('takes up an error of the wind speed in the share of the travel time', () => {
+    for (const seed of [1, 2, 3]) {
+      const { source, blocks } = steered(seed, 0, true);
+      const placed: WindSource = { ...source, place: { x: 0, y: 0 } };
+      const scaled = { ...placed, sums: { ...source.sums, speed: source.sums.speed.map((sum) => 1.1 * sum) } };
+      expect(estimateCarry(scaled, blocks) / estimateCarry(placed, blocks)).toBeCloseTo(1.1, 1);
+      expect(estimateCarry(scaled, blocks)).toBeGreaterThan(1.03);
     }
   });
 
