@@ -47,16 +47,25 @@ describe('standard output', () => {
 });
 
 describe('signals while the program works', () => {
+  /** How long a run takes here and now: signals come at shares of it. [ms] */
+  let whole: number;
+  beforeAll(async () => {
+    const began = performance.now();
+    expect((await run(['debrief', '--json', '-'], { cwd: home })).code).toBe(0);
+    whole = performance.now() - began;
+  });
+  const shares = (...usual: readonly number[]): readonly number[] => (LONG ? [0.1, 0.25, 0.4, 0.5, 0.6, 0.7, 0.8, 0.9, 1] : usual); // prettier-ignore
+
   it.each([
     ['SIGINT', 130],
     ['SIGTERM', 143],
     ['SIGHUP', 129],
   ] as const)('%s leaves all or nothing of every file, whenever it comes', async (signal, expected) => {
-    for (const wait of LONG ? [100, 300, 500, 700, 900, 1100, 1300, 1500] : [300, 900]) {
+    for (const share of shares(0.4, 0.85)) {
       const cwd = folder({ 'race.yaml': raceFile(), 'ann.gpx': TRACK, 'wind.csv': windText() });
       const child = start(['debrief', '--json', 'r.json', '--csv', 't'], { cwd });
       const end = ended(child);
-      await new Promise((resolve) => setTimeout(resolve, wait));
+      await new Promise((resolve) => setTimeout(resolve, share * whole));
       child.kill(signal);
       const { code } = await end;
       // Null: it came before the program could hear; 0: after it was done.
@@ -68,11 +77,11 @@ describe('signals while the program works', () => {
     }
   });
   it('killed outright it leaves every file it names whole', async () => {
-    for (const wait of [900, 1200, 1500, 1800]) {
+    for (const share of shares(0.6, 0.75, 0.9)) {
       const cwd = folder({ 'race.yaml': raceFile(), 'ann.gpx': TRACK, 'wind.csv': windText() });
       const child = start(['debrief', '--json', 'r.json'], { cwd });
       const end = ended(child);
-      await new Promise((resolve) => setTimeout(resolve, wait));
+      await new Promise((resolve) => setTimeout(resolve, share * whole));
       child.kill('SIGKILL');
       await end;
       const left = filesBelow(cwd).filter((file) => file === 'r.json' || /\/[^.][^/]*\.html$/.test(file));
