@@ -53,7 +53,7 @@ export async function readCsv(
     if (plain && !body.includes('"')) {
       // What stands behind the last line end may be half a row.
       const whole = body.lastIndexOf('\n') + 1;
-      line = takePlain(body.slice(0, whole), line, layout.delimiter, plain, take);
+      line = takePlain(body, whole, line, layout.delimiter, plain, take);
       body = body.slice(whole);
     }
     line = takeBlock(body, line, layout, last, take, tally);
@@ -112,8 +112,15 @@ function isOdd(line: string): boolean {
   return quotes % 2 === 1;
 }
 
-/** Takes a block of whole lines without quotes: plain rows at once, runs of others through the parser. */
-function takePlain(text: string, first: number, delimiter: string, plain: PlainRows, take: TakeRow): number {
+/** Takes the whole lines before `end`, without quotes: plain rows at once, runs of others through the parser. */
+function takePlain(
+  text: string,
+  end: number,
+  first: number,
+  delimiter: string,
+  plain: PlainRows,
+  take: TakeRow,
+): number {
   let line = first;
   let runStart = 0;
   let runLine = first;
@@ -121,7 +128,7 @@ function takePlain(text: string, first: number, delimiter: string, plain: PlainR
     if (to > runStart)
       parseRows(text.slice(runStart, to - 1), delimiter, false).forEach((cells, k) => take(cells, runLine + k, true));
   };
-  for (let from = 0; from < text.length; line++) {
+  for (let from = 0; from < end; line++) {
     const to = text.indexOf('\n', from);
     if (plain.parse(text, from, to)) {
       flush(from);
@@ -131,7 +138,7 @@ function takePlain(text: string, first: number, delimiter: string, plain: PlainR
     }
     from = to + 1;
   }
-  flush(text.length);
+  flush(end);
   return line;
 }
 

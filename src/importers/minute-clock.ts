@@ -53,4 +53,29 @@ export class MinuteClock {
     this.seconds = this.#day + clock;
     return at + 1;
   }
+
+  /** Reads the same of letters; whether [from, to) is such a time. */
+  readText(text: string, from: number, to: number): boolean {
+    const minute = this.#minute;
+    if (text.charCodeAt(to - 1) !== 90 || to - from < MINUTE + 3) return false;
+    for (let at = 0; at < MINUTE; at++) if (text.charCodeAt(from + at) !== minute[at]) return false;
+    const tens = text.charCodeAt(from + MINUTE) - 48;
+    const ones = text.charCodeAt(from + MINUTE + 1) - 48;
+    if (!(tens >= 0 && tens <= 5 && ones >= 0 && ones <= 9)) return false;
+    let clock = this.#ofDay + tens * 10 + ones;
+    const first = from + MINUTE + 3;
+    if (to > first) {
+      const places = to - 1 - first;
+      if (text.charCodeAt(first - 1) !== 46 || places === 0 || places > 9) return false;
+      let fraction = 0;
+      for (let at = first; at < to - 1; at++) {
+        const digit = text.charCodeAt(at) - 48;
+        if (!(digit >= 0 && digit <= 9)) return false;
+        fraction = fraction * 10 + digit;
+      }
+      if (fraction > 0) clock += fraction / TENS[places];
+    }
+    this.seconds = this.#day + clock;
+    return true;
+  }
 }

@@ -5,6 +5,7 @@
 import { inRange, isFill } from './cells.js';
 import { readDecimal } from './decimals.js';
 import type { TableLayout } from './layout.js';
+import { MinuteClock } from './minute-clock.js';
 import type { GrowingColumn, LogRows } from './rows.js';
 import { readUnix, type TableClock } from './table-clock.js';
 import type { Tally } from './tally.js';
@@ -20,6 +21,7 @@ export class PlainRows {
   readonly #values: Float64Array;
   readonly #columns: readonly GrowingColumn[];
   readonly #delimiter: number;
+  readonly #minute = new MinuteClock();
   readonly #lat: number;
   readonly #lon: number;
   #seconds = NaN;
@@ -93,8 +95,14 @@ export class PlainRows {
     const { time: index, factor } = this.#layout.time;
     const start = index === 0 ? from : this.#ends[index - 1] + 1;
     const end = this.#ends[index];
+    if (this.#minute.readText(text, start, end)) {
+      this.#seconds = this.#minute.seconds;
+      return (this.#zoned = true);
+    }
     this.#seconds = readIso(text, start, end);
-    this.#zoned = text.charCodeAt(end - 1) === 90 || carriesZone(text.slice(start, end));
+    const isUtc = text.charCodeAt(end - 1) === 90;
+    this.#zoned = isUtc || carriesZone(text.slice(start, end));
+    if (isUtc && !Number.isNaN(this.#seconds)) this.#minute.remember(text, start);
     if (Number.isNaN(this.#seconds)) {
       this.#seconds = readUnix(readDecimal(text, start, end), factor);
       this.#zoned = true;

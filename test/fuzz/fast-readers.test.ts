@@ -59,7 +59,10 @@ test('times of one minute are those read otherwise, to the last bit', () => {
         const text = minute + rest;
         const expected = readIso(text);
         if (!Number.isNaN(expected)) clock.remember(text, 0);
+        const inText = clock.readText(`,${text},`, 1, 1 + text.length);
+        if (inText) expect(clock.seconds).toBe(expected);
         const end = clock.read(bytesOf(`${text}<`), 0);
+        expect(inText).toBe(end === text.length);
         if (end < 0) return;
         read++;
         expect(text.charAt(end - 1)).toBe('Z');
