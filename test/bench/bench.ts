@@ -16,6 +16,7 @@ import { checksum, columnsOf, meanSpeed, sumsText } from './columns.js';
 import { ROOT, scratch, sentences, table, track, whichGenerator } from './data.js';
 import { inTurn, measure, runCommand, SAYS_COST, type Cost, type Measured } from './measure.js';
 import { bestByGrid, gpxBySaxes, TABLE_BY_PANDAS, tableByPapaparse } from './rivals.js';
+import { ceiling, gain, processors, type Processors } from './processors.js';
 import { reportRows, reportText } from './report.js';
 import { seasonRows, seasonText, seasonVerdict } from './season.js';
 import { read, readTolerantly, stages } from './stages.js';
@@ -287,6 +288,21 @@ function sayRows(rows: readonly Row[]): void {
   }
 }
 
+function sayProcessors(rows: readonly Processors[]): void {
+  const head = ['processors', '', '', 'one, s', 'two, s', 'times as fast', 'two programs at once', ''];
+  const cells = rows.map((one) => [
+    one.what,
+    '',
+    '',
+    digits(one.one),
+    digits(one.two),
+    digits(gain(one)),
+    digits(ceiling(one)),
+    one.check[0] === one.check[1] ? 'same bytes' : 'DIFFERS',
+  ]);
+  say(tableText(head, cells));
+}
+
 async function main(): Promise<void> {
   say(`${whichGenerator()}; Node ${process.version}; load ${load()}`);
   const { gpx, wind } = track(MB);
@@ -326,6 +342,9 @@ async function main(): Promise<void> {
   say(tableText(['growth', 'size', '', 's', 'cpu s', 'cpu µs/fix', 'MB', ''], grownCells));
   const { start, each: fix, worst } = straightLine(grown);
   say(`cpu = ${digits(start)} s + ${digits(fix * 1e6)} µs a fix, off by at most ${digits(100 * worst, 0)} %`);
+  const several = await processors(ROUNDS);
+  say();
+  sayProcessors(several);
   const pages = await reportRows();
   say();
   say(pages.length > 0 ? reportText(pages) : 'skipped: no browser is present');
@@ -343,7 +362,8 @@ async function main(): Promise<void> {
     seasonVerdict(seasons),
   ];
   const missed = verdicts.some((one) => one.endsWith('missed'));
-  const failed = verdicts.includes('DIFFERS') || (flags.check && missed);
+  const differs = several.some(({ check }) => check[0] !== check[1]) || verdicts.includes('DIFFERS');
+  const failed = differs || (flags.check && missed);
   process.exitCode = failed ? 1 : 0;
 }
 

@@ -37,8 +37,8 @@ function headingAt(second: number): number {
   return WIND.from + side * (inLap < 480 ? 44 : 150);
 }
 
-function* moments(): Generator<Moment> {
-  const draw = random(2026);
+function* moments(seed = 2026): Generator<Moment> {
+  const draw = random(seed);
   let [east, north, heading] = [0, 0, headingAt(0)];
   for (let n = 0; ; n++) {
     const wanted = headingAt(n / RATE);
@@ -82,9 +82,9 @@ function write(path: string, head: string, pieces: Iterable<string>, bytes: numb
   return count;
 }
 
-function* points(wind: string[]): Generator<string> {
+function* points(wind: string[], seed: number): Generator<string> {
   let n = 0;
-  for (const moment of moments()) {
+  for (const moment of moments(seed)) {
     if (n++ % RATE === 0) wind.push(`${moment.iso},${apparent(moment)}`);
     const { lat, lon, iso, speed } = moment;
     yield `<trkpt lat="${lat}" lon="${lon}"><time>${iso}</time><extensions><s:speed>${speed.toFixed(2)}</s:speed></extensions></trkpt>\n`;
@@ -92,11 +92,11 @@ function* points(wind: string[]): Generator<string> {
 }
 
 /** A track of about so many megabytes and the wind aboard. */
-export function generateTrack(path: string, windPath: string, megabytes: number): void {
+export function generateTrack(path: string, windPath: string, megabytes: number, seed = 2026): void {
   const wind = ['time,awa,aws'];
   const head =
     '<?xml version="1.0" encoding="UTF-8"?>\n<gpx version="1.1" creator="bench" xmlns="http://www.topografix.com/GPX/1/1" xmlns:s="urn:bench"><trk><name>bench</name><trkseg>\n';
-  write(path, head, points(wind), megabytes * 1e6, '</trkseg></trk></gpx>\n');
+  write(path, head, points(wind, seed), megabytes * 1e6, '</trkseg></trk></gpx>\n');
   writeFileSync(windPath, wind.join('\n') + '\n');
 }
 
