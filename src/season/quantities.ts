@@ -88,6 +88,8 @@ function offBest(boat: BoatResult, key: 'leeway_deg' | 'sheeting_deg'): Value | 
   return pooled(legs);
 }
 
+const known = (wind: Q): Q => (wind?.basis === 'inferred' ? null : wind);
+
 interface Weighted extends Value {
   readonly weight: number;
 }
@@ -109,8 +111,11 @@ function pooled(parts: readonly Weighted[]): Value | null {
   return { value, se: Math.sqrt(parts.reduce((sum, { se, weight }) => sum + ((weight / total) * se) ** 2, 0)) };
 }
 
-/** Mean true wind speed of the settled sailing, or the race's. [kn, NaN where not known] */
+/**
+ * Mean true wind speed of the settled sailing, or the race's. A speed inferred through the boat model is none: it goes
+ * with the boat's own speed. [kn, NaN where not known]
+ */
 export function windOf(boat: BoatResult, raceWind: Q): number {
-  const legs = beats(boat).flatMap((leg) => inSettledTime(leg, leg.steady?.tws_kn ?? null));
-  return pooled(legs)?.value ?? raceWind?.value ?? NaN;
+  const legs = beats(boat).flatMap((leg) => inSettledTime(leg, known(leg.steady?.tws_kn ?? null)));
+  return pooled(legs)?.value ?? known(raceWind)?.value ?? NaN;
 }

@@ -21,6 +21,7 @@ import type {
   WindSource as SourceName,
 } from '../result/result.js';
 import { LEEWAY_BASIS } from '../estimate/leeway.js';
+import { apparentBy, windBySpeed } from '../estimate/wind-by-speed.js';
 import type { Figure, SteadyFigures } from '../estimate/steady.js';
 import type { BoatEstimate, LegEstimate } from './estimate-boat.js';
 import type { CleanBoat } from './clean-tracks.js';
@@ -117,7 +118,48 @@ function windOf(a: Assembly): Result['wind'] {
   return {
     sources: [...names],
     twd_deg: quantity(direction, wind.directionInferred ? 'inferred' : basis),
-    tws_kn: known.length > 0 ? knotsQuantity(speed, handWind ? 'assumed' : basis) : null,
+    tws_kn: known.length > 0 ? knotsQuantity(speed, handWind ? 'assumed' : basis) : windBySpeeds(a),
+  };
+}
+
+/** Where no log has the wind's speed: what the models make of the beats' speeds, weighted by their settled time. */
+function windBySpeeds({ estimates, models }: Assembly): Q {
+  let seconds = 0;
+  let value = 0;
+  let se = 0;
+  estimates.forEach(({ legs }, k) => {
+    for (const { all } of legs) {
+      const wind = all && shownWind(all, models[k]);
+      if (!wind) continue;
+      seconds += all.seconds;
+      value += all.seconds * wind.value;
+      // All of one model: their errors go together.
+      se += all.seconds * wind.se;
+    }
+  });
+  return seconds > 0 ? knotsQuantity({ value: value / seconds, se: se / seconds }, 'inferred') : null;
+}
+
+function shownWind({ speed, gamma }: SteadyFigures, { curve, accuracy }: RaceModel): Figure | null {
+  return windBySpeed(curve, speed, gamma, accuracy.speed);
+}
+
+/** The triangle's wind side; through the model, where no log has the wind's speed. */
+function windSide(figures: SteadyFigures, wind: WindBasis): Pick<TackSide, 'tws_kn' | 'aws_kn' | 'beta_deg'> {
+  const basis: Basis = wind.inferred ? 'inferred' : 'derived';
+  if (!Number.isNaN(figures.tws.value)) {
+    return {
+      tws_kn: knotsQuantity(figures.tws, wind.tws),
+      aws_kn: knotsQuantity(figures.aws, basis),
+      beta_deg: quantity(figures.beta, basis),
+    };
+  }
+  const tws = shownWind(figures, wind.model);
+  const apparent = tws && apparentBy(tws, figures);
+  return {
+    tws_kn: knotsQuantity(tws, 'inferred'),
+    aws_kn: knotsQuantity(apparent && apparent.aws, 'inferred'),
+    beta_deg: quantity(apparent && apparent.beta, 'inferred'),
   };
 }
 
@@ -198,6 +240,7 @@ function legResult(estimate: LegEstimate, boat: number, index: number, a: Assemb
       ? steadyOf(estimate, a.trims[boat].legs[index], {
           inferred,
           tws: a.handWind ? 'assumed' : windBasis(a, boat),
+          model: a.models[boat],
         })
       : null,
     optimum: judged.optimum && optimumResult(judged.optimum),
@@ -222,7 +265,9 @@ function legNotes(estimate: LegEstimate, judged: LegJudgement, trim: LegTrim | n
   }
   const notes: string[] = [];
   if (!port || !starboard) notes.push(`no settled sailing on ${port ? 'starboard' : 'port'} tack`);
-  if (Number.isNaN(all.tws.value)) notes.push('wind speed unknown');
+  if (Number.isNaN(all.tws.value)) {
+    notes.push('wind speed unknown', 'the wind speed shown is the one the boat model needs for the speed sailed');
+  }
   if (judged.ledger && !trim?.loss) {
     notes.push('trim: leeway was not measured closely enough to tell it from speed, so its metres stay in speed');
   }
@@ -296,6 +341,8 @@ interface WindBasis {
   /** Its direction comes from the tracks. */
   readonly inferred: boolean;
   readonly tws: Basis;
+  /** What a speed that no log has is inferred through. */
+  readonly model: RaceModel;
 }
 
 function steadyOf(estimate: LegEstimate, trim: LegTrim | null, basis: WindBasis): Steady {
@@ -318,9 +365,7 @@ function sideOf(figures: SteadyFigures, vane: Figure | null, trim: Trim | null, 
     gamma_deg: quantity(figures.gamma, basis),
     speed_kn: knotsQuantity(figures.speed, 'measured'),
     vmg_kn: knotsQuantity(figures.vmg, basis),
-    tws_kn: knotsQuantity(figures.tws, wind.tws),
-    aws_kn: knotsQuantity(figures.aws, basis),
-    beta_deg: quantity(figures.beta, basis),
+    ...windSide(figures, wind),
     awa_deg: vane ? quantity(vane, 'measured') : quantity(trim?.awa ?? null, 'inferred'),
     leeway_deg: leeway && quantity(leeway, leeway.basis),
     sheeting_deg: sheeting && quantity({ value: sheeting.mean, se: sheeting.sd }, 'inferred'),

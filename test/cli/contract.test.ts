@@ -83,7 +83,7 @@ describe('wind that is not there', () => {
   });
   it('a vane without cups: the same', async () => {
     const told = await debriefed('ann.gpx', '--wind', 'vane.csv');
-    expect(told.wind).toMatchObject({ sources: ['station'], tws_kn: null });
+    expect(told.wind).toMatchObject({ sources: ['station'], tws_kn: { basis: 'inferred' } });
     expect(codes(told)).toContain('wind-unknown');
     expect(codes(told)).not.toContain('wind-height-unknown');
   });
@@ -137,7 +137,7 @@ describe('what a log is not used for is said', () => {
     const told = await debriefed('ann.gpx', '--wind', 'still.csv');
     expect(told.warnings).toContainEqual(expect.objectContaining({ code: 'wind-dead', file: 'still.csv' }));
     expect(codes(told)).toContain('wind-unknown');
-    expect(told.wind.tws_kn).toBeNull();
+    expect(told.wind.tws_kn).toMatchObject({ basis: 'inferred' });
   });
   it('a short log of motoring straight into the wind, beside a boat that sailed', async () => {
     const told = await debriefed('ann.gpx', 'motor.gpx', '--wind', 'wind.csv');

@@ -119,11 +119,13 @@ describe.each(CONDITIONS.map((c) => [c.name, c] as const))('%s', (_, c) => {
 
   if (c.name === 'no wind log') {
     it('judges nobody without a wind speed, and says why', () => {
-      expect(result.wind).toMatchObject({ sources: ['tracks'], tws_kn: null });
+      expect(result.wind).toMatchObject({ sources: ['tracks'], tws_kn: { basis: 'inferred' } });
       for (const leg of beats(result)) {
         expect(leg.notes).toContain('wind speed unknown');
         expect(leg).toMatchObject({ optimum: null, ceiling_vmg_kn: null, efficiency: null, share: null, ledger: null });
-        expect(leg.steady).toMatchObject({ tws_kn: null, aws_kn: null, beta_deg: null });
+        const shown = { basis: 'inferred' };
+        expect(leg.steady).toMatchObject({ tws_kn: shown, aws_kn: shown, beta_deg: shown, leeway_deg: null });
+        expect(leg.steady!.tws_kn!.se! / leg.steady!.tws_kn!.value).toBeGreaterThan(0.05);
         expect(leg.steady!.gamma_deg).toMatchObject({ basis: 'inferred' });
         expect(leg.steady!.gamma_deg!.se).toBeGreaterThanOrEqual(2);
       }

@@ -38,7 +38,10 @@ function windLine(result: Result): Safe {
   const { twd_deg: twd, tws_kn: tws, sources } = result.wind;
   const from = sources.map((s) => SOURCE_WORDS[s]).join(' and ');
   const direction = twd ? html`from ${inline(twd, 'deg', { digits: 0 })}` : 'direction not known';
-  const speed = tws ? html` at ${inline(tws, 'kn', { digits: 1 })}` : ', speed not known';
+  const known =
+    tws &&
+    html`${tws.basis === 'inferred' ? ', by the boats’ speed about ' : ' at '}${inline(tws, 'kn', { digits: 1 })}`;
+  const speed = known ?? ', speed not known';
   return html`${term('trueWind', 'True wind')} ${direction}${speed}${from && html`, after ${from}`}.`;
 }
 
