@@ -45,7 +45,7 @@ function titleOf(result: Result, job: PlainJob): string {
 
 function titleLines(result: Result, job: PlainJob): string[] {
   const { twd_deg, tws_kn, sources } = result.wind;
-  const known = tws_kn && ` ${tws_kn.basis === 'inferred' ? 'by the boats’ speed about ' : ''}${text(tws_kn, 1)} kn`;
+  const known = tws_kn && `${tws_kn.basis === 'inferred' ? ', by the boats’ speed about' : ''} ${text(tws_kn, 1)} kn`;
   const speed = known ?? ', speed unknown';
   const wind = twd_deg ? `Wind ${text(twd_deg, 0)}°${speed} (${sources.join(', ')})` : 'Wind unknown';
   return [outColour.bold(titleOf(result, job)), wind];
