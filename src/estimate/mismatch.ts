@@ -1,6 +1,7 @@
 import { median } from '../math/median.js';
 import { tackSign } from '../segment/sailing.js';
 import type { BlockEstimate } from './blocks.js';
+import { tiltOf } from './wind-response.js';
 
 /**
  * How the wind at the boat differs from the wind used for it: a wandering part with a correlation time, and a part that
@@ -40,9 +41,25 @@ function directionResiduals(blocks: readonly BlockEstimate[]): number[] {
   return blocks.map((b) => tackSign(b.tack) * (b.gamma - (b.tack === 'port' ? port : starboard)));
 }
 
+/**
+ * Power with which the boats' speeds went with the wind's: their own blocks', near the usual one where they do not tell.
+ * With the usual one throughout, gusts that all boats met would show as an error of the wind in light air, where a boat
+ * answers in full, and in strong, where it does not.
+ */
+function responseOf(boats: readonly (readonly BlockEstimate[])[]): number {
+  const groups = boats.flatMap((blocks) =>
+    (['port', 'starboard'] as const).map((tack) =>
+      blocks
+        .filter((b) => b.tack === tack)
+        .map((b) => ({ wind: Math.log(b.tws), excess: Math.log(b.speed) - SPEED_RESPONSE * Math.log(b.tws) })),
+    ),
+  );
+  return SPEED_RESPONSE + tiltOf(groups).power;
+}
+
 /** Residual of each block's speed against the speed its wind would give, as a fraction of the wind speed. */
-function speedResiduals(blocks: readonly BlockEstimate[]): number[] {
-  const ratio = blocks.map((b) => Math.log(b.speed / b.tws ** SPEED_RESPONSE));
+function speedResiduals(blocks: readonly BlockEstimate[], response: number): number[] {
+  const ratio = blocks.map((b) => Math.log(b.speed / b.tws ** response));
   const centre = median(ratio);
   return ratio.map((value) => -(value - centre) / SPEED_RESPONSE);
 }
@@ -112,6 +129,8 @@ function partFrom(
 
 /** Wind differs by about 5 degrees and 10 % across a course of some 1200 m: common practice, no source. [per km] */
 const GRADIENT = { direction: 4, speed: 0.08 };
+/** What stays of the wind's difference from a sensor for a whole leg, by its distance: common practice, no source. [deg per km] */
+const SLOW_PER_KM = 2.4;
 /** Where shifts were found to reach the whole course at once the wind is of one piece: so much of that is left. */
 const UNIFORM_SHARE = 0.12;
 
@@ -131,11 +150,17 @@ export function estimateMismatch(
   const used = boats.filter((blocks) => blocks.length >= 4);
   const far = Number.isNaN(distance) ? 500 : distance;
   const part = uniform ? UNIFORM_SHARE : 1;
+  const response = responseOf(used);
   const times = used.map((blocks) => blocks.map((b) => b.time));
   const direction = used.map((blocks, k) => ({ times: times[k], residuals: directionResiduals(blocks) }));
-  const speed = used.map((blocks, k) => ({ times: times[k], residuals: speedResiduals(blocks) }));
+  const speed = used.map((blocks, k) => ({ times: times[k], residuals: speedResiduals(blocks, response) }));
   return {
-    direction: partFrom(direction, LEAST_DIRECTION, part * Math.min(3, (2 * far) / 1000), part * GRADIENT.direction),
+    direction: partFrom(
+      direction,
+      LEAST_DIRECTION,
+      part * Math.min(3, (SLOW_PER_KM * far) / 1000),
+      part * GRADIENT.direction,
+    ),
     speed: partFrom(speed, LEAST_SPEED, part * Math.min(0.08, (0.05 * far) / 1000), part * GRADIENT.speed),
   };
 }

@@ -1,4 +1,5 @@
 import { apparentWind, ceilingVmg } from '../physics/triangle.js';
+import { eastOf, northOf } from '../math/angles.js';
 import { tackSign, type Tack } from '../segment/sailing.js';
 import type { BlockEstimate } from './blocks.js';
 import type { Mismatch, MismatchPart } from './mismatch.js';
@@ -75,21 +76,44 @@ function leverage(blocks: readonly BlockEstimate[], u: readonly number[]): numbe
   return Math.hypot(x, y) / 1000;
 }
 
-/** Per-axis velocity error of the receiver over the settled sailing: displacements of the spells, independent. [m/s] */
-function receiverError(blocks: readonly BlockEstimate[], errors: ErrorModel): number {
-  const spells = new Map<number, number>();
-  for (const block of blocks) {
-    const key = block.leg * 1e6 + block.spell;
-    spells.set(key, (spells.get(key) ?? 0) + block.seconds);
-  }
+/**
+ * Error that the receiver makes in a mean velocity along an axis that may turn with the blocks: ends of blocks less their
+ * beginnings, whose errors wander together over a minute or two, so that what one stretch gains the next gives back. With
+ * s = +1 at an end and -1 at a beginning, a its axis and D the error of a displacement over so long,
+ * variance = -1/2 sum_ij s_i s_j cos(a_i - a_j) D(|t_i - t_j|)^2, over the seconds squared.
+ *
+ * @param axis Direction along which a block's velocity counts. [deg]
+ * @returns [m/s]
+ */
+function receiverError(
+  blocks: readonly BlockEstimate[],
+  errors: ErrorModel,
+  axis: (block: BlockEstimate) => number,
+): number {
+  const ends = blocks.flatMap((block) => {
+    const angle = axis(block);
+    const unit = { x: eastOf(angle), y: northOf(angle) };
+    return [
+      { ...unit, sign: -1, time: block.time - block.seconds / 2 },
+      { ...unit, sign: 1, time: block.time + block.seconds / 2 },
+    ];
+  });
   let variance = 0;
-  let total = 0;
-  for (const seconds of spells.values()) {
-    variance += errors.displacementSe(seconds) ** 2;
-    total += seconds;
+  for (let i = 0; i < ends.length; i++) {
+    for (let j = i + 1; j < ends.length; j++) {
+      const apart = Math.abs(ends[j].time - ends[i].time);
+      if (apart === 0) continue;
+      const along = ends[i].x * ends[j].x + ends[i].y * ends[j].y;
+      variance -= ends[i].sign * ends[j].sign * along * errors.displacementSe(apart) ** 2;
+    }
   }
-  return Math.hypot(Math.sqrt(variance) / total, errors.drift);
+  const seconds = blocks.reduce((sum, block) => sum + block.seconds, 0);
+  return Math.hypot(Math.sqrt(Math.max(0, variance)) / seconds, errors.drift);
 }
+
+const ALONG = (block: BlockEstimate): number => block.course;
+const ACROSS = (block: BlockEstimate): number => block.course - tackSign(block.tack) * 90;
+const TO_WINDWARD = (block: BlockEstimate): number => block.twd;
 
 /**
  * Time means over settled blocks, with errors.
@@ -108,24 +132,26 @@ export function steadyFigures(blocks: readonly BlockEstimate[], errors: ErrorMod
   const speed = at((b) => b.speed);
   const gamma = at((b) => b.gamma);
   const tws = at((b) => b.tws);
-  const receiver = receiverError(blocks, errors);
+  const receiver = receiverError(blocks, errors, ALONG);
   const wind = correlatedError(blocks, signed, errors.mismatch.direction);
-  const gammaSe = Math.max(errors.leastGamma, Math.hypot(wind, receiver / speed / RAD));
+  const across = receiverError(blocks, errors, ACROSS);
+  const gammaSe = Math.max(errors.leastGamma, Math.hypot(wind, across / speed / RAD));
   const gammaSys = errors.sysDirection * imbalance;
   const cross = speed * Math.sin(gamma * RAD) * RAD;
   const windSpeed = correlatedError(blocks, weights, errors.mismatch.speed);
   const slope = triangleSlopes(speed, tws, gamma);
+  const toWindward = receiverError(blocks, errors, TO_WINDWARD);
   const turnSe = Math.max(errors.leastGamma, wind);
   const propagate = (s: Slopes, base: number): Figure => ({
     value: base,
-    se: Math.hypot(s.gamma * turnSe, s.tws * windSpeed, s.receiver * receiver),
+    se: Math.hypot(s.gamma * gammaSe, s.tws * windSpeed, s.receiver * receiver),
     sys: Math.hypot(s.gamma * gammaSys, s.tws * errors.sysSpeed),
   });
   return {
     seconds,
     gamma: { value: gamma, se: gammaSe, sys: gammaSys },
     speed: { value: speed, se: receiver, sys: 0 },
-    vmg: { value: at((b) => b.vmg), se: Math.hypot(cross * turnSe, receiver), sys: cross * gammaSys },
+    vmg: { value: at((b) => b.vmg), se: Math.hypot(cross * turnSe, toWindward), sys: cross * gammaSys },
     tws: { value: tws, se: tws * windSpeed, sys: tws * errors.sysSpeed },
     aws: propagate(
       slope.aws,
@@ -174,7 +200,7 @@ export function tackingAngle(blocks: readonly BlockEstimate[], errors: ErrorMode
   const signed = blocks.map((b, k) => tackSign(b.tack) * weights[k]);
   const wind = correlatedError(blocks, signed, errors.mismatch.direction);
   const speed = weighted(blocks, weights, (b) => b.speed) / 2;
-  const receiver = (2 * receiverError(blocks, errors)) / speed / RAD;
+  const receiver = (2 * receiverError(blocks, errors, ACROSS)) / speed / RAD;
   return {
     value: weighted(blocks, weights, (b) => b.gamma),
     se: Math.max(2 * errors.leastGamma, Math.hypot(wind, receiver)),
