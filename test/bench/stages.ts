@@ -1,7 +1,6 @@
 /** The stages of a debrief one by one, in this process. */
-import { createHash } from 'node:crypto';
-import { createReadStream } from 'node:fs';
 import { basename } from 'node:path';
+import { logSource } from '../../src/cli/files.js';
 import { debrief } from '../../src/debrief.js';
 import type { Race } from '../../src/files/race-types.js';
 import type { Bytes } from '../../src/importers/bytes.js';
@@ -27,16 +26,7 @@ import type { Track } from './data.js';
 import { measure } from './measure.js';
 
 /** A log as the command line opens it. */
-export function openFile(path: string): LogSource {
-  return {
-    name: basename(path),
-    chunks: createReadStream(path, { highWaterMark: 1 << 18 }) as AsyncIterable<Uint8Array>,
-    createHash: () => {
-      const hash = createHash('sha256');
-      return { update: (bytes) => void hash.update(bytes), digest: () => hash.digest('hex') };
-    },
-  };
-}
+export const openFile = (path: string): LogSource => logSource(basename(path), path);
 
 /** Sentences by the tolerant reader alone. */
 export async function readTolerantly(path: string): Promise<Recording> {
