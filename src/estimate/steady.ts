@@ -80,7 +80,8 @@ function leverage(blocks: readonly BlockEstimate[], u: readonly number[]): numbe
  * Error that the receiver makes in a mean velocity along an axis that may turn with the blocks: ends of blocks less their
  * beginnings, whose errors wander together over a minute or two, so that what one stretch gains the next gives back. With
  * s = +1 at an end and -1 at a beginning, a its axis and D the error of a displacement over so long,
- * variance = -1/2 sum_ij s_i s_j cos(a_i - a_j) D(|t_i - t_j|)^2, over the seconds squared.
+ * variance = -1/2 sum_ij s_i s_j cos(a_i - a_j) D(|t_i - t_j|)^2, over the seconds squared. Every block's s sum to
+ * nothing, so what D comes to in the end may be taken off it everywhere: then only what is near in time counts.
  *
  * @param axis Direction along which a block's velocity counts. [deg]
  * @returns [m/s]
@@ -98,18 +99,23 @@ function receiverError(
       { ...unit, sign: 1, time: block.time + block.seconds / 2 },
     ];
   });
-  let variance = 0;
+  const last = errors.displacementSe(FORGOTTEN) ** 2;
+  let variance = (ends.length * last) / 2;
   for (let i = 0; i < ends.length; i++) {
     for (let j = i + 1; j < ends.length; j++) {
       const apart = Math.abs(ends[j].time - ends[i].time);
-      if (apart === 0) continue;
+      if (apart >= FORGOTTEN) break;
       const along = ends[i].x * ends[j].x + ends[i].y * ends[j].y;
-      variance -= ends[i].sign * ends[j].sign * along * errors.displacementSe(apart) ** 2;
+      const squared = apart > 0 ? errors.displacementSe(apart) ** 2 : 0;
+      variance -= ends[i].sign * ends[j].sign * along * (squared - last);
     }
   }
   const seconds = blocks.reduce((sum, block) => sum + block.seconds, 0);
   return Math.hypot(Math.sqrt(Math.max(0, variance)) / seconds, errors.drift);
 }
+
+/** A receiver's wandering is another after this. [s] */
+const FORGOTTEN = 600;
 
 const ALONG = (block: BlockEstimate): number => block.course;
 const ACROSS = (block: BlockEstimate): number => block.course - tackSign(block.tack) * 90;
