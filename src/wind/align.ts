@@ -134,9 +134,9 @@ function spreadOf(blocks: readonly CourseBlock[], windAt: (block: CourseBlock) =
 
 const NOWHERE = { x: 0, y: 0 };
 
-/** Shares of the travel time that are tried. */
+/** Shares of the travel time that are tried, 0.4 to 1.5: less cannot be told from a helm's delay, and is all at once. */
 const CARRY_STEP = 0.025;
-const CARRIES = Array.from({ length: 55 }, (_, k) => (k + 6) * CARRY_STEP);
+const CARRIES = Array.from({ length: 45 }, (_, k) => (k + 16) * CARRY_STEP);
 /** Scale and degrees of freedom of the prior about a share of 1: common practice, no source. */
 const CARRY_PRIOR = 0.15;
 const CARRY_TAIL = 3;
