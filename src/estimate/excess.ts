@@ -281,7 +281,8 @@ const LAY_LINE = 12;
 
 /**
  * How far beyond the lay line a boat tacked for the mark, all told, less how far the other did, times what a metre of it
- * cost the two. What a later shift made of it does not count.
+ * cost the two. What a later shift made of it does not count; but where shifts have made it cost the other more in the end
+ * there is nothing to tell.
  */
 function overstoodFound(mine: readonly BeatCosts[], theirs: readonly BeatCosts[]): Found {
   const of = (beats: readonly BeatCosts[]): number[] =>
@@ -292,7 +293,9 @@ function overstoodFound(mine: readonly BeatCosts[], theirs: readonly BeatCosts[]
     values.filter((past) => past > TURNING).map((past) => past - TURNING);
   const each = (total(mine, 'overstood') + total(theirs, 'overstood')) / Math.max(1, sum(a) + sum(b));
   const events = Math.max(1, beyond(a).length + beyond(b).length);
+  const costMore = total(mine, 'overstood') > total(theirs, 'overstood');
   return {
+    ...(costMore ? {} : { least: Infinity }),
     cause: 'overstood',
     metres: each * (sum(beyond(a)) - sum(beyond(b))),
     se: each * LAY_LINE * Math.sqrt(events),
